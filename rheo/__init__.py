@@ -1,0 +1,35 @@
+"""From viscometer readings of a thick product to a transfer line that an engineer can sign.
+
+The public names are handed on lazily (PEP 562), so that ``import rheo`` and ``rheo --help``
+stay quick.
+"""
+
+from __future__ import annotations
+
+import importlib
+from typing import Any
+
+__version__ = "0.1.0"
+
+_PUBLIC = {
+    "InputError": "rheo.errors",
+    "Caution": "rheo.errors",
+    "Model": "rheo.models",
+    "model": "rheo.models",
+    "model_record": "rheo.models",
+    "model_records": "rheo.models",
+}
+
+__all__ = ["__version__", *_PUBLIC]  # noqa: PLE0604
+
+
+def __getattr__(name: str) -> Any:
+    if name not in _PUBLIC:
+        raise AttributeError(f"module 'rheo' has no attribute {name!r}")
+    value = getattr(importlib.import_module(_PUBLIC[name]), name)
+    globals()[name] = value
+    return value
+
+
+def __dir__() -> list[str]:
+    return sorted(__all__)

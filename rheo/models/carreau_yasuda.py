@@ -1,0 +1,138 @@
+"""Carreau-Yasuda fluid: two plateaus and a power law between them, with a free bend."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import Any
+
+import numpy as np
+
+from rheo.errors import InputError
+from rheo.models.common import (
+    INFINITE_SHEAR_VISCOSITY,
+    PLATEAU_FLOW_INDEX,
+    TIME_CONSTANT,
+    ZERO_SHEAR_VISCOSITY,
+    reciprocal_rate_grid,
+)
+from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
+
+
+def shape_factor(
+    rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray, exponent: FloatArray
+) -> FloatArray:
+    """(η - η_∞)/(η_0 - η_∞) [-]."""
+    reduced = (time_constant * rate) ** exponent
+    return np.exp((flow_index - 1.0) / exponent * np.log1p(reduced))
+
+
+def stress(
+    rate: FloatArray,
+    zero_shear_viscosity: FloatArray,
+    infinite_shear_viscosity: FloatArray,
+    time_constant: FloatArray,
+    flow_index: FloatArray,
+    yasuda_exponent: FloatArray,
+) -> FloatArray:
+    """Shear stress [Pa]."""
+    factor = shape_factor(rate, time_constant, flow_index, yasuda_exponent)
+    return rate * (infinite_shear_viscosity * (1.0 - factor) + zero_shear_viscosity * factor)
+
+
+def log_slope(
+    rate: FloatArray,
+    zero_shear_viscosity: FloatArray,
+    infinite_shear_viscosity: FloatArray,
+    time_constant: FloatArray,
+    flow_index: FloatArray,
+    yasuda_exponent: FloatArray,
+) -> FloatArray:
+    """d ln(stress)/d ln(rate) [-], in a form that does not cancel at high rates."""
+    reduced = (time_constant * rate) ** yasuda_exponent
+    factor = np.exp((flow_index - 1.0) / yasuda_exponent * np.log1p(reduced))
+    step = zero_shear_viscosity - infinite_shear_viscosity
+    rise = infinite_shear_viscosity + step * factor * (1.0 + flow_index * reduced) / (1.0 + reduced)
+    return rise / (infinite_shear_viscosity + step * factor)
+
+
+def jacobian(
+    rate: FloatArray,
+    zero_shear_viscosity: FloatArray,
+    infinite_shear_viscosity: FloatArray,
+    time_constant: FloatArray,
+    flow_index: FloatArray,
+    yasuda_exponent: FloatArray,
+) -> tuple[FloatArray, ...]:
+    """d stress/d (η_0, η_∞, λ, n, a)."""
+    product = time_constant * rate
+    reduced = product**yasuda_exponent
+    bend = np.log1p(reduced)
+    factor = np.exp((flow_index - 1.0) / yasuda_exponent * bend)
+    step = rate * (zero_shear_viscosity - infinite_shear_viscosity) * factor
+    share = reduced / (1.0 + reduced)
+    log_product = np.log(np.where(product > 0, product, 1.0))
+    return (
+        rate * factor,
+        rate * (1.0 - factor),
+        step * (flow_index - 1.0) * share / time_constant,
+        step * bend / yasuda_exponent,
+        step * (flow_index - 1.0) / yasuda_exponent * (share * log_product - bend / yasuda_exponent),
+    )
+
+
+def check_rising(
+    zero_shear_viscosity: FloatArray,
+    infinite_shear_viscosity: FloatArray,
+    time_constant: FloatArray,
+    flow_index: FloatArray,
+    *_: Any,
+) -> None:
+    """Refuse a curve that would turn negative."""
+    if np.any((flow_index > 1) & (infinite_shear_viscosity > zero_shear_viscosity)):
+        raise InputError(
+            "with a flow_index above 1 the infinite_shear_viscosity must not exceed the "
+            "zero_shear_viscosity, or the stress turns negative"
+        )
+
+
+def plateau_basis(factor: FloatArray, rate: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """Columns whose coefficients are η_0 and η_∞."""
+    return rate * factor, rate * (1.0 - factor)
+
+
+def plateau_parameters(
+    order: Callable[[tuple[Any, ...]], tuple[Any, ...]] = lambda shape: shape,
+) -> Callable[[tuple[Any, ...], tuple[Any, ...]], tuple[Any, ...]]:
+    """Return the map from shape and (η_0, η_∞) to parameters in record order."""
+    return lambda shape, size: (size[0], size[1], *order(shape))
+
+
+RECORD = ModelRecord(
+    key="carreau-yasuda",
+    name="Carreau-Yasuda",
+    equation="η = η_∞ + (η_0 - η_∞)[1 + (λγ̇)^a]^((n-1)/a)",
+    parameters=(
+        ZERO_SHEAR_VISCOSITY,
+        INFINITE_SHEAR_VISCOSITY,
+        TIME_CONSTANT,
+        PLATEAU_FLOW_INDEX,
+        Parameter("yasuda_exponent", "a", "-", "bend of the first plateau", 0.1, 10.0),
+    ),
+    stress=stress,
+    log_slope=log_slope,
+    jacobian=jacobian,
+    check=check_rising,
+    source="K. Yasuda, R. C. Armstrong & R. E. Cohen, Rheol. Acta 20 (1981) 163",
+    validity="Polymer solutions and melts and gums with a plateau at low rates.",
+    separable=Separable(
+        shape=("time_constant", "flow_index", "yasuda_exponent"),
+        grid=lambda rate: (
+            reciprocal_rate_grid(rate, 25),
+            np.linspace(0.0, 1.2, 13),
+            np.geomspace(0.1, 10.0, 9),
+        ),
+        basis=lambda rate, *shape: plateau_basis(shape_factor(rate, *shape), rate),
+        to_parameters=plateau_parameters(),
+        logarithmic=(True, False, True),
+    ),
+)
