@@ -12,6 +12,7 @@ from typing import Any
 __version__ = "0.1.0"
 
 _PUBLIC = {
+    "FlowCurve": "rheo.readings",
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Model": "rheo.models",
