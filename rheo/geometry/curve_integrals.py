@@ -27,7 +27,8 @@ _BLOCK = 1 << 20
 
 
 @cache
-def _rule(points: int) -> tuple[FloatArray, FloatArray]:
+def unit_rule(points: int) -> tuple[FloatArray, FloatArray]:
+    """Return Gauss-Legendre nodes and weights on [0, 1]."""
     nodes, weights = np.polynomial.legendre.leggauss(points)
     return 0.5 * (1.0 + nodes), 0.5 * weights
 
@@ -35,10 +36,10 @@ def _rule(points: int) -> tuple[FloatArray, FloatArray]:
 @cache
 def _to_panel_end(points: int) -> FloatArray:
     """Matrix that takes values at the nodes of [0, 1] to integrals from each node to 1."""
-    nodes, _ = _rule(points)
+    nodes, _ = unit_rule(points)
     x = 2.0 * nodes - 1.0
     vandermonde = np.polynomial.legendre.legvander(x, points - 1)
-    antiderivative = np.empty((points, points))
+    antiderivative: FloatArray = np.empty((points, points))
     for order in range(points):
         unit = np.zeros(order + 1)
         unit[order] = 1.0
@@ -46,7 +47,7 @@ def _to_panel_end(points: int) -> FloatArray:
         antiderivative[:, order] = np.polynomial.legendre.legval(
             1.0, integral
         ) - np.polynomial.legendre.legval(x, integral)
-    return 0.5 * np.linalg.solve(vandermonde.T, antiderivative.T).T
+    return np.asarray(0.5 * np.linalg.solve(vandermonde.T, antiderivative.T).T, dtype=float)
 
 
 @cache
@@ -61,7 +62,7 @@ def _panels(level: int) -> tuple[FloatArray, FloatArray, FloatArray, int]:
         edges = np.linspace(0.0, _DEPTH, 64)
         points = 16
     edges = -edges[::-1]
-    nodes, weights = _rule(points)
+    nodes, weights = unit_rule(points)
     widths = np.diff(edges)
     at = edges[:-1, None] + widths[:, None] * nodes
     return at.ravel(), (widths[:, None] * weights).ravel(), widths, points
@@ -99,9 +100,7 @@ def integrate_below(
     result[:] = fine
     doubtful = np.abs(fine - coarse) > tolerance * np.abs(fine)
     if np.any(doubtful):
-        result[doubtful] = _at_level(
-            flat.map(lambda value: value[doubtful]), flat_rate[doubtful], integrand, 2
-        )
+        result[doubtful] = _at_level(flat.at(doubtful), flat_rate[doubtful], integrand, 2)
     return result.reshape(shape)
 
 
@@ -112,7 +111,7 @@ def _at_level(model: Model, rate: FloatArray, integrand: Integrand, level: int) 
     step = max(1, _BLOCK // nodes.size)
     for start in range(0, rate.size, step):
         part = slice(start, start + step)
-        local = model.map(lambda value, part=part: value[part, np.newaxis])
+        local = model.at((part, np.newaxis))
         result[part] = integrand(local, rate[part, np.newaxis] * scale, level) @ weights
     return result
 
@@ -145,7 +144,7 @@ def moment_ratio(model: Model, rate: FloatArray, k: int) -> FloatArray:
 def moment_ratio_by_quadrature(model: Model, rate: FloatArray, k: int) -> FloatArray:
     """Return `moment_ratio` by quadrature, whether or not a closed form exists."""
 
-    def integrand(local: Model, node_rate: FloatArray, level: int) -> FloatArray:  # noqa: ARG001
+    def integrand(local: Model, node_rate: FloatArray, level: int) -> FloatArray:
         stress = local.record.stress(node_rate, *local)
         slope = local.record.log_slope(node_rate, *local)
         return stress ** (k + 1) * node_rate * slope

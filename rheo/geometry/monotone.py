@@ -11,75 +11,128 @@ from scipy.optimize import elementwise
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
+Pair = tuple[FloatArray, FloatArray]
 
 _LARGEST_STEP = 8.0
-_CONVERGED = 2e-15
 _STEPS = 40
 
 
 def solve_log(
-    value_at: Callable[[Model, FloatArray], FloatArray],
-    log_slope_at: Callable[[Model, FloatArray, FloatArray], FloatArray],
+    value_at: Callable[..., FloatArray],
+    log_slope_at: Callable[..., FloatArray],
     model: Model,
     target: FloatArray,
     start: FloatArray | None = None,
+    extra: tuple[FloatArray, ...] = (),
 ) -> FloatArray:
-    """Solve ``value_at(model, rate) = target`` for the shear rate, element by element.
+    """Solve ``value_at(model, rate, *extra) = target`` for the shear rate, element by element.
 
-    Newton's method on logarithms, in which all our relations are nearly straight; elements that
-    have not settled are finished by a bracketing method.
+    As `solve_pair`, for a value and a slope that share no work.
 
     Parameters
     ----------
     value_at : callable
-        ``value_at(model, rate)``: a positive quantity that rises with the shear rate.
+        ``value_at(model, rate, *extra)``: a positive quantity that rises with the shear rate.
     log_slope_at : callable
-        ``log_slope_at(model, rate, value)``: d ln(value)/d ln(rate).
-    model : Model
-        Flow curve; parameters broadcast against `target`.
-    target : array
-        Wanted values, above 0.
-    start : array, optional
-        First shear rate [1/s]; `target` itself when absent.
+        ``log_slope_at(model, rate, value, *extra)``: d ln(value)/d ln(rate).
+    model, target, start, extra
+        As for `solve_pair`.
 
     Returns
     -------
     array
         Shear rate [1/s], in the shape to which all arguments broadcast.
     """
-    shape = np.broadcast_shapes(np.shape(target), model.shape)
-    wanted = np.log(np.broadcast_to(target, shape).reshape(-1))
-    flat = model.map(lambda value: np.broadcast_to(value, shape).reshape(-1))
-    at = wanted.copy() if start is None else np.log(np.broadcast_to(start, shape).reshape(-1))
+
+    def value_and_slope(local: Model, rate: FloatArray, *more: FloatArray) -> Pair:
+        value = value_at(local, rate, *more)
+        return value, log_slope_at(local, rate, value, *more)
+
+    return solve_pair(value_and_slope, model, target, start, extra)
+
+
+def solve_pair(
+    value_and_slope: Callable[..., Pair],
+    model: Model,
+    target: FloatArray,
+    start: FloatArray | None = None,
+    extra: tuple[FloatArray, ...] = (),
+) -> FloatArray:
+    """Solve ``value = target`` for the shear rate, element by element.
+
+    Newton's method on logarithms, in which all our relations are nearly straight; elements that
+    have not settled are finished by a bracketing method.
+
+    Parameters
+    ----------
+    value_and_slope : callable
+        ``value_and_slope(model, rate, *extra)``: a positive quantity that rises with the shear
+        rate, and d ln(value)/d ln(rate).
+    model : Model
+        Flow curve; parameters broadcast against `target`.
+    target : array
+        Wanted values, above 0.
+    start : array, optional
+        First shear rate [1/s]; `target` itself when absent.
+    extra : tuple of array
+        Further arguments that broadcast along, such as dimensions.
+
+    Returns
+    -------
+    array
+        Shear rate [1/s], in the shape to which all arguments broadcast.
+    """
+    first = target if start is None else start
+    shape = np.broadcast_shapes(
+        np.shape(target), np.shape(first), model.shape, *(np.shape(value) for value in extra)
+    )
+
+    def flatten(value: FloatArray) -> FloatArray:
+        return np.broadcast_to(value, shape).reshape(-1)
+
+    wanted = np.log(flatten(target))
+    at = np.log(flatten(first))
+    flat = model.map(flatten)
+    flat_extra = tuple(flatten(value) for value in extra)
     active = np.arange(at.size)
     for _ in range(_STEPS):
         if active.size == 0:
             return np.exp(at).reshape(shape)
-        local = flat if active.size == at.size else flat.map(lambda value, i=active: value[i])
-        rate = np.exp(at[active])
-        value = value_at(local, rate)
-        step = (np.log(value) - wanted[active]) / log_slope_at(local, rate, value)
-        step = np.clip(step, -_LARGEST_STEP, _LARGEST_STEP)
-        new = at[active] - step
-        at[active] = new
+        local, more = flat, flat_extra
+        if active.size < at.size:
+            local = flat.at(active)
+            more = tuple(value[active] for value in flat_extra)
+        value, slope = value_and_slope(local, np.exp(at[active]), *more)
+        step = np.clip((np.log(value) - wanted[active]) / slope, -_LARGEST_STEP, _LARGEST_STEP)
+        at[active] -= step
         # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
-        active = active[~(np.abs(step) <= 1e-8 + _CONVERGED * np.abs(new))]
-    local = flat.map(lambda value: value[active])
-    at[active] = _by_bracket(value_at, local, wanted[active])
+        active = active[~(np.abs(step) <= 1e-8)]
+    at[active] = _by_bracket(
+        value_and_slope,
+        flat.at(active),
+        wanted[active],
+        at[active],
+        tuple(value[active] for value in flat_extra),
+    )
     return np.exp(at).reshape(shape)
 
 
 def _by_bracket(
-    value_at: Callable[[Model, FloatArray], FloatArray], model: Model, wanted: FloatArray
+    value_and_slope: Callable[..., Pair],
+    model: Model,
+    wanted: FloatArray,
+    start: FloatArray,
+    extra: tuple[FloatArray, ...],
 ) -> FloatArray:
-    def gap(log_rate: FloatArray, want: FloatArray, *parameters: FloatArray) -> FloatArray:
-        local = model.map(lambda value: value)
-        object.__setattr__(
-            local, "parameters", dict(zip(model.parameters, parameters, strict=True))
+    def gap(log_rate: FloatArray, index: FloatArray) -> FloatArray:
+        chosen = index.astype(int)
+        value, _ = value_and_slope(
+            model.at(chosen),
+            np.exp(log_rate),
+            *(value[chosen] for value in extra),
         )
-        return np.log(value_at(local, np.exp(log_rate))) - want
+        return np.log(value) - wanted[chosen]
 
-    args = (wanted, *model)
-    bracket = elementwise.bracket_root(gap, wanted - 1.0, wanted + 1.0, args=args)
-    found = elementwise.find_root(gap, bracket.bracket, args=args)
-    return found.x
+    index = np.arange(start.size, dtype=float)
+    bracket = elementwise.bracket_root(gap, start - 1.0, start + 1.0, args=(index,))
+    return elementwise.find_root(gap, bracket.bracket, args=(index,)).x

@@ -31,7 +31,9 @@ def wall_rate(model: Model, nominal_rate: FloatArray) -> FloatArray:
     """Return the wall shear rate [1/s] at 8V/D [1/s] above 0, to 1e-13 relative."""
     return solve_log(
         lambda local, rate: 4.0 * rate * moment_ratio(local, rate, 2),
-        lambda local, rate, value: local.record.log_slope(rate, *local) * (4.0 * rate / value - 3.0),
+        lambda local, rate, value: (
+            local.record.log_slope(rate, *local) * (4.0 * rate / value - 3.0)
+        ),
         model,
         nominal_rate,
     )

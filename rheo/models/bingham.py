@@ -9,16 +9,12 @@ from rheo.models.common import YIELD_STRESS
 from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
 
 
-def stress(
-    rate: FloatArray, yield_stress: FloatArray, plastic_viscosity: FloatArray
-) -> FloatArray:
+def stress(rate: FloatArray, yield_stress: FloatArray, plastic_viscosity: FloatArray) -> FloatArray:
     """Shear stress [Pa]."""
     return yield_stress + plastic_viscosity * rate
 
 
-def rate(
-    stress: FloatArray, yield_stress: FloatArray, plastic_viscosity: FloatArray
-) -> FloatArray:
+def rate(stress: FloatArray, yield_stress: FloatArray, plastic_viscosity: FloatArray) -> FloatArray:
     """Shear rate [1/s]."""
     return np.maximum(stress - yield_stress, 0.0) / plastic_viscosity
 
@@ -62,7 +58,8 @@ RECORD = ModelRecord(
     jacobian=jacobian,
     yield_stress=lambda yield_stress, plastic_viscosity: yield_stress,
     moment_ratio=moment_ratio,
-    source="E. C. Bingham, Fluidity and Plasticity (1922); E. Buckingham, Proc. ASTM 21 (1921) 1154",
+    source="E. C. Bingham, Fluidity and Plasticity (1922); "
+    "E. Buckingham, Proc. ASTM 21 (1921) 1154",
     validity="Suspensions and slurries whose stress rises in a straight line above yield.",
     separable=Separable(
         shape=(),

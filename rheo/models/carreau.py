@@ -15,9 +15,7 @@ from rheo.models.common import (
 from rheo.models.record import FloatArray, ModelRecord, Separable
 
 
-def shape_factor(
-    rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray
-) -> FloatArray:
+def shape_factor(rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray) -> FloatArray:
     """(η - η_∞)/(η_0 - η_∞) [-]."""
     return np.exp(0.5 * (flow_index - 1.0) * np.log1p((time_constant * rate) ** 2))
 

@@ -76,7 +76,10 @@ def jacobian(
         rate * (1.0 - factor),
         step * (flow_index - 1.0) * share / time_constant,
         step * bend / yasuda_exponent,
-        step * (flow_index - 1.0) / yasuda_exponent * (share * log_product - bend / yasuda_exponent),
+        step
+        * (flow_index - 1.0)
+        / yasuda_exponent
+        * (share * log_product - bend / yasuda_exponent),
     )
 
 

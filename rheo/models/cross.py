@@ -14,9 +14,7 @@ from rheo.models.common import (
 from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
 
 
-def shape_factor(
-    rate: FloatArray, time_constant: FloatArray, rate_index: FloatArray
-) -> FloatArray:
+def shape_factor(rate: FloatArray, time_constant: FloatArray, rate_index: FloatArray) -> FloatArray:
     """(η - η_∞)/(η_0 - η_∞) [-]."""
     return 1.0 / (1.0 + (time_constant * rate) ** rate_index)
 

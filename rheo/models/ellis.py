@@ -17,9 +17,7 @@ def rate(
     stress_index: FloatArray,
 ) -> FloatArray:
     """Shear rate [1/s]."""
-    return (
-        stress / zero_shear_viscosity * (1.0 + (stress / half_stress) ** (stress_index - 1.0))
-    )
+    return stress / zero_shear_viscosity * (1.0 + (stress / half_stress) ** (stress_index - 1.0))
 
 
 def reduced_stress(reduced_rate: FloatArray, stress_index: FloatArray) -> FloatArray:

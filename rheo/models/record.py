@@ -246,6 +246,10 @@ class Model:
         )
         return changed
 
+    def at(self, index: Any) -> Model:
+        """Return the model with each parameter array indexed alike, by number, slice or mask."""
+        return self.map(lambda value: value[index])
+
     def __repr__(self) -> str:
         values = ", ".join(
             f"{key}={float(value):.6g}" if value.ndim == 0 else f"{key}=array{value.shape}"

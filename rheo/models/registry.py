@@ -5,12 +5,14 @@ from __future__ import annotations
 import difflib
 import importlib
 import pkgutil
+from collections.abc import Mapping
 from functools import cache
+from typing import cast
 
 from numpy.typing import ArrayLike
 
 from rheo.errors import InputError
-from rheo.models.record import Model, ModelRecord
+from rheo.models.record import FloatArray, Model, ModelRecord
 
 
 @cache
@@ -63,4 +65,5 @@ def model(key: str, **parameters: ArrayLike) -> Model:
     InputError
         For an unknown model, or an unknown, missing or impossible parameter.
     """
-    return Model(model_record(key), parameters)  # type: ignore[arg-type]
+    # The model itself turns the values into arrays as it checks them.
+    return Model(model_record(key), cast(Mapping[str, FloatArray], parameters))

@@ -62,7 +62,9 @@ RECORD = ModelRecord(
     separable=Separable(
         shape=("rate_offset", "flow_index"),
         grid=lambda rate: (
-            np.concatenate([[0.0], np.geomspace(rate[rate > 0].min() * 1e-4, rate.max() * 1e3, 40)]),
+            np.concatenate(
+                [[0.0], np.geomspace(rate[rate > 0].min() * 1e-4, rate.max() * 1e3, 40)]
+            ),
             flow_index_grid(),
         ),
         basis=lambda rate, rate_offset, flow_index: ((rate + rate_offset) ** flow_index,),

@@ -57,13 +57,14 @@ def moment_ratio(
     a = plateau / (plateau + power)
     b = power / (plateau + power)
     n = flow_index
-    return sum(
+    terms = [
         comb(k, j)
         * a ** (k - j)
         * b**j
         * (a / (k - j + j * n + 2) + n * b / (k - j + (j + 1) * n + 1))
         for j in range(k + 1)
-    )
+    ]
+    return np.sum(terms, axis=0)
 
 
 RECORD = ModelRecord(
