@@ -80,6 +80,7 @@ RECORD = ModelRecord(
     log_slope=log_slope,
     jacobian=jacobian,
     check=carreau_yasuda.check_rising,
+    allowed=carreau_yasuda.stays_positive,
     source="P. J. Carreau, Trans. Soc. Rheol. 16 (1972) 99",
     validity="Polymer solutions and gums with a plateau at low rates.",
     separable=Separable(

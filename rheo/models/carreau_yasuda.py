@@ -6,6 +6,7 @@ from collections.abc import Callable
 from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.models.common import (
@@ -83,15 +84,20 @@ def jacobian(
     )
 
 
-def check_rising(
+def stays_positive(
     zero_shear_viscosity: FloatArray,
     infinite_shear_viscosity: FloatArray,
-    time_constant: FloatArray,
+    time_constant: FloatArray,  # noqa: ARG001
     flow_index: FloatArray,
     *_: Any,
-) -> None:
+) -> NDArray[np.bool_]:
+    """Return where the stress stays above 0 at every rate."""
+    return np.asarray((flow_index <= 1) | (infinite_shear_viscosity <= zero_shear_viscosity))
+
+
+def check_rising(*parameters: Any) -> None:
     """Refuse a curve that would turn negative."""
-    if np.any((flow_index > 1) & (infinite_shear_viscosity > zero_shear_viscosity)):
+    if not np.all(stays_positive(*parameters)):
         raise InputError(
             "with a flow_index above 1 the infinite_shear_viscosity must not exceed the "
             "zero_shear_viscosity, or the stress turns negative"
@@ -125,6 +131,7 @@ RECORD = ModelRecord(
     log_slope=log_slope,
     jacobian=jacobian,
     check=check_rising,
+    allowed=stays_positive,
     source="K. Yasuda, R. C. Armstrong & R. E. Cohen, Rheol. Acta 20 (1981) 163",
     validity="Polymer solutions and melts and gums with a plateau at low rates.",
     separable=Separable(

@@ -19,9 +19,9 @@ TIME_CONSTANT = Parameter("time_constant", "λ", "s", "time constant", 1e-9, 1e9
 PLATEAU_FLOW_INDEX = Parameter("flow_index", "n", "-", "flow index", 0.0, 2.0)
 
 
-def flow_index_grid(count: int = 41) -> FloatArray:
+def flow_index_grid(count: int = 41, upper: float = FLOW_INDEX.upper) -> FloatArray:
     """Return flow indices that cover the allowed range, denser where they are small."""
-    return np.geomspace(FLOW_INDEX.lower, FLOW_INDEX.upper, count)
+    return np.geomspace(FLOW_INDEX.lower, upper, count)
 
 
 def reciprocal_rate_grid(rate: FloatArray, count: int = 33, beyond: float = 1e3) -> FloatArray:

@@ -36,7 +36,8 @@ def reduced_stress(reduced_rate: FloatArray, stress_index: FloatArray) -> FloatA
         share = 0.5 * (1.0 + np.tanh(0.5 * exponent))
         step = gap / (1.0 + power * share)
         at = at - step
-        if np.all(np.abs(step) <= 2e-16 * np.maximum(1.0, np.abs(at)) + 1e-16):
+        # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
+        if np.all(np.abs(step) <= 1e-8):
             break
     return np.where(flowing, np.exp(at), 0.0)
 

@@ -6,19 +6,27 @@ import numpy as np
 
 from rheo.models.record import FloatArray, Model
 
+# The logarithm of the rate is sought between these; no fluid is sheared outside.
+_LOWEST, _HIGHEST = -160.0, 60.0
+_STEPS = 200
 
-def rate_from_stress(model: Model, stress: FloatArray) -> FloatArray:
+
+def rate_from_stress(
+    model: Model, stress: FloatArray, start: FloatArray | None = None
+) -> FloatArray:
     """Return the shear rate [1/s] at a shear stress [Pa]; 0 at and below the yield stress.
 
     Closed form where the record has one; else Newton's method in logarithms with a bracket,
-    to 1e-14 in the logarithm of the rate. The flow curve must rise with the rate.
+    to the last digits of the flow curve. The flow curve must rise with the rate.
 
     Parameters
     ----------
     model : Model
         Parameters broadcast against `stress`.
     stress : array
-        Shear stress [Pa], 0 or more.
+        Shear stress [Pa], 0 or more; NaN gives NaN.
+    start : array, optional
+        A shear rate [1/s] near the answer, above 0; used only where there is no closed form.
 
     Returns
     -------
@@ -27,32 +35,39 @@ def rate_from_stress(model: Model, stress: FloatArray) -> FloatArray:
     """
     if model.record.rate is not None:
         return model.record.rate(stress, *model)
-    stress, *values = np.broadcast_arrays(stress, *model)
-    rate = np.zeros(stress.shape)
+    shape = np.broadcast_shapes(np.shape(stress), model.shape)
+    stress = np.broadcast_to(stress, shape)
+    rate = np.where(np.isnan(stress), np.nan, 0.0)
     flows = stress > 0
     if np.any(flows):
-        chosen = [value[flows] for value in values]
-        rate[flows] = _solve(model.record.stress, model.record.log_slope, stress[flows], chosen)
+        local = model.map(lambda value: np.broadcast_to(value, shape)[flows])
+        first = None if start is None else np.broadcast_to(start, shape)[flows]
+        rate[flows] = _solve(local, stress[flows], first)
     return rate
 
 
-def _solve(stress_of, log_slope_of, stress, values):  # type: ignore[no-untyped-def]
+def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatArray:
     """Newton's method on ln(stress) against ln(rate), kept inside a shrinking bracket."""
     target = np.log(stress)
-    low = np.full(stress.shape, -230.0)
-    high = np.full(stress.shape, 230.0)
-    at = np.clip(target - np.log(stress_of(np.ones_like(stress), *values)), -60.0, 60.0)
-    for _ in range(200):
+    low = np.full(stress.shape, _LOWEST)
+    high = np.full(stress.shape, _HIGHEST)
+    if start is None:
+        one = np.ones_like(stress)
+        offset = target - np.log(model.record.stress(one, *model))
+        at = offset / np.maximum(model.record.log_slope(one, *model), 0.05)
+    else:
+        at = np.log(start)
+    at = np.clip(at, _LOWEST, _HIGHEST)
+    for _ in range(_STEPS):
         rate = np.exp(at)
-        gap = np.log(stress_of(rate, *values)) - target
+        gap = np.log(model.record.stress(rate, *model)) - target
         high = np.where(gap > 0, at, high)
         low = np.where(gap <= 0, at, low)
-        step = gap / log_slope_of(rate, *values)
-        new = at - step
-        outside = ~((new > low) & (new < high))
-        new = np.where(outside, 0.5 * (low + high), new)
+        new = at - gap / model.record.log_slope(rate, *model)
+        new = np.where((new >= low) & (new <= high), new, 0.5 * (low + high))
         moved = np.abs(new - at)
         at = new
-        if np.all(moved <= 1e-14 * np.maximum(1.0, np.abs(at))):
+        # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
+        if np.all(moved <= 1e-8):
             break
     return np.exp(at)

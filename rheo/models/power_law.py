@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
 from rheo.models.common import CONSISTENCY, FLOW_INDEX, flow_index_grid
@@ -45,11 +47,14 @@ def moment_ratio(
     return slope / ((k + 1) * slope + 1)
 
 
+# Wider than where a second term must hold the curve up: dense suspensions can jump in stress.
+_FLOW_INDEX = replace(FLOW_INDEX, upper=5.0)
+
 RECORD = ModelRecord(
     key="power-law",
     name="power law",
     equation="τ = K γ̇^n",
-    parameters=(CONSISTENCY, FLOW_INDEX),
+    parameters=(CONSISTENCY, _FLOW_INDEX),
     stress=stress,
     rate=rate,
     log_slope=log_slope,
@@ -61,7 +66,7 @@ RECORD = ModelRecord(
     "yield stress, so it must not be extrapolated to low rates.",
     separable=Separable(
         shape=("flow_index",),
-        grid=lambda rate: (flow_index_grid(),),
+        grid=lambda rate: (flow_index_grid(49, _FLOW_INDEX.upper),),
         basis=lambda rate, flow_index: (rate**flow_index,),
         to_parameters=lambda shape, size: (size[0], shape[0]),
         logarithmic=(True,),

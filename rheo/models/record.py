@@ -102,6 +102,8 @@ class ModelRecord:
         stress^k rate d(stress) up to `rate`, over stress^(k+1) rate [-].
     check : callable, optional
         Raises InputError on a combination of values that is no flow curve.
+    allowed : callable, optional
+        Says which combinations pass `check`, as an array; all when absent.
     """
 
     key: str
@@ -118,6 +120,7 @@ class ModelRecord:
     yield_stress: Formula | None = None
     moment_ratio: Formula | None = None
     check: Callable[..., None] | None = None
+    allowed: Callable[..., NDArray[np.bool_]] | None = None
 
     @property
     def parameter_keys(self) -> tuple[str, ...]:
