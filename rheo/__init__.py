@@ -13,6 +13,7 @@ __version__ = "0.1.0"
 
 _PUBLIC = {
     "FlowCurve": "rheo.readings",
+    "Readings": "rheo.readings",
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Geometry": "rheo.geometry",

@@ -3,5 +3,6 @@
 from __future__ import annotations
 
 from rheo.readings.flow_curve import FlowCurve
+from rheo.readings.readings import ColumnRecord, RawBlock, Readings
 
-__all__ = ["FlowCurve"]
+__all__ = ["ColumnRecord", "FlowCurve", "RawBlock", "Readings"]

@@ -100,7 +100,7 @@ class FlowCurve:
         return FlowCurve(
             self.rate[chosen],
             self.stress[chosen],
-            *(None if part is None else part[chosen] for part in parts),  # type: ignore[arg-type]
+            *(None if part is None else part[chosen] for part in parts),
         )
 
     def __repr__(self) -> str:
