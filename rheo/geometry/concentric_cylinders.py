@@ -107,7 +107,7 @@ def check_radii(
         raise InputError(
             f"outer_radius is {float(outer[wrong].flat[0]):g} m; it must be larger than "
             f"inner_radius, {float(inner[wrong].flat[0]):g} m",
-            "geometry concentric-cylinders",
+            "cylinders",
         )
 
 
@@ -137,3 +137,16 @@ RECORD = GeometryRecord(
     validity="Steady laminar flow of constant temperature without slip, any gap; part of the gap "
     "may be at rest. With a rotating bob, below the speed at which Taylor vortices set in.",
 )
+
+
+def standard_dimensions(inner_radius: float) -> dict[str, float]:
+    """Return the dimensions [m] of ISO 3219's standard cylinders of a bob radius [m].
+
+    R_o/R_i = 1.0847, L = 3 R_i, end factor 1.10.
+    """
+    return {
+        "inner_radius": inner_radius,
+        "outer_radius": 1.0847 * inner_radius,
+        "length": 3.0 * inner_radius,
+        "end_factor": 1.10,
+    }

@@ -69,7 +69,7 @@ def _panels(level: int) -> tuple[FloatArray, FloatArray, FloatArray, int]:
 
 
 def integrate_below(
-    model: Model, rate: FloatArray, integrand: Integrand, tolerance: float = _TOLERANCE
+    model: Model, rate: FloatArray, integrand: Integrand, rough: bool = False
 ) -> FloatArray:
     """Integrate over ln(rate) from rest up to a shear rate.
 
@@ -83,8 +83,8 @@ def integrate_below(
         ``integrand(local_model, node_rate, level)``: the model with a trailing axis, shear rates at
         the nodes along it, and the level that `cumulative_from_top` needs; returns values along
         that axis.
-    tolerance : float
-        Relative difference of two levels above which a finer one is used.
+    rough : bool
+        Whether the first level will do, as on the way to a root.
 
     Returns
     -------
@@ -94,14 +94,14 @@ def integrate_below(
     shape = np.broadcast_shapes(np.shape(rate), model.shape)
     flat_rate = np.broadcast_to(rate, shape).reshape(-1)
     flat = model.map(lambda value: np.broadcast_to(value, shape).reshape(-1))
-    result = np.empty(flat_rate.shape)
     coarse = _at_level(flat, flat_rate, integrand, 0)
+    if rough:
+        return coarse.reshape(shape)
     fine = _at_level(flat, flat_rate, integrand, 1)
-    result[:] = fine
-    doubtful = np.abs(fine - coarse) > tolerance * np.abs(fine)
+    doubtful = np.abs(fine - coarse) > _TOLERANCE * np.abs(fine)
     if np.any(doubtful):
-        result[doubtful] = _at_level(flat.at(doubtful), flat_rate[doubtful], integrand, 2)
-    return result.reshape(shape)
+        fine[doubtful] = _at_level(flat.at(doubtful), flat_rate[doubtful], integrand, 2)
+    return fine.reshape(shape)
 
 
 def _at_level(model: Model, rate: FloatArray, integrand: Integrand, level: int) -> FloatArray:
@@ -116,7 +116,7 @@ def _at_level(model: Model, rate: FloatArray, integrand: Integrand, level: int) 
     return result
 
 
-def moment_ratio(model: Model, rate: FloatArray, k: int) -> FloatArray:
+def moment_ratio(model: Model, rate: FloatArray, k: int, rough: bool = False) -> FloatArray:
     """Return the integral of stress^k rate d(stress) up to a rate, over stress^(k+1) rate.
 
     The flow rate in a tube rests on k = 2, in a slot on k = 1, the largest velocity on k = 0.
@@ -130,6 +130,8 @@ def moment_ratio(model: Model, rate: FloatArray, k: int) -> FloatArray:
         Shear rate [1/s], above 0.
     k : int
         0, 1 or 2.
+    rough : bool
+        Whether the first level of the quadrature will do.
 
     Returns
     -------
@@ -138,10 +140,12 @@ def moment_ratio(model: Model, rate: FloatArray, k: int) -> FloatArray:
     """
     if model.record.moment_ratio is not None:
         return model.record.moment_ratio(k, rate, *model)
-    return moment_ratio_by_quadrature(model, rate, k)
+    return moment_ratio_by_quadrature(model, rate, k, rough)
 
 
-def moment_ratio_by_quadrature(model: Model, rate: FloatArray, k: int) -> FloatArray:
+def moment_ratio_by_quadrature(
+    model: Model, rate: FloatArray, k: int, rough: bool = False
+) -> FloatArray:
     """Return `moment_ratio` by quadrature, whether or not a closed form exists."""
 
     def integrand(local: Model, node_rate: FloatArray, level: int) -> FloatArray:
@@ -151,7 +155,7 @@ def moment_ratio_by_quadrature(model: Model, rate: FloatArray, k: int) -> FloatA
 
     rate = np.asarray(rate, dtype=float)
     top = model.record.stress(rate, *model)
-    return integrate_below(model, rate, integrand) / (top ** (k + 1) * rate)
+    return integrate_below(model, rate, integrand, rough) / (top ** (k + 1) * rate)
 
 
 def cumulative_from_top(values: FloatArray, level: int) -> FloatArray:

@@ -19,8 +19,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.geometry.curve_integrals import unit_rule
-from rheo.geometry.monotone import solve_pair
+from rheo.geometry.monotone import solve_log
 from rheo.models import Model
+from rheo.models.inverse import rate_from_stress
 
 FloatArray = NDArray[np.float64]
 
@@ -78,7 +79,10 @@ def _speed_and_slope(level: int | None) -> Callable[..., tuple[FloatArray, Float
         model: Model, rate: FloatArray, log_ratio: FloatArray
     ) -> tuple[FloatArray, FloatArray]:
         top = model.record.stress(rate, *model)
-        cup_rate = np.minimum(model.rate(top * np.exp(-2.0 * log_ratio)), rate)
+        slope = model.record.log_slope(rate, *model)
+        near = rate * np.exp(np.maximum(-2.0 * log_ratio / np.maximum(slope, 0.01), -_EDGES[-1]))
+        cup_rate = rate_from_stress(model, top * np.exp(-2.0 * log_ratio), near)
+        cup_rate = np.minimum(cup_rate, rate)
         flows = cup_rate > 0
         depth = np.minimum(np.log(rate / np.where(flows, cup_rate, rate * 1e-30)), _EDGES[-1])
         # Where the two rates agree to the last digit the gap has no width that could be seen.
@@ -90,7 +94,7 @@ def _speed_and_slope(level: int | None) -> Callable[..., tuple[FloatArray, Float
         width = np.where(np.isfinite(log_ratio), log_ratio, 0.0)
         speed = cup_rate * width + 0.5 * inner
         drop = -np.expm1(-depth) * rate
-        return speed, 0.5 * drop * model.record.log_slope(rate, *model) / speed
+        return speed, 0.5 * drop * slope / speed
 
     return relation
 
@@ -146,8 +150,8 @@ def bob_rate(model: Model, speed: FloatArray, log_ratio: FloatArray) -> FloatArr
     newtonian = newtonian_bob_rate(speed, log_ratio)
     slope = model.record.log_slope(newtonian, *model)
     start = power_law_bob_rate(speed, log_ratio, np.maximum(slope, 1e-6))
-    rough = solve_pair(_speed_and_slope(0), model, speed, start, (log_ratio,))
-    return solve_pair(_speed_and_slope(None), model, speed, rough, (log_ratio,))
+    rough = solve_log(_speed_and_slope(0), model, speed, start, (log_ratio,))
+    return solve_log(_speed_and_slope(None), model, speed, rough, (log_ratio,))
 
 
 def newtonian_bob_rate(speed: FloatArray, log_ratio: FloatArray) -> FloatArray:

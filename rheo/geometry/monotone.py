@@ -6,7 +6,6 @@ from collections.abc import Callable
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.optimize import elementwise
 
 from rheo.models import Model
 
@@ -18,40 +17,6 @@ _STEPS = 40
 
 
 def solve_log(
-    value_at: Callable[..., FloatArray],
-    log_slope_at: Callable[..., FloatArray],
-    model: Model,
-    target: FloatArray,
-    start: FloatArray | None = None,
-    extra: tuple[FloatArray, ...] = (),
-) -> FloatArray:
-    """Solve ``value_at(model, rate, *extra) = target`` for the shear rate, element by element.
-
-    As `solve_pair`, for a value and a slope that share no work.
-
-    Parameters
-    ----------
-    value_at : callable
-        ``value_at(model, rate, *extra)``: a positive quantity that rises with the shear rate.
-    log_slope_at : callable
-        ``log_slope_at(model, rate, value, *extra)``: d ln(value)/d ln(rate).
-    model, target, start, extra
-        As for `solve_pair`.
-
-    Returns
-    -------
-    array
-        Shear rate [1/s], in the shape to which all arguments broadcast.
-    """
-
-    def value_and_slope(local: Model, rate: FloatArray, *more: FloatArray) -> Pair:
-        value = value_at(local, rate, *more)
-        return value, log_slope_at(local, rate, value, *more)
-
-    return solve_pair(value_and_slope, model, target, start, extra)
-
-
-def solve_pair(
     value_and_slope: Callable[..., Pair],
     model: Model,
     target: FloatArray,
@@ -124,6 +89,8 @@ def _by_bracket(
     start: FloatArray,
     extra: tuple[FloatArray, ...],
 ) -> FloatArray:
+    from scipy.optimize import elementwise
+
     def gap(log_rate: FloatArray, index: FloatArray) -> FloatArray:
         chosen = index.astype(int)
         value, _ = value_and_slope(

@@ -7,7 +7,7 @@ from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.geometry import tube_flow
-from rheo.geometry.monotone import solve_pair
+from rheo.geometry.monotone import solve_log
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -61,7 +61,7 @@ def sheared_at(
     # The block's share of the flow is known, so that a start at the rest is close.
     rest = np.where(block, 1.0, apparent - sliding * model.yield_stress)
     wanted = np.where(block, sliding * model.yield_stress + rest, apparent)
-    rate = solve_pair(_sliding_rate, model, wanted, rest, (sliding,))
+    rate = solve_log(_sliding_rate, model, wanted, rest, (sliding,))
     stress = model.record.stress(rate, *model)
     safe = np.where(sliding > 0, sliding, 1.0)
     return np.where(block, 0.0, rate), np.where(block, apparent / safe, stress)

@@ -8,12 +8,12 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.geometry.channel import solve_channel
 from rheo.geometry.curve_integrals import (
     cumulative_from_top,
     integrate_below,
     moment_ratio,
 )
-from rheo.geometry.monotone import solve_log
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
@@ -29,14 +29,7 @@ def nominal_rate(model: Model, wall_rate: FloatArray) -> FloatArray:
 
 def wall_rate(model: Model, nominal_rate: FloatArray) -> FloatArray:
     """Return the wall shear rate [1/s] at 8V/D [1/s] above 0, to 1e-13 relative."""
-    return solve_log(
-        lambda local, rate: 4.0 * rate * moment_ratio(local, rate, 2),
-        lambda local, rate, value: (
-            local.record.log_slope(rate, *local) * (4.0 * rate / value - 3.0)
-        ),
-        model,
-        nominal_rate,
-    )
+    return solve_channel(model, nominal_rate, 2)
 
 
 def local_flow_index(nominal_rate: FloatArray, wall_rate: FloatArray) -> FloatArray:

@@ -87,7 +87,7 @@ def jacobian(
 def stays_positive(
     zero_shear_viscosity: FloatArray,
     infinite_shear_viscosity: FloatArray,
-    time_constant: FloatArray,  # noqa: ARG001
+    time_constant: FloatArray,
     flow_index: FloatArray,
     *_: Any,
 ) -> NDArray[np.bool_]:

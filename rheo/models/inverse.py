@@ -6,9 +6,8 @@ import numpy as np
 
 from rheo.models.record import FloatArray, Model
 
-# The logarithm of the rate is sought between these; no fluid is sheared outside.
-_LOWEST, _HIGHEST = -160.0, 60.0
 _STEPS = 200
+_LARGEST_STEP = 10.0
 
 
 def rate_from_stress(
@@ -49,22 +48,23 @@ def rate_from_stress(
 def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatArray:
     """Newton's method on ln(stress) against ln(rate), kept inside a shrinking bracket."""
     target = np.log(stress)
-    low = np.full(stress.shape, _LOWEST)
-    high = np.full(stress.shape, _HIGHEST)
+    low = np.full(stress.shape, -np.inf)
+    high = np.full(stress.shape, np.inf)
     if start is None:
         one = np.ones_like(stress)
         offset = target - np.log(model.record.stress(one, *model))
-        at = offset / np.maximum(model.record.log_slope(one, *model), 0.05)
+        at = np.clip(offset / model.record.log_slope(one, *model), -40.0, 40.0)
     else:
         at = np.log(start)
-    at = np.clip(at, _LOWEST, _HIGHEST)
     for _ in range(_STEPS):
         rate = np.exp(at)
         gap = np.log(model.record.stress(rate, *model)) - target
         high = np.where(gap > 0, at, high)
         low = np.where(gap <= 0, at, low)
-        new = at - gap / model.record.log_slope(rate, *model)
-        new = np.where((new >= low) & (new <= high), new, 0.5 * (low + high))
+        step = gap / model.record.log_slope(rate, *model)
+        new = at - np.clip(step, -_LARGEST_STEP, _LARGEST_STEP)
+        outside = (new < low) | (new > high)
+        new[outside] = 0.5 * (low[outside] + high[outside])
         moved = np.abs(new - at)
         at = new
         # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
