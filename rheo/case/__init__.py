@@ -1,0 +1,21 @@
+"""The saved design case: schema, load, save, run."""
+
+from __future__ import annotations
+
+from rheo.case.schema import Case
+from rheo.case.storage import (
+    case_from_document,
+    case_from_text,
+    case_text,
+    load_case,
+    save_case,
+)
+
+__all__ = [
+    "Case",
+    "case_from_document",
+    "case_from_text",
+    "case_text",
+    "load_case",
+    "save_case",
+]

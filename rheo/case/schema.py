@@ -1,0 +1,190 @@
+"""The case: everything that a calculation starts from, as one document.
+
+Each class is a table of the TOML file and each field a key. Quantities are texts with units there
+and SI numbers here; a number without a unit is read in the SI unit of its field.
+"""
+
+from __future__ import annotations
+
+import json
+from pathlib import Path
+from typing import Annotated, Any, Self
+
+from pydantic import Field, PrivateAttr, field_validator, model_validator
+
+from rheo.case.block import Block, KeyedError
+from rheo.case.fields import (
+    Density,
+    Flow,
+    HeatCapacity,
+    Hours,
+    Length,
+    NotNegativePressure,
+    Percent,
+    Share,
+    Stress,
+    Temperature,
+    Text,
+    Viscosity,
+    VolumeFraction,
+)
+from rheo.case.line_blocks import LineBlock
+from rheo.case.pump_blocks import PumpChoice
+from rheo.case.readings_blocks import ReadingsBlock
+from rheo.case.upgrade import SCHEMA_VERSION
+from rheo.errors import CaseError, InputError
+from rheo.fitting.weighting import WEIGHTINGS
+from rheo.models import model_record
+
+AUTO = "auto"
+INSTRUMENT = "instrument"
+
+
+class SolidsBlock(Block):
+    """Coarse particles carried by the product."""
+
+    diameter: Length
+    density: Density
+    volume_fraction: VolumeFraction
+    carrier_viscosity: Viscosity | None = None
+    carrier_density: Density | None = None
+
+
+class ProductBlock(Block):
+    """What is pumped."""
+
+    name: Text = "product"
+    density: Density
+    temperature: Temperature | None = None
+    heat_capacity: HeatCapacity | None = None
+    vapour_pressure: NotNegativePressure | None = None
+    static_yield_stress: Stress | None = None
+    solids: SolidsBlock | None = None
+
+
+class FitBlock(Block):
+    """How the flow curve is fitted."""
+
+    models: tuple[Text, ...] | None = None
+    model: Text = AUTO
+    weighting: Text = "relative"
+    percent_of_reading: Percent | None = None
+    percent_of_full_scale: Percent | None = None
+
+    @field_validator("models")
+    @classmethod
+    def _known_models(cls, models: tuple[str, ...] | None) -> tuple[str, ...] | None:
+        if models is not None and not models:
+            raise CaseError("the list is empty; name at least one model or leave the key out")
+        for key in models or ():
+            model_record(key)
+        return models
+
+    @field_validator("model")
+    @classmethod
+    def _known_model(cls, key: str) -> str:
+        if key != AUTO:
+            try:
+                model_record(key)
+            except InputError as error:
+                raise CaseError(f"{error.sentence}; or '{AUTO}'") from None
+        return key
+
+    @field_validator("weighting")
+    @classmethod
+    def _known_weighting(cls, weighting: str) -> str:
+        allowed = (*WEIGHTINGS, INSTRUMENT)
+        if weighting not in allowed:
+            raise CaseError(f"unknown weighting '{weighting[:60]}'; there are {', '.join(allowed)}")
+        return weighting
+
+    @model_validator(mode="after")
+    def _fits_together(self) -> Self:
+        if self.models is not None and self.model not in (AUTO, *self.models):
+            raise KeyedError(
+                f"model '{self.model}' is not among the models to fit, {', '.join(self.models)}",
+                "model",
+            )
+        shares = (self.percent_of_reading, self.percent_of_full_scale)
+        if self.weighting == INSTRUMENT:
+            if None in shares:
+                raise KeyedError(
+                    "weighting 'instrument' needs percent_of_reading and percent_of_full_scale, "
+                    "from the instrument's data sheet",
+                    "weighting",
+                )
+        elif shares != (None, None):
+            raise KeyedError(
+                f"percent_of_reading and percent_of_full_scale belong to weighting 'instrument'; "
+                f"found '{self.weighting}'",
+                "weighting",
+            )
+        return self
+
+
+class DutyBlock(Block):
+    """What the line must do."""
+
+    flow: Flow
+    flow_tolerance: Share | None = None
+    hours_a_year: Hours | None = None
+
+
+class Case(Block):
+    """A design case.
+
+    The folder of the file is kept beside the document: relative paths are resolved from it.
+    """
+
+    title: Text = ""
+    notes: Text = ""
+    product: ProductBlock
+    readings: Annotated[tuple[ReadingsBlock, ...], Field(min_length=1, max_length=100)]
+    fit: FitBlock = FitBlock()
+    duty: DutyBlock
+    line: LineBlock
+    pump: PumpChoice | None = None
+
+    _folder: Path | None = PrivateAttr(default=None)
+    _allow_outside: bool = PrivateAttr(default=False)
+
+    @field_validator("readings", mode="before")
+    @classmethod
+    def _one_or_more(cls, readings: Any) -> Any:
+        return [readings] if isinstance(readings, dict) else readings
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, Case) and self.document() == other.document()
+
+    def __hash__(self) -> int:
+        return hash(json.dumps(self.document(), ensure_ascii=True))
+
+    @property
+    def folder(self) -> Path | None:
+        """Folder from which relative paths are resolved; None for a case without a file."""
+        return self._folder
+
+    @property
+    def allow_outside(self) -> bool:
+        """Whether files outside that folder may be read."""
+        return self._allow_outside
+
+    def in_folder(self, folder: Path | None, allow_outside: bool = False) -> Case:
+        """Return the same case with its relative paths resolved from `folder`."""
+        moved = self.model_copy()
+        moved._folder = folder
+        moved._allow_outside = allow_outside
+        return moved
+
+    def document(self) -> dict[str, Any]:
+        """Return the case as plain data: what the user gave, as it stands in the file."""
+        given = self.model_dump(mode="python", exclude_unset=True, exclude_none=True)
+        return {"schema": SCHEMA_VERSION, **_as_lists(given)}
+
+
+def _as_lists(value: Any) -> Any:
+    if isinstance(value, dict):
+        return {key: _as_lists(item) for key, item in value.items()}
+    if isinstance(value, list | tuple):
+        return [_as_lists(item) for item in value]
+    return value
