@@ -51,18 +51,16 @@ class Quantity:
 
 # Per minute is a rate of shear here, where the general table reads revolutions.
 _PER_TIME = {
-    "1/min": "1/minute",
-    "min-1": "1/minute",
-    "min^-1": "1/minute",
-    "min⁻¹": "1/minute",
-    "1/sek": "1/s",
-    "sek-1": "1/s",
-    "1/second": "1/s",
-    "reciprocal seconds": "1/s",
+    **dict.fromkeys(("1/min", "min-1", "min^-1", "min⁻¹"), "1/minute"),
+    **dict.fromkeys(("1/s", "s-1", "1/sek", "sek-1", "1/second", "reciprocal seconds"), "1/s"),
 }
-_TURNS = dict.fromkeys(
-    ("u/min", "upm", "tr/min", "tpm", "1/minute", "r.p.m.", "rpm.", "umdr/min"), "revolution/minute"
-) | {"hz": "revolution/second", "u/s": "revolution/second", "tr/s": "revolution/second"}
+_TURNS = {
+    **dict.fromkeys(
+        ("u/min", "upm", "tr/min", "tpm", "1/minute", "r.p.m.", "rpm.", "umdr/min"),
+        "revolution/minute",
+    ),
+    **dict.fromkeys(("hz", "u/s", "tr/s"), "revolution/second"),
+}
 _UNSURE_TURNS = dict.fromkeys(
     ("1/s", "s-1", "s^-1", "s⁻¹", "/s", "1/sec", "sec-1"), "rev/s or rad/s"
 )
@@ -70,13 +68,13 @@ _NOT_A_RATE = dict.fromkeys(
     ("rpm", "r/min", "rev/min", "rps", "rev/s", "hz", "°/s", "deg/s", "rad/s", "cps"), "1/s"
 )
 _NEWTON_METRES = {
-    "nm": "N*m",
-    "mnm": "mN*m",
-    "µnm": "uN*m",
-    "μnm": "uN*m",
-    "unm": "uN*m",
-    "nnm": "nN*m",
-    "ncm": "N*cm",
+    "Nm": "N*m",
+    "mNm": "mN*m",
+    "µNm": "uN*m",
+    "μNm": "uN*m",
+    "uNm": "uN*m",
+    "nNm": "nN*m",
+    "Ncm": "N*cm",
     "g.cm": "gf*cm",
     "g cm": "gf*cm",
     "g·cm": "gf*cm",
@@ -110,9 +108,16 @@ _PRESSURES = {
     "mws": "meter_H2O",
     "m h2o": "meter_H2O",
 }
-_TIMES = {"sek": "s", "sek.": "s", "sec.": "s", "std": "h", "seg": "s", "minuten": "min"}
+_TIMES = {
+    **dict.fromkeys(("hh:mm:ss", "h:mm:ss", "mm:ss", "sek", "sek.", "sec.", "seg"), "s"),
+    "std": "h",
+    "minuten": "min",
+}
 # In a heading a bare c or k is a temperature.
-_DEGREES = {"f": "degF", "deg. c": "degC", "deg.c": "degC", "grad c": "degC", "grad": "degC"}
+_DEGREES = {
+    "f": "degF",
+    **dict.fromkeys(("deg. c", "deg.c", "grad c", "grad"), "degC"),
+}
 
 QUANTITIES: tuple[Quantity, ...] = (
     Quantity(
@@ -151,7 +156,8 @@ QUANTITIES: tuple[Quantity, ...] = (
         "Pa*s",
         "Pa*s",
         words=(
-            *("viscosity", "dynamic viscosity", "shear viscosity", "eta", "η"),
+            *("viscosity", "visc", "dynamic viscosity", "shear viscosity", "eta", "η"),
+            "apparent viscosity",
             *("viskositat", "scheinviskositat", "dynamische viskositat", "scherviskositat"),
             *("viscosite", "viscosite dynamique", "viscosidad", "viscosidad dinamica"),
         ),
@@ -204,13 +210,22 @@ QUANTITIES: tuple[Quantity, ...] = (
         "torque as a share of full scale",
         "",
         "%",
-        words=(
-            *("torque", "relative torque", "percent torque", "torque percent", "% torque"),
-            *("full scale", "percent full scale", "% full scale", "% fs", "torque fraction"),
-            *("drehmoment", "couple", "par", "moment", "momento", "torque full scale"),
-        ),
+        words=("torque", "drehmoment", "couple", "par", "moment", "momento"),
         symbols=("M",),
-        unit_words={"% fs": "%", "% full scale": "%", "%fs": "%", "pct": "%", "percent": "%"},
+        word_units=dict.fromkeys(
+            (
+                *("relative torque", "percent torque", "torque percent", "% torque", "torque %"),
+                *("full scale", "percent full scale", "% full scale", "% fs", "torque fraction"),
+            ),
+            "%",
+        ),
+        unit_words=dict.fromkeys(
+            (
+                *("% fs", "%fs", "% f.s.", "% full scale", "% of full scale", "% of fs"),
+                *("pct", "percent"),
+            ),
+            "%",
+        ),
         percent=True,
     ),
     Quantity(
