@@ -12,19 +12,29 @@ from rheo.line.parts import (
     Reducer,
     Vessel,
 )
+from rheo.line.product import Product, water
+from rheo.line.pumps import CentrifugalPump, DisplacementPump
+from rheo.line.result import LineResult
+from rheo.line.solve import solve_line
 
 __all__ = [
     "STANDARDS",
+    "CentrifugalPump",
+    "DisplacementPump",
     "Entrance",
     "Equipment",
     "Exit",
     "Fitting",
     "Line",
+    "LineResult",
     "Part",
     "Pipe",
     "PipeSize",
+    "Product",
     "Reducer",
     "Vessel",
     "catalogue",
     "pipe_size",
+    "solve_line",
+    "water",
 ]

@@ -65,6 +65,10 @@ def _nominal(inches: float) -> str:
     return f"{text} in"
 
 
+def _metres(millimetres: float) -> float:
+    return round(millimetres / 1e3, 8)
+
+
 @cache
 def _steel(standard: str, schedules: tuple[str, ...]) -> tuple[PipeSize, ...]:
     from fluids.piping import schedule_lookup
@@ -74,7 +78,9 @@ def _steel(standard: str, schedules: tuple[str, ...]) -> tuple[PipeSize, ...]:
         for inches, inside, outside, wall in zip(*schedule_lookup[schedule], strict=True):
             nominal = _DN.get(inches, round(25 * inches))
             label = f"DN {nominal} ({_nominal(inches)}) schedule {schedule}"
-            found.append(PipeSize(standard, label, inside / 1e3, outside / 1e3, wall / 1e3))
+            found.append(
+                PipeSize(standard, label, _metres(inside), _metres(outside), _metres(wall))
+            )
     return tuple(found)
 
 
@@ -88,9 +94,9 @@ def _hygienic() -> tuple[PipeSize, ...]:
             PipeSize(
                 row["standard"],
                 row["size"],
-                round(outside - 2 * wall, 6) / 1e3,
-                outside / 1e3,
-                wall / 1e3,
+                _metres(outside - 2 * wall),
+                _metres(outside),
+                _metres(wall),
             )
         )
     return tuple(found)

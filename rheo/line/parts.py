@@ -288,8 +288,9 @@ class Line:
     ----------
     suction, discharge : tuple of parts
         In the order in which the product meets them. `suction` may begin with a Vessel and
-        `discharge` may end with one; where it is left out, an open vessel is taken whose
-        surface is level with the nozzle. Without suction parts the pump draws from that vessel.
+        `discharge` may end with one. Without it that end is a flange at atmospheric pressure
+        where the product arrives or leaves moving; with an Entrance or Exit alone, an open
+        vessel whose surface is level with the nozzle.
     atmospheric_pressure : float
         [Pa]; gauge pressures count from it.
     name : str
@@ -325,6 +326,15 @@ class Line:
                         "a vessel may only be the first suction part or the last discharge part",
                         self.name,
                     )
+        moving = [part for part in parts if not isinstance(part, Vessel)]
+        inner: list[Entrance | Exit] = [p for p in moving[1:] if isinstance(p, Entrance)]
+        inner += [part for part in moving[:-1] if isinstance(part, Exit)]
+        if inner:
+            raise InputError(
+                f"'{inner[0].name}' stands between other parts; an Entrance may only come first "
+                "and an Exit last, beside a vessel",
+                self.name,
+            )
         if not any(isinstance(part, Pipe | Equipment) for part in parts):
             raise InputError("the line has no pipe; give at least one part of kind Pipe", self.name)
 
