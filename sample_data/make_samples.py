@@ -18,7 +18,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 import rheo
-from rheo.geometry import tube_flow
 
 FloatArray = NDArray[np.float64]
 Row = Sequence[str | float]
@@ -99,14 +98,18 @@ def underflow_rows() -> list[Row]:
     truth = rheo.model("herschel-bulkley", **UNDERFLOW)
     rows: list[Row] = []
     for number, diameter in enumerate(UNDERFLOW_DIAMETERS):
-        metres = diameter / 1e3
+        tube = rheo.geometry(
+            "tube",
+            diameter=diameter / 1e3,
+            length=UNDERFLOW_LENGTH,
+            entrance_diameters=UNDERFLOW_ENTRANCE,
+            slip_coefficient=UNDERFLOW_SLIP,
+        )
         # Nobody meets the same wall stress in two tubes.
         wall_rate = np.geomspace(*UNDERFLOW_RATES, UNDERFLOW_POINTS) * 1.13 ** (number - 1)
-        wall_stress = truth.stress(wall_rate)
-        velocity = tube_flow.nominal_rate(truth, wall_rate) * metres / 8.0
-        velocity = velocity + UNDERFLOW_SLIP * wall_stress
-        flow = velocity * np.pi * metres**2 / 4.0 * 6e4  # L/min
-        drop = 4.0 * wall_stress * (UNDERFLOW_LENGTH / metres + UNDERFLOW_ENTRANCE) / 1e3  # kPa
+        setting = tube.setting_for_rate(truth, wall_rate)
+        flow = setting * 6e4  # L/min
+        drop = tube.predict(truth, setting) / 1e3  # kPa
         flow = _with_noise(noise, flow, 0.006, 0.001)
         drop = _with_noise(noise, drop, 0.008, 0.02)
         rows += [

@@ -65,7 +65,11 @@ def test_water_in_asphalted_cast_iron() -> None:
         roughness=parse_quantity("0.0004 ft", "m"),
     )
     assert float(flow.reynolds) == pytest.approx(270e3, rel=0.02)
-    assert 4.0 * float(flow.friction_factor) == pytest.approx(0.02, abs=0.0005)
-    pressure_drop = float(flow.pressure_gradient) * length
+    factor = 4.0 * float(flow.friction_factor)
+    assert factor == pytest.approx(0.02, abs=0.0005)
+    # The book reads 0.02 from the chart and carries it on; Colebrook and White's value is 0.0198,
+    # so that our own loss is 4.44 ft.
+    pressure_drop = float(flow.pressure_gradient) * length * 0.02 / factor
     assert pressure_drop / (1000.0 * 9.80665) / 0.3048 == pytest.approx(4.5, abs=0.05)
-    assert pressure_drop == pytest.approx(280.0 * parse_quantity("1 lbf/ft^2", "Pa"), abs=240.0)
+    printed = 280.0 * parse_quantity("1 lbf/ft^2", "Pa")
+    assert pressure_drop == pytest.approx(printed, rel=0.005)
