@@ -23,6 +23,10 @@ _PUBLIC = {
     "model": "rheo.models",
     "model_record": "rheo.models",
     "model_records": "rheo.models",
+    "PipeFlow": "rheo.hydraulics",
+    "pipe_flow": "rheo.hydraulics",
+    "friction_factor": "rheo.hydraulics",
+    "critical_velocity": "rheo.hydraulics",
 }
 
 __all__ = ["__version__", *_PUBLIC]  # noqa: PLE0604

@@ -1,0 +1,1 @@
+"""Criteria for the end of laminar flow, one file each."""

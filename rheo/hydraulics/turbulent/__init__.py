@@ -1,0 +1,1 @@
+"""Friction methods for turbulent flow, one file each."""
