@@ -6,7 +6,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.errors import InputError
-from rheo.geometry import gap_flow
+from rheo.geometry import gap_flow, gap_inverse
+from rheo.geometry.flow_points import FlowPoints
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -94,6 +95,33 @@ def nominal_at_bob(
     return rate, reading / torque_per_stress(inner_radius, length, end_factor)
 
 
+def from_data_exact(
+    setting: FloatArray,
+    reading: FloatArray,
+    inner_radius: FloatArray,
+    outer_radius: FloatArray,
+    length: FloatArray,
+    end_factor: FloatArray,
+) -> FlowPoints:
+    """Points at the bob without a model, by the series that inverts the integral."""
+    stress = reading / torque_per_stress(inner_radius, length, end_factor)
+    return gap_inverse.exact_form(setting, stress, log_radius_ratio(inner_radius, outer_radius))
+
+
+def from_data_power_law(
+    setting: FloatArray,
+    reading: FloatArray,
+    inner_radius: FloatArray,
+    outer_radius: FloatArray,
+    length: FloatArray,
+    end_factor: FloatArray,
+) -> FlowPoints:
+    """Points at the bob without a model, by the local power law."""
+    stress = reading / torque_per_stress(inner_radius, length, end_factor)
+    ratio = log_radius_ratio(inner_radius, outer_radius)
+    return gap_inverse.power_law_form(setting, stress, ratio)
+
+
 def check_radii(
     inner_radius: FloatArray,
     outer_radius: FloatArray,
@@ -132,6 +160,7 @@ RECORD = GeometryRecord(
     nominal_forms={"representative": nominal_representative, "bob": nominal_at_bob},
     nominal_note="representative (the default): ISO 3219, the mean of bob and cup; bob: the values "
     "of a Newtonian fluid at the bob",
+    inverse_forms={"exact": from_data_exact, "power-law": from_data_power_law},
     source="I. M. Krieger & S. H. Maron, J. Appl. Phys. 23 (1952) 147; ISO 3219-2 for the nominal "
     "conversion and the end factor (1.10 for its standard geometry)",
     validity="Steady laminar flow of constant temperature without slip, any gap; part of the gap "

@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.geometry.flow_points import FlowPoints, exact_points
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -50,6 +51,13 @@ def nominal(
     return setting / angle, 3.0 * reading / (2.0 * np.pi * radius**3)
 
 
+def from_data(
+    setting: FloatArray, reading: FloatArray, radius: FloatArray, angle: FloatArray
+) -> FlowPoints:
+    """Points without a model: the nominal ones are exact."""
+    return exact_points(*nominal(setting, reading, radius, angle))
+
+
 RECORD = GeometryRecord(
     key="cone-plate",
     name="cone and plate",
@@ -65,6 +73,7 @@ RECORD = GeometryRecord(
     reading_at=reading_at,
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: ω/θ and 3M/(2πR³), which hold for every fluid",
+    inverse_forms={"nominal": from_data},
     source="ISO 3219-2; K. Walters, Rheometry (1975), chapter 4",
     validity="Angles up to 4° (ω/θ and ω/tan θ differ by 0.16 % there), below the speed at which "
     "the sample leaves the gap; no particles larger than a tenth of the truncation gap.",

@@ -7,6 +7,7 @@ from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.geometry.curve_integrals import integrate_below
+from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -57,6 +58,16 @@ def nominal(
     return setting * radius / gap, 2.0 * reading / (np.pi * radius**3)
 
 
+def from_data(
+    setting: FloatArray, reading: FloatArray, radius: FloatArray, gap: FloatArray
+) -> FlowPoints:
+    """Rim points without a model: τ_R = (M/2πR³)(3 + d ln M/d ln γ̇_R)."""
+    rate, apparent = nominal(setting, reading, radius, gap)
+    curve = smoothed(rate, apparent)
+    index = curve.slope(np.log(rate))
+    return points(rate, 0.25 * apparent * (3.0 + index), curve, np.log(rate))
+
+
 def _check(radius: FloatArray, gap: FloatArray) -> None:
     if np.any(gap > 0.5 * radius):
         raise InputError(
@@ -82,6 +93,7 @@ RECORD = GeometryRecord(
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: ωR/h and 2M/(πR³) at the rim; the rate holds for every fluid, the "
     "stress only for a Newtonian one",
+    inverse_forms={"rim-slope": from_data},
     source="K. Walters, Rheometry (1975), chapter 4; ISO 3219-2",
     validity="Gap much smaller than the radius and ten particle diameters or more (common "
     "practice), no slip, below the speed at which the sample leaves the gap.",

@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import InputError
+from rheo.geometry.flow_points import FlowPoints
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
@@ -89,6 +90,9 @@ class GeometryRecord:
         first is the one that `Geometry.nominal` takes unless another is named.
     nominal_note : str
         Which conversion the first form is, and what the others are.
+    inverse_forms : mapping of str to callable
+        ``form(setting, reading, *dimensions)``: flow points from a set of readings, without a
+        model. The first is the one that `Geometry.flow_points` takes unless another is named.
     source, validity : str
         Where the relations were published; where they may be used.
     rest_stress : callable
@@ -109,6 +113,7 @@ class GeometryRecord:
     reading_at: Relation
     nominal_forms: Mapping[str, PairRelation]
     nominal_note: str
+    inverse_forms: Mapping[str, Callable[..., FlowPoints]]
     source: str
     validity: str
     rest_stress: Relation = _yield_stress
@@ -147,6 +152,7 @@ class GeometryRecord:
                 "unit": reading_unit,
             },
             "nominal_forms": list(self.nominal_forms),
+            "inverse_forms": list(self.inverse_forms),
             "nominal_note": self.nominal_note,
             "validity": self.validity,
             "source": self.source,
@@ -343,19 +349,42 @@ class Geometry:
         InputError
             For a form that this geometry does not have.
         """
-        forms = self.record.nominal_forms
-        key = next(iter(forms)) if form is None else form
-        if key not in forms:
-            raise InputError(
-                f"unknown nominal form '{key}'; it has {', '.join(forms)}",
-                f"geometry {self.record.key}",
-            )
-        rate, stress = forms[key](
+        convert = _chosen(self.record.nominal_forms, form, "nominal", self.record.key)
+        rate, stress = convert(
             np.asarray(setting, dtype=float),
             np.asarray(reading, dtype=float),
             *self.dimensions.values(),
         )
         return rate, stress
+
+    def flow_points(
+        self, setting: ArrayLike, reading: ArrayLike, form: str | None = None
+    ) -> FlowPoints:
+        """Return true shear rates and stresses from a set of readings, without a model.
+
+        Parameters
+        ----------
+        setting, reading : array_like, shape (n,)
+            Angular speed [rad/s] or flow [m3/s]; torque [N m] or pressure drop [Pa].
+        form : str, optional
+            A key of ``record.inverse_forms``; the first of them when absent.
+
+        Returns
+        -------
+        FlowPoints
+            Where the stress is largest, with the smoothed local slope that was used.
+
+        Raises
+        ------
+        InputError
+            For an unknown form, fewer than 3 different settings, or readings that do not rise.
+        """
+        convert = _chosen(self.record.inverse_forms, form, "inverse", self.record.key)
+        return convert(
+            np.asarray(setting, dtype=float),
+            np.asarray(reading, dtype=float),
+            *self.dimensions.values(),
+        )
 
     def __repr__(self) -> str:
         values = ", ".join(
@@ -363,6 +392,17 @@ class Geometry:
             for key, value in self.dimensions.items()
         )
         return f"geometry({self.key!r}, {values})"
+
+
+def _chosen(
+    forms: Mapping[str, Callable[..., Any]], form: str | None, kind: str, key: str
+) -> Callable[..., Any]:
+    name = next(iter(forms)) if form is None else form
+    if name not in forms:
+        raise InputError(
+            f"unknown {kind} form '{name}'; it has {', '.join(forms)}", f"geometry {key}"
+        )
+    return forms[name]
 
 
 def _not_negative(values: ArrayLike, what: str, unit: str) -> FloatArray:

@@ -8,6 +8,7 @@ from numpy.typing import NDArray
 from rheo.errors import InputError
 from rheo.geometry.channel import solve_channel
 from rheo.geometry.curve_integrals import moment_ratio
+from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -81,6 +82,20 @@ def nominal(
     return 3.0 * setting / (2.0 * half_gap**2 * width), reading * half_gap / length
 
 
+def from_data(
+    setting: FloatArray,
+    reading: FloatArray,
+    half_gap: FloatArray,
+    width: FloatArray,
+    length: FloatArray,
+) -> FlowPoints:
+    """Wall points without a model: γ̇_w = (3V/h)(2n' + 1)/(3n')."""
+    rate, stress = nominal(setting, reading, half_gap, width, length)
+    curve = smoothed(rate, stress)
+    index = curve.slope(np.log(rate))
+    return points(rate * (2.0 * index + 1.0) / (3.0 * index), stress, curve, np.log(rate))
+
+
 def _check(half_gap: FloatArray, width: FloatArray, length: FloatArray) -> None:
     aspect = width / (2.0 * half_gap)
     if np.any(aspect < LEAST_ASPECT):
@@ -108,6 +123,7 @@ RECORD = GeometryRecord(
     check=_check,
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: 3V/h and h ΔP/L, h half the gap",
+    inverse_forms={"rabinowitsch-mooney": from_data},
     source="K. Walters, Rheometry (1975), chapter 5; Newtonian τ_w = 3ηV/h is common practice",
     validity="Steady laminar flow of constant temperature without slip or entrance loss, in a slot "
     "whose width is many times its gap (10 or more is common practice).",

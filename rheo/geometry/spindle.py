@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.geometry import gap_flow
+from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -48,6 +49,15 @@ def nominal(
     return rate_factor * setting, stress_factor * reading
 
 
+def from_data(
+    setting: FloatArray, reading: FloatArray, rate_factor: FloatArray, stress_factor: FloatArray
+) -> FlowPoints:
+    """Points without a model: the Newtonian rate over n' = d ln M/d ln ω."""
+    rate, stress = nominal(setting, reading, rate_factor, stress_factor)
+    curve = smoothed(rate, stress)
+    return points(rate / curve.slope(np.log(rate)), stress, curve, np.log(rate))
+
+
 RECORD = GeometryRecord(
     key="spindle",
     name="spindle in a wide vessel",
@@ -65,6 +75,7 @@ RECORD = GeometryRecord(
     reading_at=reading_at,
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: k_γ ω and k_τ M",
+    inverse_forms={"wide-gap": from_data},
     source="I. M. Krieger & S. H. Maron, J. Appl. Phys. 23 (1952) 147, for a cup without end: "
     "γ̇ = 2ω/n' with n' = d ln M/d ln ω, here with the user's factor in place of 2",
     validity="A relative method: only as good as the factors. 2 is the factor of a long cylinder; "

@@ -7,6 +7,7 @@ from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.geometry import tube_flow
+from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.monotone import solve_log
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
@@ -94,6 +95,21 @@ def nominal(
     return apparent - 8.0 * slip_coefficient * stress / diameter, stress
 
 
+def from_data(
+    setting: FloatArray,
+    reading: FloatArray,
+    diameter: FloatArray,
+    length: FloatArray,
+    entrance_diameters: FloatArray,
+    slip_coefficient: FloatArray,
+) -> FlowPoints:
+    """Wall points without a model: γ̇_w = (8V/D)(3n' + 1)/(4n') (Rabinowitsch and Mooney)."""
+    rate, stress = nominal(setting, reading, diameter, length, entrance_diameters, slip_coefficient)
+    curve = smoothed(rate, stress)
+    index = curve.slope(np.log(rate))
+    return points(rate * (3.0 * index + 1.0) / (4.0 * index), stress, curve, np.log(rate))
+
+
 def rest_stress(
     model: Model,
     diameter: FloatArray,
@@ -142,6 +158,7 @@ RECORD = GeometryRecord(
     check=_check,
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: 8V/D and D ΔP/(4 L), after the entrance loss and slip are taken off",
+    inverse_forms={"rabinowitsch-mooney": from_data},
     source="B. Rabinowitsch, Z. phys. Chem. A145 (1929) 1; M. Mooney, J. Rheol. 2 (1931) 210; "
     "E. B. Bagley, J. Appl. Phys. 28 (1957) 624",
     validity="Steady laminar flow of constant temperature; the entrance and kinetic-energy losses "

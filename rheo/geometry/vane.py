@@ -6,6 +6,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.geometry import gap_flow
+from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
@@ -85,6 +86,15 @@ def nominal(
     return 2.0 * setting, reading / torque_per_stress(diameter, height)
 
 
+def from_data(
+    setting: FloatArray, reading: FloatArray, diameter: FloatArray, height: FloatArray
+) -> FlowPoints:
+    """Points without a model: the Newtonian rate over n' = d ln M/d ln ω."""
+    rate, stress = nominal(setting, reading, diameter, height)
+    curve = smoothed(rate, stress)
+    return points(rate / curve.slope(np.log(rate)), stress, curve, np.log(rate))
+
+
 RECORD = GeometryRecord(
     key="vane",
     name="vane in a wide vessel",
@@ -100,6 +110,7 @@ RECORD = GeometryRecord(
     reading_at=reading_at,
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: 2ω and M/[(πD³/2)(H/D + 1/3)]",
+    inverse_forms={"wide-gap": from_data},
     source="N. Q. Dzuy (Nguyen) & D. V. Boger, J. Rheol. 27 (1983) 321, for the torque at rest",
     validity="At rest (setting 0) the peak torque of the yield stress, for a vessel of two vane "
     "diameters or more. Rotating, the vane is taken as a solid cylinder of its diameter in a "
