@@ -1,0 +1,1 @@
+"""Figures, the design note (HTML and PDF) and the workbook."""

@@ -1,0 +1,115 @@
+"""A drawing of the line: the route to scale along its length, with pressures at its ends."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from rheo.report.display import shown, text, unit_label
+from rheo.report.picture import Axis, Label, Line, Mark, Panel, Picture, Points, array
+
+# Marker number of each kind of part, and the words for the legend.
+SYMBOLS: dict[str, tuple[int, int, str]] = {
+    "vessel": (4, 1, "vessel"),
+    "pump": (1, 0, "pump"),
+    "fitting": (2, 3, "fitting"),
+    "equipment": (3, 1, "equipment"),
+    "reducer": (5, 5, "change of diameter"),
+}
+
+
+@dataclass(frozen=True)
+class DrawnPart:
+    """One part as it is drawn.
+
+    Parameters
+    ----------
+    kind : str
+        ``pipe`` or one of `SYMBOLS`.
+    name : str
+        For the hover.
+    start, end : (float, float)
+        Distance along the line and elevation [m] where it begins and ends.
+    detail : str
+        A line more for the hover: its size, its loss.
+    diameter : float
+        Inside diameter [m] of a pipe, for the thickness of its line.
+    """
+
+    kind: str
+    name: str
+    start: tuple[float, float]
+    end: tuple[float, float]
+    detail: str = ""
+    diameter: float = 0.0
+
+
+def line_drawing(
+    parts: Sequence[DrawnPart],
+    pressures: Sequence[tuple[float, float, float]] = (),
+    *,
+    system: str = "metric",
+) -> Picture:
+    """Draw the route, elevation against distance, with its parts and some pressures.
+
+    Parameters
+    ----------
+    parts : sequence of DrawnPart
+        In order along the line.
+    pressures : sequence of (float, float, float)
+        Distance [m], elevation [m] and gauge pressure [Pa] of points to be labelled.
+    system : str
+        Unit system.
+
+    Returns
+    -------
+    Picture
+        With one panel.
+    """
+    marks: list[Mark] = []
+    widest = max((part.diameter for part in parts), default=0.0) or 1.0
+    for part in parts:
+        if part.kind == "pipe":
+            ends = shown(array([part.start, part.end]), "length", system).reshape(2, 2)
+            width = 2.5 + 5.0 * part.diameter / widest
+            words = f"{part.name}\n{part.detail}".strip()
+            marks.append(
+                Line(
+                    ends[:, 0], ends[:, 1], "pipe", width=width, dash=0, hover=words, colour="muted"
+                )
+            )
+    for kind, (style, marker, legend) in SYMBOLS.items():
+        these = [part for part in parts if part.kind == kind]
+        if these:
+            places = shown(np.array([part.start for part in these]), "length", system)
+            hover = tuple(f"{part.name}\n{part.detail}".strip() for part in these)
+            size = 14.0 if kind in ("pump", "vessel") else 9.0
+            marks.append(
+                Points(
+                    places[:, 0], places[:, 1], legend, style=style, marker=marker, hover=hover,
+                    size=size,
+                )
+            )  # fmt: skip
+    for distance, elevation, pressure in pressures:
+        x, y = (float(v) for v in shown(array([distance, elevation]), "length", system))
+        marks.append(Label(x, y, text(pressure, "pressure", system), shift=13.0))
+    heights = [end[1] for part in parts for end in (part.start, part.end)] or [0.0]
+    low, high = (
+        float(shown(min(heights), "length", system)),
+        float(shown(max(heights), "length", system)),
+    )
+    room = max(0.25 * (high - low), 0.5)
+    unit = unit_label("length", system)
+    return Picture(
+        key="line-drawing",
+        title="The line",
+        description=(
+            "The route: elevation against distance along the line. Thicker lines are wider pipes; "
+            "the numbers are gauge pressures."
+        ),
+        x=Axis("Distance along the line", unit),
+        panels=(Panel(Axis("Elevation", unit, low=low - room, high=high + room), tuple(marks)),),
+        height=300.0,
+    )
