@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from rheo.case.quantity import Quantity
 from rheo.case.schema import Case
 from rheo.case.storage import (
     case_from_document,
@@ -13,6 +14,7 @@ from rheo.case.storage import (
 
 __all__ = [
     "Case",
+    "Quantity",
     "case_from_document",
     "case_from_text",
     "case_text",

@@ -95,7 +95,8 @@ def case_from_text(
     case = case_from_document(current, text if current is document else "", source)
     case = case.in_folder(folder, allow_outside)
     for number, block in enumerate(case.readings):
-        if block.file is not None:
+        # A case without a folder is asked for its files when they are wanted.
+        if block.file is not None and folder is not None:
             try:
                 inside_folder(block.file, folder, allow_outside)
             except CaseError as error:

@@ -63,8 +63,10 @@ def test_nearest_table_stands_in_for_a_missing_key():
 
 TREES = st.recursive(
     st.booleans() | st.integers(-9, 9) | st.text(max_size=8) | st.floats(allow_nan=False),
-    lambda child: st.lists(child, max_size=3)
-    | st.dictionaries(st.from_regex(r"[a-z]{1,4}", fullmatch=True), child, max_size=3),
+    lambda child: (
+        st.lists(child, max_size=3)
+        | st.dictionaries(st.from_regex(r"[a-z]{1,4}", fullmatch=True), child, max_size=3)
+    ),
     max_leaves=12,
 )
 
