@@ -173,7 +173,7 @@ COMPLAINTS = [
     (
         "density =",
         "densty =",
-        "line 10, product.densty: unknown key 'densty' (did you mean 'density'",
+        "line 10, product.densty: unknown key 'densty' (did you mean",
     ),
     ("density =", "densty =", "allowed are name, density, temperature, heat_capacity"),
     ("[product]", "[prodct]", "line 8, prodct: unknown key 'prodct' (did you mean 'product'?)"),
@@ -187,7 +187,7 @@ COMPLAINTS = [
     (
         '"1.12 g/cm3"',
         "1" + 5000 * "0",
-        "not valid TOML: nested too deep, or a number with too many",
+        "nested too deep, or a number with too many digits",
     ),
     ('"40 °C"', "40", "product.temperature: found 40 K; it must be 173 K or more"),
     ('"5 m3/h"', '"0 m3/h"', "duty.flow: found '0 m3/h'; it must be above 0 m^3/s"),
@@ -196,12 +196,12 @@ COMPLAINTS = [
     (
         'part = "pipe"',
         'part = "pip"',
-        "unknown part 'pip' (did you mean 'pipe'?); there are vessel",
+        "unknown part 'pip' (did you mean 'pipe'?); there are",
     ),
     (
         'part = "pipe"\n',
         "",
-        "line 41, line.discharge (entry 1): key 'part' is missing; it is one of",
+        "line 41, line.discharge (entry 1): key 'part' is missing",
     ),
     ('"30 m"', '"30 s"', "line 43, line.discharge (entry 1) length: unit 's' does not measure"),
     ('size = "ISO 2037 51"', 'inside_diameter = "0 mm"', "found '0 mm'; it must be above 0 m"),
@@ -212,12 +212,12 @@ COMPLAINTS = [
     (
         '[{ part = "vessel", level = "2 m", name = "tank" }]',
         "3",
-        "line.suction: found 3; it must be",
+        "suction: found 3; it must be a list",
     ),
     (
         '{ part = "vessel", level = "2 m", name = "tank" }',
         "3",
-        "(entry 1): found 3; it must be a table",
+        "(entry 1): found 3; it must be a",
     ),
     ('kind = "positive-displacement"', 'kind = "screw"', "unknown kind of pump 'screw'; there are"),
     ("displacement = ", "displacment = ", "did you mean 'displacement'?"),
@@ -235,13 +235,13 @@ COMPLAINTS = [
     (
         'model = "her',
         'weighting = "fair"\nmodel = "her',
-        "weighting: unknown weighting 'fair'; there",
+        "unknown weighting 'fair'; there are",
     ),
     ('title = "Sauce to the filler"', "title = 3", "title: found 3; it must be a text in quotes"),
     (
         'title = "Sauce to the filler"',
         'title = "a',
-        "line 2, column 11: it is not valid TOML: a text",
+        "line 2, column 11: it is not valid TOML:",
     ),
     ('title = "Sauce to the filler"', "title = 1\ntitle = 2", "a key is given twice"),
     ('title = "Sauce to the filler"', "title = ", "it is not valid TOML: a value is missing"),
