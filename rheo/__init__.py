@@ -17,6 +17,8 @@ _PUBLIC = {
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Geometry": "rheo.geometry",
+    "convert": "rheo.geometry.convert",
+    "find_tube_corrections": "rheo.geometry.tube_corrections",
     "geometry": "rheo.geometry",
     "geometry_records": "rheo.geometry",
     "Model": "rheo.models",

@@ -10,7 +10,8 @@ from types import ModuleType
 
 from numpy.typing import ArrayLike
 
-from rheo.geometry.record import Dimension, Geometry, GeometryRecord
+from rheo.geometry.dimensioned import Geometry
+from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.geometry.registry import geometry_record, geometry_records, make_geometry
 
 __all__ = [

@@ -5,11 +5,14 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.errors import Caution
 from rheo.geometry.flow_points import FlowPoints, exact_points
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
+
+_LARGEST_ANGLE = float(np.radians(4.01))
 
 
 def setting_at(
@@ -58,6 +61,24 @@ def from_data(
     return exact_points(*nominal(setting, reading, radius, angle))
 
 
+def cautions(
+    model: Model, rate: FloatArray, radius: FloatArray, angle: FloatArray
+) -> tuple[Caution, ...]:
+    """Warn of an angle at which the shear rate is not the same everywhere."""
+    largest = float(np.max(angle))
+    if largest <= _LARGEST_ANGLE:
+        return ()
+    return (
+        Caution(
+            code="cone-angle",
+            sentence=f"The cone's angle is {np.degrees(largest):.2g}°; above 4° the shear rate "
+            "is not the same everywhere.",
+            advice="Use a flatter cone where it matters.",
+            place="cone and plate",
+        ),
+    )
+
+
 RECORD = GeometryRecord(
     key="cone-plate",
     name="cone and plate",
@@ -74,6 +95,7 @@ RECORD = GeometryRecord(
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: ω/θ and 3M/(2πR³), which hold for every fluid",
     inverse_forms={"nominal": from_data},
+    cautions=cautions,
     source="ISO 3219-2; K. Walters, Rheometry (1975), chapter 4",
     validity="Angles up to 4° (ω/θ and ω/tan θ differ by 0.16 % there), below the speed at which "
     "the sample leaves the gap; no particles larger than a tenth of the truncation gap.",

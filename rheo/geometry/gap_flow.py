@@ -69,7 +69,7 @@ def _across(
     return result
 
 
-def _speed_and_slope(level: int | None) -> Callable[..., tuple[FloatArray, FloatArray]]:
+def speed_and_slope(level: int | None) -> Callable[..., tuple[FloatArray, FloatArray]]:
     """Return ``relation(model, rate, log_ratio)`` -> angular speed and d ln(ω)/d ln(rate).
 
     On one level of panels, or with the two finer ones as a check where `level` is None.
@@ -136,7 +136,7 @@ def angular_speed(model: Model, bob_rate: FloatArray, log_ratio: FloatArray) -> 
     def flatten(value: FloatArray) -> FloatArray:
         return np.broadcast_to(value, shape).reshape(-1)
 
-    speed, _ = _speed_and_slope(None)(
+    speed, _ = speed_and_slope(None)(
         model.map(flatten), flatten(np.asarray(bob_rate)), flatten(np.asarray(log_ratio))
     )
     return speed.reshape(shape)
@@ -150,8 +150,8 @@ def bob_rate(model: Model, speed: FloatArray, log_ratio: FloatArray) -> FloatArr
     newtonian = newtonian_bob_rate(speed, log_ratio)
     slope = model.record.log_slope(newtonian, *model)
     start = power_law_bob_rate(speed, log_ratio, np.maximum(slope, 1e-6))
-    rough = solve_log(_speed_and_slope(0), model, speed, start, (log_ratio,))
-    return solve_log(_speed_and_slope(None), model, speed, rough, (log_ratio,))
+    rough = solve_log(speed_and_slope(0), model, speed, start, (log_ratio,))
+    return solve_log(speed_and_slope(None), model, speed, rough, (log_ratio,))
 
 
 def newtonian_bob_rate(speed: FloatArray, log_ratio: FloatArray) -> FloatArray:

@@ -12,7 +12,8 @@ from typing import cast
 from numpy.typing import ArrayLike
 
 from rheo.errors import InputError
-from rheo.geometry.record import FloatArray, Geometry, GeometryRecord
+from rheo.geometry.dimensioned import Geometry
+from rheo.geometry.record import FloatArray, GeometryRecord
 
 
 @cache

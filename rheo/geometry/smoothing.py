@@ -133,10 +133,21 @@ def smooth_log(x: ArrayLike, y: ArrayLike, largest_degree: int = LARGEST_DEGREE)
     return best
 
 
-def _fit(x: FloatArray, y: FloatArray, degree: int) -> SmoothLog:
+def polynomial_residual(x: FloatArray, y: FloatArray, degree: int) -> FloatArray:
+    """Return y less the least-squares polynomial in x of a degree, shape (n,)."""
+    _, basis = _basis(x, degree)
+    orthogonal, _ = np.linalg.qr(basis)
+    return y - orthogonal @ (orthogonal.T @ y)
+
+
+def _basis(x: FloatArray, degree: int) -> tuple[tuple[float, float], FloatArray]:
     low, high = float(x.min()), float(x.max())
     scaled = (2.0 * x - low - high) / (high - low)
-    basis = chebyshev.chebvander(scaled, degree)
+    return (low, high), np.asarray(chebyshev.chebvander(scaled, degree), dtype=float)
+
+
+def _fit(x: FloatArray, y: FloatArray, degree: int) -> SmoothLog:
+    (low, high), basis = _basis(x, degree)
     orthogonal, triangle = np.linalg.qr(basis)
     coefficients = np.linalg.solve(triangle, orthogonal.T @ y)
     residual = y - basis @ coefficients

@@ -7,9 +7,9 @@ from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import Caution
 from rheo.geometry.concentric_cylinders import log_radius_ratio
-from rheo.geometry.gap_flow import angular_speed
+from rheo.geometry.dimensioned import Geometry
+from rheo.geometry.gap_flow import angular_speed, speed_and_slope
 from rheo.geometry.monotone import solve_log
-from rheo.geometry.record import Geometry
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
@@ -93,15 +93,15 @@ def critical_speed(geometry: Geometry, model: Model, density: ArrayLike) -> Floa
         geometry.dimensions["inner_radius"], geometry.dimensions["outer_radius"]
     )
 
+    at_bob = speed_and_slope(None)
+
     def relation(
         local: Model, rate: FloatArray, local_ratio: FloatArray
     ) -> tuple[FloatArray, FloatArray]:
         # ω/η at the bob, which rises with the rate there however the fluid thins.
-        speed = angular_speed(local, rate, local_ratio)
-        slope = local.record.log_slope(rate, *local)
-        beside = angular_speed(local, rate * 1.001, local_ratio)
+        speed, rise = at_bob(local, rate, local_ratio)
         stress = local.record.stress(rate, *local)
-        return speed * rate / stress, np.log(beside / speed) / np.log(1.001) + 1.0 - slope
+        return speed * rate / stress, rise + 1.0 - local.record.log_slope(rate, *local)
 
     wanted = critical_reynolds(_kappa(geometry)) / (density * _arm(geometry))
     rate = solve_log(relation, model, np.broadcast_to(wanted, shape), extra=(log_ratio,))

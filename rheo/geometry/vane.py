@@ -5,6 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
+from rheo.errors import Caution
 from rheo.geometry import gap_flow
 from rheo.geometry.flow_points import FlowPoints, points, smoothed
 from rheo.geometry.record import Dimension, GeometryRecord
@@ -12,6 +13,8 @@ from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
 
+# A project choice: with this slope or less, and no more, the fluid between the blades turns along.
+_STRONGLY_THINNING = 0.5
 _WIDE = np.asarray(np.inf)
 
 
@@ -95,6 +98,26 @@ def from_data(
     return points(rate / curve.slope(np.log(rate)), stress, curve, np.log(rate))
 
 
+def cautions(
+    model: Model, rate: FloatArray, diameter: FloatArray, height: FloatArray
+) -> tuple[Caution, ...]:
+    """Warn of a rotating vane in a fluid that does not turn as a block between its blades."""
+    moving = rate > 0
+    slope = model.record.log_slope(np.where(moving, rate, 1.0), *model)
+    largest = float(np.max(np.where(moving, slope, 0.0)))
+    if not largest > _STRONGLY_THINNING:
+        return ()
+    return (
+        Caution(
+            code="vane-not-shear-thinning",
+            sentence=f"The flow curve has a logarithmic slope of up to {largest:.2g} here; a vane "
+            f"is like a cylinder only in a fluid whose slope is below {_STRONGLY_THINNING:g}.",
+            advice="Take the torque as a rough figure, or use cylinders.",
+            place="vane",
+        ),
+    )
+
+
 RECORD = GeometryRecord(
     key="vane",
     name="vane in a wide vessel",
@@ -111,6 +134,7 @@ RECORD = GeometryRecord(
     nominal_forms={"newtonian": nominal},
     nominal_note="newtonian: 2ω and M/[(πD³/2)(H/D + 1/3)]",
     inverse_forms={"wide-gap": from_data},
+    cautions=cautions,
     source="N. Q. Dzuy (Nguyen) & D. V. Boger, J. Rheol. 27 (1983) 321, for the torque at rest",
     validity="At rest (setting 0) the peak torque of the yield stress, for a vessel of two vane "
     "diameters or more. Rotating, the vane is taken as a solid cylinder of its diameter in a "
