@@ -315,8 +315,12 @@ class _Walker:
             * length
             / (self.density * self.flow * self.product.heat_capacity)
         )
+        # The nodes go along a new first axis, before all that the flow curve and the pipe have.
         shape = np.broadcast_shapes(
-            arriving.shape, units.shape, self.product.model_at(arriving, self.source).shape
+            arriving.shape,
+            units.shape,
+            np.shape(part.roughness),
+            self.product.model_at(arriving, self.source).shape,
         )
         place = _NODES.reshape(-1, *(1,) * len(shape))
         along = ambient + (arriving - ambient) * np.exp(-place * units)
