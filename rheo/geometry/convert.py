@@ -199,10 +199,9 @@ def sentence(conversion: Conversion) -> str:
     start = conversion.source
     if start.rate.ndim:
         raise InputError("a sentence needs a single setting and a single flow curve")
-    parts = [
-        f"{start.geometry.record.name} at {_shown(start)} works at {float(start.rate):.4g} 1/s"
-    ]
-    parts += [f"on {name} that is {_shown(point)}" for name, point in conversion.targets.items()]
+    name = start.geometry.record.name
+    parts = [f"The {name} at {_shown(start)} works at {float(start.rate):.4g} 1/s"]
+    parts += [f"on {other} that is {_shown(point)}" for other, point in conversion.targets.items()]
     return "; ".join(parts) + "."
 
 

@@ -39,7 +39,8 @@ def reduced_stress(reduced_rate: FloatArray, stress_index: FloatArray) -> FloatA
         # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
         if np.all(np.abs(step) <= 1e-8):
             break
-    return np.where(flowing, np.exp(at), 0.0)
+    # At rest the product is 0, and NaN stays NaN.
+    return np.where(flowing, np.exp(at), 0.0 * x)
 
 
 def stress(

@@ -6,6 +6,9 @@ import numpy as np
 
 from rheo.models.record import FloatArray, Model
 
+# The logarithm of the rate is sought between these. A stress that needs more than 1e20 1/s lies
+# on or above a plateau of the flow curve.
+_LOWEST, _HIGHEST = -600.0, 46.0
 _STEPS = 200
 _LARGEST_STEP = 10.0
 
@@ -30,7 +33,7 @@ def rate_from_stress(
     Returns
     -------
     array
-        Shear rate [1/s].
+        Shear rate [1/s]; infinite where no rate up to 1e20 1/s reaches the stress.
     """
     if model.record.rate is not None:
         return model.record.rate(stress, *model)
@@ -56,6 +59,7 @@ def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatA
         at = np.clip(offset / model.record.log_slope(one, *model), -40.0, 40.0)
     else:
         at = np.log(start)
+    at = np.clip(at, _LOWEST, _HIGHEST)
     for _ in range(_STEPS):
         rate = np.exp(at)
         gap = np.log(model.record.stress(rate, *model)) - target
@@ -63,6 +67,7 @@ def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatA
         low = np.where(gap <= 0, at, low)
         step = gap / model.record.log_slope(rate, *model)
         new = at - np.clip(step, -_LARGEST_STEP, _LARGEST_STEP)
+        new = np.clip(new, _LOWEST, _HIGHEST)
         outside = (new < low) | (new > high)
         new[outside] = 0.5 * (low[outside] + high[outside])
         moved = np.abs(new - at)
@@ -70,4 +75,4 @@ def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatA
         # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
         if np.all(moved <= 1e-8):
             break
-    return np.exp(at)
+    return np.where(at < _HIGHEST, np.exp(at), np.inf)

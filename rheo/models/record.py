@@ -263,6 +263,8 @@ class Model:
 
 def _not_negative(values: ArrayLike, what: str) -> FloatArray:
     array = np.asarray(values, dtype=float)
-    if np.any(array < 0):
-        raise InputError(f"{what} is {float(array.min()):g}; it must be 0 or more")
+    wrong = (array < 0) | np.isinf(array)
+    if np.any(wrong):
+        worst = float(array[wrong].flat[0]) if array.ndim else float(array)
+        raise InputError(f"{what} is {worst:g}; it must be a finite number of 0 or more")
     return array
