@@ -29,6 +29,17 @@ _PUBLIC = {
     "pipe_flow": "rheo.hydraulics",
     "friction_factor": "rheo.hydraulics",
     "critical_velocity": "rheo.hydraulics",
+    "Line": "rheo.line",
+    "LineResult": "rheo.line",
+    "Product": "rheo.line",
+    "solve_line": "rheo.line",
+    "size_line": "rheo.line",
+    "start_up": "rheo.line",
+    "system_curve": "rheo.line",
+    "operating_point": "rheo.line",
+    "doubt_budget": "rheo.line",
+    "measure_next": "rheo.line",
+    "holding_tube": "rheo.line",
 }
 
 __all__ = ["__version__", *_PUBLIC]  # noqa: PLE0604
