@@ -156,45 +156,46 @@ def _with_noise(
     return true + noise.normal(size=true.size) * np.hypot(relative * true, absolute)
 
 
-def _csv(rows: Iterable[Row], delimiter: str) -> bytes:
+def _table(notes: Sequence[str], rows: Iterable[Row], delimiter: str) -> bytes:
     text = io.StringIO()
+    text.writelines(f"# {note}\r\n" for note in notes)
     csv.writer(text, delimiter=delimiter, lineterminator="\r\n").writerows(rows)
     return text.getvalue().encode("utf-8")
 
 
 def sauce_file() -> bytes:
     """Return a comma-separated file with units in the headings and the geometry above them."""
-    size = {key: f"{1e3 * value:g} mm" for key, value in SAUCE_CYLINDERS.items()}
-    preamble: list[Row] = [
-        (f"# {NOTICE}",),
-        (f"# {PLANT}: brown condiment sauce, lot 7",),
-        ("Geometry", "concentric-cylinders"),
-        ("Inner radius", size["inner_radius"]),
-        ("Outer radius", size["outer_radius"]),
-        ("Length", size["length"]),
-        ("End factor", f"{SAUCE_CYLINDERS['end_factor']:g}"),
-        ("Full-scale torque", f"{SAUCE_FULL_SCALE:g} mN.m"),
-        (),
-        ("Time [s]", "Temperature [°C]", "Branch", "Speed [rpm]", "Torque [mN.m]"),
-    ]
-    return _csv([*preamble, *sauce_rows()], ",")
+    lengths = {key: f"{1e3 * value:g} mm" for key, value in SAUCE_CYLINDERS.items()}
+    notes = (
+        NOTICE,
+        f"{PLANT}; brown condiment sauce, lot 7",
+        f"geometry: concentric-cylinders, inner_radius {lengths['inner_radius']}, "
+        f"outer_radius {lengths['outer_radius']}, length {lengths['length']}, "
+        f"end_factor {SAUCE_CYLINDERS['end_factor']:g}",
+        f"full_scale_torque: {SAUCE_FULL_SCALE:g} mN.m",
+        "density: 1125 kg/m3",
+        "particle_diameter: 0.3 mm",
+    )
+    heading = ("Time [s]", "Temperature [°C]", "Branch", "Speed [rpm]", "Torque [mN.m]")
+    return _table(notes, [heading, *sauce_rows()], ",")
 
 
 def underflow_file() -> bytes:
-    """Return a semicolon-separated file with decimal commas."""
-    preamble: list[Row] = [
-        (f"# {NOTICE}",),
-        (f"# {PLANT}: underflow of the clay thickener, 46 % solids by weight, 18 °C",),
-        ("Geometry", "tube"),
-        (),
-        ("Diameter [mm]", "Length [m]", "Flow [L/min]", "Pressure drop [kPa]"),
-    ]
+    """Return a semicolon-separated file with decimal commas, a tube to every reading."""
+    notes = (
+        NOTICE,
+        f"{PLANT}; underflow of the clay thickener, 46 % solids by weight",
+        "geometry: tube",
+        "temperature: 18 °C",
+        "density: 1400 kg/m3",
+    )
+    heading = ("Tube diameter [mm]", "Tube length [m]", "Flow [L/min]", "Pressure drop [kPa]")
     rows = [tuple(str(cell).replace(".", ",") for cell in row) for row in underflow_rows()]
-    return _csv([*preamble, *rows], ";")
+    return _table(notes, [heading, *rows], ";")
 
 
 def gum_file() -> bytes:
-    """Return a workbook: notes in one sheet, readings in another."""
+    """Return a workbook with notes above the readings."""
     import xlsxwriter
 
     made = io.BytesIO()
@@ -203,8 +204,8 @@ def gum_file() -> bytes:
         sheet = book.add_worksheet("Readings")
         lines: list[Row] = [
             (NOTICE,),
-            (f"{PLANT}: gum solution for the sauce, 1.2 % by weight",),
-            ("Cone and plate, 50 mm, 2°",),
+            (f"{PLANT}; gum solution for the sauce, 1.2 % by weight",),
+            ("geometry: cone-plate, radius 25 mm, angle 2 deg",),
             (),
             ("Shear rate [1/s]", "Shear stress [Pa]", "Temperature [°C]"),
             *gum_rows(),
