@@ -7,7 +7,7 @@ from typing import Any
 
 from pydantic import BaseModel, ConfigDict, model_validator
 
-from rheo.case.quantity import describe
+from rheo.case.quantity import Quantity, describe
 from rheo.errors import CaseError
 
 
@@ -53,3 +53,24 @@ class Block(BaseModel):
             raise CaseError(f"found {describe(data)}; it must be a table of keys")
         refuse_unknown_keys(data, list(cls.model_fields))
         return data
+
+    def given(self, *left_out: str) -> dict[str, Any]:
+        """Return the values that the file gives, in SI, for the dataclass of the engine.
+
+        What it does not give is left to the defaults of that dataclass.
+
+        Parameters
+        ----------
+        *left_out : str
+            Fields that the dataclass does not have.
+        """
+        values = {
+            name: getattr(self, name)
+            for name in type(self).model_fields
+            if name in self.model_fields_set and name not in left_out
+        }
+        return {
+            name: float(value) if isinstance(value, Quantity) else value
+            for name, value in values.items()
+            if value is not None
+        }

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from abc import ABC, abstractmethod
-from typing import Annotated, Any, Literal, Self
+from typing import Annotated, Literal, Self
 
 from pydantic import Field, StrictBool, StrictInt, field_validator, model_validator
 
@@ -25,6 +25,8 @@ from rheo.case.fields import (
     Volume,
 )
 from rheo.case.quantity import Quantity
+from rheo.errors import CaseError
+from rheo.hydraulics.registry import turbulent_methods
 from rheo.line.catalogue import pipe_size
 from rheo.line.parts import (
     STANDARD_ATMOSPHERE,
@@ -43,19 +45,8 @@ from rheo.line.parts import (
 class PartBlock(Block, ABC):
     """What every part of the route has; `part` says which it is.
 
-    The fields of a part are those of its dataclass in `rheo.line`, with units as text; only what
-    the file gives is handed on, so that its defaults stand in one place.
+    The fields of a part are those of its dataclass in `rheo.line`, with units as text.
     """
-
-    def given(self) -> dict[str, Any]:
-        """Return the values given in the file, in SI, for the part's dataclass."""
-        names = self.model_fields_set - {"part"}
-        values = {name: getattr(self, name) for name in names}
-        return {
-            name: float(value) if isinstance(value, Quantity) else value
-            for name, value in values.items()
-            if value is not None
-        }
 
     @abstractmethod
     def build(self) -> Part:
@@ -77,7 +68,7 @@ class VesselBlock(PartBlock):
 
     def build(self) -> Vessel:
         """Return the vessel for the engine."""
-        return Vessel(**self.given())
+        return Vessel(**self.given("part"))
 
 
 class PipeBlock(PartBlock):
@@ -104,7 +95,7 @@ class PipeBlock(PartBlock):
 
     def build(self) -> Pipe:
         """Return the pipe for the engine."""
-        return Pipe(**self.given())
+        return Pipe(**self.given("part"))
 
 
 class FittingBlock(PartBlock):
@@ -119,7 +110,7 @@ class FittingBlock(PartBlock):
 
     def build(self) -> Fitting:
         """Return the fitting for the engine."""
-        return Fitting(**self.given())
+        return Fitting(**self.given("part"))
 
 
 class ReducerBlock(PartBlock):
@@ -132,7 +123,7 @@ class ReducerBlock(PartBlock):
 
     def build(self) -> Reducer:
         """Return the reducer for the engine."""
-        return Reducer(**self.given())
+        return Reducer(**self.given("part"))
 
 
 class EntranceBlock(PartBlock):
@@ -144,7 +135,7 @@ class EntranceBlock(PartBlock):
 
     def build(self) -> Entrance:
         """Return the entrance for the engine."""
-        return Entrance(**self.given())
+        return Entrance(**self.given("part"))
 
 
 class ExitBlock(PartBlock):
@@ -156,7 +147,7 @@ class ExitBlock(PartBlock):
 
     def build(self) -> Exit:
         """Return the exit for the engine."""
-        return Exit(**self.given())
+        return Exit(**self.given("part"))
 
 
 class EquipmentBlock(PartBlock):
@@ -175,7 +166,7 @@ class EquipmentBlock(PartBlock):
 
     def build(self) -> Equipment:
         """Return the equipment for the engine."""
-        return Equipment(**self.given())
+        return Equipment(**self.given("part"))
 
 
 PartChoice = Annotated[
@@ -196,9 +187,18 @@ class LineBlock(Block):
     """The route: what lies before the pump and what lies after it."""
 
     name: Text = "line"
+    friction_method: Text | None = None
     atmospheric_pressure: Pressure = Quantity(STANDARD_ATMOSPHERE)
     suction: tuple[PartChoice, ...] = ()
     discharge: tuple[PartChoice, ...] = ()
+
+    @field_validator("friction_method")
+    @classmethod
+    def _known_method(cls, key: str | None) -> str | None:
+        methods = turbulent_methods()
+        if key is not None and key not in methods:
+            raise CaseError(f"unknown method '{key[:60]}'; there are {', '.join(methods)}")
+        return key
 
     @model_validator(mode="after")
     def _makes_a_line(self) -> Self:

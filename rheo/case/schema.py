@@ -13,6 +13,14 @@ from typing import Annotated, Any, Self
 from pydantic import Field, PrivateAttr, field_validator, model_validator
 
 from rheo.case.block import Block, KeyedError
+from rheo.case.design_blocks import (
+    CleaningBlock,
+    CostBlock,
+    DoubtBlock,
+    HoldingBlock,
+    LimitsBlock,
+    SizesBlock,
+)
 from rheo.case.fields import (
     Density,
     Flow,
@@ -144,6 +152,12 @@ class Case(Block):
     duty: DutyBlock
     line: LineBlock
     pump: PumpChoice | None = None
+    limits: LimitsBlock = LimitsBlock()
+    sizes: SizesBlock | None = None
+    cost: CostBlock | None = None
+    doubt: DoubtBlock = DoubtBlock()
+    holding_tube: HoldingBlock | None = None
+    cleaning: CleaningBlock | None = None
 
     _folder: Path | None = PrivateAttr(default=None)
     _allow_outside: bool = PrivateAttr(default=False)
@@ -152,6 +166,15 @@ class Case(Block):
     @classmethod
     def _one_or_more(cls, readings: Any) -> Any:
         return [readings] if isinstance(readings, dict) else readings
+
+    @model_validator(mode="after")
+    def _cost_has_what_it_needs(self) -> Self:
+        if self.cost is not None:
+            if self.duty.hours_a_year is None:
+                raise KeyedError("it needs duty.hours_a_year, the running hours a year", "cost")
+            if self.pump is None or self.pump.efficiency is None:
+                raise KeyedError("it needs pump.efficiency, such as '55 %'", "cost")
+        return self
 
     def __eq__(self, other: object) -> bool:
         return isinstance(other, Case) and self.document() == other.document()

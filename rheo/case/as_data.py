@@ -1,0 +1,89 @@
+"""Readings and fits as plain data for JSON, in SI under the names of the program."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import numpy as np
+
+from rheo.errors import Caution
+from rheo.fitting import Fit, Fits
+from rheo.line.result import plain
+from rheo.models import Model
+from rheo.readings import Readings
+
+
+def model_data(model: Model) -> dict[str, Any]:
+    """Return key and parameters of a flow curve."""
+    return {
+        "key": model.key,
+        "parameters": {key: plain(value) for key, value in model.parameters.items()},
+    }
+
+
+def cautions_data(cautions: tuple[Caution, ...]) -> list[dict[str, Any]]:
+    """Return Cautions as a list."""
+    return [caution.as_dict() for caution in cautions]
+
+
+def readings_data(readings: Readings) -> dict[str, Any]:
+    """Return the columns of readings, their geometry and which are left out."""
+    geometry = readings.geometry
+    curve = readings.flow_curve()
+    return {
+        "source": readings.source,
+        "count": len(readings),
+        "excluded": np.flatnonzero(readings.excluded).tolist(),  # type: ignore[arg-type]
+        "geometry": None
+        if geometry is None
+        else {
+            "key": geometry.key,
+            "dimensions": {key: plain(value) for key, value in geometry.dimensions.items()},
+        },
+        "columns": {
+            key: [str(word) for word in getattr(readings, key)]
+            if key in ("branch", "block")
+            else plain(getattr(readings, key))
+            for key in readings.present
+        },
+        "flow_curve": {"rate": plain(curve.rate), "stress": plain(curve.stress)},
+        "cautions": cautions_data(readings.cautions),
+    }
+
+
+def fit_data(fit: Fit) -> dict[str, Any]:
+    """Return one fitted model."""
+    return {
+        "key": fit.key,
+        "name": fit.record.name,
+        "parameters": {
+            key: {
+                "value": plain(one.value),
+                "stderr": plain(one.stderr),
+                "low": plain(one.low),
+                "high": plain(one.high),
+                "unit": one.unit,
+                "bound": one.bound,
+                "note": one.note,
+            }
+            for key, one in fit.parameters.items()
+        },
+        "aicc": plain(fit.aicc),
+        "weight": plain(fit.weight),
+        "rms_relative_error": plain(fit.rms_relative_error),
+        "worst_relative_error": plain(fit.worst_relative_error),
+        "points": fit.points.tolist(),
+        "cautions": cautions_data(fit.cautions),
+    }
+
+
+def fits_data(fits: Fits) -> dict[str, Any]:
+    """Return the ranking with its reason."""
+    return {
+        "best": fits.best.key,
+        "reason": fits.reason,
+        "weighting": fits.weighting.name,
+        "ranking": [fit_data(fit) for fit in fits.ranking],
+        "skipped": dict(fits.skipped),
+        "cautions": cautions_data(fits.cautions),
+    }
