@@ -1,0 +1,1 @@
+"""The workbook: numbers as numbers, live formulas with stored results, native charts."""
