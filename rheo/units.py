@@ -18,7 +18,23 @@ from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import UnitError
 
-# Trade spellings that Pint would not read, or would read as something else.
+# Trade spellings that Pint would not read, or would read as something else: first those in which
+# capital letters count, then those in which they do not.
+_EXACT_SPELLINGS = {
+    "Pas": "Pa*s",
+    "mPas": "mPa*s",
+    "kPas": "kPa*s",
+    "Nm": "N*m",
+    "mNm": "mN*m",
+    "uNm": "uN*m",
+    "nNm": "nN*m",
+    "kNm": "kN*m",
+    "J/kgK": "J/(kg*K)",
+    "kJ/kgK": "kJ/(kg*K)",
+    "'": "foot",
+    "′": "foot",
+    "″": "inch",
+}
 _SPELLINGS = {
     "lb/100ft2": "pound_per_100_square_feet",
     "lbf/100ft2": "pound_per_100_square_feet",
@@ -38,6 +54,7 @@ _SPELLINGS = {
     "°f": "degF",
     "℉": "degF",
     "deg f": "degF",
+    "f": "degF",
     "k": "kelvin",
     "%": "percent",
     "rpm": "revolution/minute",
@@ -62,13 +79,21 @@ _SPELLINGS = {
     "1/sec": "1/s",
     "/s": "1/s",
     "barg": "bar",
+    "psig": "psi",
+    "psid": "psi",
+    "ppg": "pound/gallon",
     "m wc": "meter_H2O",
     "mwc": "meter_H2O",
     "": "dimensionless",
     "-": "dimensionless",
 }
 _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
-_NUMBER = re.compile(r"^\s*([-+]?(?:\d[\d ']*(?:\.\d*)?|\.\d+)(?:[eE][-+]?\d+)?)\s*(.*?)\s*$")
+# Thousands may be set apart by a space or an apostrophe, in threes only: "38 1/s" is 38.
+_NUMBER = re.compile(
+    r"^\s*([-+]?(?:\d{1,3}(?:[ ']\d{3})+(?!\d)(?:\.\d*)?|\d+(?:\.\d*)?|\.\d+)(?:[eE][-+]?\d+)?)"
+    r"\s*(.*?)\s*$"
+)
+_SAME_SIGNS = str.maketrans({"−": "-", "’": "'", "\u00a0": " ", "\u2009": " ", "\u202f": " "})
 # A unit that is longer than this, or holds other signs, is no unit; Pint is not asked.
 # A power of a number could take for ever to work out and is never part of a unit.
 _POWER_OF_A_NUMBER = re.compile(r"\d\s*\)*\s*\*\*|\d{4}")
@@ -89,22 +114,28 @@ def _registry() -> Any:
 
 
 def _spelling(unit: str) -> str:
-    text = unit.strip()
+    text = unit.strip().translate(_SUPERSCRIPTS).replace("µ", "u").replace("μ", "u")
     while text and text[0] + text[-1] in {"[]", "()"}:
         text = text[1:-1].strip()
+    if text in _EXACT_SPELLINGS:
+        return _EXACT_SPELLINGS[text]
     # Degrees, not coulombs: capital letters that Pint would read otherwise stand in the table.
     known = _SPELLINGS.get(re.sub(r"\s*/\s*|100\s+ft", _tight, text.lower()).replace("^", ""))
     if known is None:
         known = _SPELLINGS.get(text.lower())
     if known is not None:
         return known
-    text = text.translate(_SUPERSCRIPTS).replace("·", "*").replace("⋅", "*").replace("µ", "u")
-    text = text.replace("μ", "u")
+    text = text.replace("·", "*").replace("⋅", "*")
     text = re.sub(r"(?<=[A-Za-z])[.\s]+(?=[A-Za-z])", "*", text)
     text = re.sub(r"(?<![A-Za-z0-9])(mm|cm|dm|m|ft|in|inch)([23])(?![0-9])", r"\1**\2", text)
     text = re.sub(r"(?<=[0-9])[.\s]+(?=[A-Za-z])", "*", text)
     text = re.sub(r"(?<=[A-Za-z])-([1-9])", r"**-\1", text)
     return text.replace("^", "**")
+
+
+def _shown(value: object) -> str:
+    """Return what a user wrote, short and on one line, for an error sentence."""
+    return " ".join(str(value).split())[:60]
 
 
 def _tight(match: re.Match[str]) -> str:
@@ -136,10 +167,12 @@ def _factor_and_offset(unit: str, target: str, place: str) -> tuple[float, float
         ):
             parsed = None
     if parsed is None:
-        raise UnitError(f"unknown unit '{unit[:60]}'; use one such as {_examples(target)}", place)
+        raise UnitError(
+            f"unknown unit '{_shown(unit)}'; use one such as {_examples(target)}", place
+        )
     if parsed.dimensionality != wanted.dimensionality:
         raise UnitError(
-            f"unit '{unit}' does not measure what is wanted here; "
+            f"unit '{_shown(unit)}' does not measure what is wanted here; "
             f"use one such as {_examples(target)}",
             place,
         )
@@ -241,16 +274,23 @@ def parse_quantity(
     if isinstance(value, numbers.Real) and not isinstance(value, bool):
         number, unit = float(value), text_unit
     else:
-        match = _NUMBER.match(str(value)) if isinstance(value, str) else None
+        written = value.translate(_SAME_SIGNS) if isinstance(value, str) else ""
+        match = _NUMBER.match(written)
         if match is None:
             raise UnitError(
-                f"'{str(value)[:60]}' is not a number with a unit; "
+                f"'{_shown(value)}' is not a number with a unit; "
                 f"write it like '1.5 {_examples(target).split(',')[0]}'",
+                place,
+            )
+        if match[2].startswith(","):
+            raise UnitError(
+                f"'{_shown(value)}' has a comma; write decimals with a point and thousands "
+                "without a separator",
                 place,
             )
         number = float(match[1].replace(" ", "").replace("'", ""))
         unit = match[2] or text_unit
     result = float(to_si(number, unit, target, place))
     if not math.isfinite(result):
-        raise UnitError(f"'{str(value)[:60]}' is not a finite number", place)
+        raise UnitError(f"'{_shown(value)}' is not a finite number", place)
     return result
