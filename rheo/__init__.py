@@ -12,8 +12,13 @@ from typing import Any
 __version__ = "0.1.0"
 
 _PUBLIC = {
+    "Fit": "rheo.fitting",
+    "Fits": "rheo.fitting",
     "FlowCurve": "rheo.readings",
+    "Instrument": "rheo.fitting",
+    "fit": "rheo.fitting",
     "Readings": "rheo.readings",
+    "read_readings": "rheo.readings",
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Geometry": "rheo.geometry",

@@ -1,0 +1,145 @@
+"""The last word of a fit: lmfit from the global minimum, for parameters and covariance."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rheo.fitting.core import minimise
+from rheo.fitting.problem import Problem, allowed, bounds, coordinates, weighted
+
+FloatArray = NDArray[np.float64]
+
+# A parameter whose whole effect is below this share of every reading is at its bound of 0.
+_NO_EFFECT = 1e-9
+_SAME = 1e-12
+
+
+@dataclass(frozen=True, eq=False)
+class Final:
+    """Parameters at the minimum.
+
+    Parameters
+    ----------
+    parameters : array, shape (p,)
+        Values, those at a bound exactly there.
+    sum_of_squares : float
+        Of the weighted residuals [-].
+    free : array of bool, shape (p,)
+        False for a parameter at its bound, which has no standard error.
+    covariance : array, shape (f, f)
+        Of the free parameters; NaN where the data cannot tell them apart.
+    """
+
+    parameters: FloatArray
+    sum_of_squares: float
+    free: NDArray[np.bool_]
+    covariance: FloatArray
+
+
+def global_minimum(problem: Problem, starts: FloatArray) -> tuple[FloatArray, float]:
+    """Return parameters (p,) and sum of squares of the best of several searches."""
+    found = minimise(weighted(problem), starts, coordinates(problem), allowed(problem))
+    best = int(np.argmin(found.sum_of_squares))
+    return _snapped(problem, found.parameters[best], float(found.sum_of_squares[best]))
+
+
+def _snapped(problem: Problem, parameters: FloatArray, total: float) -> tuple[FloatArray, float]:
+    """Move parameters without effect to their bound of 0, if the fit is as good there."""
+    lower, _ = bounds(problem)
+    small = (lower == 0.0) & (parameters != 0.0)
+    if not small.any():
+        return parameters, total
+    with np.errstate(all="ignore"):
+        predicted, slopes = problem.sensitivity(parameters[np.newaxis])
+        effect = np.abs(parameters[:, np.newaxis] * slopes[0])
+        small &= np.nan_to_num(np.max(effect / predicted[0], axis=-1), nan=np.inf) < _NO_EFFECT
+        if not small.any():
+            return parameters, total
+        moved = np.where(small, 0.0, parameters)
+        new = sum_of_squares(problem, moved)
+    return (moved, new) if new <= total * (1.0 + _SAME) else (parameters, total)
+
+
+def sum_of_squares(problem: Problem, parameters: FloatArray) -> float:
+    """Return the weighted sum of squares [-] at parameters (p,)."""
+    sigma = problem.weighting.sigma(problem.observed)
+    residual = (problem.predict(parameters) - problem.observed) / sigma
+    return float(residual @ residual)
+
+
+def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
+    """Fit with lmfit from a minimum, with the analytic Jacobian.
+
+    lmfit's own bounds are not used: they would bend its coordinates and cost digits. A parameter
+    that is at a bound is held there, and a result that leaves the bounds is not taken.
+
+    Parameters
+    ----------
+    problem : Problem
+        What is fitted.
+    parameters : array, shape (p,)
+        The global minimum.
+    total : float
+        Sum of squares there.
+
+    Returns
+    -------
+    Final
+    """
+    import lmfit
+
+    lower, upper = bounds(problem)
+    free = (parameters > lower) & (parameters < upper)
+    count = int(free.sum())
+    if count == 0 or problem.observed.size <= count:
+        return Final(parameters, total, free, np.full((count, count), np.nan))
+    evaluate = weighted(problem)
+    row = np.zeros(1, dtype=np.intp)
+    whole = parameters.copy()
+
+    def at(values: lmfit.Parameters) -> FloatArray:
+        moved = whole.copy()
+        moved[free] = [value.value for value in values.values()]
+        return moved[np.newaxis]
+
+    def residuals(values: lmfit.Parameters) -> FloatArray:
+        with np.errstate(all="ignore"):
+            return np.nan_to_num(evaluate(at(values), row)[0][0], nan=1e150, posinf=1e150)
+
+    def slopes(values: lmfit.Parameters) -> FloatArray:
+        with np.errstate(all="ignore"):
+            return np.nan_to_num(evaluate(at(values), row)[1][0, free])
+
+    start = lmfit.Parameters()
+    for index, value in enumerate(whole[free]):
+        start.add(f"p{index}", value=float(value))
+    result = lmfit.minimize(
+        residuals, start, Dfun=slopes, col_deriv=1, ftol=1e-15, xtol=1e-15, gtol=0.0
+    )
+    ended = at(result.params)[0]
+    inside = bool(np.all((ended >= lower) & (ended <= upper)))
+    rule = allowed(problem)
+    inside = inside and (rule is None or bool(np.all(rule(ended[np.newaxis]))))
+    if inside and result.chisqr <= total and result.errorbars:
+        return Final(ended, float(result.chisqr), free, np.asarray(result.covar))
+    return Final(parameters, total, free, covariance(problem, parameters, total, free))
+
+
+def covariance(
+    problem: Problem, parameters: FloatArray, total: float, free: NDArray[np.bool_]
+) -> FloatArray:
+    """Return s²(JᵀJ)⁻¹ of the free parameters; NaN where the data cannot tell them apart."""
+    with np.errstate(all="ignore"):
+        slopes = weighted(problem)(parameters[np.newaxis], np.zeros(1, dtype=np.intp))[1][0, free]
+    count, readings = slopes.shape
+    scale = np.linalg.norm(slopes, axis=-1)
+    if readings <= count or not np.all(np.isfinite(scale) & (scale > 0)):
+        return np.full((count, count), np.nan)
+    _, singular, directions = np.linalg.svd((slopes / scale[:, np.newaxis]).T, full_matrices=False)
+    if singular[-1] < readings * np.finfo(float).eps * singular[0]:
+        return np.full((count, count), np.nan)
+    inverse = (directions.T / singular**2) @ directions
+    return total / (readings - count) * inverse / np.outer(scale, scale)

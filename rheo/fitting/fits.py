@@ -1,0 +1,91 @@
+"""The ranked models of one set of readings."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
+from functools import cached_property
+
+from rheo.errors import Caution, InputError, merge_cautions
+from rheo.fitting.ranking import TIE
+from rheo.fitting.result import Fit
+from rheo.fitting.weighting import Weighting
+
+
+@dataclass(frozen=True, eq=False)
+class Fits:
+    """Models fitted to the same readings with the same weights.
+
+    Parameters
+    ----------
+    ranking : tuple of Fit
+        The model to use first, then the others by rising AICc.
+    weighting : Weighting
+        The weights.
+    skipped : mapping of str to str
+        Models that were not fitted, with the reason.
+    data_cautions : tuple of Caution
+        What the readings themselves gave cause for.
+    """
+
+    ranking: tuple[Fit, ...]
+    weighting: Weighting
+    skipped: Mapping[str, str]
+    data_cautions: tuple[Caution, ...] = ()
+
+    @property
+    def best(self) -> Fit:
+        """The model to use."""
+        return self.ranking[0]
+
+    def __getitem__(self, key: str) -> Fit:
+        for fit in self.ranking:
+            if fit.key == key:
+                return fit
+        reason = f" ({self.skipped[key]})" if key in self.skipped else ""
+        raise InputError(f"model '{key}' was not fitted{reason}; there are {', '.join(self.keys)}")
+
+    def __iter__(self) -> Iterator[Fit]:
+        return iter(self.ranking)
+
+    def __len__(self) -> int:
+        return len(self.ranking)
+
+    def __contains__(self, key: object) -> bool:
+        return key in self.keys
+
+    @property
+    def keys(self) -> tuple[str, ...]:
+        """Model keys in order of rank."""
+        return tuple(fit.key for fit in self.ranking)
+
+    @property
+    def reason(self) -> str:
+        """Why the best is the best, in one sentence."""
+        best, others = self.best, self.ranking[1:]
+        name = best.record.name
+        name = name[0].upper() + name[1:]
+        error = f"an RMS error of {best.rms_relative_error:.2g}" if best.rms_relative_error else ""
+        error = f"an RMS error of {best.rms_relative_error:.2%}"
+        if not others:
+            return f"{name} is the only model fitted, with {error}."
+        lowest = min(others, key=lambda fit: fit.aicc)
+        if lowest.aicc < best.aicc:
+            return (
+                f"{name} lies within {TIE:g} units of AICc of {lowest.record.name} "
+                f"({best.aicc - lowest.aicc:.1f} above it) with {best.parameter_count} parameters "
+                f"instead of {lowest.parameter_count}, so the simpler model is used; it has {error}."
+            )
+        return (
+            f"{name} has the lowest AICc of {len(self.ranking)} models, "
+            f"{lowest.aicc - best.aicc:.1f} below {lowest.record.name}, with {error}."
+        )
+
+    @cached_property
+    def cautions(self) -> tuple[Caution, ...]:
+        """What to know of the readings, of the best fit and of the models left out."""
+        return merge_cautions(self.data_cautions, self.best.cautions)
+
+    def __repr__(self) -> str:
+        rows = ", ".join(f"{fit.key} ({fit.weight:.2f})" for fit in self.ranking)
+        return f"Fits(best={self.best.key!r}: {rows})"

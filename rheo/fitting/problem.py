@@ -1,0 +1,178 @@
+"""What a fit is asked: readings, their weights, and a model's predictions of them."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+from functools import cache, cached_property
+from typing import Protocol
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rheo.fitting.coordinates import Coordinates
+from rheo.fitting.core import Evaluate, IntArray
+from rheo.fitting.weighting import Weighting
+from rheo.models import ModelRecord, Parameter
+
+FloatArray = NDArray[np.float64]
+BoolArray = NDArray[np.bool_]
+
+
+class Problem(Protocol):
+    """Readings with a model's predictions of them; parameters of shape (..., p)."""
+
+    @property
+    def record(self) -> ModelRecord:
+        """The model."""
+
+    @property
+    def extra(self) -> tuple[Parameter, ...]:
+        """Parameters of the instrument, after those of the model."""
+
+    @property
+    def observed(self) -> FloatArray:
+        """Measured readings, shape (n,)."""
+
+    @property
+    def weighting(self) -> Weighting:
+        """How much each reading counts."""
+
+    @property
+    def order(self) -> NDArray[np.intp]:
+        """Indices of the readings in rising order of the setting, shape (n,)."""
+
+    def predict(self, parameters: FloatArray) -> FloatArray:
+        """Return predicted readings, shape (..., n)."""
+
+    def sensitivity(self, parameters: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Return predicted readings (b, n) and their derivatives (b, p, n)."""
+
+    def rates(self, parameters: FloatArray) -> FloatArray:
+        """Return the shear rates [1/s] to which the readings belong, shape (n,)."""
+
+
+@dataclass(frozen=True, eq=False)
+class CurveProblem:
+    """Measured stresses at known shear rates.
+
+    Parameters
+    ----------
+    record : ModelRecord
+        The model.
+    rate, observed : array, shape (n,)
+        Shear rate [1/s] and measured shear stress [Pa].
+    weighting : Weighting
+        How much each reading counts.
+    """
+
+    record: ModelRecord
+    rate: FloatArray
+    observed: FloatArray
+    weighting: Weighting
+
+    @property
+    def extra(self) -> tuple[Parameter, ...]:
+        """None: a flow curve has no instrument."""
+        return ()
+
+    @cached_property
+    def order(self) -> NDArray[np.intp]:
+        """Indices of the readings in rising order of the shear rate."""
+        return np.argsort(self.rate, kind="stable")
+
+    def predict(self, parameters: FloatArray) -> FloatArray:
+        """Return predicted stresses [Pa], shape (..., n)."""
+        return self.record.stress(self.rate, *columns_of(parameters))
+
+    def sensitivity(self, parameters: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Return predicted stresses (b, n) and their derivatives (b, p, n)."""
+        columns = columns_of(parameters)
+        predicted = self.record.stress(self.rate, *columns)
+        slopes = np.empty((*parameters.shape, self.rate.size))
+        for index, column in enumerate(self.record.jacobian(self.rate, *columns)):
+            slopes[..., index, :] = column
+        return predicted, slopes
+
+    def rates(self, parameters: FloatArray) -> FloatArray:  # noqa: ARG002
+        """Return the shear rates [1/s] of the readings."""
+        return self.rate
+
+
+def columns_of(parameters: FloatArray) -> list[FloatArray]:
+    """Return parameters of shape (..., p) one by one, each with a trailing axis."""
+    return [parameters[..., index, np.newaxis] for index in range(parameters.shape[-1])]
+
+
+def parameter_keys(problem: Problem) -> tuple[str, ...]:
+    """Return the keys of all parameters of a problem, the model's first."""
+    return (*problem.record.parameter_keys, *(extra.key for extra in problem.extra))
+
+
+def bounds(problem: Problem) -> tuple[FloatArray, FloatArray]:
+    """Return lower and upper bounds of all parameters, shape (p,)."""
+    every = (*problem.record.parameters, *problem.extra)
+    return np.array([one.lower for one in every]), np.array([one.upper for one in every])
+
+
+def coordinates(problem: Problem) -> Coordinates:
+    """Return the coordinates in which a problem is searched."""
+    roots = (*_roots(problem.record.key, problem.record), *(False for _ in problem.extra))
+    return Coordinates.for_bounds(*bounds(problem), np.array(roots, dtype=bool))
+
+
+@cache
+def _roots(key: str, record: ModelRecord) -> tuple[bool, ...]:  # noqa: ARG001
+    """Say which parameters have an infinite influence at a bound of 0, as Casson's yield stress."""
+    middle = [np.asarray(np.clip(1.0, one.lower, one.upper)) for one in record.parameters]
+    found = []
+    for index, parameter in enumerate(record.parameters):
+        values = list(middle)
+        values[index] = np.asarray(parameter.lower)
+        with np.errstate(all="ignore"):
+            slope = record.jacobian(np.asarray(1.0), *values)[index]
+        found.append(parameter.lower == 0.0 and not np.isfinite(slope).all())
+    return tuple(found)
+
+
+def allowed(problem: Problem) -> Callable[[FloatArray], BoolArray] | None:
+    """Return the test of parameters (b, p) that the model's record asks for, if any."""
+    rule = problem.record.allowed
+    if rule is None:
+        return None
+    count = len(problem.record.parameters)
+    return lambda parameters: rule(*parameters.T[:count])
+
+
+def weighted(problem: Problem, observed: FloatArray | None = None) -> Evaluate:
+    """Return the function that `core.minimise` asks for.
+
+    Parameters
+    ----------
+    problem : Problem
+        Predictions, and the readings when `observed` is absent.
+    observed : array, shape (b, n), optional
+        Readings for each search; weights are found from them.
+
+    Returns
+    -------
+    callable
+        ``evaluate(parameters, rows) -> (residuals, sensitivities)``, both over sigma.
+    """
+    measured = problem.observed if observed is None else observed
+    precision = 1.0 / problem.weighting.sigma(measured)
+    target = measured * precision
+
+    def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
+        predicted, slopes = problem.sensitivity(parameters)
+        if observed is None:
+            return predicted * precision - target, slopes * precision
+        weight = precision[rows]
+        return predicted * weight - target[rows], slopes * weight[:, np.newaxis, :]
+
+    return evaluate
+
+
+def with_weighting(problem: CurveProblem, weighting: Weighting) -> CurveProblem:
+    """Return the same problem under another weighting."""
+    return replace(problem, weighting=weighting)
