@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from rheo.readings.flow_curve import FlowCurve
+from rheo.readings.read import read_readings
 from rheo.readings.readings import ColumnRecord, RawBlock, Readings
 
-__all__ = ["ColumnRecord", "FlowCurve", "RawBlock", "Readings"]
+__all__ = ["ColumnRecord", "FlowCurve", "RawBlock", "Readings", "read_readings"]

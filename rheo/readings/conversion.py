@@ -14,9 +14,6 @@ if TYPE_CHECKING:
     from rheo.geometry import Geometry
     from rheo.readings.readings import Readings
 
-# API RP 13B-1, standard spring: shear stress at the bob for one degree of the dial.
-STRESS_PER_DEGREE = 0.511
-
 
 def converted(readings: Readings) -> tuple[FloatArray, FloatArray]:
     """Return nominal shear rate [1/s] and stress [Pa], shape (n,).
@@ -69,25 +66,25 @@ def measured(readings: Readings) -> tuple[FloatArray, FloatArray]:
 
 def uses_converted_values(readings: Readings) -> bool:
     """Return whether setting or reading are worked back from shear rate, stress or viscosity."""
-    if readings.geometry is None:
+    geometry = readings.geometry
+    if geometry is None:
         return False
-    if readings.geometry.record.setting == "angular_speed":
-        torques = (readings.torque, readings.torque_fraction, readings.dial)
-        return readings.angular_speed is None or all(torque is None for torque in torques)
-    speeds = (readings.flow, readings.velocity)
-    return readings.pressure_drop is None or all(speed is None for speed in speeds)
+    if geometry.record.setting == "angular_speed":
+        return readings.angular_speed is None or _torque(readings, geometry) is None
+    return _flow(readings, geometry) is None or readings.pressure_drop is None
 
 
 def _torque(readings: Readings, geometry: Geometry) -> FloatArray | None:
     if readings.torque is not None:
         return readings.torque
     if readings.torque_fraction is not None:
-        if readings.full_scale_torque is None:
+        if readings.full_scale_torque is not None:
+            return readings.torque_fraction * readings.full_scale_torque
+        if readings.stress is None and readings.viscosity is None and readings.dial is None:
             raise InputError(
                 "the torque is given in % of full scale; state full_scale_torque, such as 50 mN.m",
                 readings.source or "readings",
             )
-        return readings.torque_fraction * readings.full_scale_torque
     if readings.dial is not None:
         # The spring's stress is that at the bob, whichever form the conversion takes.
         forms = geometry.record.nominal_forms

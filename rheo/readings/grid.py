@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 from rheo.readings.numerals import Cell, looks_numeric
 
+LONGEST_SHOWN = 60
 COMMENT_MARKS = ("#", "//", "%", "!")
 # What a spreadsheet writes where a formula went wrong is no comment.
 _SHEET_ERROR = re.compile(r"#(n/a|na|num!|div/0!|value!|ref!|name\?|null!)", re.IGNORECASE)
@@ -70,12 +71,15 @@ class Grid:
         ``line`` in a text file, ``row`` in a sheet.
     sheet : str
         Name of the sheet; empty for a text file.
+    by_blanks : bool
+        Whether columns are parted by blanks only, so that an empty cell would shift the others.
     """
 
     rows: tuple[Row, ...]
     place: str
     row_word: str = "line"
     sheet: str = ""
+    by_blanks: bool = False
 
     def at(self, line: int, column: str = "") -> str:
         """Return the place of a row, and of a column in it, for an error."""
@@ -100,4 +104,4 @@ def shown(text: object) -> str:
     """Return a text from a file as a sentence can show it: one line, short, printable."""
     line = re.sub(r"\s+", " ", str(text)).strip()
     line = "".join(sign if sign.isprintable() else "?" for sign in line)
-    return line if len(line) <= 60 else line[:57] + "..."
+    return line if len(line) <= LONGEST_SHOWN else line[: LONGEST_SHOWN - 3] + "..."

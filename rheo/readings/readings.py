@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import Caution, InputError
 from rheo.geometry import Geometry, make_geometry
+from rheo.geometry.six_speed import STRESS_PER_DEGREE
 from rheo.readings import conversion
 from rheo.readings.flow_curve import (
     FloatArray,
@@ -119,7 +120,7 @@ class Readings:
     full_scale_torque : float, optional
         Torque at 100 % of full scale [N m].
     stress_per_degree : float
-        Bob stress at a dial reading of one degree [Pa].
+        Bob stress at a dial reading of one degree [Pa]; that of the standard spring when absent.
     nominal_form : str, optional
         The geometry's nominal form by which the instrument converts; its first when absent.
     density : float, optional
@@ -163,7 +164,7 @@ class Readings:
     block: NDArray[np.str_] | None = None
     excluded: NDArray[np.bool_] | None = None
     full_scale_torque: float | None = None
-    stress_per_degree: float = conversion.STRESS_PER_DEGREE
+    stress_per_degree: float = STRESS_PER_DEGREE
     nominal_form: str | None = None
     density: float | None = None
     particle_diameter: float | None = None

@@ -55,7 +55,7 @@ def text_grid(data: bytes, place: str) -> Grid:
             f"{place}, line {longest + 1}",
         )
     joined = _join_quoted(lines)
-    split = _splitter([line for _, line in joined])
+    split, by_blanks = _splitter([line for _, line in joined])
     rows = []
     for number, line in joined:
         comment = is_comment(line)
@@ -67,7 +67,7 @@ def text_grid(data: bytes, place: str) -> Grid:
                 f"{place}, line {number}",
             )
         rows.append(Row(number, cells, line, comment))
-    return Grid(tuple(rows), place)
+    return Grid(tuple(rows), place, by_blanks=by_blanks)
 
 
 def decode(data: bytes, place: str) -> str:
@@ -124,8 +124,11 @@ def _join_quoted(lines: Sequence[str]) -> list[tuple[int, str]]:
     return joined
 
 
-def _splitter(lines: Sequence[str]) -> Callable[[str], tuple[Cell, ...]]:
-    """Return the way of splitting that makes most of the file into rows of numbers."""
+def _splitter(lines: Sequence[str]) -> tuple[Callable[[str], tuple[Cell, ...]], bool]:
+    """Return the way of splitting that makes most of the file into rows of numbers.
+
+    The second value says whether it splits at blanks.
+    """
     kept = [line for line in lines if not is_comment(line) and re.search(r"[0-9]", line)]
     step = max(1, len(kept) // _SAMPLE)
     sample = kept[::step] or [line for line in lines if not is_rule(line)][:_SAMPLE]
@@ -138,10 +141,10 @@ def _splitter(lines: Sequence[str]) -> Callable[[str], tuple[Cell, ...]]:
     else:
         chosen = next(sign for sign, score in scores.items() if score == best)
     if chosen != _BLANKS:
-        return lambda line: _split(line, chosen)
+        return (lambda line: _split(line, chosen)), False
     widths = Counter(len(line.split()) for line in sample if _is_numbers(line.split()))
     width = widths.most_common(1)[0][0] if widths else 0
-    return lambda line: _split_blanks(line, width)
+    return (lambda line: _split_blanks(line, width)), True
 
 
 def _is_numbers(cells: Sequence[Cell]) -> bool:
