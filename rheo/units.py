@@ -105,7 +105,7 @@ def _registry() -> Any:
     import pint
 
     try:
-        registry = pint.UnitRegistry(cache_folder=":auto:")
+        registry: Any = pint.UnitRegistry(cache_folder=":auto:")
     except (OSError, ImportError):
         registry = pint.UnitRegistry()
     registry.define("meter_H2O = 9806.65 * pascal")

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Any
 
+import mpmath
 from hypothesis import strategies as st
 from hypothesis.strategies import SearchStrategy
 
@@ -92,3 +94,53 @@ def example(key: str) -> Model:
 def powers_of_ten(low: float, high: float) -> SearchStrategy[float]:
     """Return a strategy for numbers whose logarithms are spread evenly."""
     return st.floats(low, high).map(lambda power: float(10.0**power))
+
+
+def precise_stress(model: Model) -> Callable[[Any], Any]:
+    """Return the textbook form of a model, written down a second time for mpmath."""
+    key = model.key
+    p = {name: mpmath.mpf(float(value)) for name, value in model.parameters.items()}
+
+    def plateau(shape: Callable[[Any], Any]) -> Callable[[Any], Any]:
+        low, high = p["zero_shear_viscosity"], p["infinite_shear_viscosity"]
+        return lambda rate: rate * (high + (low - high) * shape(p["time_constant"] * rate))
+
+    def ellis(rate: Any) -> Any:
+        if rate == 0:
+            return mpmath.mpf(0)
+        y = mpmath.findroot(
+            lambda z: (
+                z
+                + mpmath.log(1 + mpmath.exp((p["stress_index"] - 1) * z))
+                - mpmath.log(rate * p["zero_shear_viscosity"] / p["half_stress"])
+            ),
+            mpmath.log(mpmath.mpf(float(model.stress(float(rate)))) / p["half_stress"]),
+        )
+        return p["half_stress"] * mpmath.exp(y)
+
+    forms = {
+        "newtonian": lambda rate: p["viscosity"] * rate,
+        "power-law": lambda rate: p["consistency"] * rate ** p["flow_index"],
+        "bingham": lambda rate: p["yield_stress"] + p["plastic_viscosity"] * rate,
+        "herschel-bulkley": lambda rate: (
+            p["yield_stress"] + p["consistency"] * rate ** p["flow_index"]
+        ),
+        "casson": lambda rate: (
+            (mpmath.sqrt(p["yield_stress"]) + mpmath.sqrt(p["casson_viscosity"] * rate)) ** 2
+        ),
+        "sisko": lambda rate: (
+            p["infinite_shear_viscosity"] * rate + p["consistency"] * rate ** p["flow_index"]
+        ),
+        "robertson-stiff": lambda rate: (
+            p["consistency"] * (rate + p["rate_offset"]) ** p["flow_index"]
+        ),
+        "ellis": ellis,
+    }
+    if key == "carreau":
+        return plateau(lambda x: (1 + x**2) ** ((p["flow_index"] - 1) / 2))
+    if key == "carreau-yasuda":
+        a = p["yasuda_exponent"]
+        return plateau(lambda x: (1 + x**a) ** ((p["flow_index"] - 1) / a))
+    if key == "cross":
+        return plateau(lambda x: 1 / (1 + x ** p["rate_index"]))
+    return forms[key]

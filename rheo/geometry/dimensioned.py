@@ -141,7 +141,8 @@ class Geometry:
         dimensions = tuple(self.dimensions.values())
         moving = at > 0
         rate, stress = self.record.sheared_at(model, np.where(moving, at, 1.0), *dimensions)
-        rate, stress = np.broadcast_arrays(rate, stress)
+        shape = np.broadcast_shapes(at.shape, model.shape, self.shape)
+        rate, stress = np.broadcast_to(rate, shape), np.broadcast_to(stress, shape)
         if np.all(moving):
             return rate, stress
         unknown = np.isnan(at)
@@ -169,7 +170,8 @@ class Geometry:
         setting = self.record.setting_at(
             model, np.where(moving, at, 1.0), *self.dimensions.values()
         )
-        return np.where(moving, setting, np.where(np.isnan(at), np.nan, 0.0))
+        setting = np.where(moving, setting, np.where(np.isnan(at), np.nan, 0.0))
+        return np.broadcast_to(setting, np.broadcast_shapes(at.shape, model.shape, self.shape))
 
     def nominal(
         self, setting: ArrayLike, reading: ArrayLike, form: str | None = None
@@ -201,7 +203,8 @@ class Geometry:
             np.asarray(reading, dtype=float),
             *self.dimensions.values(),
         )
-        return rate, stress
+        shape = np.broadcast_shapes(np.shape(rate), np.shape(stress), self.shape)
+        return np.broadcast_to(rate, shape), np.broadcast_to(stress, shape)
 
     def flow_points(
         self, setting: ArrayLike, reading: ArrayLike, form: str | None = None

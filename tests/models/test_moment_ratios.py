@@ -2,13 +2,10 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from typing import Any
-
 import mpmath
 import numpy as np
 import pytest
-from flow_curves import KEYS, any_model, example, powers_of_ten
+from flow_curves import KEYS, any_model, example, powers_of_ten, precise_stress
 from hypothesis import given, settings
 
 import rheo
@@ -39,7 +36,7 @@ def test_against_thirty_digits(key: str, k: int) -> None:
     model = example(key)
     top_rate = 37.0
     with mpmath.workdps(30):
-        stress = _precise_stress(key, model)
+        stress = precise_stress(model)
         split = [mpmath.mpf(0)] + [
             mpmath.mpf(top_rate) * mpmath.mpf(2) ** -j for j in range(60, -1, -1)
         ]
@@ -48,52 +45,3 @@ def test_against_thirty_digits(key: str, k: int) -> None:
         expected = float((top - rest) / (top * (k + 1)))
     found = float(moment_ratio(model, np.asarray(top_rate), k))
     assert found == pytest.approx(expected, rel=1e-12)
-
-
-def _precise_stress(key: str, model: Model) -> Callable[[Any], Any]:
-    """Return the textbook form of a model, written down a second time for mpmath."""
-    p = {name: mpmath.mpf(float(value)) for name, value in model.parameters.items()}
-
-    def plateau(shape: Callable[[Any], Any]) -> Callable[[Any], Any]:
-        low, high = p["zero_shear_viscosity"], p["infinite_shear_viscosity"]
-        return lambda rate: rate * (high + (low - high) * shape(p["time_constant"] * rate))
-
-    def ellis(rate: Any) -> Any:
-        if rate == 0:
-            return mpmath.mpf(0)
-        y = mpmath.findroot(
-            lambda z: (
-                z
-                + mpmath.log(1 + mpmath.exp((p["stress_index"] - 1) * z))
-                - mpmath.log(rate * p["zero_shear_viscosity"] / p["half_stress"])
-            ),
-            mpmath.log(mpmath.mpf(float(model.stress(float(rate)))) / p["half_stress"]),
-        )
-        return p["half_stress"] * mpmath.exp(y)
-
-    forms = {
-        "newtonian": lambda rate: p["viscosity"] * rate,
-        "power-law": lambda rate: p["consistency"] * rate ** p["flow_index"],
-        "bingham": lambda rate: p["yield_stress"] + p["plastic_viscosity"] * rate,
-        "herschel-bulkley": lambda rate: (
-            p["yield_stress"] + p["consistency"] * rate ** p["flow_index"]
-        ),
-        "casson": lambda rate: (
-            (mpmath.sqrt(p["yield_stress"]) + mpmath.sqrt(p["casson_viscosity"] * rate)) ** 2
-        ),
-        "sisko": lambda rate: (
-            p["infinite_shear_viscosity"] * rate + p["consistency"] * rate ** p["flow_index"]
-        ),
-        "robertson-stiff": lambda rate: (
-            p["consistency"] * (rate + p["rate_offset"]) ** p["flow_index"]
-        ),
-        "ellis": ellis,
-    }
-    if key == "carreau":
-        return plateau(lambda x: (1 + x**2) ** ((p["flow_index"] - 1) / 2))
-    if key == "carreau-yasuda":
-        a = p["yasuda_exponent"]
-        return plateau(lambda x: (1 + x**a) ** ((p["flow_index"] - 1) / a))
-    if key == "cross":
-        return plateau(lambda x: 1 / (1 + x ** p["rate_index"]))
-    return forms[key]
