@@ -10,7 +10,7 @@ from pydantic import Field, StrictInt, field_validator, model_validator
 from pydantic_core import core_schema
 
 from rheo.case.block import Block, KeyedError, refuse_unknown_keys
-from rheo.case.fields import Temperature, Text, Torque
+from rheo.case.fields import Length, PositiveStress, Temperature, Text, Torque
 from rheo.case.quantity import Quantity, Unit, describe
 from rheo.errors import CaseError, InputError
 from rheo.geometry import GeometryRecord, geometry_record
@@ -68,6 +68,19 @@ class GeometryInput:
             **{key: units[key].write(value) for key, value in self.dimensions.items()},
         }
 
+    def as_stated(self) -> str:
+        """Return the geometry as a readings file would state it, in SI.
+
+        Dimensions that are missing may then come from columns of the file.
+        """
+        record = geometry_record(self.kind)
+        units = {dimension.key: dimension.unit for dimension in record.dimensions}
+        parts = [
+            f"{key} {float(value)!r} {'' if units[key] == '-' else units[key]}".strip()
+            for key, value in self.dimensions.items()
+        ]
+        return ", ".join((self.kind, *parts))
+
     @classmethod
     def __get_pydantic_core_schema__(cls, _source: Any, _handler: Any) -> core_schema.CoreSchema:
         """Tell pydantic how to read and write the field."""
@@ -96,21 +109,27 @@ def _dimension(record: GeometryRecord, key: str, value: Any) -> Quantity:
 
 
 class ReadingsBlock(Block):
-    """One set of readings."""
+    """One set of readings, and the user's word on what the file does not say."""
 
     file: Text | None = None
     text: Annotated[str, Field(max_length=20_000_000)] | None = None
     sheet: Text | None = None
-    temperature: Temperature | None = None
+    block: Text | tuple[Text, ...] | None = None
     columns: dict[str, Text] = Field(default_factory=dict)
+    units: dict[str, Text] = Field(default_factory=dict)
+    decimal: Literal[".", ","] | None = None
     geometry: GeometryInput | None = None
+    nominal_form: Text | None = None
     full_scale_torque: Torque | None = None
+    stress_per_degree: PositiveStress | None = None
+    particle_diameter: Length | None = None
+    temperature: Temperature | None = None
     exclude: tuple[Annotated[StrictInt, Field(ge=1)], ...] = ()
     sweep: Sweep = "both"
 
-    @field_validator("columns")
+    @field_validator("columns", "units")
     @classmethod
-    def _columns_are_quantities(cls, columns: dict[str, str]) -> dict[str, str]:
+    def _keys_are_quantities(cls, columns: dict[str, str]) -> dict[str, str]:
         refuse_unknown_keys(columns, list(BY_KEY))
         return columns
 
@@ -125,8 +144,3 @@ class ReadingsBlock(Block):
             found = "neither" if self.file is None else "both"
             raise CaseError(f"found {found} of 'file' and 'text'; give one of them")
         return self
-
-    @property
-    def label(self) -> str:
-        """What messages call these readings."""
-        return self.file if self.file is not None else "readings in the case"

@@ -1,0 +1,129 @@
+"""The readings of a case, as its file says they are to be read."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+
+from rheo.case.complaints import words_of
+from rheo.case.paths import inside_folder
+from rheo.case.readings_blocks import ReadingsBlock
+from rheo.case.schema import Case
+from rheo.errors import CaseError
+from rheo.readings import Readings, read_readings
+
+
+def readings_of(case: Case, number: int = 0) -> Readings:
+    """Return one set of the readings of a case.
+
+    Parameters
+    ----------
+    case : Case
+        The case; its folder is where its files are looked for.
+    number : int
+        Which of its sets, counted from 0.
+
+    Returns
+    -------
+    Readings
+        With the points left out that the case excludes.
+
+    Raises
+    ------
+    InputError
+        If they cannot be read; the place names the file, its line and column.
+    """
+    block = case.readings[number]
+    place = words_of(("readings", number) if len(case.readings) > 1 else ("readings",))
+    source, name = _source(case, block, place)
+    readings = read_readings(
+        source,
+        columns=block.columns or None,
+        geometry=None if block.geometry is None else block.geometry.as_stated(),
+        sheet=block.sheet,
+        units=block.units or None,
+        block=block.block,
+        decimal=block.decimal,
+        full_scale_torque=_plain(block.full_scale_torque),
+        name=name,
+    )
+    return _with_excluded(replace(readings, **_said(case, block, readings)), block, place)
+
+
+def branch_of(readings: Readings, block: ReadingsBlock) -> Readings:
+    """Return the readings of the sweep branch that the case wants fitted.
+
+    Raises
+    ------
+    CaseError
+        If the readings have no such branch.
+    """
+    if block.sweep == "both":
+        return readings
+    branch = readings.branch
+    wanted = np.zeros(len(readings), dtype=bool) if branch is None else branch == block.sweep
+    if not wanted.any():
+        words = [] if branch is None else sorted({str(word) for word in branch if word})
+        found = f"only {', '.join(words)}" if words else "no branch at all"
+        raise CaseError(
+            f"sweep is '{block.sweep}', and {found} was found in the readings; "
+            "use 'both', or a file with a column for the branch",
+            readings.source,
+        )
+    return readings.select(wanted)
+
+
+def _source(case: Case, block: ReadingsBlock, place: str) -> tuple[Path | bytes, str]:
+    if block.text is not None:
+        return block.text.encode("utf-8"), f"{place} text"
+    name = block.file or ""
+    try:
+        return inside_folder(name, case.folder, case.allow_outside), name
+    except CaseError as error:
+        raise CaseError(error.sentence, f"{place} file") from None
+
+
+def _said(case: Case, block: ReadingsBlock, readings: Readings) -> dict[str, Any]:
+    """What the case says of the readings beside the file."""
+    said: dict[str, Any] = {"density": readings.density or float(case.product.density)}
+    solids = case.product.solids
+    particle = block.particle_diameter or (solids.diameter if solids is not None else None)
+    if particle is not None:
+        said["particle_diameter"] = float(particle)
+    if block.stress_per_degree is not None:
+        said["stress_per_degree"] = float(block.stress_per_degree)
+    if block.nominal_form is not None:
+        said["nominal_form"] = block.nominal_form
+    if block.temperature is not None:
+        said["temperature"] = np.full(len(readings), float(block.temperature))
+    return said
+
+
+def _with_excluded(readings: Readings, block: ReadingsBlock, place: str) -> Readings:
+    if not block.exclude:
+        return readings
+    if max(block.exclude) > len(readings):
+        raise CaseError(
+            f"there is no reading {max(block.exclude)} in {readings.source}; "
+            f"they are numbered 1 to {len(readings)}",
+            f"{place} exclude",
+        )
+    return readings.with_excluded([number - 1 for number in block.exclude])
+
+
+def _plain(value: float | None) -> float | None:
+    return None if value is None else float(value)
+
+
+def all_readings(case: Case) -> tuple[Readings, ...]:
+    """Return every set of the readings of a case.
+
+    Raises
+    ------
+    InputError
+        For the first that cannot be read.
+    """
+    return tuple(readings_of(case, number) for number in range(len(case.readings)))
