@@ -19,6 +19,7 @@ _PUBLIC = {
     "fit": "rheo.fitting",
     "Readings": "rheo.readings",
     "read_readings": "rheo.readings",
+    "screen": "rheo.readings",
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Geometry": "rheo.geometry",

@@ -172,7 +172,7 @@ def read_stated(lines: Sequence[Line], decimal: str) -> tuple[Stated, tuple[Caut
             cautions.append(
                 Caution(
                     code="line-not-understood",
-                    sentence=f"A line above the table is not used: {error}.",
+                    sentence=f"The {key} stated there is not used: {error.sentence}.",
                     advice=f"State the {key} if it matters.",
                     place=line.place,
                 )

@@ -118,9 +118,9 @@ def table_values(
             cautions.append(
                 Caution(
                     code="column-not-used",
-                    sentence=f"The {column.quantity.name} is not used: {error}.",
+                    sentence=f"The {column.quantity.name} is not used: {error.sentence}.",
                     advice="Put the column right if it matters.",
-                    place=grid.place,
+                    place=error.place,
                 )
             )
             continue
