@@ -17,11 +17,3 @@ __all__ = [
     "read_readings",
     "screen",
 ]
-    "ColumnRecord",
-    "FlowCurve",
-    "RawBlock",
-    "Readings",
-    "loop_area",
-    "read_readings",
-    "screen",
-]
