@@ -122,12 +122,7 @@ def from_data_power_law(
     return gap_inverse.power_law_form(setting, stress, ratio)
 
 
-def check_radii(
-    inner_radius: FloatArray,
-    outer_radius: FloatArray,
-    length: FloatArray,
-    end_factor: FloatArray,
-) -> None:
+def check_radii(inner_radius: FloatArray, outer_radius: FloatArray, key: str) -> None:
     """Refuse a cup that is not larger than its bob."""
     inner, outer = np.broadcast_arrays(inner_radius, outer_radius)
     wrong = ~(outer > inner)
@@ -135,8 +130,17 @@ def check_radii(
         raise InputError(
             f"outer_radius is {float(outer[wrong].flat[0]):g} m; it must be larger than "
             f"inner_radius, {float(inner[wrong].flat[0]):g} m",
-            "cylinders",
+            f"geometry {key}",
         )
+
+
+def _check(
+    inner_radius: FloatArray,
+    outer_radius: FloatArray,
+    length: FloatArray,
+    end_factor: FloatArray,
+) -> None:
+    check_radii(inner_radius, outer_radius, "concentric-cylinders")
 
 
 INNER_RADIUS = Dimension("inner_radius", "R_i", "m", "radius of the bob", 1e-5, 10.0)
@@ -156,7 +160,7 @@ RECORD = GeometryRecord(
     setting_at=setting_at,
     sheared_at=sheared_at,
     reading_at=reading_at,
-    check=check_radii,
+    check=_check,
     nominal_forms={"representative": nominal_representative, "bob": nominal_at_bob},
     nominal_note="representative (the default): ISO 3219, the mean of bob and cup; bob: the values "
     "of a Newtonian fluid at the bob",

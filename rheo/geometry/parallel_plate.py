@@ -69,9 +69,12 @@ def from_data(
 
 
 def _check(radius: FloatArray, gap: FloatArray) -> None:
-    if np.any(gap > 0.5 * radius):
+    gap, radius = np.broadcast_arrays(gap, radius)
+    wrong = gap > 0.5 * radius
+    if np.any(wrong):
         raise InputError(
-            "gap is more than half the radius; parallel plates must be close to each other",
+            f"gap is {float(gap[wrong].flat[0]):g} m; it must be at most half the radius, "
+            f"{0.5 * float(radius[wrong].flat[0]):g} m",
             "geometry parallel-plate",
         )
 

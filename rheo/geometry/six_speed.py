@@ -23,11 +23,22 @@ _INNER = replace(cylinders.INNER_RADIUS, default=0.017245)
 _OUTER = replace(cylinders.OUTER_RADIUS, default=0.018415, description="radius of the rotor")
 _LENGTH = replace(cylinders.LENGTH, default=0.038)
 
+
+def _check(
+    inner_radius: FloatArray,
+    outer_radius: FloatArray,
+    length: FloatArray,
+    end_factor: FloatArray,
+) -> None:
+    cylinders.check_radii(inner_radius, outer_radius, "six-speed")
+
+
 RECORD: GeometryRecord = replace(
     cylinders.RECORD,
     key="six-speed",
     name="six-speed rotor and bob",
     dimensions=(_INNER, _OUTER, _LENGTH, cylinders.END_FACTOR),
+    check=_check,
     nominal_forms={
         "bob": cylinders.nominal_at_bob,
         "representative": cylinders.nominal_representative,

@@ -121,11 +121,12 @@ def cautions(
 
 
 def _check(half_gap: FloatArray, width: FloatArray, length: FloatArray) -> None:
-    aspect = width / (2.0 * half_gap)
-    if np.any(aspect < LEAST_ASPECT):
+    width, half_gap = np.broadcast_arrays(width, half_gap)
+    wrong = width < LEAST_ASPECT * 2.0 * half_gap
+    if np.any(wrong):
         raise InputError(
-            f"the slot is only {float(np.min(aspect)):.3g} times as wide as its gap; it must be "
-            f"at least {LEAST_ASPECT:g} times, so that its sides do not count",
+            f"width is {float(width[wrong].flat[0]):g} m; it must be at least {LEAST_ASPECT:g} "
+            f"gaps, {LEAST_ASPECT * 2.0 * float(half_gap[wrong].flat[0]):g} m",
             "geometry slot",
         )
 
