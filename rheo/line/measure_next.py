@@ -11,18 +11,21 @@ points over the readings that may come.
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from rheo.errors import Caution, InputError
-from rheo.fitting import Fit, Fits
 from rheo.geometry import Geometry
 from rheo.line.checks import require_positive
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import Product
 from rheo.line.walk import walk
 from rheo.models import Model
+
+if TYPE_CHECKING:
+    from rheo.fitting import Fit, Fits
 
 _LEAST_WEIGHT = 0.01
 _SPEEDS = 41
