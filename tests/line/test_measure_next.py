@@ -1,0 +1,165 @@
+"""Which readings to take next, checked by taking them."""
+
+from __future__ import annotations
+
+import math
+from functools import cache
+
+import numpy as np
+import pytest
+
+import rheo
+from rheo.fitting import fit
+from rheo.line import Line, Pipe, Product
+from rheo.line.walk import walk
+
+TRUTH = rheo.model("herschel-bulkley", yield_stress=8.0, consistency=3.0, flow_index=0.45)
+PRODUCT = Product(TRUTH, 1050.0)
+LINE = Line(discharge=(Pipe(100.0, 0.05),))
+RATES = np.geomspace(5.0, 300.0, 9)
+CHOICES = np.geomspace(5.0, 300.0, 13)
+NOISE = 0.03
+
+
+def _readings(rates: np.ndarray, rng: np.random.Generator) -> np.ndarray:
+    return TRUTH.stress(rates) * (1.0 + NOISE * rng.standard_normal(rates.size))
+
+
+def _log_pressure_error(rates: np.ndarray, stresses: np.ndarray, flow: float) -> float:
+    """Standard deviation of ln(ΔP) by the covariance of a fit with the true kind of model."""
+    found = fit(rheo.FlowCurve(rates, stresses), models="herschel-bulkley").best
+    free = [found.record.parameter_keys.index(key) for key in found.parameter_keys]
+    centre = np.array([float(value) for value in found.model])
+    step = 1e-3 * np.sqrt(np.diag(found.covariance))
+    moved = np.repeat(centre[np.newaxis], 2 * len(free), axis=0)
+    for row, index in enumerate(free):
+        moved[2 * row, index] += step[row]
+        moved[2 * row + 1, index] -= step[row]
+    pressure = walk(LINE, PRODUCT, flow, source=found.model_of(moved)).differential_pressure
+    slope = (np.log(pressure[::2]) - np.log(pressure[1::2])) / (2 * step)
+    # The scatter is put at its true value, so that its own chance does not blur the comparison.
+    scale = NOISE / found.scatter
+    return float(np.sqrt(slope @ found.covariance @ slope)) * scale
+
+
+@cache
+def _simulate(flow: float) -> tuple[float, np.ndarray]:
+    """Mean error with two readings at the first choice, and with two at each speed."""
+    rng = np.random.default_rng(2024)
+    chosen, others = [], []
+    for _ in range(12):
+        stresses = _readings(RATES, rng)
+        fits = fit(rheo.FlowCurve(RATES, stresses), models="herschel-bulkley")
+        best = rheo.measure_next(fits, LINE, PRODUCT, flow, settings=CHOICES).best.setting
+        errors = []
+        for rate in (best, *CHOICES):
+            more = np.full(2, rate)
+            rates = np.concatenate([RATES, more])
+            values = np.concatenate([stresses, _readings(more, rng)])
+            errors.append(_log_pressure_error(rates, values, flow))
+        chosen.append(errors[0])
+        others.append(errors[1:])
+    return float(np.mean(chosen)), np.mean(others, axis=0)
+
+
+@pytest.mark.parametrize("flow", [1e-4, 2e-3])
+def test_the_first_choice_narrows_more_than_the_median_of_the_others(flow: float) -> None:
+    chosen, others = _simulate(flow)
+    assert chosen < np.median(others)
+
+
+@pytest.mark.parametrize("flow", [1e-4, 2e-3])
+def test_the_first_choice_is_close_to_the_best_there_is(flow: float) -> None:
+    chosen, others = _simulate(flow)
+    # Twelve sets of readings leave a few percent of chance in each mean.
+    assert chosen < 1.05 * others.min()
+
+
+def test_the_forecast_of_one_model_is_what_its_covariance_becomes() -> None:
+    """For one model the expected interval is that of the fit with two exact readings more.
+
+    Readings that lie on the fitted curve leave the fit as it is, so that the covariance grows by
+    the design alone; the scatter estimate is put back to that of the first fit.
+    """
+    rng = np.random.default_rng(8)
+    stresses = _readings(RATES, rng)
+    flow = 1e-3
+    before = fit(rheo.FlowCurve(RATES, stresses), models="herschel-bulkley")
+    for one in rheo.measure_next(before, LINE, PRODUCT, flow, settings=CHOICES).ranking[::4]:
+        more = np.full(2, one.setting)
+        rates = np.concatenate([RATES, more])
+        values = np.concatenate([stresses, before.best.model.stress(more)])
+        error = _log_pressure_error(rates, values, flow) * before.best.scatter / NOISE
+        # The fit weights by the measured, the forecast by the fitted stress: second order.
+        assert one.half_width == pytest.approx(1.959964 * error, rel=1e-3)
+
+
+def test_rival_models_are_told_apart_where_they_part() -> None:
+    """Two models that agree on the readings but not in the pipe: read where the pipe works."""
+    rng = np.random.default_rng(1)
+    rates = np.geomspace(20.0, 300.0, 9)
+    fits = fit(
+        rheo.FlowCurve(rates, _readings(rates, rng)), models=["herschel-bulkley", "power-law"]
+    )
+    flow = 2e-6
+    found = rheo.measure_next(fits, LINE, PRODUCT, flow, settings=np.geomspace(0.1, 300.0, 25))
+    assert found.best.setting < 5.0
+    assert found.best.half_width < found.half_width
+
+
+def test_more_readings_tell_more() -> None:
+    rng = np.random.default_rng(4)
+    fits = fit(rheo.FlowCurve(RATES, _readings(RATES, rng)))
+    widths = [
+        rheo.measure_next(fits, LINE, PRODUCT, 1e-3, count=count).best.half_width
+        for count in (1, 2, 5, 20)
+    ]
+    assert widths == sorted(widths, reverse=True)
+    assert widths[0] < rheo.measure_next(fits, LINE, PRODUCT, 1e-3).half_width
+
+
+def test_an_instrument_is_spoken_of_in_its_own_speeds() -> None:
+    rng = np.random.default_rng(4)
+    cup = rheo.geometry(
+        "concentric-cylinders", inner_radius=0.0125, outer_radius=0.01356, length=0.0375
+    )
+    fits = fit(rheo.FlowCurve(RATES, _readings(RATES, rng)), models="herschel-bulkley")
+    speeds = np.array([3.0, 6.0, 30.0, 60.0, 100.0, 200.0, 300.0]) * math.pi / 30.0
+    found = rheo.measure_next(fits, LINE, PRODUCT, 1e-4, geometry=cup, settings=speeds)
+    assert found.kind == "angular_speed"
+    assert len(found.ranking) == 7
+    rpm = found.best.setting * 30.0 / math.pi
+    assert f"near {rpm:.3g} rpm" in found.sentence
+    assert found.sentence.startswith("Two more readings near ")
+    rate, _ = cup.sheared(fits.best.model, found.best.setting)
+    assert found.best.rate == pytest.approx(float(rate), rel=1e-12)
+
+
+def test_speeds_are_found_from_the_readings_when_none_are_given() -> None:
+    rng = np.random.default_rng(4)
+    fits = fit(rheo.FlowCurve(RATES, _readings(RATES, rng)), models="power-law")
+    found = rheo.measure_next(fits, LINE, PRODUCT, 1e-3)
+    settings = sorted(one.setting for one in found.ranking)
+    assert settings[0] == pytest.approx(RATES[0])
+    assert settings[-1] == pytest.approx(RATES[-1])
+
+
+@pytest.mark.parametrize(
+    ("arguments", "sentence"),
+    [
+        ({"count": 0}, "count is 0; it must be a whole number above 0"),
+        ({"settings": [1.0, -1.0]}, "settings is -1; it must be above 0"),
+        ({"settings": []}, "settings is empty; give at least one speed"),
+    ],
+)
+def test_what_cannot_be_asked(arguments: dict[str, object], sentence: str) -> None:
+    fits = fit(rheo.FlowCurve(RATES, TRUTH.stress(RATES) * (1 + 0.01 * np.sin(RATES))))
+    with pytest.raises(rheo.InputError, match=sentence):
+        rheo.measure_next(fits, LINE, PRODUCT, 1e-3, **arguments)  # type: ignore[arg-type]
+
+
+def test_a_line_that_runs_by_itself_has_nothing_to_narrow() -> None:
+    fits = fit(rheo.FlowCurve(RATES, TRUTH.stress(RATES) * (1 + 0.01 * np.sin(RATES))))
+    falling = Line(discharge=(Pipe(10.0, 0.2, rise=-10.0),))
+    with pytest.raises(rheo.InputError, match="the line needs no pressure at this flow"):
+        rheo.measure_next(fits, falling, PRODUCT, 1e-4)
