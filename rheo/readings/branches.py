@@ -59,6 +59,8 @@ def branches_by_order(setting: ArrayLike, group: ArrayLike | None = None) -> NDA
     values = np.asarray(setting, dtype=float)
     groups = np.zeros(values.size, dtype=int) if group is None else np.asarray(group)
     result = np.full(values.size, "", dtype="<U4")
+    if values.size == 0:
+        return result
     # Groups are runs: the same label later on is another run.
     starts = np.flatnonzero(np.r_[True, groups[1:] != groups[:-1]]).tolist()
     for start, end in itertools.pairwise([*starts, values.size]):

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
+from functools import cached_property
 
 from rheo.readings.numerals import Cell, looks_numeric
 
@@ -37,12 +38,12 @@ class Row:
     text: str
     comment: bool = False
 
-    @property
+    @cached_property
     def blank(self) -> bool:
         """Whether nothing, or only a ruled line, stands in it."""
         return not any(self.filled)
 
-    @property
+    @cached_property
     def filled(self) -> tuple[bool, ...]:
         """Whether each cell holds something."""
         return tuple(not isinstance(cell, str) or bool(cell.strip()) for cell in self.cells)
@@ -51,7 +52,7 @@ class Row:
         """Return a cell, empty text beyond the end of the row."""
         return self.cells[index] if index < len(self.cells) else ""
 
-    @property
+    @cached_property
     def numbers(self) -> int:
         """How many cells are numbers, with either decimal mark."""
         return sum(looks_numeric(cell) for cell in self.cells)

@@ -33,7 +33,7 @@ _DATE = re.compile(r"([0-9]{4})-([0-9]{2})-([0-9]{2})[T ]")
 
 def plain(text: str) -> str:
     """Return the text with typographic signs and spaces replaced by plain ones."""
-    return text.translate(_MARKS).strip()
+    return text.strip() if text.isascii() else text.translate(_MARKS).strip()
 
 
 def looks_numeric(cell: Cell) -> bool:

@@ -11,8 +11,9 @@ from rheo.readings.sweeps import SAME_TEMPERATURE, curve_or_none
 
 FloatArray = NDArray[np.float64]
 
-# Mean distance of two curves, in the logarithm of the stress, that is more than scatter.
-APART = 0.05
+# Mean distance of two curves in the logarithm of the stress, and over its standard error, that is
+# more than scatter.
+APART, APART_OVER_ERROR = 0.03, 3.0
 _LEAST_POINTS = 2
 
 # Nominal curves of one fluid from these are one curve, whatever the fluid, as long as it sticks to
@@ -37,7 +38,7 @@ def curves_apart(readings: Readings) -> tuple[Caution, ...]:
     cautions: list[Caution] = []
     if width.min() < width.max():
         found = _distance(rate, stress, narrow, wide)
-        if found is not None and abs(found) > APART:
+        if found is not None:
             cautions.append(_width_caution(readings, found, narrow | wide))
     # Lengths are compared in one tube, the narrowest that comes in two.
     for size in np.unique(width):
@@ -46,7 +47,7 @@ def curves_apart(readings: Readings) -> tuple[Caution, ...]:
         if length[here].min() == length[here].max():
             continue
         found = _distance(rate, stress, short, long)
-        if found is not None and abs(found) > APART:
+        if found is not None:
             cautions.append(
                 Caution(
                     "entrance-loss",
@@ -79,7 +80,7 @@ def _width_caution(readings: Readings, found: float, mask: NDArray[np.bool_]) ->
 def _distance(
     rate: FloatArray, stress: FloatArray, first: NDArray[np.bool_], second: NDArray[np.bool_]
 ) -> float | None:
-    """Return the mean of ln(stress of first/stress of second) at equal rates, None without any."""
+    """Return the mean of ln(stress of first/stress of second) at equal rates, None if it is 0."""
     if first.sum() < _LEAST_POINTS or second.sum() < _LEAST_POINTS:
         return None
     x, y = np.log(rate), np.log(stress)
@@ -89,4 +90,7 @@ def _distance(
     if not inside.any():
         return None
     other = np.interp(x[first][inside], known_x, known_y)
-    return float(np.mean(y[first][inside] - other))
+    gap = y[first][inside] - other
+    mean = float(gap.mean())
+    error = float(gap.std()) / np.sqrt(gap.size)
+    return mean if abs(mean) > max(APART, APART_OVER_ERROR * error) else None

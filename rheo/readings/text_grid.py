@@ -12,7 +12,7 @@ from rheo.errors import ReadingsError
 from rheo.readings.grid import Grid, Row, is_comment, is_rule
 from rheo.readings.numerals import Cell, looks_numeric
 
-MOST_LINES = 200_000
+MOST_LINES = 100_000
 LONGEST_LINE = 20_000
 MOST_COLUMNS = 1_000
 _SAMPLE = 400
