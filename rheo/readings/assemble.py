@@ -15,7 +15,7 @@ from rheo.readings.blocks import Table
 from rheo.readings.branches import branches_by_order
 from rheo.readings.columns import Column
 from rheo.readings.grid import Grid
-from rheo.readings.numerals import DecimalMark, find_decimal_mark
+from rheo.readings.numerals import Cell, DecimalMark, find_decimal_mark
 from rheo.readings.quantities import BY_KEY, NUMBER_KEYS
 from rheo.readings.readings import ColumnRecord, RawBlock, Readings
 from rheo.readings.stated import (
@@ -132,10 +132,23 @@ def assembled(
 
 
 def _decimal_mark(grid: Grid, found: Sequence[FoundTable]) -> DecimalMark:
-    cells = [
-        pair for one in found for pair in number_cells(one.table, one.columns, one.needed, grid)
-    ]
-    return find_decimal_mark(cells, grid.place)
+    def cells(needed: bool) -> list[tuple[Cell, str]]:
+        return [
+            pair
+            for one in found
+            for pair in number_cells(
+                one.table,
+                [
+                    column
+                    for column in one.columns
+                    if (column.mapped or column.quantity.key in one.needed) == needed
+                    and not column.quantity.text
+                ],
+                grid,
+            )
+        ]
+
+    return find_decimal_mark(cells(True), grid.place, cells(False))
 
 
 def _joined(

@@ -115,7 +115,7 @@ def _may_be_headings(row: Row) -> bool:
 
 
 def _heading_rows(rows: Sequence[Row], choice: UserChoice) -> list[int]:
-    candidates = [index for index, row in enumerate(rows) if _is_headings(row, choice)]
+    candidates = [index for index in range(len(rows)) if _is_headings(rows, index, choice)]
     starts: list[int] = []
     for place, index in enumerate(candidates):
         following = candidates[place + 1] if place + 1 < len(candidates) else len(rows)
@@ -125,16 +125,21 @@ def _heading_rows(rows: Sequence[Row], choice: UserChoice) -> list[int]:
     return starts
 
 
-def _is_headings(row: Row, choice: UserChoice) -> bool:
-    if not _may_be_headings(row):
+def _is_headings(rows: Sequence[Row], index: int, choice: UserChoice) -> bool:
+    if not _may_be_headings(rows[index]):
         return False
-    texts = _texts(row)
+    texts = _texts(rows[index])
+    # Symbols mean something only with their units, which may stand in the row below.
+    below = next((row for row in rows[index + 1 : index + _REACH] if not row.blank), None)
+    units = () if below is None or below.numbers or below.comment else _texts(below)
+    pairs = itertools.zip_longest(texts, units[: len(texts)], fillvalue="")
     chosen = choice.chosen(texts, range(len(texts)))
     by_heading = {key for index, key in chosen.items() if isinstance(choice.columns[key], str)}
     wanted = sum(isinstance(value, str) for value in choice.columns.values())
     if by_heading and len(by_heading) == wanted:
         return True
-    meant = {m.quantity.key for m in (meaning(text) for text in texts if text) if m is not None}
+    found = (meaning(text, unit) or meaning(text) for text, unit in pairs if text)
+    meant = {one.quantity.key for one in found if one is not None}
     return len(meant | by_heading) >= 2
 
 

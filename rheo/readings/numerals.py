@@ -115,8 +115,10 @@ class DecimalMark:
     assumed: bool = False
 
 
-def find_decimal_mark(cells: Iterable[tuple[Cell, str]], place: str) -> DecimalMark:
-    """Find the decimal mark from all number cells of a file.
+def find_decimal_mark(
+    cells: Iterable[tuple[Cell, str]], place: str, others: Iterable[tuple[Cell, str]] = ()
+) -> DecimalMark:
+    """Find the decimal mark from the number cells of a file.
 
     Parameters
     ----------
@@ -124,6 +126,8 @@ def find_decimal_mark(cells: Iterable[tuple[Cell, str]], place: str) -> DecimalM
         Cells with the place of each.
     place : str
         The file, for the sentence of an error.
+    others : iterable of (cell, str)
+        Cells that are looked at if those do not tell.
 
     Raises
     ------
@@ -131,16 +135,10 @@ def find_decimal_mark(cells: Iterable[tuple[Cell, str]], place: str) -> DecimalM
         If both marks are used, or if commas could be either decimal marks or thousands
         separators.
     """
-    proof: dict[str, tuple[str, str]] = {}
-    unsure: dict[str, str] = {}
-    for cell, where in cells:
-        if not isinstance(cell, str):
-            continue
-        mark, sure = _mark_of(plain(cell))
-        if sure:
-            proof.setdefault(mark, (cell.strip(), where))
-        elif mark:
-            unsure.setdefault(mark, cell.strip())
+    proof, unsure = _evidence(cells)
+    if not proof:
+        more = _evidence(others)[0]
+        proof = more if len(more) == 1 else proof
     if len(proof) == 2:
         (point, first), (comma, second) = proof["."], proof[","]
         raise ReadingsError(
@@ -157,6 +155,23 @@ def find_decimal_mark(cells: Iterable[tuple[Cell, str]], place: str) -> DecimalM
             place,
         )
     return DecimalMark(".", assumed="." in unsure)
+
+
+def _evidence(
+    cells: Iterable[tuple[Cell, str]],
+) -> tuple[dict[str, tuple[str, str]], dict[str, str]]:
+    """Return the first number that proves each mark, and the first that could have it."""
+    proof: dict[str, tuple[str, str]] = {}
+    unsure: dict[str, str] = {}
+    for cell, where in cells:
+        if not isinstance(cell, str):
+            continue
+        mark, sure = _mark_of(plain(cell))
+        if sure:
+            proof.setdefault(mark, (cell.strip(), where))
+        elif mark:
+            unsure.setdefault(mark, cell.strip())
+    return proof, unsure
 
 
 def _mark_of(text: str) -> tuple[str, bool]:

@@ -47,13 +47,10 @@ class TableValues:
     cautions: tuple[Caution, ...] = field(default=())
 
 
-def number_cells(
-    table: Table, columns: Sequence[Column], needed: Sequence[str], grid: Grid
-) -> Iterator[tuple[Cell, str]]:
-    """Yield the cells that hold the needed numbers, each with its place."""
-    wanted = [c for c in columns if c.quantity.key in needed or (c.mapped and not c.quantity.text)]
+def number_cells(table: Table, columns: Sequence[Column], grid: Grid) -> Iterator[tuple[Cell, str]]:
+    """Yield the cells of columns that hold numbers, each with its place."""
     for row in table.rows:
-        for column in wanted:
+        for column in columns:
             yield _bare(row.cell(column.index), column), grid.at(row.line, column.heading)
 
 

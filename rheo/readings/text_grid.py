@@ -113,15 +113,33 @@ def _join_quoted(lines: Sequence[str]) -> list[tuple[int, str]]:
     index = 0
     while index < len(lines):
         text, taken = lines[index], 1
-        if text.count('"') % 2 and not is_comment(text):
+        if _left_open(text) and not is_comment(text):
             for more in range(2, 5):
                 longer = "\n".join(lines[index : index + more])
-                if index + more <= len(lines) and longer.count('"') % 2 == 0:
+                if index + more <= len(lines) and not _left_open(longer):
                     text, taken = longer, more
                     break
         joined.append((index + 1, text))
         index += taken
     return joined
+
+
+def _left_open(text: str) -> bool:
+    """Return whether a quote opens a cell and is not closed."""
+    parts = text.split('"')
+    inside = False
+    index = 0
+    while index < len(parts) - 1:
+        if not inside:
+            before = parts[index].rstrip(" ")
+            inside = before[-1:] in {*_SEPARATORS, "\n"} or (index == 0 and not before)
+            index += 1
+        elif parts[index + 1] == "" and index + 1 < len(parts) - 1:
+            index += 2
+        else:
+            inside = False
+            index += 1
+    return inside
 
 
 def _splitter(lines: Sequence[str]) -> tuple[Callable[[str], tuple[Cell, ...]], bool]:
