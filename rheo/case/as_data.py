@@ -2,12 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from dataclasses import fields, is_dataclass
 from typing import Any
 
 import numpy as np
 
 from rheo.errors import Caution
 from rheo.fitting import Fit, Fits
+from rheo.hydraulics import PipeFlow
 from rheo.line.result import plain
 from rheo.models import Model
 from rheo.readings import Readings
@@ -87,3 +90,40 @@ def fits_data(fits: Fits) -> dict[str, Any]:
         "skipped": dict(fits.skipped),
         "cautions": cautions_data(fits.cautions),
     }
+
+
+PIPE_NAMES = (
+    *("diameter", "velocity", "density", "roughness", "method", "criterion", "regime"),
+    *("wall_stress", "wall_rate", "nominal_rate", "local_flow_index", "local_consistency"),
+    *("reynolds", "critical_reynolds", "critical_velocity", "friction_factor"),
+    *("pressure_gradient", "velocity_ratio", "kinetic_energy_factor", "plug_fraction"),
+)
+
+
+def pipe_data(flow: PipeFlow) -> dict[str, Any]:
+    """Return the flow in one pipe."""
+    return {
+        **{name: plain(getattr(flow, name)) for name in PIPE_NAMES},
+        "cautions": cautions_data(flow.cautions),
+    }
+
+
+def data(value: Any) -> Any:
+    """Return a frozen result of the engine, fields and properties of fields, as plain data.
+
+    Parameters
+    ----------
+    value : dataclass, tuple, mapping, array, number or text
+        Nested as deep as it likes.
+    """
+    if isinstance(value, Caution):
+        return value.as_dict()
+    if isinstance(value, Model):
+        return model_data(value)
+    if is_dataclass(value) and not isinstance(value, type):
+        return {one.name: data(getattr(value, one.name)) for one in fields(value)}
+    if isinstance(value, Mapping):
+        return {str(key): data(one) for key, one in value.items()}
+    if isinstance(value, tuple | list):
+        return [data(one) for one in value]
+    return plain(value)
