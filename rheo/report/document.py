@@ -55,6 +55,9 @@ class Table:
         Above it.
     states : tuple of str
         One a row: empty, ``chosen``, ``muted`` or ``flagged``; none when there is no state.
+    widths : tuple of float
+        Share of the page for each column, 0 for no more than needed; when absent, text columns
+        share evenly what the numeric ones leave.
     """
 
     head: tuple[str, ...]
@@ -62,6 +65,7 @@ class Table:
     numeric: tuple[int, ...] = ()
     caption: str = ""
     states: tuple[str, ...] = ()
+    widths: tuple[float, ...] = ()
 
 
 @dataclass(frozen=True)
@@ -168,6 +172,8 @@ def _table(block: Table) -> dict[str, Any]:
         "numeric": list(block.numeric),
         "caption": clean(block.caption),
         "states": list(block.states) or [""] * len(block.rows),
+        "widths": list(block.widths)
+        or [0 if i in block.numeric else 1 for i in range(len(block.head))],
     }
 
 

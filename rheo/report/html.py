@@ -26,6 +26,7 @@ from rheo.report.document import (
     Table,
 )
 from rheo.report.palette import LIGHT
+from rheo.report.scripts import pieces
 from rheo.report.text import clean
 
 _DRAW = """
@@ -71,7 +72,8 @@ def note_as_html(note: Note) -> str:
         '<!DOCTYPE html>\n<html lang="en">\n<head>\n<meta charset="utf-8">\n',
         f'<meta http-equiv="Content-Security-Policy" content="{escape(policy)}">\n',
         '<meta name="viewport" content="width=device-width, initial-scale=1">\n',
-        f"<title>{title}</title>\n<style>:root {{{colours}}}\n{style}</style>\n</head>\n<body>\n",
+        f"<title>{escape(clean(note.title))}</title>\n",
+        f"<style>:root {{{colours}}}\n{style}</style>\n</head>\n<body>\n",
         '<main>\n<header class="top">\n<div class="kicker">Design note</div>\n',
         f'<h1 dir="auto">{title}</h1>\n',
     ]
@@ -99,8 +101,11 @@ def _hash_source(script: str) -> str:
     return f"'sha256-{base64.b64encode(digest).decode('ascii')}'"
 
 
+_TAGS = {"sub": ("<sub>", "</sub>"), "super": ("<sup>", "</sup>"), "": ("", "")}
+
+
 def _text(value: str) -> str:
-    return escape(clean(value))
+    return "".join(escape(part).join(_TAGS[script]) for part, script in pieces(clean(value)))
 
 
 def _paragraph(block: Paragraph) -> str:
@@ -155,11 +160,11 @@ def _figure(block: Figure) -> str:
     picture = block.picture
     key = escape(f"figure-{picture.key}")
     plot = picture.plotly().to_json()
-    caption = _text(block.caption or picture.description)
+    caption = clean(block.caption or picture.description)
     return (
-        f'<figure data-figure="{key}"><div class="plot" role="img" aria-label="{caption}" '
+        f'<figure data-figure="{key}"><div class="plot" role="img" aria-label="{escape(caption)}" '
         f'style="min-height:{picture.height:.0f}px"></div>\n'
-        f"<figcaption><b>{_text(picture.title)}.</b> {caption}</figcaption>\n"
+        f"<figcaption><b>{_text(picture.title)}.</b> {_text(caption)}</figcaption>\n"
         f'<script type="application/json" id="{key}">{_for_script(plot)}</script></figure>\n'
     )
 

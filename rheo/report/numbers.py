@@ -12,6 +12,8 @@ _SUPERSCRIPTS = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 # Below and from these sizes a number is written with a power of ten.
 _PLAIN_FROM = 1e-3
 _PLAIN_TO = 1e7
+# Nothing in this trade is known better; a smaller doubt is not that of the whole calculation.
+MOST_DIGITS = 4
 # An interval whose sides differ by less than this share of the wider one is written with ±.
 _EVEN_ENOUGH = 0.25
 
@@ -94,6 +96,11 @@ def doubt_place(doubt: float) -> int:
     return place - 1 if two.scaleb(-two.adjusted()) < 2 else place
 
 
+def _capped(place: int, value: float) -> int:
+    """Return a place that shows no more than `MOST_DIGITS` digits of a value."""
+    return max(place, _exponent(value) - MOST_DIGITS + 1) if value else place
+
+
 def with_doubt(value: float, doubt: float, unit: str = "") -> str:
     """Write a number with its doubt, both to the digits that the doubt allows.
 
@@ -117,7 +124,9 @@ def with_doubt(value: float, doubt: float, unit: str = "") -> str:
         return NOT_KNOWN
     if not math.isfinite(doubt) or doubt <= 0:
         return number(value) + after
-    place = doubt_place(doubt)
+    place = _capped(doubt_place(doubt), value)
+    if _rounded(doubt, place) == 0:
+        return number(value, MOST_DIGITS) + after
     size = max(abs(value), doubt)
     power = 0 if _PLAIN_FROM <= size < _PLAIN_TO else _exponent(size)
     middle = _plain(_rounded(value, place).scaleb(-power), place - power)
@@ -151,6 +160,8 @@ def with_interval(value: float, low: float, high: float, unit: str = "") -> str:
     after = f" {unit}" if unit else ""
     if not _PLAIN_FROM <= max(abs(value), half) < _PLAIN_TO:
         return f"{number(value)}{after} ({number(low)} to {number(high)}{after})"
-    place = doubt_place(half)
+    place = _capped(doubt_place(half), value)
+    if _rounded(low, place) == _rounded(high, place):
+        return number(value, MOST_DIGITS) + after
     texts = [_plain(_rounded(end, place), place) for end in (value, low, high)]
     return f"{texts[0]}{after} ({texts[1]} to {texts[2]}{after})"

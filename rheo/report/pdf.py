@@ -9,11 +9,14 @@ from typing import Any
 
 from rheo.report.document import Note, content_hash
 from rheo.report.palette import LIGHT
+from rheo.report.scripts import pieces
 from rheo.report.text import breakable, for_pdf, one_line
 
 # Nothing in a note is longer than this on paper; the rest is counted.
 LONGEST_TEXT = 12_000
-_AS_THEY_ARE = frozenset({"svg", "type", "kind", "key", "states", "numeric", "version", "hash"})
+_AS_THEY_ARE = frozenset(
+    {"svg", "type", "kind", "key", "states", "numeric", "widths", "version", "hash"}
+)
 
 
 def note_as_pdf(note: Note) -> bytes:
@@ -69,4 +72,5 @@ def _printable(value: Any, key: str = "") -> Any:
     if len(text) > LONGEST_TEXT:
         left = len(text) - LONGEST_TEXT
         text = f"{text[:LONGEST_TEXT]}… ({left} characters more in the case file)"
-    return breakable(for_pdf(text))
+    parts = pieces(breakable(for_pdf(text)))
+    return parts[0][0] if len(parts) == 1 else {"pieces": parts}

@@ -71,7 +71,7 @@ def every_picture(name: str = "plain name") -> dict[str, Picture]:
                 figures.DrawnPart("pipe", name, (0.0, 2.0), (4.0, 0.0), name, 0.08),
                 figures.DrawnPart("pump", name, (4.0, 0.0), (4.0, 0.0)),
             ],
-            [(4.0, 0.0, 3e5)],
+            [(4.0, 0.0, 3e5, True)],
         ),
     ]  # fmt: skip
     return {picture.key: picture for picture in pictures}

@@ -5,7 +5,7 @@ A picture is drawn by ``picture.plotly(dark=False)`` and by ``picture.svg()``.
 
 from rheo.report.figures.doubt import doubt_budget
 from rheo.report.figures.flow_curve import Curve, flow_curve
-from rheo.report.figures.line_drawing import DrawnPart, line_drawing
+from rheo.report.figures.line_drawing import SYMBOLS, DrawnPart, line_drawing
 from rheo.report.figures.pressure_line import pressure_line
 from rheo.report.figures.residuals import residuals
 from rheo.report.figures.shear_rates import PLANT_DUTIES, shear_rates
@@ -15,6 +15,7 @@ from rheo.report.figures.velocity_profile import shear_layer, velocity_profile
 
 __all__ = [
     "PLANT_DUTIES",
+    "SYMBOLS",
     "Curve",
     "DrawnPart",
     "PumpCurve",

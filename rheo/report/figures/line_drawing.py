@@ -48,7 +48,7 @@ class DrawnPart:
 
 def line_drawing(
     parts: Sequence[DrawnPart],
-    pressures: Sequence[tuple[float, float, float]] = (),
+    pressures: Sequence[tuple[float, float, float, bool]] = (),
     *,
     system: str = "metric",
 ) -> Picture:
@@ -58,8 +58,9 @@ def line_drawing(
     ----------
     parts : sequence of DrawnPart
         In order along the line.
-    pressures : sequence of (float, float, float)
-        Distance [m], elevation [m] and gauge pressure [Pa] of points to be labelled.
+    pressures : sequence of (float, float, float, bool)
+        Distance [m], elevation [m] and gauge pressure [Pa] of points to be labelled, and whether
+        the label stands above the point.
     system : str
         Unit system.
 
@@ -92,9 +93,13 @@ def line_drawing(
                     size=size,
                 )
             )  # fmt: skip
-    for distance, elevation, pressure in pressures:
+    farthest = max((part.end[0] for part in parts), default=0.0)
+    for distance, elevation, pressure, above in pressures:
         x, y = (float(v) for v in shown(array([distance, elevation]), "length", system))
-        marks.append(Label(x, y, text(pressure, "pressure", system), shift=13.0))
+        share = distance / farthest if farthest > 0 else 0.5
+        anchor = "start" if share < 0.05 else "end" if share > 0.95 else "middle"
+        words = text(pressure, "pressure", system)
+        marks.append(Label(x, y, words, anchor, shift=13.0 if above else -13.0))
     heights = [end[1] for part in parts for end in (part.start, part.end)] or [0.0]
     low, high = (
         float(shown(min(heights), "length", system)),

@@ -11,6 +11,9 @@ from rheo.report.display import shown, unit_label
 from rheo.report.numbers import number
 from rheo.report.picture import Axis, Band, Limit, Line, Mark, Panel, Picture, Points, array
 
+# A limit further off than this many times the largest pressure is told in words, not drawn.
+FAR = 2.5
+
 
 def pressure_line(
     distance: ArrayLike,
@@ -64,8 +67,14 @@ def pressure_line(
         )
         on_line = _before_step(distance, gauge, at)
         marks.append(Points(at, on_line, "fittings and equipment", style=1, hover=hover, size=8.0))
+    far: list[str] = []
+    largest = float(np.max(np.abs(gauge)))
     for name, value in limits:
-        marks.append(Limit(float(shown(value, "pressure", system)), name))
+        at_limit = float(shown(value, "pressure", system))
+        if abs(at_limit) > FAR * largest:
+            far.append(f"{name} of {number(at_limit)} {unit} lies beyond the axis")
+        else:
+            marks.append(Limit(at_limit, name))
     panels = [Panel(Axis("Gauge pressure", unit), tuple(marks), share=2.2)]
     if elevation is not None:
         height = shown(array(elevation), "length", system)
@@ -78,6 +87,7 @@ def pressure_line(
         description=(
             "Gauge pressure and elevation against the distance along the line. Fittings, equipment "
             "and the pump are steps; dashed lines are limits."
+            + "".join(f" The {words}." for words in far)
         ),
         x=Axis("Distance along the line", unit_label("length", system)),
         panels=tuple(panels),

@@ -19,6 +19,7 @@ def residuals(
     flagged: ArrayLike | None = None,
     usual: float | None = None,
     name: str = "",
+    index: ArrayLike | None = None,
     system: str = "metric",
 ) -> Picture:
     """Draw how far each reading lies from the model, in percent of the model.
@@ -35,6 +36,8 @@ def residuals(
         Root mean square of the relative residuals [-], shaded either side of 0.
     name : str
         Name of the model.
+    index : array_like of int, shape (n,), optional
+        Numbers of the readings, counted from 0; their order when absent.
     system : str
         Unit system.
 
@@ -44,6 +47,7 @@ def residuals(
         With one panel.
     """
     rate, measured, fitted = array(rate), array(measured), array(fitted)
+    numbers = np.arange(rate.size) if index is None else np.asarray(index)
     percent = 100.0 * (measured / fitted - 1.0)
     out = np.zeros(rate.size, dtype=bool) if excluded is None else np.asarray(excluded, dtype=bool)
     ringed = np.zeros(rate.size, dtype=bool) if flagged is None else np.asarray(flagged, dtype=bool)
@@ -53,11 +57,11 @@ def residuals(
     for hollow, words in ((False, "readings"), (True, "left out")):
         these = np.flatnonzero(out == hollow)
         if these.size:
-            hover = tuple(f"reading {i + 1}\n{percent[i]:+.2g} %" for i in these)
+            hover = tuple(f"reading {numbers[i] + 1}\n{percent[i]:+.2g} %" for i in these)
             marks.append(
                 Points(
                     rate[these], percent[these], words, hollow=hollow, ringed=ringed[these],
-                    hover=hover, index=tuple(int(i) for i in these),
+                    hover=hover, index=tuple(int(numbers[i]) for i in these),
                 )
             )  # fmt: skip
     largest = float(np.nanmax(np.abs(percent), initial=1.0)) * 1.2

@@ -94,7 +94,8 @@ def sizes(
         high = _cut(values, failed, limits) if number == 0 else None
         panels.append(Panel(Axis(quantity, unit, low=0.0, high=high), (*bars, *limits)))
     every = max(1, -(-count // 14))
-    ticks = tuple((float(i), one_line(names[i], 24)) for i in range(0, count, every))
+    prefix = _common_words(names)
+    ticks = tuple((float(i), one_line(names[i][len(prefix) :], 24)) for i in range(0, count, every))
     return Picture(
         key="sizes",
         title="Sizes",
@@ -102,10 +103,27 @@ def sizes(
             "Pressure drop, velocity and yearly cost of each candidate size. Hatched grey sizes "
             "fail a limit; the table gives the reason."
         ),
-        x=Axis("Size", "", low=-0.6, high=count - 0.4, ticks=ticks),
+        x=Axis(
+            f"Size, {one_line(prefix, 40)}" if prefix else "Size",
+            "",
+            low=-0.6,
+            high=count - 0.4,
+            ticks=ticks,
+        ),
         panels=tuple(panels),
         height=150.0 * len(panels) + 60.0,
     )
+
+
+def _common_words(names: Sequence[str]) -> str:
+    """Return the words, with the space after them, that all names begin with."""
+    if len(names) < 2:
+        return ""
+    words = [name.split(" ") for name in names]
+    count = 0
+    while all(len(one) > count + 1 for one in words) and len({one[count] for one in words}) == 1:
+        count += 1
+    return "".join(f"{word} " for word in words[0][:count])
 
 
 def _cut(values: np.ndarray, failed: np.ndarray, limits: Sequence[Mark]) -> float | None:

@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.report.display import shown, text, unit_label
+from rheo.report.figures.pressure_line import FAR
 from rheo.report.picture import (
     Axis,
     Band,
@@ -109,14 +110,21 @@ def system_curve(
                 Points(array(x), array(y), name, style=style, marker=marker, hover=hover, size=12.0)
             )
             marks.append(Label(x, y, where, "end" if x > 0.6 * across.max() else "start", up_by))
+    far = ""
     if rating is not None:
-        marks.append(Limit(float(shown(rating, "pressure", system)), "pressure rating"))
+        at_rating = float(shown(rating, "pressure", system))
+        if at_rating > FAR * float(np.max(up)):
+            far = (
+                f" The pressure rating of {text(rating, 'pressure', system)} lies beyond the axis."
+            )
+        else:
+            marks.append(Limit(at_rating, "pressure rating"))
     return Picture(
         key="system-curve",
         title="System curve",
         description=(
             "Pressure that the line needs against flow, with its interval. The line is solid where "
-            "the flow is laminar, dotted in transition and dashed where it is turbulent."
+            f"the flow is laminar, dotted in transition and dashed where it is turbulent.{far}"
         ),
         x=Axis("Flow", unit_label("flow", system), low=0.0),
         panels=(Panel(Axis("Pressure", unit_label("pressure", system)), tuple(marks)),),

@@ -17,7 +17,9 @@ if TYPE_CHECKING:
 
 # A cell holds no more characters than this (ECMA-376 viewers agree on it).
 LONGEST_CELL = 32_767
-_GENERAL = "0.00000E+00"
+_HEAD_HEIGHT = 48
+# Significant digits that a cell shows; it holds all of them.
+_SHOWN = 5
 _FORMATS: dict[str, dict[str, Any]] = {
     "title": {"bold": True, "font_size": 15, "font_color": LIGHT.accent},
     "head": {
@@ -27,13 +29,13 @@ _FORMATS: dict[str, dict[str, Any]] = {
     "wrapped": {"text_wrap": True, "valign": "top"},
     "muted": {"font_color": LIGHT.muted, "valign": "top"},
     "input": {
-        "num_format": "General", "bg_color": "#fff8dc", "border": 1, "border_color": LIGHT.rule,
+        "bg_color": "#fff8dc", "border": 1, "border_color": LIGHT.rule,
     },
-    "number": {"num_format": "General", "valign": "top"},
-    "scientific": {"num_format": _GENERAL, "valign": "top"},
-    "formula": {"num_format": "General", "valign": "top", "font_color": LIGHT.accent},
+    "number": {"valign": "top"},
+    "formula": {"valign": "top", "font_color": LIGHT.accent},
+    "difference": {"num_format": "0.0E+00", "valign": "top", "font_color": LIGHT.accent},
     "percent": {"num_format": "0.00%", "valign": "top"},
-    "result": {"num_format": "General", "bold": True, "font_color": LIGHT.accent, "top": 1},
+    "result": {"bold": True, "font_color": LIGHT.accent, "top": 1},
 }  # fmt: skip
 
 
@@ -65,11 +67,16 @@ class Book:
             {"title": clean(title)[:200], "author": "", "comments": "", "created": made}
         )
         self.file.set_calc_mode("auto")
-        self._formats = {name: self.file.add_format(how) for name, how in _FORMATS.items()}
+        self._formats: dict[tuple[str, str], Any] = {}
 
-    def format(self, name: str) -> Any:
-        """Return a cell format by name."""
-        return self._formats[name]
+    def format(self, name: str, value: float | None = None) -> Any:
+        """Return a cell format by name, with the digits that suit a value."""
+        how = _FORMATS[name]
+        digits = how.get("num_format") or ("General" if value is None else digits_of(value))
+        if (name, digits) not in self._formats:
+            made = self.file.add_format({**how, "num_format": digits})
+            self._formats[name, digits] = made
+        return self._formats[name, digits]
 
     def sheet(self, name: str, title: str, remark: str = "") -> Sheet:
         """Add a sheet with a title and a remark in its first two rows."""
@@ -120,12 +127,13 @@ class Sheet:
         """Write a row of column headings."""
         for number, heading in enumerate(headings):
             self.text(row, column + number, heading, "head")
+        self.sheet.set_row(row, _HEAD_HEIGHT)
 
     def number(self, row: int, column: int, value: Any, how: str = "number") -> Term:
         """Write a number; one that is not known leaves the cell empty."""
         known = float(value) if value is not None else math.nan
         if math.isfinite(known):
-            self.sheet.write_number(row, column, known, self.book.format(how))
+            self.sheet.write_number(row, column, known, self.book.format(how, known))
         else:
             self.sheet.write_blank(row, column, None, self.book.format(how))
         return Term(address(row, column), known)
@@ -133,12 +141,24 @@ class Sheet:
     def formula(self, row: int, column: int, term: Term, how: str = "formula") -> Term:
         """Write a live formula with its result stored, and return the cell."""
         stored = term.value if math.isfinite(term.value) else "#NUM!"
-        self.sheet.write_formula(row, column, f"={term.text}", self.book.format(how), stored)
+        shown = self.book.format(how, term.value)
+        self.sheet.write_formula(row, column, f"={term.text}", shown, stored)
         return Term(address(row, column), term.value)
 
     def there(self, term: Term) -> Term:
         """Return a cell of this sheet as another sheet refers to it."""
         return Term(f"'{self.name}'!{term.text}", term.value)
+
+
+def digits_of(value: float) -> str:
+    """Return the number format that shows a value with five significant digits."""
+    if not math.isfinite(value) or (value == round(value, 0) and abs(value) < 1e7):
+        return "General"
+    power = math.floor(math.log10(abs(value)))
+    if not -4 <= power < 7:
+        return f"0.{'0' * (_SHOWN - 1)}E+00"
+    decimals = max(0, _SHOWN - 1 - power)
+    return f"0.{'0' * decimals}" if decimals else "0"
 
 
 def address(row: int, column: int) -> str:

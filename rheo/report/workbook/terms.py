@@ -110,6 +110,18 @@ def ln(term: Term) -> Term:
     return _function("LN", math.log(term.value) if term.value > 0 else math.nan, term)
 
 
+def not_negative(term: Term) -> Term:
+    """Return a value, or 0 where it is negative."""
+    return _function("MAX", max(term.value, 0.0), term, as_term(0.0))
+
+
+def root_mean_square(cells: Sequence[Term]) -> Term:
+    """Return the root mean square of cells that lie one below the other."""
+    value = math.sqrt(math.fsum(cell.value**2 for cell in cells) / len(cells))
+    place = f"{cells[0].text}:{cells[-1].text}"
+    return Term(f"SQRT(SUMSQ({place})/COUNT({place}))", value)
+
+
 def total(cells: Sequence[Term]) -> Term:
     """Return the sum of cells that lie one below the other: ``SUM(first:last)``."""
     if not cells:

@@ -1,0 +1,132 @@
+"""The choice of model: the ranking, the reason, the parameters, the residuals."""
+
+from __future__ import annotations
+
+import math
+
+import numpy as np
+
+from rheo.fitting import Fit, Fits
+from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Table
+from rheo.report.figures import residuals
+from rheo.report.numbers import number, with_doubt
+from rheo.report.picture import Picture
+from rheo.report.scripts import unit_words
+
+
+def percent(share: float, digits: int = 2) -> str:
+    """Return a share as a percentage."""
+    return f"{number(100 * share, digits)} %" if math.isfinite(share) else "not known"
+
+
+def title(name: str) -> str:
+    """Return a name with a capital letter at its beginning."""
+    return name[:1].upper() + name[1:]
+
+
+def ranking_table(fits: Fits, chosen: Fit) -> Table:
+    """Return the fitted models in order, the chosen one marked."""
+    rows = tuple(
+        (
+            title(fit.record.name),
+            str(fit.parameter_count),
+            number(fit.aicc, 4),
+            percent(fit.weight),
+            percent(fit.rms_relative_error),
+            percent(fit.worst_relative_error),
+            number(fit.runs[1], 2),
+        )
+        for fit in fits
+    )
+    return Table(
+        (
+            "Model",
+            "Parameters",
+            "AICc [-]",
+            "Akaike weight",
+            "RMS error",
+            "Worst error",
+            "Chance of so few runs [-]",
+        ),
+        rows,
+        numeric=(1, 2, 3, 4, 5, 6),
+        caption="Models fitted to the same readings with the same weights",
+        states=tuple("chosen" if fit.key == chosen.key else "" for fit in fits),
+    )
+
+
+def parameter_table(fit: Fit) -> Table:
+    """Return the parameters of a fit with their intervals."""
+    words = {one.key: one.description for one in fit.record.parameters}
+    rows = tuple(
+        (
+            words.get(one.key, one.key.replace("_", " ")),
+            one.symbol,
+            unit_words(one.unit),
+            with_doubt(one.value, one.stderr) if one.stderr > 0 else number(one.value, 4),
+            number(one.low),
+            number(one.high),
+            one.note or (f"at its {one.bound} bound" if one.bound else ""),
+        )
+        for one in fit.parameters.values()
+    )
+    return Table(
+        ("Parameter", "Symbol", "Unit", "Value ± standard error", "95 % from", "to", "Remark"),
+        rows,
+        numeric=(3, 4, 5),
+        caption=f"{title(fit.record.name)}: {fit.record.equation}",
+    )
+
+
+def residual_picture(fit: Fit, system: str = "metric") -> Picture:
+    """Draw the residuals of a fit; the numbers of the readings are those of the user."""
+    return residuals(
+        fit.rates,
+        fit.observed,
+        fit.predicted,
+        usual=fit.rms_relative_error,
+        name=fit.record.name,
+        system=system,
+        index=fit.points,
+    )
+
+
+def fit_blocks(fits: Fits, chosen: Fit, system: str) -> list[Block]:
+    """Return the blocks that explain one fit.
+
+    Parameters
+    ----------
+    fits : Fits
+        All models.
+    chosen : Fit
+        The one in use, which the user may have chosen against the ranking.
+    system : str
+        Unit system.
+
+    Returns
+    -------
+    list of Block
+        Reason, ranking, parameters, residuals, Cautions.
+    """
+    reason = fits.reason
+    if chosen.key != fits.best.key:
+        reason = (
+            f"{title(chosen.record.name)} was chosen by the user. "
+            f"By the ranking it would be another: {fits.reason}"
+        )
+    facts = (
+        ("Readings fitted", str(int(np.size(chosen.observed)))),
+        ("Weighting", fits.weighting.name),
+        ("Where the model may be used", chosen.record.validity),
+        ("Source", chosen.record.source),
+    )
+    blocks: list[Block] = [
+        Paragraph(reason, "lead"),
+        ranking_table(fits, chosen),
+        parameter_table(chosen),
+        Facts(facts),
+        Figure(residual_picture(chosen, system)),
+    ]
+    if chosen.cautions:
+        blocks.append(Cautions(chosen.cautions))
+    return blocks
