@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -10,6 +11,7 @@ from numpy.typing import NDArray
 
 FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
+IntArray = NDArray[np.intp]
 
 # Stands for 0 in a root coordinate, where the slope of the root itself would be infinite.
 _SMALLEST = 1e-60
@@ -21,11 +23,11 @@ class Coordinates:
 
     Parameters
     ----------
-    lower, upper : array, shape (p,)
-        Bounds of the parameters.
-    logarithmic : array of bool, shape (p,)
+    lower, upper : array, shape (p,) or (b, p)
+        Bounds of the parameters; rows where searches differ.
+    logarithmic : array of bool, same shape
         Searched as ln(parameter): values that span decades.
-    root : array of bool, shape (p,)
+    root : array of bool, same shape
         Searched as the square root: parameters whose influence is singular at 0.
     """
 
@@ -38,13 +40,42 @@ class Coordinates:
     def plain(cls, lower: FloatArray, upper: FloatArray) -> Coordinates:
         """Return coordinates equal to the parameters."""
         none = np.zeros(len(lower), dtype=bool)
-        return cls(np.asarray(lower, float), np.asarray(upper, float), none, none)
+        return cls(lower, upper, none, none)
 
     @classmethod
     def for_bounds(cls, lower: FloatArray, upper: FloatArray, root: BoolArray) -> Coordinates:
         """Return logarithms for what is above 0, roots where asked, else the parameters."""
-        lower = np.asarray(lower, float)
-        return cls(lower, np.asarray(upper, float), (lower > 0) & ~root, root)
+        return cls(lower, upper, (lower > 0) & ~root, root)
+
+    @classmethod
+    def stacked(cls, parts: Sequence[Coordinates], counts: Sequence[int]) -> Coordinates:
+        """Return coordinates with a row for each search, of several kinds one after another.
+
+        Parameters
+        ----------
+        parts : sequence of Coordinates
+            Each with bounds of shape (p,); shorter ones are filled up with parameters that
+            cannot move.
+        counts : sequence of int
+            Number of rows of each.
+        """
+        width = max(part.lower.size for part in parts)
+
+        def rows(name: str, filler: float) -> NDArray[np.generic]:
+            kind = bool if name in {"logarithmic", "root"} else float
+            whole = np.full((len(parts), width), filler, dtype=kind)
+            for row, part in zip(whole, parts, strict=True):
+                row[: part.lower.size] = getattr(part, name)
+            return np.repeat(whole, counts, axis=0)
+
+        return cls(rows("lower", 0.0), rows("upper", 0.0), rows("logarithmic", 0), rows("root", 0))
+
+    def at(self, rows: IntArray) -> Coordinates:
+        """Return the coordinates of some of the searches."""
+        if self.lower.ndim == 1:
+            return self
+        parts = (self.lower, self.upper, self.logarithmic, self.root)
+        return Coordinates(*(part[rows] for part in parts))
 
     @cached_property
     def inner_bounds(self) -> tuple[FloatArray, FloatArray]:

@@ -1,4 +1,4 @@
-"""Bounded least squares by Levenberg and Marquardt's method, many starts or data sets at once.
+"""Bounded least squares by Levenberg and Marquardt's method, many searches at once.
 
 K. Levenberg, Q. Appl. Math. 2 (1944) 164; D. W. Marquardt, J. SIAM 11 (1963) 431; damping after
 H. B. Nielsen, IMM report 1999-05, Technical University of Denmark. Bounds by an active set: a
@@ -48,11 +48,27 @@ class Minimum:
     steps: int
 
 
+@dataclass(eq=False)
+class _Searches:
+    """The searches that still go on: position, sum of squares, its slopes, damping."""
+
+    rows: IntArray
+    inner: FloatArray
+    total: FloatArray
+    gradient: FloatArray
+    curvature: FloatArray
+    strength: FloatArray
+    growth: FloatArray
+
+    def keep(self, going: NDArray[np.bool_]) -> None:
+        for name, value in vars(self).items():
+            setattr(self, name, value[going])
+
+
 def minimise(
     evaluate: Evaluate,
     start: FloatArray,
     coordinates: Coordinates,
-    allowed: Callable[[FloatArray], NDArray[np.bool_]] | None = None,
     steps: int = 300,
     damping: float = 1e-3,
     tolerance: float = _NOTHING_LEFT,
@@ -63,13 +79,12 @@ def minimise(
     ----------
     evaluate : callable
         ``evaluate(parameters, rows) -> (residuals, sensitivities)`` of shapes (b, n) and
-        (b, p, n) for parameters of shape (b, p); `rows` says which searches they belong to.
+        (b, p, n) for parameters of shape (b, p); `rows`, in rising order, says which searches they
+        belong to. A residual that is infinite or NaN marks a place that may not be visited.
     start : array, shape (b, p)
         Starting parameters; those outside the bounds are moved to them.
     coordinates : Coordinates
         Bounds, and the scales in which to search.
-    allowed : callable, optional
-        Says for parameters of shape (b, p) which rows may be visited.
     steps : int
         Largest number of steps.
     damping : float
@@ -81,101 +96,97 @@ def minimise(
     -------
     Minimum
     """
-    low, high = coordinates.inner_bounds
-    inner = coordinates.inner(np.atleast_2d(start))
-    active = np.arange(inner.shape[0])
     taken = 0
     with np.errstate(all="ignore"):
-        total, gradient, curvature = _normal(evaluate, coordinates, allowed, inner, active)
-        best, left = inner.copy(), total.copy()
-        strength = np.full(active.size, damping)
-        growth = np.full(active.size, 2.0)
-        for taken in range(1, steps + 1):
-            step = _step(inner, gradient, curvature, strength, low, high)
-            trial = np.minimum(np.maximum(inner + step, low), high)
-            moved = trial - inner
-            bent = (curvature @ moved[..., np.newaxis])[..., 0]
-            promised = -np.sum(moved * (2.0 * gradient + bent), axis=-1)
-            new = _normal(evaluate, coordinates, allowed, trial, active)
-            fall = total - new[0]
-            better = fall > 0
-            gain = np.where(better, fall / promised, 0.0)
-            settled = (promised >= 0.0) & (promised <= tolerance * total)
-            settled &= (strength <= _WEAK) | ~better
-            strength = np.where(
-                better,
-                strength * np.clip(1.0 - (2.0 * gain - 1.0) ** 3, 0.05, 2.0),
-                strength * growth,
-            )
-            strength = np.maximum(strength, _LEAST_DAMPING)
-            growth = np.where(better, 2.0, growth * 2.0)
-            inner = np.where(better[:, np.newaxis], trial, inner)
-            gradient = np.where(better[:, np.newaxis], new[1], gradient)
-            curvature = np.where(better[:, np.newaxis, np.newaxis], new[2], curvature)
-            total = np.where(better, new[0], total)
-            going = ~(settled | (strength > _GIVEN_UP) | (total == 0.0)) & np.isfinite(total)
+        inner = coordinates.inner(np.atleast_2d(start))
+        rows = np.arange(inner.shape[0])
+        here = coordinates
+        state = _Searches(
+            rows,
+            inner,
+            *_normal(evaluate, here, inner, rows),
+            np.full(rows.size, damping),
+            np.full(rows.size, 2.0),
+        )
+        best, left = inner.copy(), state.total.copy()
+        while state.rows.size and taken < steps:
+            taken += 1
+            going = _advance(state, evaluate, here, tolerance)
             if not going.all():
-                best[active], left[active] = inner, total
-                active, inner, total = active[going], inner[going], total[going]
-                gradient, curvature = gradient[going], curvature[going]
-                strength, growth = strength[going], growth[going]
-                if active.size == 0:
-                    break
-        best[active], left[active] = inner, total
+                best[state.rows], left[state.rows] = state.inner, state.total
+                state.keep(going)
+                here = coordinates.at(state.rows)
+        best[state.rows], left[state.rows] = state.inner, state.total
         converged = np.ones(left.shape, dtype=bool)
-        converged[active] = False
+        converged[state.rows] = False
         found = coordinates.settled(coordinates.outer(best))
     return Minimum(found, left, converged, taken)
 
 
+def _advance(
+    state: _Searches, evaluate: Evaluate, here: Coordinates, tolerance: float
+) -> NDArray[np.bool_]:
+    """Take one step in place; return which searches go on."""
+    low, high = here.inner_bounds
+    step = _step(state, low, high)
+    trial = np.minimum(np.maximum(state.inner + step, low), high)
+    moved = trial - state.inner
+    bent = (state.curvature @ moved[..., np.newaxis])[..., 0]
+    promised = -np.sum(moved * (2.0 * state.gradient + bent), axis=-1)
+    total, gradient, curvature = _normal(evaluate, here, trial, state.rows)
+    fall = state.total - total
+    better = fall > 0
+    gain = np.where(better, fall / promised, 0.0)
+    settled = (promised >= 0.0) & (promised <= tolerance * state.total)
+    settled &= (state.strength <= _WEAK) | ~better
+    weaker = np.clip(1.0 - (2.0 * gain - 1.0) ** 3, 0.05, 2.0)
+    strength = state.strength * np.where(better, weaker, state.growth)
+    state.strength = np.maximum(strength, _LEAST_DAMPING)
+    state.growth = np.where(better, 2.0, state.growth * 2.0)
+    state.inner = np.where(better[:, np.newaxis], trial, state.inner)
+    state.gradient = np.where(better[:, np.newaxis], gradient, state.gradient)
+    state.curvature = np.where(better[:, np.newaxis, np.newaxis], curvature, state.curvature)
+    state.total = np.where(better, total, state.total)
+    ended = settled | (state.strength > _GIVEN_UP) | (state.total == 0.0)
+    return ~ended & np.isfinite(state.total)
+
+
 def _normal(
-    evaluate: Evaluate,
-    coordinates: Coordinates,
-    allowed: Callable[[FloatArray], NDArray[np.bool_]] | None,
-    inner: FloatArray,
-    rows: IntArray,
+    evaluate: Evaluate, coordinates: Coordinates, inner: FloatArray, rows: IntArray
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
     """Return sum of squares (b,), half its gradient (b, p) and Gauss-Newton matrix (b, p, p)."""
     outer = coordinates.outer(inner)
     residual, sensitivity = evaluate(outer, rows)
     scaled = sensitivity * coordinates.slope(inner, outer)[..., np.newaxis]
     total = np.einsum("bn,bn->b", residual, residual)
-    if allowed is not None:
-        total = np.where(allowed(outer), total, np.inf)
     total = np.where(np.isnan(total), np.inf, total)
     gradient = (scaled @ residual[..., np.newaxis])[..., 0]
     return total, gradient, scaled @ scaled.swapaxes(-1, -2)
 
 
-def _step(
-    inner: FloatArray,
-    gradient: FloatArray,
-    curvature: FloatArray,
-    strength: FloatArray,
-    low: FloatArray,
-    high: FloatArray,
-) -> FloatArray:
+def _step(state: _Searches, low: FloatArray, high: FloatArray) -> FloatArray:
     """Return the damped Gauss-Newton step that stays inside the bounds.
 
     Parameters that are at a bound and pushed outwards are held. One that a step would take beyond
     a bound goes to it, and the others take the step that suits this.
     """
+    inner, gradient, curvature = state.inner, state.gradient, state.curvature
     size = np.einsum("bii->bi", curvature)
-    held = ((inner <= low) & (gradient > 0)) | ((inner >= high) & (gradient < 0))
-    held |= ~(size > 0) | ~np.isfinite(size)
+    held = ((inner <= low) & (gradient >= 0)) | ((inner >= high) & (gradient <= 0))
+    held |= ~((size > 0) & np.isfinite(size))
     scale = 1.0 / np.sqrt(np.where(held, 1.0, size))
+    scaled = curvature * (scale[:, :, np.newaxis] * scale[:, np.newaxis, :])
     moved = np.zeros_like(inner)
+    inside = moved
     for _ in range(inner.shape[-1]):
-        matrix = curvature * (scale[:, :, np.newaxis] * scale[:, np.newaxis, :])
         free = ~held
-        matrix *= free[:, :, np.newaxis] & free[:, np.newaxis, :]
-        matrix[~np.isfinite(matrix)] = 0.0
-        np.einsum("bii->bi", matrix)[...] = 1.0 + strength[:, np.newaxis]
+        pair = free[:, :, np.newaxis] & free[:, np.newaxis, :]
+        matrix = np.where(pair & np.isfinite(scaled), scaled, 0.0)
+        np.einsum("bii->bi", matrix)[...] = 1.0 + state.strength[:, np.newaxis]
         wanted = gradient + (curvature @ moved[..., np.newaxis])[..., 0]
         wanted = np.where(free, wanted * scale, 0.0)
-        step = np.where(
-            free, -np.linalg.solve(matrix, wanted[..., np.newaxis])[..., 0] * scale, moved
-        )
+        step = np.linalg.solve(matrix, wanted[..., np.newaxis])[..., 0]
+        step = np.where(free, -step * scale, moved)
         inside = np.minimum(np.maximum(step, low - inner), high - inner)
         beyond = free & (inside != step)
         if not beyond.any():
@@ -199,8 +210,8 @@ def least_squares(
     Parameters
     ----------
     residuals : callable
-        ``residuals(parameters) -> residuals`` of shapes (b, p, 1) and (b, n): the parameters come
-        with a trailing axis, so that a formula written for scalars broadcasts.
+        ``residuals(parameters)`` for parameters of shape (p, b, 1) returns shape (b, n): each
+        parameter has a trailing axis, so that a formula written for scalars broadcasts.
     start : array_like, shape (p,)
         Starting parameters.
     lower, upper : array_like, shape (p,), optional
@@ -219,9 +230,8 @@ def least_squares(
     )
 
     def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:  # noqa: ARG001
-        return np.asarray(residuals(parameters[..., np.newaxis])), central_differences(
-            residuals, parameters
-        )
+        value = np.asarray(residuals(parameters.T[..., np.newaxis]), dtype=float)
+        return value, central_differences(residuals, parameters)
 
     return minimise(evaluate, first[np.newaxis], coordinates, steps=2000)
 
@@ -236,24 +246,20 @@ def central_differences(
     function : callable
         As `residuals` in `least_squares`; called once, with all shifted parameters.
     parameters : array, shape (b, p)
+        Where the derivatives are taken.
 
     Returns
     -------
     array, shape (b, p, n)
     """
-    count = parameters.shape[-1]
+    rows, count = parameters.shape
     step = 1e-3 * np.where(parameters == 0.0, 1.0, np.abs(parameters))
-    shifts = np.array([-2.0, -1.0, 1.0, 2.0])
-    moved = np.broadcast_to(
-        parameters[:, np.newaxis, np.newaxis, :], (parameters.shape[0], count, 4, count)
-    ).copy()
-    index = np.arange(count)
-    moved[:, index, :, index] += (step.T[:, :, np.newaxis]) * shifts
-    # What was really added, free of the rounding of the sum.
-    real = moved[:, index, :, index] - parameters.T[:, :, np.newaxis]
-    values = np.asarray(function(moved.reshape(-1, count)[..., np.newaxis]))
-    values = values.reshape(*moved.shape[:3], -1)
-    unit = np.moveaxis(real, 0, 1)[..., 2, np.newaxis]
-    inner = values[..., 2, :] - values[..., 1, :]
-    outer = values[..., 3, :] - values[..., 0, :]
-    return (8.0 * inner - outer) / (12.0 * unit)
+    shifts = np.array([-2.0, -1.0, 1.0, 2.0])[:, np.newaxis, np.newaxis]
+    along = np.eye(count)[:, np.newaxis, np.newaxis, :]
+    # Axes: parameter that is shifted, shift, row, parameter.
+    moved = parameters + along * (shifts * step)
+    flat = moved.reshape(-1, count)
+    values = np.asarray(function(flat.T[..., np.newaxis]), dtype=float)
+    values = values.reshape(count, 4, rows, -1)
+    slopes = (8.0 * (values[:, 2] - values[:, 1]) - (values[:, 3] - values[:, 0])) / 12.0
+    return np.moveaxis(slopes / step.T[..., np.newaxis], 0, 1)

@@ -2,58 +2,33 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Mapping, Sequence
-from dataclasses import dataclass
+from collections.abc import Iterable, Mapping, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.errors import Caution, FitError
-from rheo.fitting.final import global_minimum
+from rheo.errors import Caution, FitError, InputError
+from rheo.fitting.final import global_minima
 from rheo.fitting.fits import Fits
 from rheo.fitting.problem import CurveProblem, Problem
 from rheo.fitting.ranking import ROUNDING, aicc, akaike_weights, order
+from rheo.fitting.reading_task import reading_task
 from rheo.fitting.result import Fit
 from rheo.fitting.search import search
+from rheo.fitting.task import Task
 from rheo.fitting.weighting import Instrument, Weighting, resolve_weighting
 from rheo.models import ModelRecord, model_record, model_records
-from rheo.readings import FlowCurve
+from rheo.readings import FlowCurve, Readings
 
 FloatArray = NDArray[np.float64]
 
 
-@dataclass(frozen=True, eq=False)
-class Task:
-    """Readings that models are to be fitted to.
-
-    Parameters
-    ----------
-    solve : callable
-        ``solve(record) -> (problem, parameters, sum of squares)`` at the global minimum.
-    observed : array, shape (n,)
-        Measured readings.
-    distinct : int
-        Number of different settings among them.
-    points : array of int, shape (n,)
-        Their indices as the user gave them.
-    extra : int
-        Number of parameters that each model has on top of its own.
-    cautions : tuple of Caution
-        What the readings gave cause for.
-    """
-
-    solve: Callable[[ModelRecord], tuple[Problem, FloatArray, float]]
-    observed: FloatArray
-    distinct: int
-    points: NDArray[np.intp]
-    extra: int = 0
-    cautions: tuple[Caution, ...] = ()
-
-
 def fit(
-    data: FlowCurve,
+    data: FlowCurve | Readings,
     models: str | Sequence[str] | None = None,
     weighting: str | Instrument | Weighting = "relative",
+    entrance: bool = False,
+    slip: bool = False,
 ) -> Fits:
     """Fit flow-curve models to readings and rank them.
 
@@ -62,12 +37,18 @@ def fit(
 
     Parameters
     ----------
-    data : FlowCurve
-        Points of a flow curve. Points that the user excluded are left out.
+    data : FlowCurve or Readings
+        Points of a flow curve, or readings of an instrument. With a geometry the fit is made in
+        what was measured: residuals are predicted less measured torque or pressure drop. What the
+        user excluded is left out.
     models : str or sequence of str, optional
         Model keys; all models when absent.
     weighting : str or Instrument
-        ``relative`` (constant percentage), ``absolute`` (constant deviation) or an Instrument.
+        ``relative`` (constant percentage), ``absolute`` (constant deviation) or an Instrument, in
+        the unit of what is fitted: stress, torque or pressure drop.
+    entrance, slip : bool
+        For tube readings: whether to fit the entrance loss (in diameters) and the slip
+        coefficient with the model; they stand among the fit's parameters.
 
     Returns
     -------
@@ -78,22 +59,37 @@ def fit(
     FitError
         If no model can be fitted to so few readings.
     InputError
-        For an unknown model or weighting.
+        For an unknown model or weighting, or an entrance loss or slip asked of other readings
+        than those of tubes that differ.
     """
     weights = resolve_weighting(weighting)
-    return rank(curve_task(data, weights), _records(models), weights)
+    return rank(task_of(data, weights, entrance, slip), _records(models), weights)
+
+
+def task_of(
+    data: FlowCurve | Readings, weights: Weighting, entrance: bool = False, slip: bool = False
+) -> Task:
+    """Return the task that data stand for."""
+    if isinstance(data, Readings) and data.geometry is not None:
+        return reading_task(data, weights, entrance, slip)
+    if entrance or slip:
+        raise InputError("entrance loss and slip need tube readings with a geometry", "fit")
+    return curve_task(data.flow_curve() if isinstance(data, Readings) else data, weights)
 
 
 def curve_task(curve: FlowCurve, weights: Weighting) -> Task:
     """Return the task of fitting a flow curve."""
     used = np.ones(curve.rate.size, bool) if curve.excluded is None else ~curve.excluded
     points = np.flatnonzero(used)
+    if points.size == 0:
+        raise FitError("all points are excluded; there must be at least one to fit", "fit")
     rate, stress = curve.rate[points], curve.stress[points]
 
-    def solve(record: ModelRecord) -> tuple[Problem, FloatArray, float]:
-        problem = CurveProblem(record, rate, stress, weights)
-        starts = search(record, rate, stress, weights.sigma(stress))
-        return problem, *global_minimum(problem, starts)
+    def solve(records: Sequence[ModelRecord]) -> list[tuple[Problem, FloatArray, float]]:
+        problems = [CurveProblem(record, rate, stress, weights) for record in records]
+        starts = search(records, rate, stress, weights.sigma(stress))
+        minima = global_minima(problems, starts)
+        return [(problem, *found) for problem, found in zip(problems, minima, strict=True)]
 
     return Task(solve, stress, np.unique(rate).size, points)
 
@@ -110,7 +106,7 @@ def rank(task: Task, records: Iterable[ModelRecord], weights: Weighting) -> Fits
     fitted = [record for record in wanted if record.key not in skipped]
     if not fitted:
         raise FitError(_nothing_fitted(count, skipped), "fit")
-    solved = [task.solve(record) for record in fitted]
+    solved = task.solve(fitted)
     least = ROUNDING**2 * float(np.sum((task.observed / weights.sigma(task.observed)) ** 2))
     sizes = [parameters.size for _, parameters, _ in solved]
     criteria = aicc([max(total, least) for *_, total in solved], count, sizes)

@@ -2,13 +2,15 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.fitting.coordinates import Coordinates
 from rheo.fitting.core import minimise
-from rheo.fitting.problem import Problem, allowed, bounds, coordinates, weighted
+from rheo.fitting.problem import Problem, bounds, coordinates, is_allowed, weighted
 
 FloatArray = NDArray[np.float64]
 
@@ -39,11 +41,34 @@ class Final:
     covariance: FloatArray
 
 
-def global_minimum(problem: Problem, starts: FloatArray) -> tuple[FloatArray, float]:
-    """Return parameters (p,) and sum of squares of the best of several searches."""
-    found = minimise(weighted(problem), starts, coordinates(problem), allowed(problem))
-    best = int(np.argmin(found.sum_of_squares))
-    return _snapped(problem, found.parameters[best], float(found.sum_of_squares[best]))
+def global_minima(
+    problems: Sequence[Problem], starts: Sequence[FloatArray], **how: float
+) -> list[tuple[FloatArray, float]]:
+    """Return parameters (p,) and sum of squares of the best of several searches of each problem.
+
+    Parameters
+    ----------
+    problems : sequence of Problem
+        Of the same readings with the same weights.
+    starts : sequence of array, shape (c, p)
+        Starting parameters of each.
+    **how : float
+        Passed on to `core.minimise`: damping, steps, tolerance.
+    """
+    counts = [len(start) for start in starts]
+    width = max(start.shape[-1] for start in starts)
+    stacked = np.zeros((sum(counts), width))
+    edges = np.concatenate([[0], np.cumsum(counts)])
+    for start, first in zip(starts, edges, strict=False):
+        stacked[first : first + len(start), : start.shape[-1]] = start
+    scales = Coordinates.stacked([coordinates(problem) for problem in problems], counts)
+    found = minimise(weighted(problems, counts), stacked, scales, **how)
+    minima = []
+    for problem, start, first in zip(problems, starts, edges, strict=False):
+        best = first + int(np.argmin(found.sum_of_squares[first : first + len(start)]))
+        values = found.parameters[best, : start.shape[-1]]
+        minima.append(_snapped(problem, values, float(found.sum_of_squares[best])))
+    return minima
 
 
 def _snapped(problem: Problem, parameters: FloatArray, total: float) -> tuple[FloatArray, float]:
@@ -96,7 +121,7 @@ def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
     count = int(free.sum())
     if count == 0 or problem.observed.size <= count:
         return Final(parameters, total, free, np.full((count, count), np.nan))
-    evaluate = weighted(problem)
+    evaluate = weighted([problem], [1])
     row = np.zeros(1, dtype=np.intp)
     whole = parameters.copy()
 
@@ -121,9 +146,12 @@ def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
     )
     ended = at(result.params)[0]
     inside = bool(np.all((ended >= lower) & (ended <= upper)))
-    rule = allowed(problem)
-    inside = inside and (rule is None or bool(np.all(rule(ended[np.newaxis]))))
-    if inside and result.chisqr <= total and result.errorbars:
+    if (
+        inside
+        and bool(is_allowed(problem, ended[np.newaxis])[0])
+        and result.chisqr <= total
+        and result.errorbars
+    ):
         return Final(ended, float(result.chisqr), free, np.asarray(result.covar))
     return Final(parameters, total, free, covariance(problem, parameters, total, free))
 
@@ -133,7 +161,9 @@ def covariance(
 ) -> FloatArray:
     """Return s²(JᵀJ)⁻¹ of the free parameters; NaN where the data cannot tell them apart."""
     with np.errstate(all="ignore"):
-        slopes = weighted(problem)(parameters[np.newaxis], np.zeros(1, dtype=np.intp))[1][0, free]
+        slopes = weighted([problem], [1])(parameters[np.newaxis], np.zeros(1, dtype=np.intp))[1][
+            0, free
+        ]
     count, readings = slopes.shape
     scale = np.linalg.norm(slopes, axis=-1)
     if readings <= count or not np.all(np.isfinite(scale) & (scale > 0)):

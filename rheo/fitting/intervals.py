@@ -111,7 +111,7 @@ def _one_sided_limit(problem: Problem, final: Final, index: int, freedom: int) -
     lowest, highest = scale.inner_bounds
     outer = scale.outer(inner)
     with np.errstate(all="ignore"):
-        residual, slopes = weighted(problem)(outer[np.newaxis], np.zeros(1, dtype=np.intp))
+        residual, slopes = weighted([problem], [1])(outer[np.newaxis], np.zeros(1, dtype=np.intp))
         slopes = slopes[0] * scale.slope(inner, outer)[:, np.newaxis]
     direction = 1.0 if inner[index] <= lowest[index] else -1.0
     own = direction * slopes[index]

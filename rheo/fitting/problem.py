@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from collections.abc import Sequence
+from dataclasses import dataclass
 from functools import cache, cached_property
 from typing import Protocol
 
@@ -12,8 +12,9 @@ from numpy.typing import NDArray
 
 from rheo.fitting.coordinates import Coordinates
 from rheo.fitting.core import Evaluate, IntArray
+from rheo.fitting.stack import Stack
 from rheo.fitting.weighting import Weighting
-from rheo.models import ModelRecord, Parameter
+from rheo.models import Model, ModelRecord, Parameter
 
 FloatArray = NDArray[np.float64]
 BoolArray = NDArray[np.bool_]
@@ -104,6 +105,15 @@ def columns_of(parameters: FloatArray) -> list[FloatArray]:
     return [parameters[..., index, np.newaxis] for index in range(parameters.shape[-1])]
 
 
+def bare_model(record: ModelRecord, values: Sequence[FloatArray]) -> Model:
+    """Return a model without a check of its values: a search stays inside the bounds by itself."""
+    model = object.__new__(Model)
+    object.__setattr__(model, "record", record)
+    parameters = dict(zip(record.parameter_keys, values, strict=True))
+    object.__setattr__(model, "parameters", parameters)
+    return model
+
+
 def parameter_keys(problem: Problem) -> tuple[str, ...]:
     """Return the keys of all parameters of a problem, the model's first."""
     return (*problem.record.parameter_keys, *(extra.key for extra in problem.extra))
@@ -135,44 +145,50 @@ def _roots(key: str, record: ModelRecord) -> tuple[bool, ...]:  # noqa: ARG001
     return tuple(found)
 
 
-def allowed(problem: Problem) -> Callable[[FloatArray], BoolArray] | None:
-    """Return the test of parameters (b, p) that the model's record asks for, if any."""
+def is_allowed(problem: Problem, parameters: FloatArray) -> BoolArray:
+    """Say which rows of parameters (b, p) are flow curves by the model's record."""
     rule = problem.record.allowed
     if rule is None:
-        return None
-    count = len(problem.record.parameters)
-    return lambda parameters: rule(*parameters.T[:count])
+        return np.ones(len(parameters), dtype=bool)
+    return rule(*parameters.T[: len(problem.record.parameters)])
 
 
-def weighted(problem: Problem, observed: FloatArray | None = None) -> Evaluate:
-    """Return the function that `core.minimise` asks for.
+def weighted(
+    problems: Sequence[Problem], counts: Sequence[int], observed: FloatArray | None = None
+) -> Evaluate:
+    """Return the function that `core.minimise` asks for, for problems of the same readings.
 
     Parameters
     ----------
-    problem : Problem
-        Predictions, and the readings when `observed` is absent.
+    problems : sequence of Problem
+        Predictions of the same readings with the same weights.
+    counts : sequence of int
+        Number of searches of each.
     observed : array, shape (b, n), optional
-        Readings for each search; weights are found from them.
+        Readings for each search, in place of the problems' own; weights are found from them.
 
     Returns
     -------
     callable
         ``evaluate(parameters, rows) -> (residuals, sensitivities)``, both over sigma.
     """
-    measured = problem.observed if observed is None else observed
-    precision = 1.0 / problem.weighting.sigma(measured)
+    stack = Stack(problems, counts)
+    measured = problems[0].observed if observed is None else observed
+    precision = 1.0 / problems[0].weighting.sigma(measured)
     target = measured * precision
 
     def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
-        predicted, slopes = problem.sensitivity(parameters)
+        predicted = np.empty((rows.size, measured.shape[-1]))
+        slopes = np.zeros((*parameters.shape, measured.shape[-1]))
+        for problem, part in stack.split(rows):
+            width = len(problem.record.parameters) + len(problem.extra)
+            values = parameters[part, :width]
+            predicted[part], slopes[part, :width] = problem.sensitivity(values)
+            if problem.record.allowed is not None:
+                predicted[part][~is_allowed(problem, values)] = np.inf
         if observed is None:
             return predicted * precision - target, slopes * precision
         weight = precision[rows]
         return predicted * weight - target[rows], slopes * weight[:, np.newaxis, :]
 
     return evaluate
-
-
-def with_weighting(problem: CurveProblem, weighting: Weighting) -> CurveProblem:
-    """Return the same problem under another weighting."""
-    return replace(problem, weighting=weighting)

@@ -1,6 +1,9 @@
-"""Global search for the flow curve of least squares: a grid of shapes, then the best cells."""
+"""Global search for flow curves of least squares: a grid of shapes, then the best cells."""
 
 from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -9,77 +12,166 @@ from rheo.fitting.projection import (
     Projection,
     basis,
     clipped,
-    from_products,
     raw_parameters,
+    sizes_from,
 )
+from rheo.fitting.stack import Stack
 from rheo.models import ModelRecord
 
 FloatArray = NDArray[np.float64]
+IntArray = NDArray[np.intp]
 
-# The grid needs the course of the data, not every point of it.
-_POINTS = 200
 _WORST = np.finfo(float).max
+# Minima whose sums of squares agree to this are one minimum.
+_APART = 1e-7
 
 
-def search(
-    record: ModelRecord,
-    rate: FloatArray,
-    stress: FloatArray,
-    sigma: FloatArray,
-) -> FloatArray:
-    """Return parameters at the lowest minima of a model's sum of squares.
+@dataclass(frozen=True)
+class Effort:
+    """How thoroughly a search looks.
 
     Parameters
     ----------
-    record : ModelRecord
-        The model.
+    points : int
+        Largest number of points for which the grid is worked out: it needs their course only.
+    first_steps : int
+        Steps from every cell of the grid that is the lowest of its line.
+    kept : int
+        Number of minima of each model that are followed further.
+    steps : int
+        Steps from each of these.
+    tolerance : float
+        Relative fall of the sum of squares below which a search ends.
+    """
+
+    points: int
+    first_steps: int
+    kept: int
+    steps: int
+    tolerance: float
+
+
+THOROUGH = Effort(points=200, first_steps=5, kept=16, steps=100, tolerance=1e-15)
+QUICK = Effort(points=15, first_steps=0, kept=3, steps=12, tolerance=1e-6)
+
+
+def search(
+    records: Sequence[ModelRecord],
+    rate: FloatArray,
+    stress: FloatArray,
+    sigma: FloatArray,
+    effort: Effort = THOROUGH,
+) -> list[FloatArray]:
+    """Return parameters at the lowest minima of the sum of squares of each model.
+
+    Parameters
+    ----------
+    records : sequence of ModelRecord
+        The models.
     rate, stress, sigma : array, shape (n,)
         Shear rate [1/s], shear stress [Pa] and its standard deviation [Pa].
+    effort : Effort
+        How thoroughly to look.
 
     Returns
     -------
-    array, shape (c, p)
-        Parameters in record order, the best first.
+    list of array, shape (c, p)
+        For each model parameters in record order, the best first.
     """
     with np.errstate(all="ignore"):
-        shapes = _best_cells(record, *_thinned(rate, stress, sigma))
-        projection = Projection(record, rate, stress, sigma)
-        if shapes.shape[-1]:
-            found = projection.refine(shapes)
-            ranked = np.argsort(found.sum_of_squares, kind="stable")
-            shapes = found.parameters[ranked]
-        return projection.parameters(shapes, np.arange(shapes.shape[0]))
+        thin = _thinned(rate, stress, sigma, effort.points)
+        cells = [_best_cells(record, *thin) for record in records]
+        if effort.first_steps:
+            shapes, left = _refined(records, cells, rate, stress, sigma, effort.first_steps, 1e-15)
+            cells = _kept(shapes, left, effort.kept)
+        else:
+            cells = [cell[: effort.kept] for cell in cells]
+        shapes, left = _refined(records, cells, rate, stress, sigma, effort.steps, effort.tolerance)
+        cells = _kept(shapes, left, effort.kept)
+        stack = Stack(records, [len(cell) for cell in cells])
+        projection = Projection(stack, rate, stress, sigma)
+        return projection.parameters(_padded(cells), np.arange(stack.edges[-1]))
 
 
-def _thinned(rate: FloatArray, stress: FloatArray, sigma: FloatArray) -> tuple[FloatArray, ...]:
-    if rate.size <= _POINTS:
+def _refined(
+    records: Sequence[ModelRecord],
+    cells: Sequence[FloatArray],
+    rate: FloatArray,
+    stress: FloatArray,
+    sigma: FloatArray,
+    steps: int,
+    tolerance: float,
+) -> tuple[list[FloatArray], list[FloatArray]]:
+    """Return improved shapes and their sums of squares, model by model."""
+    stack = Stack(records, [len(cell) for cell in cells])
+    found = Projection(stack, rate, stress, sigma).refine(_padded(cells), steps, tolerance)
+    parts = [slice(*pair) for pair in zip(stack.edges[:-1], stack.edges[1:], strict=True)]
+    widths = [cell.shape[-1] for cell in cells]
+    return (
+        [found.parameters[part, :width] for part, width in zip(parts, widths, strict=True)],
+        [found.sum_of_squares[part] for part in parts],
+    )
+
+
+def _kept(shapes: Sequence[FloatArray], left: Sequence[FloatArray], count: int) -> list[FloatArray]:
+    return [shape[lowest(values, count)] for shape, values in zip(shapes, left, strict=True)]
+
+
+def lowest(values: FloatArray, count: int, apart: float = _APART) -> IntArray:
+    """Return indices of the lowest values, none alike to a relative difference of `apart`."""
+    order = np.argsort(values, kind="stable")
+    ranked = values[order]
+    rise = np.diff(ranked)
+    new = np.concatenate([[True], rise > apart * np.abs(ranked[1:])])
+    return order[new][:count]
+
+
+def _padded(cells: Sequence[FloatArray]) -> FloatArray:
+    """Return shapes (c, q) of several models one under another, filled up with 0."""
+    width = max(1, *(cell.shape[-1] for cell in cells))
+    whole = np.zeros((sum(len(cell) for cell in cells), width))
+    at = 0
+    for cell in cells:
+        whole[at : at + len(cell), : cell.shape[-1]] = cell
+        at += len(cell)
+    return whole
+
+
+def _thinned(
+    rate: FloatArray, stress: FloatArray, sigma: FloatArray, points: int
+) -> tuple[FloatArray, ...]:
+    if rate.size <= points:
         return rate, stress, sigma
-    chosen = np.argsort(rate, kind="stable")[np.linspace(0, rate.size - 1, _POINTS).astype(int)]
+    chosen = np.argsort(rate, kind="stable")[np.linspace(0, rate.size - 1, points).astype(int)]
     return rate[chosen], stress[chosen], sigma[chosen]
 
 
 def _best_cells(
     record: ModelRecord, rate: FloatArray, stress: FloatArray, sigma: FloatArray
 ) -> FloatArray:
-    """Return the shapes (c, q) of the lowest cells of the model's grid."""
+    """Return the shapes (c, q) of the lowest cells of a model's grid, the lowest first."""
     axes = record.separable.grid(rate)
     mesh = np.meshgrid(*axes, indexing="ij")
     shapes = np.stack([part.reshape(-1) for part in mesh], axis=-1) if mesh else np.empty((1, 0))
-    columns = [column / sigma for column in basis(record, rate, shapes)]
     target = stress / sigma
-    own = [np.einsum("gn,gn->g", column, column) for column in columns]
-    toward = [column @ target for column in columns]
-    cross = np.einsum("gn,gn->g", *columns) if len(columns) == 2 else None
-    coefficients = from_products(own, toward, cross)
-    left = target @ target - sum(c * part for c, part in zip(coefficients, toward, strict=True))
+    columns = [one / sigma * np.ones((len(shapes), 1)) for one in basis(record, rate, shapes)]
+    nothing = np.zeros(len(shapes))
+    own = [np.einsum("gn,gn->g", one, one) for one in columns]
+    toward = [one @ target for one in columns]
+    cross = np.einsum("gn,gn->g", *columns) if len(columns) == 2 else nothing
+    if len(columns) == 1:
+        own.append(nothing)
+        toward.append(nothing)
+    sizes = sizes_from((own[0], own[1]), np.array(toward), cross)
+    left = target @ target - sizes[0] * toward[0] - sizes[1] * toward[1]
     if record.allowed is not None:
-        parameters = clipped(record, raw_parameters(record, shapes, coefficients))
-        left = np.where(record.allowed(*parameters.T), left, _WORST)
+        values = clipped(record, raw_parameters(record, shapes, np.stack(sizes, axis=-1)))
+        left = np.where(record.allowed(*values.T), left, _WORST)
     left = np.where(np.isfinite(left), left, _WORST)
-    return shapes[slice_minima(left.reshape([axis.size for axis in axes]))]
+    return shapes[line_minima(left.reshape([axis.size for axis in axes]))]
 
 
-def slice_minima(left: FloatArray) -> NDArray[np.intp]:
+def line_minima(left: FloatArray) -> IntArray:
     """Return flat indices of the lowest cell at every value of every axis, the lowest first."""
     values = left.reshape(-1)
     indices = np.arange(values.size).reshape(left.shape)

@@ -32,7 +32,7 @@ def reduced_stress(reduced_rate: FloatArray, stress_index: FloatArray) -> FloatA
     at = np.minimum(log_x, log_x / (power + 1.0))
     for _ in range(60):
         exponent = power * at
-        gap = at + np.logaddexp(0.0, exponent) - log_x
+        gap = at + np.maximum(exponent, 0.0) + np.log1p(np.exp(-np.abs(exponent))) - log_x
         share = 0.5 * (1.0 + np.tanh(0.5 * exponent))
         step = gap / (1.0 + power * share)
         at = at - step

@@ -1,0 +1,42 @@
+"""Searches of several kinds one under another, so that one step serves all."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Generic, TypeVar
+
+import numpy as np
+from numpy.typing import NDArray
+
+IntArray = NDArray[np.intp]
+Kind = TypeVar("Kind")
+
+
+@dataclass(frozen=True)
+class Stack(Generic[Kind]):
+    """Which rows belong to what.
+
+    Parameters
+    ----------
+    kinds : sequence
+        Models, or problems.
+    counts : sequence of int
+        Number of rows of each, in the same order.
+    """
+
+    kinds: Sequence[Kind]
+    counts: Sequence[int]
+
+    @cached_property
+    def edges(self) -> IntArray:
+        """Row at which each kind begins, and the number of all rows."""
+        return np.concatenate([[0], np.cumsum(self.counts)]).astype(np.intp)
+
+    def split(self, rows: IntArray) -> Iterator[tuple[Kind, slice]]:
+        """Yield each kind that has some of the rows (in rising order), and where these stand."""
+        places = np.searchsorted(rows, self.edges)
+        for kind, first, last in zip(self.kinds, places[:-1], places[1:], strict=True):
+            if last > first:
+                yield kind, slice(int(first), int(last))
