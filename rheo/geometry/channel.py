@@ -6,8 +6,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.geometry.curve_integrals import moment_ratio
-from rheo.geometry.monotone import solve_log
 from rheo.models import Model
+from rheo.models.monotone import solve_log
 
 FloatArray = NDArray[np.float64]
 

@@ -13,6 +13,7 @@ from rheo.errors import Caution, InputError
 from rheo.geometry.flow_points import FlowPoints
 from rheo.geometry.record import SETTINGS, GeometryRecord
 from rheo.models import Model
+from rheo.models.monotone import LARGEST_RATE
 
 FloatArray = NDArray[np.float64]
 
@@ -134,6 +135,9 @@ class Geometry:
     def sheared(self, model: Model, setting: ArrayLike) -> tuple[FloatArray, FloatArray]:
         """Return shear rate [1/s] and stress [Pa] where the stress is largest.
 
+        The rate is infinite at a setting that the flow curve cannot carry, because its stress
+        levels off; the stress is then the one at which it does.
+
         Parameters and errors as for `predict`.
         """
         _, symbol, unit = SETTINGS[self.record.setting]
@@ -141,6 +145,7 @@ class Geometry:
         dimensions = tuple(self.dimensions.values())
         moving = at > 0
         rate, stress = self.record.sheared_at(model, np.where(moving, at, 1.0), *dimensions)
+        rate = np.where(rate < LARGEST_RATE, rate, np.inf)
         shape = np.broadcast_shapes(at.shape, model.shape, self.shape)
         rate, stress = np.broadcast_to(rate, shape), np.broadcast_to(stress, shape)
         if np.all(moving):

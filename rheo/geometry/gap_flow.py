@@ -19,9 +19,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.geometry.curve_integrals import unit_rule
-from rheo.geometry.monotone import solve_log
 from rheo.models import Model
 from rheo.models.inverse import rate_from_stress
+from rheo.models.monotone import solve_log
 
 FloatArray = NDArray[np.float64]
 

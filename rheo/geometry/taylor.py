@@ -9,8 +9,8 @@ from rheo.errors import Caution
 from rheo.geometry.concentric_cylinders import log_radius_ratio
 from rheo.geometry.dimensioned import Geometry
 from rheo.geometry.gap_flow import angular_speed, speed_and_slope
-from rheo.geometry.monotone import solve_log
 from rheo.models import Model
+from rheo.models.monotone import solve_log
 
 FloatArray = NDArray[np.float64]
 

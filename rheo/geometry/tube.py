@@ -8,9 +8,9 @@ from numpy.typing import NDArray
 from rheo.errors import InputError
 from rheo.geometry import tube_flow
 from rheo.geometry.flow_points import FlowPoints, points, smoothed
-from rheo.geometry.monotone import solve_log
 from rheo.geometry.record import Dimension, GeometryRecord
 from rheo.models import Model
+from rheo.models.monotone import solve_log
 
 FloatArray = NDArray[np.float64]
 

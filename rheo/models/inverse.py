@@ -4,13 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
+from rheo.models.monotone import LARGEST_RATE, solve_log
 from rheo.models.record import FloatArray, Model
-
-# The logarithm of the rate is sought between these. A stress that needs more than 1e20 1/s lies
-# on or above a plateau of the flow curve.
-_LOWEST, _HIGHEST = -600.0, 46.0
-_STEPS = 200
-_LARGEST_STEP = 10.0
 
 
 def rate_from_stress(
@@ -37,42 +32,17 @@ def rate_from_stress(
     """
     if model.record.rate is not None:
         return model.record.rate(stress, *model)
-    shape = np.broadcast_shapes(np.shape(stress), model.shape)
-    stress = np.broadcast_to(stress, shape)
-    rate = np.where(np.isnan(stress), np.nan, 0.0)
     flows = stress > 0
-    if np.any(flows):
-        local = model.map(lambda value: np.broadcast_to(value, shape)[flows])
-        first = None if start is None else np.broadcast_to(start, shape)[flows]
-        rate[flows] = _solve(local, stress[flows], first)
-    return rate
-
-
-def _solve(model: Model, stress: FloatArray, start: FloatArray | None) -> FloatArray:
-    """Newton's method on ln(stress) against ln(rate), kept inside a shrinking bracket."""
-    target = np.log(stress)
-    low = np.full(stress.shape, -np.inf)
-    high = np.full(stress.shape, np.inf)
+    wanted = np.where(flows, stress, 1.0)
     if start is None:
-        one = np.ones_like(stress)
-        offset = target - np.log(model.record.stress(one, *model))
-        at = np.clip(offset / model.record.log_slope(one, *model), -40.0, 40.0)
-    else:
-        at = np.log(start)
-    at = np.clip(at, _LOWEST, _HIGHEST)
-    for _ in range(_STEPS):
-        rate = np.exp(at)
-        gap = np.log(model.record.stress(rate, *model)) - target
-        high = np.where(gap > 0, at, high)
-        low = np.where(gap <= 0, at, low)
-        step = gap / model.record.log_slope(rate, *model)
-        new = at - np.clip(step, -_LARGEST_STEP, _LARGEST_STEP)
-        new = np.clip(new, _LOWEST, _HIGHEST)
-        outside = (new < low) | (new > high)
-        new[outside] = 0.5 * (low[outside] + high[outside])
-        moved = np.abs(new - at)
-        at = new
-        # Newton's error is squared at each step, so a step of 1e-8 leaves 1e-16.
-        if np.all(moved <= 1e-8):
-            break
-    return np.where(at < _HIGHEST, np.exp(at), np.inf)
+        # From 1 1/s along the tangent there.
+        one = np.ones_like(wanted)
+        ratio = np.log(wanted / model.record.stress(one, *model))
+        start = np.exp(np.clip(ratio / model.record.log_slope(one, *model), -40.0, 40.0))
+    rate = solve_log(_stress_and_slope, model, wanted, start)
+    rate = np.where(rate < LARGEST_RATE, rate, np.inf)
+    return np.where(flows, rate, np.where(np.isnan(stress), np.nan, 0.0))
+
+
+def _stress_and_slope(model: Model, rate: FloatArray) -> tuple[FloatArray, FloatArray]:
+    return model.record.stress(rate, *model), model.record.log_slope(rate, *model)

@@ -214,3 +214,57 @@ def test_a_block_that_slides() -> None:
     np.testing.assert_array_equal(rate > 0, [False, False, False, True, True])
     assert stress[3] == pytest.approx(50.0, rel=1e-3)
     assert np.all(np.diff(geometry.predict(paste, flow)) > 0)
+
+
+WHOLE_RANGE = [
+    make_geometry("tube", diameter=0.02, length=1.0),
+    make_geometry("tube", diameter=0.02, length=1.0, slip_coefficient=1e-5),
+    make_geometry("slot", half_gap=0.002, width=0.1, length=1.0),
+    make_geometry("parallel-plate", radius=0.02, gap=0.001),
+    make_geometry("vane", diameter=0.02, height=0.04),
+    make_geometry(
+        "concentric-cylinders",
+        inner_radius=0.01,
+        outer_radius=0.01 + np.geomspace(1e-6, 0.1, 300),
+        length=0.05,
+    ),
+]
+
+
+@pytest.mark.parametrize("key", KEYS)
+def test_parameters_over_their_whole_ranges(key: str) -> None:
+    """No warning, no NaN, and the stress returned, for every curve that the bounds allow."""
+    rng, count = np.random.default_rng(11), 300
+    drawn = {}
+    for parameter in rheo.model_records()[key].parameters:
+        low, high = max(parameter.lower, 1e-6), min(parameter.upper, 1e6)
+        drawn[parameter.key] = np.exp(rng.uniform(np.log(low), np.log(high), count))
+        if parameter.lower == 0.0:
+            drawn[parameter.key][::7] = 0.0
+    if "zero_shear_viscosity" in drawn and "infinite_shear_viscosity" in drawn:
+        ceiling = 0.5 * drawn["zero_shear_viscosity"]
+        drawn["infinite_shear_viscosity"] = np.minimum(drawn["infinite_shear_viscosity"], ceiling)
+    model = rheo.model(key, **drawn)
+    rate = np.exp(rng.uniform(np.log(1e-4), np.log(1e5), count))
+    for geometry in WHOLE_RANGE:
+        setting = geometry.setting_for_rate(model, rate)
+        _, stress = geometry.sheared(model, setting)
+        np.testing.assert_allclose(stress, model.stress(rate), rtol=1e-9, err_msg=geometry.key)
+        assert np.all(np.isfinite(geometry.predict(model, setting)))
+
+
+def test_a_flow_that_a_levelling_curve_cannot_carry() -> None:
+    """With an index of 0 and no second plateau the stress ends at η_0/λ and the flow is bounded."""
+    flat = rheo.model(
+        "carreau",
+        zero_shear_viscosity=40.0,
+        infinite_shear_viscosity=0.0,
+        time_constant=2.0,
+        flow_index=0.0,
+    )
+    tube = make_geometry("tube", diameter=0.02, length=1.0)
+    bound = float(tube.setting_for_rate(flat, 1e12))
+    rate, stress = tube.sheared(flat, [0.5 * bound, 1.5 * bound])
+    np.testing.assert_array_equal(np.isinf(rate), [False, True])
+    assert stress[1] == pytest.approx(20.0, rel=1e-9)
+    assert np.all(np.isfinite(tube.predict(flat, [0.5 * bound, 1.5 * bound])))
