@@ -8,6 +8,7 @@ import numpy as np
 
 from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow
+from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import Entrance, Exit, Fitting, FloatArray, Pipe, Reducer
 from rheo.line.route import Step
 
@@ -36,7 +37,7 @@ def minor_loss(step: Step, at: PipeFlow, beside: Callable[[Pipe], PipeFlow]) -> 
         return np.asarray(part.loss_coefficient) * velocity_pressure(at)
     if isinstance(part, Exit):
         if part.loss_coefficient is None:
-            return at.kinetic_energy_factor * velocity_pressure(at)
+            return kinetic_pressure(at)
         return np.asarray(part.loss_coefficient) * velocity_pressure(at)
     if isinstance(part, Reducer) and step.before is not None and step.after is not None:
         return _reducer_loss(part, beside(step.before), beside(step.after))

@@ -7,8 +7,9 @@ from dataclasses import dataclass
 import numpy as np
 
 from rheo.line.constants import GRAVITY
+from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import FloatArray
-from rheo.line.walk import StepResult, Walk, kinetic_pressure
+from rheo.line.walk import StepResult, Walk
 
 
 @dataclass(frozen=True, eq=False)

@@ -10,12 +10,13 @@ from rheo.hydraulics import PipeFlow
 from rheo.line.checks import require_optional, require_share
 from rheo.line.constants import GRAVITY
 from rheo.line.duty_cautions import duty_cautions, inside_measured_range
+from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import FloatArray, Line, Pipe
 from rheo.line.product import Product, interval
 from rheo.line.profile import Profile, pressure_profile
 from rheo.line.result import LineResult, PartResult
 from rheo.line.start_up import start_up
-from rheo.line.walk import StepResult, Walk, kinetic_pressure, total, walk
+from rheo.line.walk import StepResult, Walk, total, walk
 
 
 def solve_line(

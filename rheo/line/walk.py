@@ -18,6 +18,7 @@ from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow, pipe_flow
 from rheo.line.checks import require_positive
 from rheo.line.constants import GRAVITY
+from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.minor_losses import minor_loss
 from rheo.line.parts import Equipment, FloatArray, Line, Pipe
 from rheo.line.product import FlowCurveSource, Product
@@ -162,13 +163,6 @@ def total(values: Iterable[ArrayLike]) -> FloatArray:
     for value in values:
         found = found + np.asarray(value, dtype=float)
     return found
-
-
-def kinetic_pressure(flow: PipeFlow | None) -> FloatArray:
-    """Return αρV²/2 [Pa] of the stream in a pipe; 0 without one."""
-    if flow is None:
-        return np.zeros(())
-    return flow.kinetic_energy_factor * 0.5 * flow.density * np.asarray(flow.velocity) ** 2
 
 
 def walk(
