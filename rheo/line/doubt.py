@@ -251,6 +251,7 @@ def _of_methods(product: Product, pressure: Callable[[str], FloatArray]) -> floa
     model = product.model_at(product.temperature)
     keys = [key for key, record in turbulent_methods().items() if record.applies(model)]
     values = np.array([float(pressure(key)) for key in keys])
+    values = values[np.isfinite(values)]
     return float(values.std(ddof=1)) if values.size > 1 else 0.0
 
 

@@ -21,9 +21,9 @@ HEAT = (
     "and guarded."
 )
 FOOD_SAFETY = (
-    "Hold times here are hydraulic only. Whether a heat treatment or a cleaning is safe is for the "
-    "process authority, local food law and a qualified person, with measured temperatures and a "
-    "validated hold."
+    "Hold times here are hydraulic only. Whether a heat treatment or a cleaning is safe is for "
+    "local codes and food law, the process authority and a licensed engineer to decide, with "
+    "measured temperatures and a validated hold."
 )
 START_UP = (
     "The start-up pressure is an estimate for a full line at rest with an even static yield "

@@ -40,7 +40,7 @@ FLOW = 1.5e-3
 COSTS = Costs(hours=5000.0, energy_price=0.2, efficiency=0.5, annual_charge=0.15)
 
 
-def _draws(count: int = 300) -> tuple[rheo.Model, ...]:
+def _draws(count: int = 80) -> tuple[rheo.Model, ...]:
     rng = np.random.default_rng(11)
     return (
         rheo.model(
@@ -211,7 +211,7 @@ def test_how_the_choice_moves_over_the_doubt() -> None:
         best = rheo.size_line(LINE, one, FLOW, sizes, limits=limits, costs=COSTS).recommended
         chosen.append("none" if best is None else best.size.name)
     for name, share in found.choice_by_draw:
-        assert share == pytest.approx(chosen.count(name) / 300)
+        assert share == pytest.approx(chosen.count(name) / 80)
 
 
 def test_a_size_that_passes_only_with_luck_fails() -> None:
