@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from rheo.case.quantity import Quantity
+from rheo.case.result import CaseResult
+from rheo.case.run import run_case
 from rheo.case.schema import Case
 from rheo.case.storage import (
     case_from_document,
@@ -14,10 +16,12 @@ from rheo.case.storage import (
 
 __all__ = [
     "Case",
+    "CaseResult",
     "Quantity",
     "case_from_document",
     "case_from_text",
     "case_text",
     "load_case",
+    "run_case",
     "save_case",
 ]

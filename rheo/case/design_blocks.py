@@ -149,6 +149,10 @@ class SizesBlock(Block):
         high = float("inf") if self.largest is None else float(self.largest)
         return tuple(size for size in dict.fromkeys(every) if low <= size.inside_diameter <= high)
 
+    def spread(self) -> dict[str, float]:
+        """Return the confidence wanted and the spread of the flow [-], by name."""
+        return {"confidence": float(self.confidence), "flow_spread": float(self.flow_spread)}
+
 
 class DoubtBlock(Block):
     """How well the inputs are known, and how the doubt is worked out."""

@@ -4,16 +4,19 @@ from __future__ import annotations
 
 from dataclasses import replace
 from pathlib import Path
-from typing import Any
+from typing import Any, get_args
 
 import numpy as np
 
 from rheo.case.complaints import words_of
 from rheo.case.paths import inside_folder
-from rheo.case.readings_blocks import ReadingsBlock
-from rheo.case.schema import Case
+from rheo.case.readings_blocks import ReadingsBlock, Sweep
+from rheo.case.schema import INSTRUMENT, Case
 from rheo.errors import CaseError
+from rheo.fitting import Instrument
 from rheo.readings import Readings, read_readings
+
+SWEEPS = get_args(Sweep)
 
 
 def readings_of(case: Case, number: int = 0) -> Readings:
@@ -53,27 +56,66 @@ def readings_of(case: Case, number: int = 0) -> Readings:
     return _with_excluded(replace(readings, **_said(case, block, readings)), block, place)
 
 
-def branch_of(readings: Readings, block: ReadingsBlock) -> Readings:
-    """Return the readings of the sweep branch that the case wants fitted.
+def branch_of(readings: Readings, sweep: str) -> Readings:
+    """Return the readings of the branch that is to be fitted.
+
+    Parameters
+    ----------
+    readings : Readings
+        All of them.
+    sweep : str
+        ``up``, ``down`` or ``both``.
 
     Raises
     ------
     CaseError
         If the readings have no such branch.
     """
-    if block.sweep == "both":
+    if sweep not in SWEEPS:
+        raise CaseError(f"found '{sweep[:60]}'; it must be {', '.join(SWEEPS)}", "sweep")
+    if sweep == "both":
         return readings
     branch = readings.branch
-    wanted = np.zeros(len(readings), dtype=bool) if branch is None else branch == block.sweep
+    wanted = np.zeros(len(readings), dtype=bool) if branch is None else branch == sweep
     if not wanted.any():
         words = [] if branch is None else sorted({str(word) for word in branch if word})
         found = f"only {', '.join(words)}" if words else "no branch at all"
         raise CaseError(
-            f"sweep is '{block.sweep}', and {found} was found in the readings; "
+            f"sweep is '{sweep}', and {found} was found in the readings; "
             "use 'both', or a file with a column for the branch",
             readings.source,
         )
     return readings.select(wanted)
+
+
+def weighting_of(
+    name: str, percent_of_reading: float, percent_of_full_scale: float, readings: Readings
+) -> str | Instrument:
+    """Return the weighting that `rheo.fit` takes.
+
+    Parameters
+    ----------
+    name : str
+        ``relative``, ``absolute`` or ``instrument``.
+    percent_of_reading, percent_of_full_scale : float
+        For ``instrument`` [%].
+    readings : Readings
+        Their full-scale torque is the full scale of ``instrument``.
+
+    Raises
+    ------
+    CaseError
+        If the full scale is not known.
+    """
+    if name != INSTRUMENT:
+        return name
+    if readings.full_scale_torque is None or readings.geometry is None:
+        raise CaseError(
+            "weighting 'instrument' needs a geometry and the torque at full scale; "
+            "give full_scale_torque, such as '10 mN.m'",
+            readings.source,
+        )
+    return Instrument(percent_of_reading, percent_of_full_scale, readings.full_scale_torque)
 
 
 def _source(case: Case, block: ReadingsBlock, place: str) -> tuple[Path | bytes, str]:

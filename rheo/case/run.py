@@ -1,0 +1,191 @@
+"""From a case to its result: readings, fit, line."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+
+from rheo.case.join import joined
+from rheo.case.load_readings import all_readings, branch_of, weighting_of
+from rheo.case.result import CaseResult
+from rheo.case.schema import AUTO, Case
+from rheo.errors import CaseError, Caution, merge_cautions
+from rheo.fitting import Fit, Fits, fit
+from rheo.line import (
+    CentrifugalPump,
+    DisplacementPump,
+    LineResult,
+    Product,
+    Solids,
+    settling_cautions,
+    solve_line,
+)
+from rheo.line.constants import GRAVITY
+from rheo.readings import Readings, screen
+
+# Readings this much apart in temperature [K] are no longer taken at one temperature.
+ONE_TEMPERATURE = 2.0
+ROOM_TEMPERATURE = 293.15
+
+
+def run_case(case: Case, readings: Sequence[Readings] | None = None) -> CaseResult:
+    """Go from a case to its result.
+
+    Parameters
+    ----------
+    case : Case
+        From `load_case`, or made in Python.
+    readings : sequence of Readings, optional
+        One a set of the case, where they have been read already; they are read when absent.
+
+    Returns
+    -------
+    CaseResult
+        Readings, ranked models, duty of the line, Cautions; SI throughout.
+
+    Raises
+    ------
+    InputError
+        If readings cannot be read or fitted, or the line cannot be worked out; the sentence says
+        what was found and what is allowed.
+    """
+    sets = all_readings(case) if readings is None else tuple(readings)
+    if len(sets) != len(case.readings):
+        raise CaseError(
+            f"{len(sets)} sets of readings are given and the case has {len(case.readings)}; "
+            "give one for each",
+            "readings",
+        )
+    fitted = joined(
+        [branch_of(one, block.sweep) for one, block in zip(sets, case.readings, strict=True)]
+    )
+    fits = _fits(case, fitted)
+    chosen = fits.best if case.fit.model == AUTO else fits[case.fit.model]
+    product = _product(case, fitted, fits, chosen)
+    pump = None if case.pump is None else case.pump.build()
+    efficiency = _efficiency(case, pump)
+    line = solve_line(
+        case.line.build(),
+        product,
+        float(case.duty.flow),
+        efficiency=efficiency,
+        rating=_rating(case, pump, product),
+        method=case.line.friction_method,
+    )
+    cautions = merge_cautions(
+        *(one.cautions for one in sets),
+        *(screen(one) for one in sets),
+        fits.data_cautions,
+        chosen.cautions,
+        _temperature_cautions(fitted, product),
+        line.cautions,
+        _solids_cautions(case, line),
+    )
+    return CaseResult(case, sets, fitted, fits, chosen, product, line, pump, efficiency, cautions)
+
+
+def _fits(case: Case, readings: Readings) -> Fits:
+    wanted = case.fit
+    weighting = weighting_of(
+        wanted.weighting,
+        float(wanted.percent_of_reading or 0.0),
+        float(wanted.percent_of_full_scale or 0.0),
+        readings,
+    )
+    return fit(readings, models=wanted.models, weighting=weighting)
+
+
+def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product:
+    given = case.product
+    doubt = case.doubt
+    if case.fit.model == AUTO:
+        draws = fits.draws(doubt.draws, seed=doubt.seed)
+    else:
+        draws = (chosen.bootstrap(doubt.draws, seed=doubt.seed),)
+    rates = chosen.rates[chosen.rates > 0]
+    warm = given.temperature
+    if warm is None:
+        taken = readings.temperature
+        temperature = ROOM_TEMPERATURE if taken is None else float(np.mean(taken))
+    else:
+        temperature = float(warm)
+    return Product(
+        model=chosen.model,
+        density=float(given.density),
+        temperature=temperature,
+        heat_capacity=_plain(given.heat_capacity),
+        vapour_pressure=_plain(given.vapour_pressure),
+        static_yield_stress=_plain(given.static_yield_stress),
+        measured_rates=(float(rates.min()), float(rates.max())) if rates.size else None,
+        draws=draws,
+        name=given.name,
+    )
+
+
+def _efficiency(case: Case, pump: CentrifugalPump | DisplacementPump | None) -> float | None:
+    """Efficiency at the duty: of the pump's points where there are any, else the one given."""
+    if isinstance(pump, CentrifugalPump):
+        at_duty = pump.efficiency(float(case.duty.flow))
+        if at_duty is not None and np.isfinite(at_duty) and at_duty > 0:
+            return float(at_duty)
+    return None if case.pump is None else _plain(case.pump.efficiency)
+
+
+def _rating(
+    case: Case, pump: CentrifugalPump | DisplacementPump | None, product: Product
+) -> float | None:
+    """Pressure that is at hand to start the line [Pa]."""
+    rated = None if case.pump is None else _plain(case.pump.rated_pressure)
+    if not isinstance(pump, CentrifugalPump):
+        return rated
+    at_hand = max(pump.heads) * float(np.asarray(product.density)) * GRAVITY
+    return at_hand if rated is None else min(rated, at_hand)
+
+
+def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution, ...]:
+    taken = readings.temperature
+    if taken is None or product.knows_temperature:
+        return ()
+    apart = abs(float(np.mean(taken)) - product.temperature)
+    if apart <= ONE_TEMPERATURE:
+        return ()
+    return (
+        Caution(
+            "temperature-of-readings",
+            f"The readings were taken at {float(np.mean(taken)) - 273.15:.1f} °C and the product "
+            f"is pumped at {product.temperature - 273.15:.1f} °C.",
+            "Take readings at the temperature of the line, or at two temperatures around it.",
+            product.name,
+        ),
+    )
+
+
+def _solids_cautions(case: Case, line: LineResult) -> tuple[Caution, ...]:
+    block = case.product.solids
+    if block is None:
+        return ()
+    solids = Solids(**block.given())
+    product = line.product
+    at_rest = product.static_yield_stress
+    found: list[tuple[Caution, ...]] = []
+    for part in line.parts:
+        if part.kind != "pipe":
+            continue
+        flowing = product.model_at(float(part.temperature)).yield_stress
+        found.append(
+            settling_cautions(
+                solids,
+                yield_stress=float(flowing if at_rest is None else np.asarray(at_rest)),
+                density=float(np.asarray(product.density)),
+                diameter=float(part.diameter),
+                velocity=float(part.velocity),
+                laminar=part.regime == "laminar",
+                place=part.name,
+            )
+        )
+    return merge_cautions(*found)
+
+
+def _plain(value: float | None) -> float | None:
+    return None if value is None else float(value)

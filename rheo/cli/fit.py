@@ -1,0 +1,89 @@
+"""`rheo fit`: ranked flow-curve models for one file of readings."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+import typer
+
+from rheo.cli import terminal
+from rheo.cli.options import Json, UnitsOption, named_values, optional_quantity
+from rheo.cli.readings_options import (
+    Columns,
+    Dimensions,
+    GeometryKind,
+    ReadingsFile,
+    geometry_text,
+)
+from rheo.cli.show_fits import show_fits, show_readings
+from rheo.cli.terminal import Units
+from rheo.errors import InputError, merge_cautions
+
+
+def fit(
+    readings: ReadingsFile,
+    models: Annotated[
+        list[str] | None,
+        typer.Option("--model", "-m", help="Only this model; may be repeated. All when absent."),
+    ] = None,
+    weighting: Annotated[
+        str, typer.Option("--weighting", "-w", help="relative, absolute or instrument.")
+    ] = "relative",
+    percent_of_reading: Annotated[
+        float, typer.Option(help="For --weighting instrument, from its data sheet.")
+    ] = 0.0,
+    percent_of_full_scale: Annotated[
+        float, typer.Option(help="For --weighting instrument, from its data sheet.")
+    ] = 0.0,
+    geometry: GeometryKind = None,
+    dimensions: Dimensions = None,
+    columns: Columns = None,
+    sheet: Annotated[str | None, typer.Option("--sheet", help="Sheet of a workbook.")] = None,
+    sweep: Annotated[
+        str, typer.Option("--sweep", help="Branch to fit: up, down or both.")
+    ] = "both",
+    full_scale: Annotated[
+        str | None, typer.Option("--full-scale", help="Torque at full scale: '10 mN.m'.")
+    ] = None,
+    exclude: Annotated[
+        list[int] | None,
+        typer.Option("--exclude", "-x", min=1, help="Leave out a reading, counted from 1."),
+    ] = None,
+    units: UnitsOption = Units.metric,
+    as_json: Json = False,
+) -> None:
+    """Ranked flow-curve models for one file of readings.
+
+    With a geometry, in the file or by --geometry, the models are fitted to what the instrument
+    measured; without one, to shear rate and stress.
+    """
+    from rheo.case.as_data import fits_data, readings_data
+    from rheo.case.load_readings import branch_of, weighting_of
+    from rheo.fitting import fit as fitted
+    from rheo.readings import read_readings
+
+    found = read_readings(
+        readings,
+        columns=named_values(columns or [], "--column") or None,
+        geometry=geometry_text(geometry, dimensions),
+        sheet=sheet,
+        full_scale_torque=optional_quantity(full_scale, "N*m", "--full-scale"),
+    )
+    if exclude:
+        if max(exclude) > len(found):
+            raise InputError(
+                f"there is no reading {max(exclude)}; they are numbered 1 to {len(found)}",
+                "--exclude",
+            )
+        found = found.with_excluded([number - 1 for number in exclude])
+    chosen = branch_of(found, sweep)
+    weights = weighting_of(weighting, percent_of_reading, percent_of_full_scale, chosen)
+    fits = fitted(chosen.flow_curve(), models=models or None, weighting=weights)
+    cautions = merge_cautions(found.cautions, fits.cautions)
+    if as_json:
+        terminal.print_json({"readings": readings_data(found), **fits_data(fits)})
+        return
+    out = terminal.console()
+    show_readings(out, found, units.value)
+    show_fits(out, fits, fits.best)
+    terminal.cautions(out, cautions)

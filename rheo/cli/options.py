@@ -1,0 +1,58 @@
+"""Options that several commands share, and texts of the command line as quantities."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import Annotated
+
+import typer
+
+from rheo.cli.terminal import Units
+from rheo.errors import InputError
+
+Json = Annotated[
+    bool, typer.Option("--json", help="Print only JSON, in SI units, on standard output.")
+]
+CaseFile = Annotated[Path, typer.Argument(metavar="CASE.toml", help="The case file.")]
+Outside = Annotated[
+    bool,
+    typer.Option("--allow-outside", help="Let the case name files outside its own folder."),
+]
+UnitsOption = Annotated[Units, typer.Option("--units", help="Units of the tables.")]
+
+
+def quantity(value: str, target: str, option: str) -> float:
+    """Return a text of the command line in SI; `option` is the place of an error."""
+    from rheo.units import parse_quantity
+
+    return parse_quantity(value, target, option)
+
+
+def optional_quantity(value: str | None, target: str, option: str) -> float | None:
+    """Return a text in SI, or None when the option was not given."""
+    return None if value is None else quantity(value, target, option)
+
+
+def named_values(pairs: list[str], option: str) -> dict[str, str]:
+    """Split texts such as ``flow_index=0.5`` into names and values.
+
+    Raises
+    ------
+    InputError
+        If a text has no equals sign, or a name is given twice.
+    """
+    found: dict[str, str] = {}
+    for pair in pairs:
+        name, sign, value = pair.partition("=")
+        name, value = name.strip(), value.strip()
+        if not sign or not name or not value:
+            raise InputError(f"found '{pair[:60]}'; write it like name=value", option)
+        if name in found:
+            raise InputError(f"'{name[:60]}' is given twice; give it once", option)
+        found[name] = value
+    return found
+
+
+def si_unit(unit: str) -> str:
+    """Return the unit of a record as `rheo.units` reads it."""
+    return "dimensionless" if unit == "-" else unit

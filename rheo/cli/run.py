@@ -1,0 +1,93 @@
+"""`rheo run`: from a case file to the duty, on the terminal and in files."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING, Annotated
+
+import typer
+
+from rheo.cli import terminal
+from rheo.cli.options import CaseFile, Json, Outside, UnitsOption
+from rheo.cli.terminal import Units
+
+if TYPE_CHECKING:
+    from rich.console import Console
+
+    from rheo.case import CaseResult
+
+
+def run(
+    case: CaseFile,
+    units: UnitsOption = Units.metric,
+    as_json: Json = False,
+    allow_outside: Outside = False,
+) -> None:
+    """From readings to a duty and a design note: the main job.
+
+    Reads the case, its readings, fits and ranks the models, works out the line, and says how far
+    to trust each number.
+    """
+    from rheo.case import load_case, run_case
+
+    result = run_case(load_case(case, allow_outside))
+    if as_json:
+        terminal.print_json(result.as_dict())
+    else:
+        _show(result, units.value)
+
+
+def _show(result: CaseResult, units: str) -> None:
+    from rheo.cli.show_fits import show_fits, show_readings
+    from rheo.cli.show_line import (
+        show_answer,
+        show_doubt,
+        show_duty,
+        show_parts,
+        show_rates,
+    )
+
+    out = terminal.console()
+    title = result.case.title or result.case.product.name
+    out.print(terminal.line(title, "bold reverse"))
+    show_answer(out, result.line, units, len(result.cautions))
+    for one in result.readings:
+        show_readings(out, one, units)
+    show_fits(out, result.fits, result.chosen)
+    show_duty(out, result.line, units, result.efficiency)
+    show_rates(out, result.line)
+    _show_pump(out, result)
+    show_parts(out, result.line, units)
+    terminal.heading(out, "Start-up")
+    terminal.sentence(out, result.line.start_up.sentence)
+    _show_asked_for(out, result, units)
+    show_doubt(out, result.doubt)
+    terminal.cautions(out, result.cautions)
+    terminal.safety(out, (*result.line.safety, result.line.start_up.safety))
+
+
+def _show_pump(out: Console, result: CaseResult) -> None:
+    point = result.operating
+    if point is None:
+        return
+    terminal.heading(out, "Pump and line")
+    terminal.sentence(out, point.sentence, "" if point.found else "bold yellow")
+
+
+def _show_asked_for(out: Console, result: CaseResult, units: str) -> None:
+    from rheo.report.display import text
+
+    if result.holding is not None:
+        terminal.heading(out, "Holding tube")
+        terminal.sentence(out, result.holding.sentence)
+        terminal.sentence(out, result.holding.safety, "dim")
+    if result.cleaning is not None:
+        terminal.heading(out, "Cleaning in place")
+        pressure = text(result.cleaning.differential_pressure, "pressure", units)
+        terminal.sentence(
+            out,
+            f"{text(result.cleaning.flow, 'flow', units)} of water gives "
+            f"{text(result.cleaning.velocity, 'velocity', units)} in the widest pipe, at "
+            f"{pressure}.",
+        )
+        terminal.sentence(out, result.cleaning.safety, "dim")
