@@ -210,7 +210,7 @@ def _numbers(rows: Sequence[Row], column: Column, grid: Grid, decimal: str) -> F
         if number is None and is_time:
             number = parse_clock(cell)
         if number is None or not np.isfinite(number):
-            raise _no_number(cell, number, grid.at(row.line, column.heading), decimal)
+            raise _no_number(cell, number, column, row, grid, decimal)
         values[index] = number
     with np.errstate(over="ignore"):
         converted = convert(values, column.quantity, column.unit, grid.place)
@@ -229,11 +229,15 @@ def _numbers(rows: Sequence[Row], column: Column, grid: Grid, decimal: str) -> F
     return converted
 
 
-def _no_number(cell: Cell, number: float | None, place: str, decimal: str) -> ReadingsError:
-    text = shown(cell)
+def _no_number(
+    cell: Cell, number: float | None, column: Column, row: Row, grid: Grid, decimal: str
+) -> ReadingsError:
+    text, place = shown(cell), grid.at(row.line, column.heading)
     example = "12,5" if decimal == "," else "12.5"
     if isinstance(cell, str) and not cell.strip():
-        return ReadingsError(f"the cell is empty; write a number such as {example}", place)
+        # A formula that went wrong comes out of a workbook as an empty cell.
+        found = "empty or shows an error" if grid.sheet else "empty"
+        return ReadingsError(f"the cell is {found}; write a number such as {example}", place)
     if number is None and isinstance(cell, str):
         other = "." if decimal == "," else ","
         if parse_number(cell, other) is not None:

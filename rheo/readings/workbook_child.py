@@ -16,7 +16,7 @@ import zipfile
 import zlib
 from typing import Any
 
-MEMORY_BYTES = 900 * 2**20
+MEMORY_BYTES = 700 * 2**20
 CPU_SECONDS = 20
 UNPACKED_BYTES = 60 * 2**20
 MOST_CELLS = 2_000_000

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import difflib
 import json
+import re
 import subprocess
 import sys
 from pathlib import Path
@@ -17,6 +18,12 @@ from rheo.readings.text_grid import MOST_COLUMNS, MOST_LINES
 
 OLE_MAGIC = b"\xd0\xcf\x11\xe0\xa1\xb1\x1a\xe1"
 ZIP_MAGIC = b"PK\x03\x04"
+# The stream that an encrypted XLSX holds, and the record that makes an XLS a protected one.
+_PROTECTED = re.compile(
+    re.escape("EncryptedPackage".encode("utf-16-le"))
+    + rb"|\x09\x08\x10\x00.{16}(?:\x86\x00\x00\x00)?\x2f\x00",
+    re.DOTALL,
+)
 _WALL_SECONDS = 30.0
 _TOO_MUCH = "reading the workbook takes too much memory or time; save only the sheet that "
 _TOO_MUCH += "holds the readings, as CSV"
@@ -44,7 +51,7 @@ def workbook_grids(data: bytes, place: str, sheet: str | int | None) -> tuple[Gr
     ReadingsError
         If the workbook is broken, protected or too large, or has no such sheet.
     """
-    if data.startswith(OLE_MAGIC) and "EncryptedPackage".encode("utf-16-le") in data:
+    if data.startswith(OLE_MAGIC) and _PROTECTED.search(data):
         raise ReadingsError(workbook_child.PASSWORD, place)
     sheets = _read_in_child(data, place)
     if sheet is None:

@@ -45,8 +45,8 @@ DIALECTS = {
     "quoted decimal commas": '"Shear rate [1/s]","Stress [Pa]"\n"1,5","12"\n"20","55,5"\n'
     '"1300,25","1210"\n',
     "thousands": "rate [1/s];stress [Pa]\n1.5;12\n20;55.5\n1,300.25;1,210\n",
-    "thousands after the German manner": "rate [1/s];stress [Pa]\n1,5;12\n20;55,5\n1.300,25;1.210\n",
-    "thousands after the Swiss manner": "rate [1/s];stress [Pa]\n1.5;12\n20;55.5\n1'300.25;1'210\n",
+    "thousands the German way": "rate [1/s];stress [Pa]\n1,5;12\n20;55,5\n1.300,25;1.210\n",
+    "thousands the Swiss way": "rate [1/s];stress [Pa]\n1.5;12\n20;55.5\n1'300.25;1'210\n",
     "thousands with blanks": "rate [1/s];stress [Pa]\n1,5;12\n20;55,5\n1 300,25;1\u202f210\n",
     "lines above": "Made-up run\nOperator: nobody\nCup 3; 20 °C; 2 L\n\n" + PLAIN.replace(",", ";"),
     "comments": "# made up\n// twice\n" + PLAIN.replace("\n20", "\n# a pause\n20") + "! end\n",
