@@ -46,6 +46,11 @@ _PUBLIC = {
     "doubt_budget": "rheo.line",
     "measure_next": "rheo.line",
     "holding_tube": "rheo.line",
+    "Case": "rheo.case",
+    "CaseResult": "rheo.case",
+    "load_case": "rheo.case",
+    "run_case": "rheo.case",
+    "save_case": "rheo.case",
 }
 
 __all__ = ["__version__", *_PUBLIC]  # noqa: PLE0604

@@ -65,7 +65,7 @@ def main() -> None:
         if hasattr(stream, "reconfigure"):
             stream.reconfigure(errors="replace")
     try:
-        app()
+        app(prog_name="rheo")
     except InputError as error:
         _end(str(error), 1)
     except BrokenPipeError:

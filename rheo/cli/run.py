@@ -2,10 +2,7 @@
 
 from __future__ import annotations
 
-from pathlib import Path
-from typing import TYPE_CHECKING, Annotated
-
-import typer
+from typing import TYPE_CHECKING
 
 from rheo.cli import terminal
 from rheo.cli.options import CaseFile, Json, Outside, UnitsOption
