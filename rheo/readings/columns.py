@@ -118,11 +118,18 @@ def _headings(known: Iterable[str]) -> str:
 
 
 def _near(wanted: str, known: Iterable[str]) -> str:
-    by_small = {name.casefold(): name for name in known}
-    near = difflib.get_close_matches(str(wanted).casefold()[:80], by_small, n=2, cutoff=0.5)
-    if not near:
-        return ""
-    return f" (did you mean {' or '.join(repr(shown(by_small[name])) for name in near)}?)"
+    """Return the one or two names that come nearest, with or without their units."""
+    names: dict[str, str] = {}
+    for name in known:
+        names.setdefault(_without_unit(name), name)
+        names.setdefault(_plain(name).casefold(), name)
+    aim = _plain(str(wanted))[:80]
+    found = [
+        *difflib.get_close_matches(aim.casefold(), names, n=2, cutoff=0.5),
+        *difflib.get_close_matches(_without_unit(aim), names, n=1, cutoff=0.5),
+    ]
+    near = list(dict.fromkeys(f"'{shown(names[name])}'" for name in found))[:2]
+    return f" (did you mean {' or '.join(near)}?)" if near else ""
 
 
 def _position(choice: Choice, headings: Sequence[str], allowed: Sequence[int]) -> int | None:
