@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from rheo.case.change import changed
+from rheo.case.embed import embedded
 from rheo.case.quantity import Quantity
 from rheo.case.result import CaseResult
 from rheo.case.run import run_case
@@ -21,6 +23,8 @@ __all__ = [
     "case_from_document",
     "case_from_text",
     "case_text",
+    "changed",
+    "embedded",
     "load_case",
     "run_case",
     "save_case",
