@@ -20,6 +20,7 @@ _PUBLIC = {
     "Readings": "rheo.readings",
     "read_readings": "rheo.readings",
     "screen": "rheo.readings",
+    "loop_area": "rheo.readings",
     "InputError": "rheo.errors",
     "Caution": "rheo.errors",
     "Geometry": "rheo.geometry",

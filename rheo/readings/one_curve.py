@@ -11,9 +11,9 @@ from rheo.readings.sweeps import SAME_TEMPERATURE, curve_or_none
 
 FloatArray = NDArray[np.float64]
 
-# Mean distance of two curves in the logarithm of the stress, and over its standard error, that is
-# more than scatter.
-APART, APART_OVER_ERROR = 0.03, 3.0
+# Mean distance of two curves in the logarithm of the stress, and the share of points on the same
+# side, that are more than scatter.
+APART, SAME_SIDE = 0.03, 0.8
 _LEAST_POINTS = 2
 
 # Nominal curves of one fluid from these are one curve, whatever the fluid, as long as it sticks to
@@ -92,5 +92,5 @@ def _distance(
     other = np.interp(x[first][inside], known_x, known_y)
     gap = y[first][inside] - other
     mean = float(gap.mean())
-    error = float(gap.std()) / np.sqrt(gap.size)
-    return mean if abs(mean) > max(APART, APART_OVER_ERROR * error) else None
+    same_side = float(np.mean(gap * mean > 0))
+    return mean if abs(mean) > APART and same_side >= SAME_SIDE else None
