@@ -1,7 +1,7 @@
 """Which readings to take next, so that the pressure drop is known best.
 
 For each model that may be the right one the pressure drop and the reading at a new speed are
-taken as linear in the parameters around the fit, with the fit's covariance: then a further reading
+taken as linear in the parameters around the fit: then a further reading
 narrows the pressure drop by a known amount (c-optimal design: A. C. Atkinson, A. N. Donev & R. D.
 Tobias, Optimum Experimental Designs, Oxford 2007). The models are mixed by their Akaike weights,
 which the new reading would move: the expected fall in variance is worked out by Gauss-Hermite
@@ -10,6 +10,7 @@ points over the readings that may come.
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -17,15 +18,15 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from rheo.errors import Caution, InputError
-from rheo.geometry import Geometry
 from rheo.line.checks import require_positive
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import Product
-from rheo.line.walk import walk
-from rheo.models import Model
 
 if TYPE_CHECKING:
     from rheo.fitting import Fit, Fits
+    from rheo.fitting.reading_problem import ReadingProblem
+    from rheo.geometry import Geometry
+    from rheo.line.rivals import Candidates, Rival
 
 _LEAST_WEIGHT = 0.01
 _SPEEDS = 41
@@ -44,6 +45,8 @@ class Suggestion:
         Angular speed [rad/s], flow [m3/s], or shear rate [1/s] without an instrument.
     rate : float
         Largest shear rate there by the best model [1/s].
+    place : str
+        Which of several tubes or cups, in words; empty where there is one.
     half_width : float
         Expected half width of the 95 % interval of the pressure drop with these readings, over
         the pressure drop [-].
@@ -53,6 +56,7 @@ class Suggestion:
 
     setting: float
     rate: float
+    place: str
     half_width: float
     variance_share: float
 
@@ -90,23 +94,6 @@ class NextReadings:
         return self.ranking[0]
 
 
-@dataclass(frozen=True, eq=False)
-class _Rival:
-    """One model, linear around its fit.
-
-    `effect` is the covariance of each new reading with ln(pressure), `spread` the variance of its
-    predicted value, `noise` its standard deviation as a reading; all shape (settings,).
-    """
-
-    weight: float
-    log_pressure: float
-    variance: float
-    reading: FloatArray
-    effect: FloatArray
-    spread: FloatArray
-    noise: FloatArray
-
-
 def measure_next(
     fits: Fits,
     line: Line,
@@ -131,8 +118,8 @@ def measure_next(
     flow : float
         [m3/s].
     geometry : Geometry, optional
-        Of the instrument, with scalar dimensions; without one, readings are stresses at shear
-        rates.
+        Of the instrument, with scalar dimensions; that of the readings when absent. Without any,
+        readings are stresses at shear rates.
     settings : array_like, optional
         Speeds that the instrument has, in the unit of its setting; 41 speeds over the range used
         so far when absent.
@@ -149,144 +136,126 @@ def measure_next(
     Raises
     ------
     InputError
-        If no fitted model has a covariance, or the settings or the count cannot be used.
+        If the readings leave the pressure drop open by every model, or the settings or the count
+        cannot be used.
     """
     if isinstance(count, bool) or int(count) != count or count < 1:
         raise InputError(f"count is {count!r}; it must be a whole number above 0", "measure_next")
+    from rheo.line.rivals import rival
+
     likely = [fit for fit in fits if fit.weight >= _LEAST_WEIGHT]
-    usable = [fit for fit in likely if fit.covariance.size and np.isfinite(fit.covariance).all()]
-    if not usable:
+    candidates = _candidates(fits.best, geometry, settings)
+    found = [rival(fit, line, product, flow, candidates, method) for fit in likely]
+    rivals = [one for one in found if one is not None]
+    if not rivals:
         raise InputError(
-            "no fitted model has a covariance, so that nothing can be said of further readings; "
-            "take readings over a wider range of speeds",
+            "the readings leave the pressure drop open by every model, so that nothing can be said "
+            "of further ones; take readings over a wider range of speeds",
             "measure_next",
         )
-    at = _settings(usable[0], geometry, settings)
-    total = sum(fit.weight for fit in usable)
-    rivals = [
-        _rival(fit, fit.weight / total, line, product, flow, geometry, at, count, method)
-        for fit in usable
-    ]
     before = _variance_now(rivals)
-    after = np.clip(before - _expected_fall(rivals), 0.0, None)
-    rates = _rates(usable[0].model, geometry, at)
-    order = np.argsort(after, kind="stable")
+    after = np.clip(before - _expected_fall(rivals, count), 0.0, None)
+    rates = _rates(fits.best, candidates)
     ranking = tuple(
         Suggestion(
-            float(at[i]),
+            float(candidates.setting[i]),
             float(rates[i]),
+            candidates.place[i],
             float(_NORMAL_95 * np.sqrt(after[i])),
             float(after[i] / before) if before > 0 else 1.0,
         )
-        for i in order
+        for i in np.argsort(after, kind="stable")
     )
-    kind = "rate" if geometry is None else geometry.record.setting
     half_width = float(_NORMAL_95 * np.sqrt(before))
     return NextReadings(
-        kind,
+        candidates.kind,
         count,
         half_width,
         ranking,
-        _sentence(kind, count, half_width, ranking[0]),
-        _cautions(likely, usable),
+        _sentence(candidates.kind, count, half_width, ranking[0]),
+        tuple(_cautions(likely, found)),
     )
 
 
-def _settings(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None) -> FloatArray:
-    if settings is not None:
-        at = np.unique(np.asarray(settings, dtype=float))
-        require_positive(at, "settings", "measure_next")
-        if at.size == 0:
-            raise InputError("settings is empty; give at least one speed", "measure_next")
-        return at
-    rates = fit.rates
-    ends = np.array([rates[rates > 0].min(), rates.max()])
-    if geometry is not None:
-        ends = np.asarray(geometry.setting_for_rate(fit.model, ends), dtype=float)
-    return np.geomspace(ends[0], ends[1], _SPEEDS)
+def _candidates(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None) -> Candidates:
+    """Readings that could be taken, with each of the tubes or cups that there are."""
+    from rheo.fitting.reading_problem import ReadingProblem
+    from rheo.line.rivals import Candidates
+
+    problem = fit.problem
+    if geometry is None and isinstance(problem, ReadingProblem):
+        geometry = problem.geometry
+    if geometry is None:
+        at = _settings(settings, fit.rates[fit.rates > 0])
+        return Candidates("rate", at, None, ("",) * at.size)
+    kind = geometry.record.setting
+    if geometry.shape == ():
+        used = fit.rates[fit.rates > 0]
+        ends = np.asarray(geometry.setting_for_rate(fit.model, used), dtype=float)
+        at = _settings(settings, ends)
+        return Candidates(kind, at, geometry, ("",) * at.size)
+    if not isinstance(problem, ReadingProblem) or problem.geometry.key != geometry.key:
+        raise InputError("its dimensions must be single numbers here", f"geometry {geometry.key}")
+    return _several(problem, settings)
 
 
-def _reading(model: Model, geometry: Geometry | None, setting: FloatArray) -> FloatArray:
-    return model.stress(setting) if geometry is None else geometry.predict(model, setting)
+def _several(problem: ReadingProblem, settings: ArrayLike | None) -> Candidates:
+    """Candidates for readings that were taken in several tubes or cups."""
+    from rheo.line.rivals import Candidates
+
+    geometry, count = problem.geometry, problem.setting.size
+    table = np.stack([np.broadcast_to(v, (count,)) for v in geometry.dimensions.values()], axis=-1)
+    rows, group = np.unique(table, axis=0, return_inverse=True)
+    group = group.reshape(-1)
+    parts = [_settings(settings, problem.setting[group == i]) for i in range(len(rows))]
+    index = np.repeat(np.arange(len(rows)), [part.size for part in parts])
+    keys = list(geometry.dimensions)
+    whole = geometry.replaced(**{key: rows[index, i] for i, key in enumerate(keys)})
+    changing = [i for i in range(len(keys)) if np.ptp(rows[:, i]) > 0]
+    words = [", ".join(f"{keys[i]} {1e3 * row[i]:.3g} mm" for i in changing) for row in rows]
+    place = tuple(words[i] for i in index)
+    return Candidates(geometry.record.setting, np.concatenate(parts), whole, place)
 
 
-def _rates(model: Model, geometry: Geometry | None, setting: FloatArray) -> FloatArray:
-    return setting if geometry is None else geometry.sheared(model, setting)[0]
+def _settings(settings: ArrayLike | None, used: FloatArray) -> FloatArray:
+    if settings is None:
+        return np.geomspace(float(np.min(used)), float(np.max(used)), _SPEEDS)
+    at = np.unique(np.asarray(settings, dtype=float))
+    require_positive(at, "settings", "measure_next")
+    if at.size == 0:
+        raise InputError("settings is empty; give at least one speed", "measure_next")
+    return at
 
 
-def _rival(
-    fit: Fit,
-    weight: float,
-    line: Line,
-    product: Product,
-    flow: float,
-    geometry: Geometry | None,
-    settings: FloatArray,
-    count: int,
-    method: str | None,
-) -> _Rival:
-    """Derivatives of ln(pressure) and of every reading by central differences, in one call each."""
-    free = [fit.record.parameter_keys.index(key) for key in _own_keys(fit)]
-    keep = [fit.parameter_keys.index(key) for key in _own_keys(fit)]
-    covariance = fit.covariance[np.ix_(keep, keep)]
-    centre = np.array([float(value) for value in fit.model], dtype=float)
-    steps = _steps(fit, free, centre, np.sqrt(np.diag(covariance)))
-    moved = np.repeat(centre[np.newaxis], 2 * len(free) + 1, axis=0)
-    for row, (index, step) in enumerate(zip(free, steps, strict=True)):
-        moved[1 + 2 * row, index] += step
-        moved[2 + 2 * row, index] -= step
-    models = fit.model_of(moved)
-    pressure = walk(
-        line, product, np.full(1, flow), source=models, method=method
-    ).differential_pressure
-    if not np.all(pressure > 0):
-        raise InputError(
-            "the line needs no pressure at this flow, so that there is nothing to narrow", line.name
-        )
-    readings = _reading(models.with_new_axis(), geometry, settings)
-    log_pressure = np.log(pressure)
-    by_parameter = (log_pressure[1::2] - log_pressure[2::2]) / (2.0 * steps)
-    slopes = (readings[1::2] - readings[2::2]) / (2.0 * steps[:, np.newaxis])
-    effect = by_parameter @ covariance @ slopes
-    spread = np.einsum("is,ij,js->s", slopes, covariance, slopes)
-    weighting = fit.problem.weighting
-    scatter = max(fit.scatter, 1.0) if weighting.known else fit.scatter
-    noise = weighting.sigma(readings[0]) * scatter / np.sqrt(count)
-    variance = float(by_parameter @ covariance @ by_parameter)
-    return _Rival(weight, float(log_pressure[0]), variance, readings[0], effect, spread, noise)
+def _rates(fit: Fit, candidates: Candidates) -> FloatArray:
+    if candidates.geometry is None:
+        return candidates.setting
+    rate, _ = candidates.geometry.sheared(fit.model, candidates.setting)
+    return np.broadcast_to(rate, candidates.setting.shape)
 
 
-def _own_keys(fit: Fit) -> list[str]:
-    """Free parameters of the flow curve; those of the instrument do not reach the pipe."""
-    return [key for key in fit.parameter_keys if key in fit.record.parameter_keys]
-
-
-def _steps(fit: Fit, free: list[int], centre: FloatArray, error: FloatArray) -> FloatArray:
-    """Steps of the central differences: a hundredth of the standard error, inside the bounds."""
-    lower = np.array([fit.record.parameters[index].lower for index in free])
-    upper = np.array([fit.record.parameters[index].upper for index in free])
-    value = centre[free]
-    room = 0.5 * np.minimum(value - lower, upper - value)
-    return np.minimum(np.maximum(0.01 * error, 1e-6 * np.abs(value)), room)
-
-
-def _variance_now(rivals: list[_Rival]) -> float:
+def _weights(rivals: list[Rival]) -> FloatArray:
     weight = np.array([rival.weight for rival in rivals])
+    return weight / weight.sum()
+
+
+def _variance_now(rivals: list[Rival]) -> float:
+    weight = _weights(rivals)
     value = np.array([rival.log_pressure for rival in rivals])
     within = np.array([rival.variance for rival in rivals])
     return float(weight @ (within + (value - weight @ value) ** 2))
 
 
-def _expected_fall(rivals: list[_Rival]) -> FloatArray:
+def _expected_fall(rivals: list[Rival], count: int) -> FloatArray:
     """Return the expected fall of the variance at each setting, shape (settings,).
 
     It is the variance of the mean that the mixture of models would come to (law of total
     variance). Axes below: model that is true, Gauss-Hermite point, model that judges, setting.
     """
-    weight = np.array([rival.weight for rival in rivals])
+    weight = _weights(rivals)
     value = np.array([rival.log_pressure for rival in rivals])
     reading = np.stack([rival.reading for rival in rivals])
-    deviation = np.sqrt(np.stack([rival.spread + rival.noise**2 for rival in rivals]))
+    deviation = np.sqrt(np.stack([rival.spread + rival.noise**2 / count for rival in rivals]))
     gain = np.stack([rival.effect for rival in rivals]) / deviation**2
     seen = reading[:, np.newaxis, :] + deviation[:, np.newaxis, :] * _NODES[:, np.newaxis]
     off = seen[:, :, np.newaxis, :] - reading
@@ -301,6 +270,7 @@ def _expected_fall(rivals: list[_Rival]) -> FloatArray:
 
 
 def _sentence(kind: str, count: int, now: float, best: Suggestion) -> str:
+    where = f", {best.place}," if best.place else ""
     numbers = {1: "One more reading", 2: "Two more readings", 3: "Three more readings"}
     start = numbers.get(count, f"{count} more readings")
     if kind == "angular_speed":
@@ -309,6 +279,7 @@ def _sentence(kind: str, count: int, now: float, best: Suggestion) -> str:
         speed = f"{3.6e6 * best.setting:.3g} L/h ({best.rate:.3g} 1/s)"
     else:
         speed = f"{best.setting:.3g} 1/s"
+    speed += where
     if best.variance_share > 0.95:
         return (
             f"Further readings would tell little: {start.lower()} near {speed} would leave the "
@@ -321,19 +292,15 @@ def _sentence(kind: str, count: int, now: float, best: Suggestion) -> str:
 
 
 def _percent(share: float) -> str:
-    return f"{100.0 * share:.2g} %"
+    return f"{100.0 * share:.2g} %" if share < 1.0 else "more than 100 %"
 
 
-def _cautions(likely: list[Fit], usable: list[Fit]) -> tuple[Caution, ...]:
-    lost = [fit.record.name for fit in likely if fit not in usable]
-    if not lost:
-        return ()
-    return (
-        Caution(
+def _cautions(likely: list[Fit], found: list[Rival | None]) -> Iterator[Caution]:
+    lost = [fit.record.name for fit, one in zip(likely, found, strict=True) if one is None]
+    if lost:
+        yield Caution(
             "models-not-counted",
-            f"{', '.join(lost)} could not be counted: the readings do not tell its parameters "
-            "apart.",
+            f"Not counted: {', '.join(lost)}, by which the readings leave the pressure drop open.",
             "Read the answer as one for the other models.",
             "measure_next",
-        ),
-    )
+        )

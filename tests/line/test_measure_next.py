@@ -135,6 +135,67 @@ def test_an_instrument_is_spoken_of_in_its_own_speeds() -> None:
     assert found.best.rate == pytest.approx(float(rate), rel=1e-12)
 
 
+def test_a_plateau_never_reached_does_no_harm() -> None:
+    """Carreau's plateaus cannot be found from a power law; its pressure drop is known as well."""
+    rng = np.random.default_rng(9)
+    thinning = rheo.model("power-law", consistency=5.0, flow_index=0.4)
+    stresses = thinning.stress(RATES) * (1.0 + NOISE * rng.standard_normal(RATES.size))
+    curve = rheo.FlowCurve(RATES, stresses)
+    alone = rheo.measure_next(fit(curve, models="power-law"), LINE, PRODUCT, 2e-4)
+    mixed = rheo.measure_next(fit(curve, models=["power-law", "carreau"]), LINE, PRODUCT, 2e-4)
+    assert alone.half_width < 0.1
+    assert mixed.half_width < 2.0 * alone.half_width
+
+
+def test_readings_that_leave_the_pressure_open_are_said_to() -> None:
+    """The wall rate of the pipe lies on a plateau that the readings never reach."""
+    rng = np.random.default_rng(9)
+    thinning = rheo.model("power-law", consistency=5.0, flow_index=0.4)
+    stresses = thinning.stress(RATES) * (1.0 + NOISE * rng.standard_normal(RATES.size))
+    fits = fit(rheo.FlowCurve(RATES, stresses), models="cross")
+    found = rheo.measure_next(fits, LINE, PRODUCT, 2e-4)
+    far = Line(discharge=(Pipe(100.0, 1.5),))
+    slow = rheo.measure_next(fits, far, PRODUCT, 1e-6)
+    assert found.half_width < 0.2
+    assert slow.half_width > 1.0
+    assert "more than 100 %" in slow.sentence
+
+
+def test_several_tubes_are_told_apart() -> None:
+    rng = np.random.default_rng(4)
+    diameter = np.repeat([0.005, 0.01], 8)
+    flow = np.tile(np.geomspace(2e-7, 2e-5, 8), 2)
+    tubes = rheo.geometry("tube", diameter=diameter, length=1.0)
+    drop = tubes.predict(TRUTH, flow) * (1.0 + NOISE * rng.standard_normal(16))
+    readings = rheo.Readings(geometry=tubes, flow=flow, pressure_drop=drop)
+    found = rheo.measure_next(
+        fit(readings, models="herschel-bulkley"), LINE, PRODUCT, 1e-3, settings=[1e-6, 1e-5]
+    )
+    assert found.kind == "flow"
+    assert {one.place for one in found.ranking} == {"diameter 5 mm", "diameter 10 mm"}
+    assert len(found.ranking) == 4
+    assert found.best.place in found.sentence
+    # The same flow shears faster in the narrower tube.
+    rates = {(one.setting, one.place): one.rate for one in found.ranking}
+    assert rates[1e-5, "diameter 5 mm"] > rates[1e-5, "diameter 10 mm"]
+
+
+def test_readings_with_a_geometry_speak_of_it_by_themselves() -> None:
+    rng = np.random.default_rng(4)
+    cup = rheo.geometry(
+        "concentric-cylinders", inner_radius=0.0125, outer_radius=0.01356, length=0.0375
+    )
+    speed = np.geomspace(0.5, 30.0, 9)
+    torque = cup.predict(TRUTH, speed) * (1.0 + NOISE * rng.standard_normal(9))
+    readings = rheo.Readings(geometry=cup, angular_speed=speed, torque=torque)
+    fits = fit(readings, models="herschel-bulkley")
+    found = rheo.measure_next(fits, LINE, PRODUCT, 1e-4)
+    assert found.kind == "angular_speed"
+    settings = [one.setting for one in found.ranking]
+    assert min(settings) == pytest.approx(0.5, rel=1e-6)
+    assert max(settings) == pytest.approx(30.0, rel=1e-6)
+
+
 def test_speeds_are_found_from_the_readings_when_none_are_given() -> None:
     rng = np.random.default_rng(4)
     fits = fit(rheo.FlowCurve(RATES, _readings(RATES, rng)), models="power-law")

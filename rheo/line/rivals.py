@@ -1,0 +1,206 @@
+"""Models that may be the right one, linear around their fits: pressure drop and new readings.
+
+A model's doubt in its parameters is taken from the singular values of its weighted sensitivities,
+so that a parameter that moves neither the readings nor the pressure drop (a plateau never reached)
+does no harm, while one that moves the pressure drop and not the readings is found out.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from rheo.errors import InputError
+from rheo.fitting.problem import CurveProblem
+from rheo.fitting.reading_problem import ReadingProblem
+from rheo.line.parts import FloatArray, Line
+from rheo.line.product import Product
+from rheo.line.walk import walk
+
+if TYPE_CHECKING:
+    from rheo.fitting import Fit
+    from rheo.geometry import Geometry
+
+# Below this share of the largest singular value the readings do not see a direction at all, and
+# below the other one the pressure drop does not (both far above the rounding of the slopes).
+_UNSEEN = 1e-7
+_NO_MATTER = 1e-5
+_STEP = 1e-5
+
+
+@dataclass(frozen=True, eq=False)
+class Candidates:
+    """Readings that could be taken.
+
+    Parameters
+    ----------
+    kind : str
+        ``angular_speed``, ``flow`` or ``rate``.
+    setting : array, shape (candidates,)
+        Angular speed [rad/s], flow [m3/s], or shear rate [1/s].
+    geometry : Geometry or None
+        With dimensions of shape () or (candidates,); None for stresses at shear rates.
+    place : tuple of str
+        Which of several tubes or cups, in words; empty texts where there is one.
+    """
+
+    kind: str
+    setting: FloatArray
+    geometry: Geometry | None
+    place: tuple[str, ...]
+
+
+@dataclass(frozen=True, eq=False)
+class Rival:
+    """One model, linear around its fit.
+
+    Parameters
+    ----------
+    weight : float
+        Akaike weight [-].
+    log_pressure, variance : float
+        ln of the pressure drop, and its variance [-].
+    reading : array, shape (candidates,)
+        Predicted reading.
+    effect, spread : array, shape (candidates,)
+        Covariance of the predicted reading with the ln of the pressure drop, and its variance.
+    noise : array, shape (candidates,)
+        Standard deviation of a reading about its prediction.
+    """
+
+    weight: float
+    log_pressure: float
+    variance: float
+    reading: FloatArray
+    effect: FloatArray
+    spread: FloatArray
+    noise: FloatArray
+
+
+def rival(
+    fit: Fit,
+    line: Line,
+    product: Product,
+    flow: float,
+    candidates: Candidates,
+    method: str | None,
+) -> Rival | None:
+    """Return a fitted model as a rival.
+
+    Parameters
+    ----------
+    fit : Fit
+        The fitted model.
+    line, product, flow : Line, Product, float
+        Where the pressure drop is wanted, and the flow [m3/s].
+    candidates : Candidates
+        Readings that could be taken.
+    method : str or None
+        Turbulent friction method.
+
+    Returns
+    -------
+    Rival or None
+        None where the readings leave the pressure drop by this model open.
+    """
+    problem = fit.problem
+    values = np.concatenate(
+        [
+            [float(value) for value in fit.model],
+            [fit.parameters[one.key].value for one in problem.extra],
+        ]
+    )
+    free = np.array([key in fit.parameter_keys for key in fit.parameters])
+    if not free.any() or fit.freedom < 1:
+        return None
+    _, slopes = problem.sensitivity(values[np.newaxis])
+    weighted = slopes[0, free] / problem.weighting.sigma(problem.observed)
+    scale = np.linalg.norm(weighted, axis=-1)
+    if not np.all(np.isfinite(scale) & (scale > 0)):
+        return None
+    _, singular, directions = np.linalg.svd(
+        (weighted / scale[:, np.newaxis]).T, full_matrices=False
+    )
+    log_pressure, by_parameter = _log_pressure(fit, values, free, line, product, flow, method)
+    pull = directions @ (by_parameter / scale)
+    seen = singular > _UNSEEN * singular[0]
+    if np.any(np.abs(pull[~seen]) > _NO_MATTER * np.abs(pull).max()):
+        return None
+    reading, new_slopes, share = _new_readings(fit, values, candidates)
+    push = directions[seen] @ (new_slopes[free] / scale[:, np.newaxis])
+    scatter = max(fit.scatter, 1.0) if problem.weighting.known else fit.scatter
+    size = scatter**2 / singular[seen] ** 2
+    return Rival(
+        fit.weight,
+        log_pressure,
+        float(np.sum(size * pull[seen] ** 2)),
+        reading,
+        (size * pull[seen]) @ push,
+        size @ push**2,
+        share * reading * scatter,
+    )
+
+
+def _log_pressure(
+    fit: Fit,
+    values: FloatArray,
+    free: FloatArray,
+    line: Line,
+    product: Product,
+    flow: float,
+    method: str | None,
+) -> tuple[float, FloatArray]:
+    """ln(pressure) and its derivatives by the free parameters, by central differences in one call.
+
+    A parameter of the instrument does not reach the pipe: its derivative is 0.
+    """
+    count = len(fit.record.parameters)
+    own = np.flatnonzero(free[:count])
+    lower = np.array([one.lower for one in fit.record.parameters])[own]
+    upper = np.array([one.upper for one in fit.record.parameters])[own]
+    room = 0.5 * np.minimum(values[own] - lower, upper - values[own])
+    step = np.minimum(_STEP * np.abs(values[own]), room)
+    moved = np.repeat(values[np.newaxis, :count], 2 * own.size + 1, axis=0)
+    row = np.arange(own.size)
+    moved[1 + 2 * row, own] += step
+    moved[2 + 2 * row, own] -= step
+    found = walk(line, product, np.full(1, flow), source=fit.model_of(moved), method=method)
+    pressure = found.differential_pressure
+    if not np.all(pressure > 0):
+        raise InputError(
+            "the line needs no pressure at this flow, so that there is nothing to narrow", line.name
+        )
+    logs = np.log(np.broadcast_to(pressure, (moved.shape[0],)))
+    slopes = np.zeros(values.size)
+    width = moved[1 + 2 * row, own] - moved[2 + 2 * row, own]
+    slopes[own] = (logs[1::2] - logs[2::2]) / width
+    return float(logs[0]), slopes[free]
+
+
+def _new_readings(
+    fit: Fit, values: FloatArray, candidates: Candidates
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Predicted readings, their slopes (p, candidates), and their weighting as shares of them."""
+    problem, weighting = fit.problem, fit.problem.weighting
+    at = candidates.setting
+    if candidates.geometry is None:
+        curve = CurveProblem(fit.record, at, np.ones_like(at), weighting)
+        reading, slopes = curve.sensitivity(values[np.newaxis])
+        return reading[0], slopes[0], weighting.sigma(reading[0]) / reading[0]
+    if isinstance(problem, ReadingProblem) and candidates.geometry.key == problem.geometry.key:
+        new = replace(problem, geometry=candidates.geometry, setting=at, observed=np.ones_like(at))
+        new = replace(new, observed=new.predict(values))
+        reading, slopes = new.sensitivity(values[np.newaxis])
+        return reading[0], slopes[0], weighting.sigma(reading[0]) / reading[0]
+    # The readings so far are stresses or of another instrument: a new one is as good, relatively,
+    # as a stress is there.
+    own = values[: len(fit.record.parameters)]
+    new = ReadingProblem(fit.record, candidates.geometry, at, np.ones_like(at), weighting)
+    new = replace(new, observed=new.predict(own))
+    reading, slopes = new.sensitivity(own[np.newaxis])
+    whole = np.zeros((values.size, at.size))
+    whole[: own.size] = slopes[0]
+    _, stress = candidates.geometry.sheared(fit.model, at)
+    return reading[0], whole, weighting.sigma(stress) / stress
