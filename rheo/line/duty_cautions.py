@@ -41,6 +41,7 @@ def duty_cautions(
         _wall_rates(found, product),
         _temperatures(found, product),
         _heating(product, parts),
+        _by_itself(found),
         _suction(found, product, npsh),
         _vapour(found, product, profile),
         (
@@ -116,6 +117,17 @@ def _heating(product: Product, parts: tuple[PartResult, ...]) -> Iterator[Cautio
             "Check the pressure drop with the flow curve of the warmer product, and the product's "
             "own limit.",
             product.name,
+        )
+
+
+def _by_itself(found: Walk) -> Iterator[Caution]:
+    least = float(np.min(found.differential_pressure))
+    if least < 0:
+        yield Caution(
+            "runs-by-itself",
+            f"Heights and vessels drive the line by {-least / 1e5:.3g} bar more than it needs.",
+            "No pump is needed for this flow; a valve must hold it back, or it will run faster.",
+            found.line.name,
         )
 
 

@@ -107,6 +107,7 @@ def test_a_result_that_does_not_hang_on_the_draws_is_still_one_a_draw() -> None:
             FLOW,
             "below-vapour-pressure",
         ),
+        (Line(discharge=(Pipe(20.0, 0.2, rise=-20.0),)), SAUCE, FLOW, "runs-by-itself"),
     ],
 )
 def test_cautions_of_a_duty(line: Line, product: Product, flow: float, code: str) -> None:
