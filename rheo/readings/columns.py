@@ -244,7 +244,7 @@ def _meant_column(index: int, heading: str, known: Meaning) -> Column:
         index,
         known.quantity,
         heading,
-        known.unit or known.quantity.default_unit,
+        known.unit.strip("[](){} ") or known.quantity.default_unit,
         stated,
         problem=known.problem,
     )

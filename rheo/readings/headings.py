@@ -221,6 +221,8 @@ def convert(
     if quantity.percent:
         if text in {"%", "percent"}:
             return array / 100.0
+        if text == "1":
+            return array
         raise UnitError(f"unit '{unit.strip()[:60]}' is no share of full scale; write %", place)
     if quantity.unit == "degree":
         if text.lower() in {"degree", "deg", "°"}:

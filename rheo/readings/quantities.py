@@ -215,10 +215,11 @@ QUANTITIES: tuple[Quantity, ...] = (
         word_units=dict.fromkeys(
             (
                 *("relative torque", "percent torque", "torque percent", "% torque", "torque %"),
-                *("full scale", "percent full scale", "% full scale", "% fs", "torque fraction"),
+                *("full scale", "percent full scale", "% full scale", "% fs"),
             ),
             "%",
-        ),
+        )
+        | {"torque fraction": "1"},
         unit_words=dict.fromkeys(
             (
                 *("% fs", "%fs", "% f.s.", "% full scale", "% of full scale", "% of fs"),

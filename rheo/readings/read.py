@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping, Sequence
 from dataclasses import replace
 
-from rheo.errors import Caution, ReadingsError, merge_cautions
+from rheo.errors import Caution, ReadingsError
 from rheo.geometry import Geometry
 from rheo.readings.assemble import FoundTable, assembled
 from rheo.readings.blocks import Table, find_tables, found_headings
@@ -103,17 +103,18 @@ def read_readings(
         )
     else:
         grids = (text_grid(data, place),)
-    grid, found, cautions = _readable(grids, choice, geometry is not None)
-    found, more = _chosen_blocks(found, block, grid)
-    return assembled(
-        grid, found, merge_cautions(cautions, more), geometry, decimal, full_scale_torque
-    )
+    grid, found, others = _readable(grids, choice, geometry is not None)
+    found, cautions = _chosen_blocks(found, block, grid)
+    if others and sheet is None:
+        cautions = (_other_sheets(grid, others), *cautions)
+    readings = assembled(grid, found, cautions, geometry, decimal, full_scale_torque)
+    return replace(readings, sheets=(grid.sheet, *others) if grid.sheet else ())
 
 
 def _readable(
     grids: Sequence[Grid], choice: UserChoice, has_geometry: bool
-) -> tuple[Grid, list[FoundTable], tuple[Caution, ...]]:
-    """Return the first grid that holds readings, with its tables."""
+) -> tuple[Grid, list[FoundTable], list[str]]:
+    """Return the first grid that holds readings, its tables, and the names of other such grids."""
     first: tuple[Grid, list[FoundTable]] | None = None
     others: list[str] = []
     tables: list[Table] = []
@@ -134,17 +135,18 @@ def _readable(
     check_choices_found(choice, [(t.headings, t.columns) for t in tables], grids[0].place)
     if first is None:
         raise _no_columns(grids, choice, tables)
-    if not others:
-        return *first, ()
+    return *first, others
+
+
+def _other_sheets(grid: Grid, others: Sequence[str]) -> Caution:
     listed = ", ".join(f"'{shown(other)}'" for other in others[:12])
-    caution = Caution(
+    return Caution(
         code="other-sheets",
-        sentence=f"The readings are those of sheet '{shown(first[0].sheet)}'; "
-        f"there are readings in {listed} too.",
+        sentence=f"The readings are those of sheet '{shown(grid.sheet)}'; there are readings in "
+        f"{listed} too.",
         advice="Choose the sheet if it should be another.",
-        place=first[0].place,
+        place=grid.place,
     )
-    return *first, (caution,)
 
 
 def _found(table: Table, choice: UserChoice, has_geometry: bool, grid: Grid) -> FoundTable:

@@ -135,6 +135,8 @@ class Readings:
         What was understood of the columns.
     table : tuple of RawBlock
         The blocks of the file as read.
+    sheets : tuple of str
+        Sheets of the file that hold readings, the one that was read first.
     cautions : tuple of Caution
         What the reader wants known.
 
@@ -172,6 +174,7 @@ class Readings:
     lines: NDArray[np.int64] | None = None
     columns: tuple[ColumnRecord, ...] = ()
     table: tuple[RawBlock, ...] = ()
+    sheets: tuple[str, ...] = ()
     cautions: tuple[Caution, ...] = ()
 
     def __post_init__(self) -> None:

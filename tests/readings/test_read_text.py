@@ -106,7 +106,7 @@ def test_what_was_understood_is_recorded() -> None:
     assert found == [
         ("", "Point", 1, "", True),
         ("rate", "Shear rate [1/s]", 2, "1/s", True),
-        ("viscosity", "Viscosity", 3, "(cP)", True),
+        ("viscosity", "Viscosity", 3, "cP", True),
         ("temperature", "Temp.", 4, "°C", False),
     ]
     assert codes(readings) == ["unit-not-stated"]
@@ -255,6 +255,13 @@ def test_clock_times() -> None:
         "2024-01-02 00:01:30;3;3\n"
     )
     assert dated.time.tolist() == [0, 60, 120]
+
+
+def test_a_share_of_full_scale_that_is_no_percentage() -> None:
+    readings = read("angular_speed;torque_fraction\n1,5;0,1\n2;0,2\n3;0,3\n")
+    assert readings.torque_fraction.tolist() == [0.1, 0.2, 0.3]
+    assert readings.angular_speed.tolist() == [1.5, 2.0, 3.0]
+    assert readings.cautions == ()
 
 
 def test_percent_signs_in_the_cells() -> None:

@@ -126,6 +126,7 @@ def test_sheets() -> None:
     assert readings.rate.tolist() == [1.5, 20.0, 1300.25]
     assert [caution.code for caution in readings.cautions] == ["other-sheets"]
     assert "there are readings in 'Again' too" in readings.cautions[0].sentence
+    assert readings.sheets == ("Run", "Again")
     for sheet in ("Again", 3):
         assert read_readings(data, sheet=sheet).rate.tolist() == [1300.25, 20.0, 1.5]
     with pytest.raises(
