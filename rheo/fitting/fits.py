@@ -7,9 +7,11 @@ from dataclasses import dataclass
 from functools import cached_property
 
 from rheo.errors import Caution, InputError, merge_cautions
+from rheo.fitting.draws import mixed_draws
 from rheo.fitting.ranking import TIE
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Weighting
+from rheo.models import Model
 
 
 @dataclass(frozen=True, eq=False)
@@ -74,7 +76,8 @@ class Fits:
             return (
                 f"{name} lies within {TIE:g} units of AICc of {lowest.record.name} "
                 f"({best.aicc - lowest.aicc:.1f} above it) with {best.parameter_count} parameters "
-                f"instead of {lowest.parameter_count}, so the simpler model is used; it has {error}."
+                f"instead of {lowest.parameter_count}, so the simpler model is used; "
+                f"it has {error}."
             )
         return (
             f"{name} has the lowest AICc of {len(self.ranking)} models, "
@@ -85,6 +88,14 @@ class Fits:
     def cautions(self) -> tuple[Caution, ...]:
         """What to know of the readings, of the best fit and of the models left out."""
         return merge_cautions(self.data_cautions, self.best.cautions)
+
+    def draws(self, count: int, seed: int = 1) -> tuple[Model, ...]:
+        """Return flow curves with arrays of drawn parameters, mixed over models by Akaike weight.
+
+        The lengths of the arrays add up to `count`; models whose share is below one draw are
+        left out.
+        """
+        return mixed_draws(self, count, seed)
 
     def __repr__(self) -> str:
         rows = ", ".join(f"{fit.key} ({fit.weight:.2f})" for fit in self.ranking)
