@@ -52,6 +52,10 @@ _PUBLIC = {
     "load_case": "rheo.case",
     "run_case": "rheo.case",
     "save_case": "rheo.case",
+    "note_html": "rheo.report",
+    "note_pdf": "rheo.report",
+    "workbook": "rheo.report",
+    "write_note": "rheo.report",
 }
 
 __all__ = ["__version__", *_PUBLIC]  # noqa: PLE0604

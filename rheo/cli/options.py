@@ -18,6 +18,10 @@ Outside = Annotated[
     bool,
     typer.Option("--allow-outside", help="Let the case name files outside its own folder."),
 ]
+OutFolder = Annotated[
+    Path | None,
+    typer.Option("--out", metavar="FOLDER", help="Write note (HTML, PDF) and workbook there."),
+]
 UnitsOption = Annotated[Units, typer.Option("--units", help="Units of the tables.")]
 
 

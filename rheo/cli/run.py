@@ -5,10 +5,12 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from rheo.cli import terminal
-from rheo.cli.options import CaseFile, Json, Outside, UnitsOption
+from rheo.cli.options import CaseFile, Json, OutFolder, Outside, UnitsOption
 from rheo.cli.terminal import Units
 
 if TYPE_CHECKING:
+    from pathlib import Path
+
     from rich.console import Console
 
     from rheo.case import CaseResult
@@ -19,6 +21,7 @@ def run(
     units: UnitsOption = Units.metric,
     as_json: Json = False,
     allow_outside: Outside = False,
+    out: OutFolder = None,
 ) -> None:
     """From readings to a duty and a design note: the main job.
 
@@ -28,10 +31,17 @@ def run(
     from rheo.case import load_case, run_case
 
     result = run_case(load_case(case, allow_outside))
+    written: tuple[Path, ...] = ()
+    if out is not None:
+        from rheo.report import write_note
+
+        written = write_note(result, out, system=units.value)
     if as_json:
         terminal.print_json(result.as_dict())
     else:
         _show(result, units.value)
+        for path in written:
+            terminal.console().print(terminal.line(f"Written: {path}"))
 
 
 def _show(result: CaseResult, units: str) -> None:

@@ -145,7 +145,7 @@ def test_excluded_points_are_hollow_and_flagged_ones_ringed() -> None:
     }
     assert ringed == {1, 20}
     assert {mark.marker for mark in marks} == {0, 1}
-    assert "rising, left out" in [mark.name for mark in marks]
+    assert "rising, not fitted" in [mark.name for mark in marks]
     names = [trace.name for trace in flow_curve().plotly().data]
     assert names.count("flagged") == 2
 
@@ -157,7 +157,7 @@ def test_readings_of_several_temperatures_have_a_colour_each() -> None:
     marks = [mark for mark in picture.panels[0].marks if isinstance(mark, Points)]
     assert [mark.index for mark in marks] == [(0, 2), (1, 3)]
     assert [mark.style for mark in marks] == [0, 1]
-    assert [mark.name for mark in marks] == ["20.12 °C", "40.02 °C"]
+    assert [mark.name for mark in marks] == ["20.1 °C", "40.0 °C"]
 
 
 def test_viscosity_is_stress_over_rate() -> None:

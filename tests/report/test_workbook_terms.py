@@ -13,9 +13,9 @@ import pytest
 
 import rheo
 from rheo.geometry.tube_flow import nominal_rate, wall_rate
-from rheo.report.workbook.book import LONGEST_CELL, Book, address
-from rheo.report.workbook.relations import RELATIONS, STEPS, next_wall_rate
-from rheo.report.workbook.terms import PI, Term, as_term, exp, ln, sqrt, total
+from rheo.report.sheets.book import LONGEST_CELL, Book, address
+from rheo.report.sheets.relations import RELATIONS, STEPS, next_wall_rate
+from rheo.report.sheets.terms import PI, Term, as_term, exp, ln, sqrt, total
 
 A, B, C = Term("A1", 2.0), Term("B1", 3.0), Term("C1", -4.0)
 DATE = datetime.date(2025, 6, 1)

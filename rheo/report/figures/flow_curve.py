@@ -9,6 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.report.display import shown, unit_label
+from rheo.report.numbers import number as number_text
 from rheo.report.picture import Axis, Band, FloatArray, Line, Mark, Panel, Picture, Points, Strip
 from rheo.report.picture import array as as_array
 
@@ -160,7 +161,7 @@ def _reading_marks(
                     Points(
                         rate[these],
                         height[these],
-                        f"{name}, left out" if hollow else name,
+                        f"{name}, not fitted" if hollow else name,
                         style=number if len(group_names) > 1 else kind_number,
                         marker=kind_number if len(kinds) > 1 else None,
                         hollow=hollow,
@@ -191,8 +192,8 @@ def temperature_groups(
     groups[order] = np.cumsum(steps)
     unit = unit_label("temperature", system)
     names = [
-        f"{float(shown(kelvin[groups == number].mean(), 'temperature', system)):.4g} {unit}"
-        for number in range(int(groups.max(initial=0)) + 1)
+        f"{number_text(float(shown(kelvin[groups == n].mean(), 'temperature', system)))} {unit}"
+        for n in range(int(groups.max(initial=0)) + 1)
     ]
     return groups, names
 
@@ -204,10 +205,10 @@ def _hover(
     quantity: str,
     system: str,
     flagged: bool,
-    left_out: bool,
+    not_fitted: bool,
 ) -> str:
     state = " (flagged)" if flagged else ""
-    state += " (left out)" if left_out else ""
+    state += " (not fitted)" if not_fitted else ""
     return (
         f"reading {i + 1}{state}\n{rate[i]:.4g} {unit_label('rate', system)}, "
         f"{height[i]:.4g} {unit_label(quantity, system)}"

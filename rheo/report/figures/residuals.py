@@ -54,7 +54,7 @@ def residuals(
     marks: list[Strip | Limit | Points] = [Limit(0.0, "", colour="muted")]
     if usual is not None:
         marks.insert(0, Strip(-100 * usual, 100 * usual, "root mean square", axis="y"))
-    for hollow, words in ((False, "readings"), (True, "left out")):
+    for hollow, words in ((False, "readings"), (True, "not fitted")):
         these = np.flatnonzero(out == hollow)
         if these.size:
             hover = tuple(f"reading {numbers[i] + 1}\n{percent[i]:+.2g} %" for i in these)

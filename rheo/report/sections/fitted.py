@@ -2,33 +2,21 @@
 
 from __future__ import annotations
 
-import math
-
 import numpy as np
 
 from rheo.fitting import Fit, Fits
 from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Table
-from rheo.report.figures import residuals
 from rheo.report.numbers import number, with_doubt
 from rheo.report.picture import Picture
 from rheo.report.scripts import unit_words
-
-
-def percent(share: float, digits: int = 2) -> str:
-    """Return a share as a percentage."""
-    return f"{number(100 * share, digits)} %" if math.isfinite(share) else "not known"
-
-
-def title(name: str) -> str:
-    """Return a name with a capital letter at its beginning."""
-    return name[:1].upper() + name[1:]
+from rheo.report.words import capital, percent
 
 
 def ranking_table(fits: Fits, chosen: Fit) -> Table:
     """Return the fitted models in order, the chosen one marked."""
     rows = tuple(
         (
-            title(fit.record.name),
+            capital(fit.record.name),
             str(fit.parameter_count),
             number(fit.aicc, 4),
             percent(fit.weight),
@@ -74,24 +62,11 @@ def parameter_table(fit: Fit) -> Table:
         ("Parameter", "Symbol", "Unit", "Value ± standard error", "95 % from", "to", "Remark"),
         rows,
         numeric=(3, 4, 5),
-        caption=f"{title(fit.record.name)}: {fit.record.equation}",
+        caption=f"{capital(fit.record.name)}: {fit.record.equation}",
     )
 
 
-def residual_picture(fit: Fit, system: str = "metric") -> Picture:
-    """Draw the residuals of a fit; the numbers of the readings are those of the user."""
-    return residuals(
-        fit.rates,
-        fit.observed,
-        fit.predicted,
-        usual=fit.rms_relative_error,
-        name=fit.record.name,
-        system=system,
-        index=fit.points,
-    )
-
-
-def fit_blocks(fits: Fits, chosen: Fit, system: str) -> list[Block]:
+def fit_blocks(fits: Fits, chosen: Fit, picture: Picture) -> list[Block]:
     """Return the blocks that explain one fit.
 
     Parameters
@@ -100,8 +75,8 @@ def fit_blocks(fits: Fits, chosen: Fit, system: str) -> list[Block]:
         All models.
     chosen : Fit
         The one in use, which the user may have chosen against the ranking.
-    system : str
-        Unit system.
+    picture : Picture
+        The residuals.
 
     Returns
     -------
@@ -111,7 +86,7 @@ def fit_blocks(fits: Fits, chosen: Fit, system: str) -> list[Block]:
     reason = fits.reason
     if chosen.key != fits.best.key:
         reason = (
-            f"{title(chosen.record.name)} was chosen by the user. "
+            f"{capital(chosen.record.name)} was chosen by the user. "
             f"By the ranking it would be another: {fits.reason}"
         )
     facts = (
@@ -125,7 +100,7 @@ def fit_blocks(fits: Fits, chosen: Fit, system: str) -> list[Block]:
         ranking_table(fits, chosen),
         parameter_table(chosen),
         Facts(facts),
-        Figure(residual_picture(chosen, system)),
+        Figure(picture),
     ]
     if chosen.cautions:
         blocks.append(Cautions(chosen.cautions))

@@ -100,7 +100,7 @@ def methods_section(
         One row a method.
     """
     rows: list[Row] = [model_row(model)]
-    for record in dict.fromkeys(geometry.record for geometry in geometries):
+    for record in {one.record.key: one.record for one in geometries}.values():
         rows.append((f"Instrument: {record.name}", _INTEGRAL, record.source, record.validity))
     rows += [*_FITTING, *_LINE, *_pipe_rows(line)]
     if start_up_method:

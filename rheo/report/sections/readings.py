@@ -51,6 +51,7 @@ def readings_blocks(
     curve: FlowCurve,
     cautions: Sequence[Caution],
     name: str,
+    fitted: NDArray[np.bool_],
     system: str,
 ) -> list[Block]:
     """Return the blocks on one set of readings.
@@ -65,6 +66,8 @@ def readings_blocks(
         From screening.
     name : str
         Where they come from.
+    fitted : array of bool, shape (n,)
+        Which of them were fitted.
     system : str
         Unit system.
 
@@ -78,10 +81,11 @@ def readings_blocks(
     if geometry is not None:
         facts.append(("Instrument", _geometry_words(readings)))
     left_out = int(np.sum(readings.excluded)) if readings.excluded is not None else 0
+    facts.append(("Fitted", str(int(fitted.sum()))))
     facts.append(("Left out by the user", str(left_out)))
     flagged = flagged_mask(len(readings), cautions)
     facts.append(("Flagged", str(int(flagged.sum()))))
-    blocks: list[Block] = [Facts(tuple(facts)), _table(readings, curve, cautions, system)]
+    blocks: list[Block] = [Facts(tuple(facts)), _table(readings, curve, cautions, fitted, system)]
     if geometry is not None:
         blocks.append(
             Paragraph(
@@ -108,7 +112,13 @@ def _geometry_words(readings: Readings) -> str:
     return ", ".join([geometry.record.name, *parts])
 
 
-def _table(readings: Readings, curve: FlowCurve, cautions: Sequence[Caution], system: str) -> Table:
+def _table(
+    readings: Readings,
+    curve: FlowCurve,
+    cautions: Sequence[Caution],
+    fitted: NDArray[np.bool_],
+    system: str,
+) -> Table:
     count = len(readings)
     columns: list[tuple[str, list[str], bool]] = [
         ("Reading", [str(i + 1) for i in range(count)], True)
@@ -127,8 +137,8 @@ def _table(readings: Readings, curve: FlowCurve, cautions: Sequence[Caution], sy
     excluded = readings.excluded if readings.excluded is not None else np.zeros(count, dtype=bool)
     flags = reading_words(count, cautions)
     remarks = [
-        "; ".join(filter(None, ("left out" if out else "", flag)))
-        for out, flag in zip(excluded, flags, strict=True)
+        "; ".join(filter(None, (_use(bool(out), bool(used)), flag)))
+        for out, used, flag in zip(excluded, fitted, flags, strict=True)
     ]
     columns.append(("Remark", remarks, False))
     kept = _kept_rows(count)
@@ -137,7 +147,7 @@ def _table(readings: Readings, curve: FlowCurve, cautions: Sequence[Caution], sy
         for i in kept
     )
     states = tuple(
-        "" if i is None else "muted" if excluded[i] else "flagged" if flags[i] else "" for i in kept
+        "" if i is None else "flagged" if flags[i] else "" if fitted[i] else "muted" for i in kept
     )
     cut = "" if count <= _LONGEST_TABLE else ", the middle left out; the workbook holds all of them"
     return Table(
@@ -147,6 +157,12 @@ def _table(readings: Readings, curve: FlowCurve, cautions: Sequence[Caution], sy
         caption=f"Readings{cut}",
         states=states,
     )
+
+
+def _use(left_out: bool, fitted: bool) -> str:
+    if left_out:
+        return "left out"
+    return "" if fitted else "not fitted"
 
 
 def _kept_rows(count: int) -> list[int | None]:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from rheo.report.workbook.book import Book
+from rheo.report.sheets.book import Book
 
 _HOW_TO_READ = (
     "Every number is in SI, with its unit in the heading.",

@@ -9,9 +9,9 @@ from rheo.line.constants import GRAVITY
 from rheo.line.parts import Equipment
 from rheo.line.result import PartResult
 from rheo.line.route import route
-from rheo.report.workbook.book import Book, Sheet
-from rheo.report.workbook.terms import PI, Term, not_negative, total
-from rheo.report.workbook.wall_sheet import BY_PROGRAM, Duty, wall_sheet
+from rheo.report.sheets.book import Book, Sheet
+from rheo.report.sheets.terms import PI, Term, not_negative, total
+from rheo.report.sheets.wall_sheet import BY_PROGRAM, Duty, wall_sheet
 
 # A pipe follows the closed form unless the program found something else by more than this.
 _SAME = 1e-9

@@ -10,9 +10,9 @@ import numpy as np
 from rheo.geometry.tube_flow import wall_rate
 from rheo.line import LineResult
 from rheo.line.result import PartResult
-from rheo.report.workbook.book import Book, Sheet
-from rheo.report.workbook.relations import RELATIONS, STEPS, Cells, Relation, next_wall_rate
-from rheo.report.workbook.terms import PI, Term
+from rheo.report.sheets.book import Book, Sheet
+from rheo.report.sheets.relations import RELATIONS, STEPS, Cells, Relation, next_wall_rate
+from rheo.report.sheets.terms import PI, Term
 
 BY_PROGRAM = "by the program"
 _TOP = 3

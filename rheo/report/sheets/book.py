@@ -9,8 +9,8 @@ from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any
 
 from rheo.report.palette import LIGHT
+from rheo.report.sheets.terms import Term
 from rheo.report.text import clean
-from rheo.report.workbook.terms import Term
 
 if TYPE_CHECKING:
     import xlsxwriter

@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rheo.errors import Caution
 from rheo.fitting import Fit, Fits
@@ -14,9 +15,9 @@ from rheo.readings import FlowCurve, Readings
 from rheo.report.palette import LIGHT
 from rheo.report.picture import FloatArray
 from rheo.report.sections.readings import reading_words
-from rheo.report.workbook.book import Book, Sheet
-from rheo.report.workbook.relations import RELATIONS
-from rheo.report.workbook.terms import Term, exp, ln, root_mean_square, total
+from rheo.report.sheets.book import Book, Sheet
+from rheo.report.sheets.relations import RELATIONS
+from rheo.report.sheets.terms import Term, exp, ln, root_mean_square, total
 
 _RAW: tuple[tuple[str, str], ...] = (
     ("angular_speed", "Angular speed [rad/s]"),
@@ -36,7 +37,11 @@ _GRID = 61
 
 
 def readings_sheet(
-    book: Book, readings: Readings, curve: FlowCurve, cautions: Sequence[Caution]
+    book: Book,
+    number: int,
+    readings: Readings,
+    curve: FlowCurve,
+    cautions: Sequence[Caution],
 ) -> None:
     """Write every reading in SI, with what was flagged and what was left out.
 
@@ -44,6 +49,8 @@ def readings_sheet(
     ----------
     book : Book
         The workbook.
+    number : int
+        Of the set, counted from 0; the first has the plain name.
     readings : Readings
         As given.
     curve : FlowCurve
@@ -51,7 +58,8 @@ def readings_sheet(
     cautions : sequence of Caution
         From screening.
     """
-    sheet = book.sheet("Readings", "Readings", f"Source: {readings.source}. All in SI.")
+    name = "Readings" if number == 0 else f"Readings {number + 1}"
+    sheet = book.sheet(name, "Readings", f"Source: {readings.source}. All in SI.")
     raw = [(key, head) for key, head in _RAW if getattr(readings, key) is not None]
     nominal = ", nominal" if readings.geometry is not None else ""
     heads = ["Reading", *(head for _, head in raw)]
@@ -93,7 +101,7 @@ class FittedCurve:
 
     name: str
     model: Model
-    points: FloatArray
+    points: NDArray[np.intp]
     rate: FloatArray
     stress: FloatArray
 

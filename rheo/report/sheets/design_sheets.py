@@ -9,8 +9,8 @@ from rheo.line.doubt import DoubtBudget
 from rheo.line.sizing import Sizing
 from rheo.line.system import SystemCurve
 from rheo.report.palette import LIGHT
-from rheo.report.workbook.book import Book, Sheet
-from rheo.report.workbook.terms import PI, Term, not_negative, sqrt, total
+from rheo.report.sheets.book import Book, Sheet
+from rheo.report.sheets.terms import PI, Term, not_negative, sqrt, total
 
 _SIZE_HEADS = (
     "Size", "Inside diameter [m]", "Velocity [m/s]", "8V/D [1/s]", "Wall shear rate [1/s]",

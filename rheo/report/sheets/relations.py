@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
-from rheo.report.workbook.terms import Term, as_term, exp, ln, sqrt
+from rheo.report.sheets.terms import Term, as_term, exp, ln, sqrt
 
 Cells = Mapping[str, Term]
 

@@ -1,0 +1,117 @@
+"""The readings of a result as points of a flow curve, numbered over all sets."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rheo.case.result import CaseResult
+from rheo.errors import Caution
+from rheo.fitting import Fit
+from rheo.readings import FlowCurve, Readings, screen
+from rheo.report.picture import FloatArray
+
+
+@dataclass(frozen=True, eq=False)
+class CasePoints:
+    """All readings of a result; arrays have one entry a reading, the sets one after the other.
+
+    Parameters
+    ----------
+    result : CaseResult
+        Of `run_case`.
+    fit : Fit
+        Whose conversion places the fitted readings; the chosen one unless another is looked at.
+    """
+
+    result: CaseResult
+    fit: Fit
+
+    @cached_property
+    def curves(self) -> tuple[FlowCurve, ...]:
+        """Nominal flow curve of each set."""
+        return tuple(one.flow_curve() for one in self.result.readings)
+
+    @cached_property
+    def cautions(self) -> tuple[tuple[Caution, ...], ...]:
+        """Cautions of each set, from reading it and from screening it."""
+        return tuple(tuple(dict.fromkeys((*one.cautions, *screen(one)))) for one in self._sets)
+
+    @property
+    def _sets(self) -> tuple[Readings, ...]:
+        return self.result.readings
+
+    @cached_property
+    def fitted(self) -> NDArray[np.intp]:
+        """Numbers of the readings that were fitted, in the order of the fit's own arrays."""
+        numbers: list[NDArray[np.intp]] = []
+        start = 0
+        for one, block in zip(self._sets, self.result.case.readings, strict=True):
+            mine = np.arange(start, start + len(one))
+            if block.sweep != "both" and one.branch is not None:
+                mine = mine[one.branch == block.sweep]
+            numbers.append(mine)
+            start += len(one)
+        return np.concatenate(numbers)[self.fit.points]
+
+    @cached_property
+    def rate(self) -> FloatArray:
+        """Shear rates [1/s]: by the fit where a reading was fitted, else nominal."""
+        found = np.concatenate([curve.rate for curve in self.curves])
+        flowing = self.fit.rates > 0
+        found[self.fitted[flowing]] = self.fit.rates[flowing]
+        return found
+
+    @cached_property
+    def stress(self) -> FloatArray:
+        """Shear stresses [Pa] at those rates: the model's, times reading over predicted reading."""
+        found = np.concatenate([curve.stress for curve in self.curves])
+        flowing = self.fit.rates > 0
+        model = np.asarray(self.fit.model.stress(self.fit.rates[flowing]), dtype=float)
+        ratio = self.fit.observed[flowing] / self.fit.predicted[flowing]
+        found[self.fitted[flowing]] = model * ratio
+        return found
+
+    @cached_property
+    def temperature(self) -> FloatArray | None:
+        """Temperatures [K]; None unless every set has them."""
+        columns = [one.temperature for one in self._sets]
+        known = [column for column in columns if column is not None]
+        return np.concatenate(known) if len(known) == len(columns) else None
+
+    @cached_property
+    def branch(self) -> NDArray[np.str_]:
+        """Branches; empty texts where not known."""
+        return np.concatenate(
+            [
+                np.full(len(one), "", dtype="U4") if one.branch is None else one.branch
+                for one in self._sets
+            ]
+        )
+
+    @cached_property
+    def left_out(self) -> NDArray[np.bool_]:
+        """Readings that were not fitted."""
+        mask = np.ones(self.rate.size, dtype=bool)
+        mask[self.fitted] = False
+        return mask
+
+    @cached_property
+    def flagged(self) -> NDArray[np.bool_]:
+        """Readings that a Caution points at."""
+        mask = np.zeros(self.rate.size, dtype=bool)
+        start = 0
+        for one, cautions in zip(self._sets, self.cautions, strict=True):
+            for caution in cautions:
+                inside = [start + point for point in caution.points if 0 <= point < len(one)]
+                mask[inside] = True
+            start += len(one)
+        return mask
+
+
+def case_points(result: CaseResult, fit: Fit | None = None) -> CasePoints:
+    """Return all readings of a result as points; by the chosen fit unless another is given."""
+    return CasePoints(result, fit or result.chosen)
