@@ -12,12 +12,14 @@ from rheo.errors import Caution
 from rheo.hydraulics.registry import turbulent_methods
 from rheo.line.checks import require_number, require_positive
 from rheo.line.parts import FloatArray, Line, Part, Pipe
-from rheo.line.product import FlowCurveSource, Product
+from rheo.line.product import FlowCurveSource, Product, interval
 from rheo.line.walk import walk
 from rheo.models import Model
 
 # A tolerance is taken as evenly likely between its ends: standard deviation = half width/√3.
 _EVEN = 1.0 / np.sqrt(3.0)
+# One wild draw in a thousand would outweigh all others in a variance: the middle 99 % count.
+_KEPT = 0.99
 
 
 @dataclass(frozen=True)
@@ -111,7 +113,8 @@ def doubt_budget(
     """Split the variance of a line's differential pressure by its causes.
 
     Readings and model choice come from the product's draws, by the law of total variance: the
-    spread within the draws of each model, and the spread between the models' means. The friction
+    spread within the draws of each model, and the spread between the models' means, both over the
+    middle 99 % of the draws (one wild draw would outweigh all others). The friction
     method is the spread of all methods that apply to the flow curve. Each other input is moved up
     and down by its standard deviation.
 
@@ -238,9 +241,12 @@ def _of_product(
         return walk(line, product, at, source=source, method=method).differential_pressure
 
     values = product.over_draws(pressure)
-    ends = np.cumsum(product.draw_sizes)
-    blocks = np.split(values, ends[:-1])
-    weights = np.array(product.draw_sizes) / ends[-1]
+    model = np.repeat(np.arange(len(product.draws)), product.draw_sizes)
+    low, high = interval(values, _KEPT)
+    kept = (values >= low) & (values <= high)
+    blocks = [values[kept & (model == index)] for index in range(len(product.draws))]
+    blocks = [block for block in blocks if block.size]
+    weights = np.array([block.size for block in blocks]) / kept.sum()
     means = np.array([block.mean() for block in blocks])
     within = float(weights @ np.array([block.var() for block in blocks]))
     between = float(weights @ (means - weights @ means) ** 2)
