@@ -1,0 +1,35 @@
+"""The page: main script of ``rheo open`` and ``streamlit run ui/app.py``.
+
+It draws what all stops share (side bar with the walk, the units and the case) and runs the stop
+that the address names.
+"""
+
+from __future__ import annotations
+
+import streamlit as st
+
+from ui import case_menu, guard, opening, state, style, units_switch, walk
+
+st.set_page_config(page_title="rheo", page_icon=":material/waves:", layout="wide")
+
+
+def main() -> None:
+    """Draw the page."""
+    if state.is_empty():
+        opening.open_sample(opening.FIRST_SAMPLE)
+    style.apply()
+    pages = walk.pages()
+    page = st.navigation(list(pages.values()), position="hidden")
+    with st.sidebar:
+        case = state.case()
+        st.html(
+            '<div class="rheo-brand">rheo</div>'
+            f'<div class="rheo-case">{style.escape(case.title or case.product.name, 90)}</div>'
+        )
+        guard.run(lambda: walk.show(pages))
+        units_switch.show()
+        case_menu.show()
+    guard.run(page.run)
+
+
+main()

@@ -1,0 +1,58 @@
+"""Cautions beside the number that they belong to, and the safety wording below pressures.
+
+``cautions.show(result.cautions, codes=..., place=...)`` draws those that fit; call it right under
+the number, picture or table concerned. ``cautions.of(...)`` only picks them.
+``cautions.safety("pressure", "start-up")`` draws the safety sentences; every stop that shows a
+pressure, a hold time or a start-up value ends with it. Keys: `rheo.line.safety.SAFETY_SENTENCES`.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+
+import streamlit as st
+
+from rheo.errors import Caution
+from rheo.line.safety import SAFETY_SENTENCES
+from ui import style
+
+
+def of(
+    cautions: Iterable[Caution], *, codes: Iterable[str] = (), place: str = ""
+) -> tuple[Caution, ...]:
+    """Return the Cautions with one of these codes (all where none is given) and of this place."""
+    wanted = set(codes)
+    return tuple(
+        caution
+        for caution in cautions
+        if (not wanted or caution.code in wanted) and (not place or caution.place == place)
+    )
+
+
+def show(cautions: Iterable[Caution], *, codes: Iterable[str] = (), place: str = "") -> None:
+    """Draw Cautions: what was found, and what to do about it."""
+    found = of(cautions, codes=codes, place=place)
+    if found:
+        st.html("".join(html(caution) for caution in found))
+
+
+def html(caution: Caution) -> str:
+    """Return one Caution as HTML."""
+    where = f"{style.escape(caution.place, 60)}: " if caution.place else ""
+    return (
+        f'<div class="rheo-caution" role="note">{where}{style.escape(caution.sentence)} '
+        f'<span class="advice">{style.escape(caution.advice)}</span></div>'
+    )
+
+
+def complaint(sentence: str) -> None:
+    """Draw what is wrong with an entry, under its widget; nothing for an empty text."""
+    if sentence:
+        st.html(f'<div class="rheo-caution bad-edge" role="alert">{style.escape(sentence)}</div>')
+
+
+def safety(*keys: str) -> None:
+    """Draw safety sentences by their keys, and the general one after them."""
+    wanted = dict.fromkeys((*keys, "general"))
+    text = " ".join(style.escape(SAFETY_SENTENCES[key]) for key in wanted)
+    st.html(f'<div class="rheo-safety"><b>Safety.</b> {text}</div>')

@@ -1,0 +1,73 @@
+"""Cases opened from samples and from files that the user uploads."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from pathlib import Path
+
+from rheo.case import case_from_document, case_from_text
+from rheo.errors import CaseError
+from rheo.report.text import one_line
+from ui import state
+from ui.results import StoredFile, safe_name
+
+SAMPLES = Path(__file__).resolve().parent.parent / "sample_data"
+FIRST_SAMPLE = "sauce"
+
+
+def sample_names() -> tuple[str, ...]:
+    """Return the samples that come with the program, the first one first."""
+    names = sorted(path.stem for path in SAMPLES.glob("*.toml"))
+    return tuple(sorted(names, key=lambda name: name != FIRST_SAMPLE))
+
+
+def open_sample(name: str) -> None:
+    """Open a sample case with its files."""
+    path = SAMPLES / f"{name}.toml"
+    found = case_from_text(path.read_text(encoding="utf-8"), path.name)
+    named = [block.file for block in found.readings if block.file]
+    files = {one: StoredFile((SAMPLES / one).read_bytes(), one) for one in named}
+    state.put(found, files, opened=True)
+
+
+def open_case(uploads: Mapping[str, bytes]) -> None:
+    """Open a case file, with the readings files that came with it.
+
+    Parameters
+    ----------
+    uploads : mapping of str to bytes
+        By the names that the user's machine gave: one ``.toml`` file, and the files it names.
+
+    Raises
+    ------
+    InputError
+        If it cannot be understood, or names a file that did not come with it.
+    """
+    cases = [name for name in uploads if name.lower().endswith(".toml")]
+    if len(cases) != 1:
+        found = ", ".join(f"'{one_line(name, 40)}'" for name in uploads) or "nothing"
+        raise CaseError(
+            f"found {found}; choose one case file that ends with .toml, and the readings files "
+            "that it names"
+        )
+    label = one_line(cases[0], 60)
+    try:
+        text = uploads[cases[0]].decode("utf-8-sig")
+    except UnicodeDecodeError:
+        raise CaseError("it is not UTF-8 text; a case is a TOML file in UTF-8", label) from None
+    document = case_from_text(text, label).document()
+    given = {safe_name(name): StoredFile(data, name) for name, data in uploads.items()}
+    named = {}
+    for block in document["readings"]:
+        if "file" not in block:
+            continue
+        wanted = safe_name(block["file"])
+        if wanted not in given:
+            raise CaseError(
+                f"it takes its readings from '{one_line(block['file'], 60)}'; choose that file "
+                "together with the case",
+                label,
+            )
+        block["file"] = wanted
+        named[wanted] = given[wanted]
+    state.put(case_from_document(document), named, opened=True)

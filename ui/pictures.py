@@ -1,0 +1,52 @@
+"""Pictures of `rheo.report.figures` on the page: ``pictures.show(picture, key="system")``."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import streamlit as st
+
+from rheo.report.picture import Picture
+from ui import state
+
+_CONFIG = {
+    "displaylogo": False,
+    "displayModeBar": "hover",
+    "modeBarButtonsToRemove": ["select2d", "lasso2d", "autoScale2d"],
+    "responsive": True,
+    "scrollZoom": False,
+}
+
+
+def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = True) -> Any:
+    """Draw a picture, with its title above and its description as alternative text.
+
+    Parameters
+    ----------
+    picture : Picture
+        From `rheo.report.figures`.
+    key : str
+        Widget key.
+    select : callable or str
+        Callback for clicks on points, as ``on_select`` of ``st.plotly_chart``.
+    title : bool
+        Whether to write the title.
+
+    Returns
+    -------
+    object
+        What ``st.plotly_chart`` returns: the selection, when there is a callback.
+    """
+    if title:
+        st.markdown(f"**{picture.title}**")
+    figure = picture.plotly(state.dark())
+    chosen: dict[str, Any] = {} if select == "ignore" else {"selection_mode": "points"}
+    return st.plotly_chart(
+        figure,
+        key=key,
+        theme=None,
+        config=_CONFIG,
+        on_select=select,
+        alt=f"{picture.title}. {picture.description}",
+        **chosen,
+    )

@@ -1,0 +1,143 @@
+"""What follows from a case, kept by a hash of the input.
+
+The caches are shared by all sessions and hold pure results only: the same input gives the same
+object. Where ``rheo`` wants a file, it gets a temporary folder that is gone when the call returns.
+"""
+
+from __future__ import annotations
+
+import hashlib
+import json
+import re
+from collections.abc import Callable, Iterator, Mapping
+from contextlib import contextmanager
+from dataclasses import dataclass
+from functools import cached_property
+from pathlib import Path
+from tempfile import TemporaryDirectory
+from typing import Any
+
+import streamlit as st
+
+from rheo.case import Case, case_text, run_case
+from rheo.case.embed import embedded
+from rheo.case.load_readings import all_readings
+from rheo.errors import InputError
+from rheo.readings import Readings
+
+
+@dataclass(frozen=True)
+class StoredFile:
+    """A file that the user gave.
+
+    Parameters
+    ----------
+    data : bytes
+        Its content.
+    label : str
+        What the user calls it, for display only.
+    """
+
+    data: bytes
+    label: str = ""
+
+    @cached_property
+    def digest(self) -> str:
+        """Hash of the content."""
+        return hashlib.sha256(self.data).hexdigest()
+
+
+Files = Mapping[str, StoredFile]
+
+
+@dataclass(frozen=True)
+class Outcome:
+    """What a calculation came to: a value, or the reason why there is none.
+
+    Parameters
+    ----------
+    value : object or None
+        The result.
+    problem : InputError or None
+        What the user can put right.
+    """
+
+    value: Any
+    problem: InputError | None = None
+
+
+def outcome_of(calculate: Callable[[], Any]) -> Outcome:
+    """Run a calculation; what the user can put right becomes the problem of the outcome."""
+    try:
+        return Outcome(calculate())
+    except InputError as error:
+        return Outcome(None, error)
+
+
+def digest(*parts: Any) -> str:
+    """Return a short hash of plain data."""
+    return hashlib.sha256(json.dumps(parts, default=str).encode()).hexdigest()[:32]
+
+
+def _file_digests(files: Files) -> list[tuple[str, str]]:
+    return sorted((name, file.digest) for name, file in files.items())
+
+
+def safe_name(name: str) -> str:
+    """Return a plain file name made of a name that the user's machine gave.
+
+    Folders, control characters and whatever a file system could read differently are left out, so
+    that it can stand in a temporary folder.
+    """
+    last = re.split(r"[\\/]", name)[-1]
+    stem, dot, ending = last.rpartition(".")
+    stem = re.sub(r"[^0-9A-Za-z_-]+", "_", stem if dot else last).strip("_")[:60] or "readings"
+    ending = re.sub(r"[^0-9A-Za-z]+", "", ending)[:8] if dot else ""
+    return f"{stem}.{ending}" if ending else stem
+
+
+@contextmanager
+def in_folder(case: Case, files: Files) -> Iterator[Case]:
+    """Give a case a temporary folder with its files for the time of one call."""
+    with TemporaryDirectory(prefix="rheo-") as folder:
+        place = Path(folder)
+        for name, file in files.items():
+            (place / safe_name(name)).write_bytes(file.data)
+        yield case.in_folder(place)
+
+
+def saved_text(case: Case, files: Files) -> str:
+    """Return the case as one TOML text with its readings inside; raises InputError."""
+    with in_folder(case, files) as placed:
+        return case_text(embedded(placed))
+
+
+def readings_of(case: Case, files: Files) -> Outcome:
+    """Return the readings of a case: a tuple of Readings, one a set."""
+    document = case.document()
+    key = digest(document["readings"], document["product"], _file_digests(files))
+    found: Outcome = _read(key, case, files)
+    return found
+
+
+@st.cache_resource(max_entries=24, show_spinner=False)
+def _read(key: str, _case: Case, _files: Files) -> Outcome:  # noqa: ARG001
+    def calculate() -> tuple[Readings, ...]:
+        with in_folder(_case, _files) as placed:
+            return all_readings(placed)
+
+    return outcome_of(calculate)
+
+
+def result_of(case: Case, files: Files) -> Outcome:
+    """Return the result of a case: a CaseResult."""
+    sets = readings_of(case, files)
+    if sets.value is None:
+        return sets
+    found: Outcome = _run(digest(case.document(), _file_digests(files)), case, sets.value)
+    return found
+
+
+@st.cache_resource(max_entries=48, show_spinner=False)
+def _run(key: str, _case: Case, _readings: tuple[Readings, ...]) -> Outcome:  # noqa: ARG001
+    return outcome_of(lambda: run_case(_case, _readings))

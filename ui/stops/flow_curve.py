@@ -1,0 +1,12 @@
+"""Flow curve."""
+
+from __future__ import annotations
+
+import streamlit as st
+
+from ui import answer_strip, cautions, walk
+
+st.header("Flow curve")
+answer_strip.show()
+cautions.safety("pressure", "start-up")
+walk.onward("flow_curve")

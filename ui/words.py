@@ -1,0 +1,98 @@
+"""Results in a few words: the walk's states, values with their intervals, sizes."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from rheo.case import CaseResult
+from rheo.line.catalogue import PipeSize
+from rheo.line.parts import Pipe
+from rheo.readings import Readings, screen
+from rheo.report import display
+
+
+def with_interval(value: Any, interval: Any, quantity: str, system: str) -> str:
+    """Return an SI value in the unit shown, with the digits that its 95 % interval allows."""
+    if interval is None:
+        return display.text(float(value), quantity, system)
+    return display.text(float(value), quantity, system, float(interval[0]), float(interval[1]))
+
+
+def count(number: int, one: str, many: str = "") -> str:
+    """Return ``1 reading`` or ``3 readings``."""
+    return f"{number} {one if number == 1 else many or one + 's'}"
+
+
+def size_name(pipe: Pipe) -> str:
+    """Return the shortest name of a pipe's size."""
+    if not isinstance(pipe.size, PipeSize):
+        return pipe.size_name
+    label = pipe.size.label
+    return label.split(" (")[0] if label.startswith("DN") else f"{label} mm"
+
+
+def line_sizes(result: CaseResult) -> tuple[str, ...]:
+    """Return the sizes of the pipes that may change size; of all pipes where none may."""
+    pipes = tuple(result.line.line.pipes())
+    free = [pipe for pipe in pipes if not pipe.fixed_size] or pipes
+    return tuple(dict.fromkeys(size_name(pipe) for pipe in free))
+
+
+def velocity_note(result: CaseResult, system: str) -> str:
+    """Return the largest mean velocity of the pipes that may change size."""
+    names = [pipe.name for pipe in result.line.line.pipes() if not pipe.fixed_size]
+    speeds = [
+        float(part.velocity)
+        for part in result.line.parts
+        if part.kind == "pipe" and (part.name in names or not names)
+    ]
+    return f"{display.text(max(speeds), 'velocity', system, digits=2)}" if speeds else ""
+
+
+def flagged_points(readings: Readings) -> tuple[int, ...]:
+    """Return the readings that screening doubts, counted from 0."""
+    return tuple(sorted({point for caution in screen(readings) for point in caution.points}))
+
+
+def readings_state(sets: tuple[Readings, ...] | None) -> str:
+    """Return such as ``24 readings, 2 flagged``."""
+    if sets is None:
+        return "need your attention"
+    total = sum(len(one) for one in sets)
+    flagged = sum(len(flagged_points(one)) for one in sets)
+    left_out = sum(int(one.excluded.sum()) for one in sets if one.excluded is not None)
+    more = f", {flagged} flagged" if flagged else ""
+    more += f", {left_out} left out" if left_out else ""
+    return count(total, "reading") + more
+
+
+def walk_states(
+    sets: tuple[Readings, ...] | None, result: CaseResult | None, system: str
+) -> dict[str, str]:
+    """Return a few words for each stop, by its key."""
+    states = {"readings": readings_state(sets)}
+    if result is None:
+        return states
+    line = result.line
+    pipes = [part for part in line.parts if part.kind == "pipe"]
+    metres = sum(float(part.length) for part in pipes)
+    inside = result.inside_measured_range
+    states["flow_curve"] = _capital(result.chosen.record.name)
+    states["shear_rates"] = (
+        "" if inside is None else "inside the measured range" if inside else "outside the range"
+    )
+    states["route"] = (
+        f"{count(len(line.parts), 'part')}, "
+        f"{display.text(metres, 'length', system, digits=2)} of pipe"
+    )
+    states["pressure"] = with_interval(
+        line.friction_pressure, line.friction_pressure_interval, "pressure", system
+    )
+    states["sizes"] = ", ".join(line_sizes(result))
+    cautions = len(result.cautions)
+    states["note"] = count(cautions, "caution") if cautions else "no cautions"
+    return states
+
+
+def _capital(text: str) -> str:
+    return text[:1].upper() + text[1:]
