@@ -13,6 +13,7 @@ from rheo.errors import Caution, InputError
 from rheo.geometry import tube_flow
 from rheo.hydraulics import regimes
 from rheo.hydraulics.conditions import FloatArray, Pipe, lay_out, positive
+from rheo.hydraulics.laminar import critical_point
 from rheo.hydraulics.registry import DEFAULT_CRITERION, criterion, turbulent_method
 from rheo.hydraulics.turbulent_curve import stress_at_velocity
 from rheo.models import Model
@@ -101,7 +102,7 @@ class PipeFlow:
 
     @cached_property
     def _critical_point(self) -> tuple[FloatArray, FloatArray]:
-        return regimes.critical_point(self._pipe, criterion(self.criterion, self.model))
+        return critical_point(self._pipe, criterion(self.criterion, self.model))
 
     @cached_property
     def critical_velocity(self) -> FloatArray:

@@ -38,8 +38,9 @@ class Criterion:
     ----------
     key, name : str
         Registry key and the field's name.
-    critical_wall_rate : callable
-        ``critical_wall_rate(pipe)``: the laminar wall shear rate [1/s] at the critical velocity.
+    number : callable
+        ``number(pipe, rate)``: the criterion's number over its critical value [-] at the wall
+        shear rate [1/s] of laminar flow; 1 where laminar flow ends.
     models : tuple of str or None
         Keys of the flow curves that it is made for; None for any.
     source, validity : str
@@ -48,7 +49,7 @@ class Criterion:
 
     key: str
     name: str
-    critical_wall_rate: Callable[[Pipe], FloatArray]
+    number: Callable[[Pipe, FloatArray], FloatArray]
     models: tuple[str, ...] | None
     source: str
     validity: str
@@ -80,6 +81,8 @@ class TurbulentMethod:
         ``default_rank(model)``: the method with the largest rank is the default for a model.
     along_laminar : bool
         What `rate` means.
+    may_fold : bool
+        Whether the velocity can fall for a while as the stress rises.
     in_spread : tuple of str or None
         Keys of the flow curves for which it counts as a rival of the default; None for all of
         `models`.
@@ -94,6 +97,7 @@ class TurbulentMethod:
     validity: str
     default_rank: Callable[[Model], int]
     along_laminar: bool = False
+    may_fold: bool = False
     in_spread: tuple[str, ...] | None = None
 
     def applies(self, model: Model) -> bool:

@@ -1,12 +1,16 @@
 """One rising curve of wall stress against velocity through laminar, transition and turbulent flow.
 
-Up to the critical velocity V_c of the criterion the flow is laminar. From V_c to 4000/2100 of it
-(the span of the Newtonian transition, common practice) the wall stress follows the straight line
-in logarithms from the laminar value at V_c to the value at the end of the span. Beyond that it is
-the turbulent value. Nowhere is it less than laminar flow would need: where the turbulent curve
-still lies below the laminar one the laminar stress stands and the regime is called transition. The
-curve is continuous and rises strictly. The span, the straight line and the laminar floor are our
-engineering choices; no method is published for the transition of all these fluids.
+Let ζ be the criterion's number over its critical value at a velocity. Up to ζ = 1 the flow is
+laminar. From ζ = S = 4000/2100, the span of the Newtonian transition (common practice), it is
+turbulent. Between them the logarithm of the wall stress goes from the laminar to the turbulent value
+at the same velocity with the weight 1 - (1 - ln ζ/ln S)². For shear-thickening fluids S is raised to
+the power 2n - 1, because their number hardly changes with the velocity. Nowhere is the
+stress less than laminar flow would need: where the turbulent curve still lies below the laminar one
+the laminar stress stands and the regime is called transition.
+
+So the curve is continuous and rises strictly, and the pressure gradient falls as the pipe widens
+(unless the wall is very rough). The span, the weight and the laminar floor are our engineering
+choices; no method is published for the transition of all these fluids.
 """
 
 from __future__ import annotations
@@ -18,17 +22,15 @@ from numpy.typing import NDArray
 
 from rheo.geometry.tube_flow import wall_rate
 from rheo.hydraulics.conditions import FloatArray, Pipe
+from rheo.hydraulics.laminar import laminar_velocity
 from rheo.hydraulics.record import Criterion, TurbulentMethod
+from rheo.hydraulics.roots import IndexArray, solve_rising
 from rheo.hydraulics.transition.stability import surely_stable
-from rheo.hydraulics.turbulent_curve import (
-    laminar_velocity,
-    stress_at_velocity,
-    velocity_at_stress,
-)
+from rheo.hydraulics.turbulent_curve import stress_at_velocity, velocity_at_stress
 
 LAMINAR, TRANSITION, TURBULENT = 0, 1, 2
 REGIMES = np.array(["laminar", "transition", "turbulent"])
-TRANSITION_SPAN = 4000.0 / 2100.0
+_LOG_SPAN = np.log(4000.0 / 2100.0)
 
 
 @dataclass(frozen=True)
@@ -48,48 +50,11 @@ class Wall:
     regime: NDArray[np.intp]
 
 
-@dataclass(frozen=True)
-class Span:
-    """The transition: velocities [m/s] and wall stresses [Pa] at its two ends, 1-D arrays."""
-
-    start_velocity: FloatArray
-    start_stress: FloatArray
-    end_velocity: FloatArray
-    end_stress: FloatArray
-
-    def exponent(self) -> FloatArray:
-        """Return d ln(stress)/d ln(velocity) of the straight line between the ends."""
-        return np.log(self.end_stress / self.start_stress) / np.log(TRANSITION_SPAN)
-
-
-def critical_point(pipe: Pipe, criterion: Criterion) -> tuple[FloatArray, FloatArray]:
-    """Return critical velocity [m/s] and laminar wall stress [Pa] there.
-
-    0 or infinite where stability does not depend on the velocity.
-    """
-    rate = criterion.critical_wall_rate(pipe)
-    velocity, stress = rate.copy(), rate.copy()
-    found = np.isfinite(rate) & (rate > 0)
-    if np.any(found):
-        part = pipe.take(found)
-        velocity[found] = laminar_velocity(part, rate[found])
-        stress[found] = part.model.record.stress(rate[found], *part.model)
-    return velocity, stress
-
-
-def span_of(pipe: Pipe, law: Law, start: tuple[FloatArray, FloatArray]) -> Span:
-    """Return the transition that starts at a critical point found before."""
-    velocity, stress = start
-    end_velocity = TRANSITION_SPAN * velocity
-    end_stress = stress.copy()
-    found = np.isfinite(velocity) & (velocity > 0)
-    if np.any(found):
-        part = pipe.take(found)
-        rate = wall_rate(part.model, 8.0 * end_velocity[found] / part.diameter)
-        laminar = part.model.record.stress(rate, *part.model)
-        turbulent = stress_at_velocity(part, law.method, end_velocity[found], rate)
-        end_stress[found] = np.fmax(laminar, turbulent)
-    return Span(velocity, stress, end_velocity, end_stress)
+def progress(pipe: Pipe, laminar_rate: FloatArray, criterion: Criterion) -> FloatArray:
+    """Return ln ζ/ln S [-] at the wall shear rate [1/s] of laminar flow: 0 and 1 at the ends."""
+    flow_index = pipe.model.parameters.get("flow_index", np.ones(pipe.size))
+    widening = np.maximum(2.0 * flow_index - 1.0, 1.0)
+    return np.log(criterion.number(pipe, laminar_rate)) / (_LOG_SPAN * widening)
 
 
 def wall_at_velocity(pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray, law: Law) -> Wall:
@@ -108,33 +73,32 @@ def wall_at_velocity(pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray,
     """
     stress = pipe.model.record.stress(laminar_rate, *pipe.model)
     wall = Wall(stress, laminar_rate.copy(), np.zeros(pipe.size, dtype=np.intp))
-    open_ = np.flatnonzero(~_laminar_at_sight(pipe, laminar_rate, law))
-    if open_.size == 0:
-        return wall
-    start = critical_point(pipe.take(open_), law.criterion)
-    beyond = velocity[open_] > start[0]
-    index = open_[beyond]
+    index = np.flatnonzero(~_laminar_at_sight(pipe, laminar_rate, law))
+    if index.size:
+        share = progress(pipe.take(index), laminar_rate[index], law.criterion)
+        index, share = index[share > 0], share[share > 0]
     if index.size == 0:
         return wall
-    part, speed = pipe.take(index), velocity[index]
-    span = span_of(part, law, (start[0][beyond], start[1][beyond]))
-    inside = speed < span.end_velocity
-    raised = np.empty(index.size)
-    if np.any(inside):
-        ratio = speed[inside] / span.start_velocity[inside]
-        raised[inside] = span.start_stress[inside] * ratio ** span.exponent()[inside]
-    full = ~inside
-    if np.any(full):
-        raised[full] = stress_at_velocity(
-            part.take(full), law.method, speed[full], laminar_rate[index[full]]
-        )
+    part = pipe.take(index)
+    raised = _blend(part, velocity[index], laminar_rate[index], share, law)
     above = raised > stress[index]
-    wall.stress[index] = np.fmax(raised, stress[index])
-    wall.regime[index] = np.where(full & above, TURBULENT, TRANSITION)
+    stress[index] = np.where(above, raised, stress[index])
+    wall.regime[index] = np.where((share >= 1) & above, TURBULENT, TRANSITION)
     moved = index[above]
     if moved.size:
-        wall.rate[moved] = pipe.take(moved).model.rate(wall.stress[moved])
+        wall.rate[moved] = pipe.take(moved).model.rate(stress[moved])
     return wall
+
+
+def _blend(
+    pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray, share: FloatArray, law: Law
+) -> FloatArray:
+    """Return the wall stress [Pa] in and beyond the transition, not less than the laminar one."""
+    laminar = pipe.model.record.stress(laminar_rate, *pipe.model)
+    turbulent = stress_at_velocity(pipe, law.method, velocity, laminar_rate)
+    weight = 1.0 - np.maximum(1.0 - share, 0.0) ** 2
+    ratio = np.fmax(turbulent / laminar, 1.0)
+    return np.where(share >= 1, np.fmax(turbulent, laminar), laminar * ratio**weight)
 
 
 def velocity_at_wall(
@@ -142,40 +106,54 @@ def velocity_at_wall(
 ) -> tuple[FloatArray, NDArray[np.intp]]:
     """Return mean velocity [m/s] and regime at a wall stress [Pa]; 0 at or below the yield stress.
 
-    The exact inverse of `wall_at_velocity`: no root is sought beyond the critical velocity's own.
+    The inverse of `wall_at_velocity`. Outside the transition no root of it is sought; inside, the
+    velocity lies between those of the turbulent and the laminar curve at the same stress.
     """
     rate = pipe.model.rate(stress)
     velocity = np.zeros(pipe.size)
     regime = np.zeros(pipe.size, dtype=np.intp)
-    flowing = np.flatnonzero(rate > 0)
-    if flowing.size == 0:
-        return velocity, regime
-    moving = pipe.take(flowing)
-    velocity[flowing] = laminar_velocity(moving, rate[flowing])
-    open_ = flowing[~_laminar_at_sight(moving, rate[flowing], law)]
-    if open_.size == 0:
-        return velocity, regime
-    start = critical_point(pipe.take(open_), law.criterion)
-    beyond = velocity[open_] > start[0]
-    index = open_[beyond]
+    index = np.flatnonzero(rate > 0)
+    velocity[index] = laminar_velocity(pipe.take(index), rate[index])
+    index = index[~_laminar_at_sight(pipe.take(index), rate[index], law)]
+    if index.size:
+        index = index[progress(pipe.take(index), rate[index], law.criterion) > 0]
     if index.size == 0:
         return velocity, regime
-    part = pipe.take(index)
-    span = span_of(part, law, (start[0][beyond], start[1][beyond]))
-    inside = stress[index] < span.end_stress
-    slowed = np.empty(index.size)
-    if np.any(inside):
-        ratio = stress[index][inside] / span.start_stress[inside]
-        slowed[inside] = span.start_velocity[inside] * ratio ** (1.0 / span.exponent()[inside])
-    full = ~inside
-    if np.any(full):
-        slowed[full] = velocity_at_stress(
-            part.take(full), law.method, stress[index[full]], rate[index[full]]
+    part, wanted, highest = pipe.take(index), stress[index], velocity[index]
+    turbulent = velocity_at_stress(part, law.method, wanted, rate[index])
+    below = turbulent < highest
+    # A velocity of 0 or less means that the method has no solution at so low a stress.
+    solved = turbulent > 0
+    found = np.where(below & solved, turbulent, highest)
+    share = progress(part, wall_rate(part.model, 8.0 * found / part.diameter), law.criterion)
+    inside = np.flatnonzero(below & ((share < 1) | ~solved))
+    if inside.size:
+        found[inside], share[inside] = _inside_transition(
+            part.take(inside), wanted[inside], turbulent[inside], highest[inside], law
         )
-    below = slowed < velocity[index]
-    velocity[index] = np.fmin(slowed, velocity[index])
-    regime[index] = np.where(full & below, TURBULENT, TRANSITION)
+    velocity[index] = found
+    regime[index] = np.where((share >= 1) & below, TURBULENT, TRANSITION)
     return velocity, regime
+
+
+def _inside_transition(
+    pipe: Pipe, stress: FloatArray, lowest: FloatArray, highest: FloatArray, law: Law
+) -> tuple[FloatArray, FloatArray]:
+    """Return velocity [m/s] and progress [-] in the transition at a wall stress [Pa]."""
+    target = np.log(stress)
+
+    def laminar_rate(part: Pipe, velocity: FloatArray) -> FloatArray:
+        return wall_rate(part.model, 8.0 * velocity / part.diameter)
+
+    def gap(log_velocity: FloatArray, index: IndexArray) -> FloatArray:
+        part, velocity = pipe.take(index), np.exp(log_velocity)
+        rate = laminar_rate(part, velocity)
+        share = np.maximum(progress(part, rate, law.criterion), 0.0)
+        return np.log(_blend(part, velocity, rate, share, law)) - target[index]
+
+    start = np.log(np.where(lowest > 0, np.sqrt(np.maximum(lowest, 0.0) * highest), highest))
+    velocity = np.exp(solve_rising(gap, start, step=0.1))
+    return velocity, progress(pipe, laminar_rate(pipe, velocity), law.criterion)
 
 
 def _laminar_at_sight(pipe: Pipe, wall_rate: FloatArray, law: Law) -> NDArray[np.bool_]:

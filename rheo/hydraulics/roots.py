@@ -12,8 +12,8 @@ IndexArray = NDArray[np.intp]
 Gap = Callable[[FloatArray, IndexArray], FloatArray]
 
 # Logarithms of a shear rate, velocity or diameter beyond which nothing physical lies.
-LOWEST = -50.0
-HIGHEST = 50.0
+LOWEST = -230.0
+HIGHEST = 230.0
 _TOLERANCE = 4e-15
 _STEPS = 120
 
@@ -45,16 +45,19 @@ def solve_rising(
     Returns
     -------
     array
-        The root to 1e-14; ``-inf`` where `gap` is above 0 on the whole range and ``inf`` where it
-        is below 0.
+        The root to 1e-14; ``-inf`` where `gap` is above 0 on the whole range, ``inf`` where it is
+        below 0, NaN where it cannot be worked out on the way.
     """
     start = np.clip(np.asarray(start, dtype=float), low, high)
-    below, gap_below, above, gap_above = _bracket(gap, start, step, low, high)
-    root = np.where(gap_below > 0, -np.inf, np.where(gap_above < 0, np.inf, 0.0))
-    inside = np.flatnonzero(root == 0.0)
-    root[inside] = _chandrupatla(
-        gap, inside, below[inside], gap_below[inside], above[inside], gap_above[inside]
-    )
+    # A search that runs to the end of its range may leave what floating point can hold.
+    with np.errstate(over="ignore", under="ignore", invalid="ignore", divide="ignore"):
+        below, gap_below, above, gap_above = _bracket(gap, start, step, low, high)
+        root = np.where(gap_below > 0, -np.inf, np.where(gap_above < 0, np.inf, 0.0))
+        root = np.where(np.isnan(gap_below) | np.isnan(gap_above), np.nan, root)
+        inside = np.flatnonzero(root == 0.0)
+        root[inside] = _chandrupatla(
+            gap, inside, below[inside], gap_below[inside], above[inside], gap_above[inside]
+        )
     return root
 
 

@@ -6,8 +6,8 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from rheo.geometry import tube_flow
-from rheo.hydraulics import regimes
 from rheo.hydraulics.conditions import FloatArray, lay_out, positive
+from rheo.hydraulics.laminar import critical_point
 from rheo.hydraulics.pipe import pipe_flow
 from rheo.hydraulics.registry import DEFAULT_CRITERION, criterion, turbulent_method
 from rheo.hydraulics.turbulent_curve import stress_at_velocity
@@ -80,5 +80,5 @@ def critical_velocity(
         For an impossible value, or a criterion that is unknown or not made for the flow curve.
     """
     shape, pipe, _ = lay_out(model, diameter, density)
-    velocity, _ = regimes.critical_point(pipe, criterion(method, model))
+    velocity, _ = critical_point(pipe, criterion(method, model))
     return np.asarray(velocity).reshape(shape)[()]

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from rheo.geometry.tube_flow import nominal_rate
 from rheo.hydraulics.conditions import FloatArray, Pipe
+from rheo.hydraulics.fold import Bridge, find_bridge
 from rheo.hydraulics.record import TurbulentMethod
 from rheo.hydraulics.roots import IndexArray, solve_rising
 
@@ -32,13 +32,17 @@ def with_roughness(smooth: FloatArray, relative_roughness: FloatArray) -> FloatA
     return np.where(rough, smooth - 4.0 / np.log(10.0) * np.log1p(added), smooth)
 
 
-def speed_and_friction(
-    pipe: Pipe, method: TurbulentMethod, rate: FloatArray
+def curve_at(
+    pipe: Pipe, method: TurbulentMethod, bridge: Bridge, log_rate: FloatArray
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Return wall stress [Pa], friction speed √(2τw/ρ) [m/s] and 1/√f [-] at the curve's rate."""
-    stress, smooth = method.curve(pipe, rate)
-    inverse_root = with_roughness(smooth, pipe.roughness / pipe.diameter)
-    return stress, np.sqrt(2.0 * stress / pipe.density), inverse_root
+    """Return wall stress [Pa], friction speed √(2τw/ρ) [m/s] and velocity [m/s] at ln(rate).
+
+    The velocity is 0 or less where the method has no solution.
+    """
+    stress, smooth = method.curve(pipe, np.exp(log_rate))
+    speed = np.sqrt(2.0 * stress / pipe.density)
+    smooth = np.minimum(smooth, bridge.limit(log_rate) / speed)
+    return stress, speed, speed * with_roughness(smooth, pipe.roughness / pipe.diameter)
 
 
 def stress_at_velocity(
@@ -64,32 +68,37 @@ def stress_at_velocity(
     """
     if method.along_laminar and not np.any(pipe.roughness):
         return method.curve(pipe, laminar_rate)[0]
+    bridge = find_bridge(pipe, method)
 
     def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
-        _, speed, inverse_root = speed_and_friction(pipe.take(index), method, np.exp(log_rate))
-        return inverse_root - velocity[index] / speed
+        part = pipe.take(index)
+        _, speed, found = curve_at(part, method, bridge.take(index), log_rate)
+        return (found - velocity[index]) / speed
 
     start = np.log(laminar_rate)
     if not method.along_laminar:
         start = start + _rise_above_laminar(pipe, velocity, laminar_rate)
     root = solve_rising(gap, start)
-    return _stress(pipe, method, root)
+    solved = np.isfinite(root)
+    stress = np.full(pipe.size, np.nan)
+    if np.any(solved):
+        stress[solved] = method.curve(pipe.take(solved), np.exp(root[solved]))[0]
+    return stress
 
 
 def velocity_at_stress(
     pipe: Pipe, method: TurbulentMethod, stress: FloatArray, rate: FloatArray
 ) -> FloatArray:
     """Return the turbulent velocity [m/s] at a wall stress [Pa] and its shear rate [1/s]."""
+    log_rate = np.log(rate)
     if method.along_laminar:
         target = np.log(stress)
 
-        def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
-            return np.log(method.curve(pipe.take(index), np.exp(log_rate))[0]) - target[index]
+        def gap(at: FloatArray, index: IndexArray) -> FloatArray:
+            return np.log(method.curve(pipe.take(index), np.exp(at))[0]) - target[index]
 
-        # The friction is at least the laminar one, so the laminar rate is at most the wall rate.
-        rate = np.exp(solve_rising(gap, np.log(rate)))
-    _, speed, inverse_root = speed_and_friction(pipe, method, rate)
-    return speed * inverse_root
+        log_rate = solve_rising(gap, log_rate)
+    return curve_at(pipe, method, find_bridge(pipe, method), log_rate)[2]
 
 
 def _rise_above_laminar(pipe: Pipe, velocity: FloatArray, rate: FloatArray) -> FloatArray:
@@ -97,17 +106,4 @@ def _rise_above_laminar(pipe: Pipe, velocity: FloatArray, rate: FloatArray) -> F
     stress = pipe.model.record.stress(rate, *pipe.model)
     slope = pipe.model.record.log_slope(rate, *pipe.model)
     rise = np.log(0.0025 * pipe.density * velocity**2 / stress)
-    return np.clip(rise, -5.0, 10.0) / np.maximum(slope, 0.2)
-
-
-def _stress(pipe: Pipe, method: TurbulentMethod, log_rate: FloatArray) -> FloatArray:
-    found = np.isfinite(log_rate)
-    stress = np.full(pipe.size, np.nan)
-    if np.any(found):
-        stress[found] = method.curve(pipe.take(found), np.exp(log_rate[found]))[0]
-    return stress
-
-
-def laminar_velocity(pipe: Pipe, wall_rate: FloatArray) -> FloatArray:
-    """Return the mean velocity [m/s] of laminar flow at a wall shear rate [1/s] above 0."""
-    return 0.125 * pipe.diameter * nominal_rate(pipe.model, wall_rate)
+    return np.clip(rise, -5.0, 10.0) / np.maximum(slope, 0.05)

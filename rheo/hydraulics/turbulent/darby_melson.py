@@ -38,8 +38,8 @@ RECORD = TurbulentMethod(
     source="R. Darby & J. Melson, Chem. Eng. 88(26) (1981) 59, with the constants of R. Darby, R. "
     "Mun & D. V. Boger, Chem. Eng. 99(9) (1992) 116",
     validity="Bingham fluids in smooth pipes. It does not tend to the Newtonian line as the "
-    "Hedstrom number falls to 0 (there it is about half); it counts as a rival from He = 1e5 up, where its "
-    "term in He is spent (our choice).",
+    "Hedstrom number falls to 0 (there it is about half); it counts as a rival from He = 1e5 up, "
+    "where its term in He is spent (our choice).",
     default_rank=lambda model: 0,  # noqa: ARG005
     along_laminar=True,
 )

@@ -41,8 +41,8 @@ RECORD = TurbulentMethod(
     range=Range(),
     source="B. McK. Torrance, South African Mech. Eng. 13 (1963) 89, in the form of G. W. Govier "
     "& K. Aziz, The Flow of Complex Mixtures in Pipes (1972)",
-    validity="Herschel-Bulkley fluids in smooth pipes. With flow index 1 and no yield stress it lies "
-    "9 % above the Newtonian line at a Reynolds number of 4000 and 6 % below at 1e6, and at "
+    validity="Herschel-Bulkley fluids in smooth pipes. With flow index 1 and no yield stress it "
+    "lies 9 % above the Newtonian line at a Reynolds number of 4000 and 6 % below at 1e6, and at "
     "flow index 0.5 about 20 % below Dodge-Metzner, so it does not count as a rival "
     "for Newtonian fluids.",
     default_rank=lambda model: 0,  # noqa: ARG005

@@ -1,0 +1,46 @@
+"""Laminar velocity in a pipe, and the velocity at which laminar flow ends."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from rheo.geometry.tube_flow import nominal_rate
+from rheo.hydraulics.conditions import FloatArray, Pipe
+from rheo.hydraulics.record import Criterion
+from rheo.hydraulics.roots import IndexArray, solve_rising
+
+# A critical shear rate beyond exp(±50) 1/s is no velocity at all.
+_FURTHEST = 50.0
+
+
+def laminar_velocity(pipe: Pipe, wall_rate: FloatArray) -> FloatArray:
+    """Return the mean velocity [m/s] of laminar flow at a wall shear rate [1/s] above 0."""
+    return 0.125 * pipe.diameter * nominal_rate(pipe.model, wall_rate)
+
+
+def critical_wall_rate(pipe: Pipe, criterion: Criterion) -> FloatArray:
+    """Return the wall shear rate [1/s] at which laminar flow ends by a criterion.
+
+    0 or infinite for a fluid (flow index 2) whose stability does not depend on the velocity.
+    """
+
+    def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
+        return np.log(criterion.number(pipe.take(index), np.exp(log_rate)))
+
+    # The Newtonian value for the viscosity at 1 1/s.
+    viscosity = pipe.model.record.stress(np.ones(pipe.size), *pipe.model)
+    start = np.log(16800.0 * viscosity / (pipe.density * pipe.diameter**2))
+    root = solve_rising(gap, start, step=2.0, low=-_FURTHEST, high=_FURTHEST)
+    return np.exp(root)
+
+
+def critical_point(pipe: Pipe, criterion: Criterion) -> tuple[FloatArray, FloatArray]:
+    """Return the critical velocity [m/s] and the laminar wall stress [Pa] there; 0 or infinite."""
+    rate = critical_wall_rate(pipe, criterion)
+    velocity, stress = rate.copy(), rate.copy()
+    found = np.isfinite(rate) & (rate > 0)
+    if np.any(found):
+        part = pipe.take(found)
+        velocity[found] = laminar_velocity(part, rate[found])
+        stress[found] = part.model.record.stress(rate[found], *part.model)
+    return velocity, stress
