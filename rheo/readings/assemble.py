@@ -28,6 +28,8 @@ from rheo.readings.stated import (
 from rheo.readings.table_values import TableValues, number_cells, table_values
 
 FEWEST_READINGS = 3
+# Torques of no more than this many percent look like shares of 1.
+SHARE_LIMIT = 1.5
 _UNIT_GOES_WITHOUT_SAYING = frozenset({"rate", "dial", "torque_fraction"})
 
 
@@ -254,6 +256,12 @@ def _raw(table: Table) -> RawBlock:
     )
 
 
+def _may_be_shares(values: TableValues) -> bool:
+    share = values.numbers.get("torque_fraction")
+    unit = next((c.unit for c in values.used if c.quantity.key == "torque_fraction"), "1")
+    return share is not None and unit != "1" and bool(np.all(share <= SHARE_LIMIT / 100.0))
+
+
 def _assumptions(
     values: Sequence[TableValues], mark: DecimalMark, grid: Grid
 ) -> tuple[Caution, ...]:
@@ -271,6 +279,16 @@ def _assumptions(
                 sentence=f"The file does not say the unit of every column; read were "
                 f"{', '.join(unsaid)}.",
                 advice="Say the unit if it is another.",
+                place=grid.place,
+            )
+        )
+    if any(_may_be_shares(one) for one in values):
+        cautions.append(
+            Caution(
+                code="share-or-percent",
+                sentence=f"No torque is above {SHARE_LIMIT:g} %, although it is read in %: a "
+                "spreadsheet shows the number 0.5 as 50 %.",
+                advice="Say unit 1 for torque_fraction if the numbers are shares of 1.",
                 place=grid.place,
             )
         )

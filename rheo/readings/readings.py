@@ -321,7 +321,7 @@ class Readings:
         full_scale_torque : float, optional
             [N m]; kept as it is when absent.
         nominal_form : str, optional
-            The geometry's nominal form by which the instrument converts.
+            The geometry's nominal form by which the instrument converts; its first when absent.
         """
         return dataclasses.replace(
             self,

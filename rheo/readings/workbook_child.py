@@ -7,6 +7,7 @@ and takes nothing from the rest of the program.
 
 from __future__ import annotations
 
+import contextlib
 import datetime
 import io
 import json
@@ -51,7 +52,9 @@ def limit_this_process() -> None:
     ):
         _, hard = resource.getrlimit(limit)
         within = value if hard == resource.RLIM_INFINITY else min(value, hard)
-        resource.setrlimit(limit, (within, hard))
+        # Some systems do not bound memory; the limits on processor time and size remain.
+        with contextlib.suppress(ValueError, OSError):
+            resource.setrlimit(limit, (within, hard))
 
 
 def check_archive(data: bytes) -> None:

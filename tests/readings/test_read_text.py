@@ -264,6 +264,16 @@ def test_a_share_of_full_scale_that_is_no_percentage() -> None:
     assert readings.cautions == ()
 
 
+def test_percentages_that_may_be_shares() -> None:
+    readings = read("speed [rpm];torque [%]\n1;0.1\n2;0.2\n3;1.05\n")
+    np.testing.assert_allclose(readings.torque_fraction, [1e-3, 2e-3, 1.05e-2], rtol=1e-15)
+    assert codes(readings) == ["share-or-percent"]
+    shares = read("speed [rpm];torque [%]\n1;0.1\n2;0.2\n3;1.05\n", units={"torque_fraction": "1"})
+    assert shares.torque_fraction.tolist() == [0.1, 0.2, 1.05]
+    assert codes(shares) == []
+    assert codes(read("speed [rpm];torque [%]\n1;0.1\n2;0.2\n3;40\n")) == []
+
+
 def test_percent_signs_in_the_cells() -> None:
     readings = read("speed [rpm];torque [%]\n1;10 %\n2;20%\n3;30,5\n")
     np.testing.assert_allclose(readings.torque_fraction, [0.1, 0.2, 0.305], rtol=1e-15)
