@@ -87,7 +87,7 @@ UNDERFLOW = {"yield_stress": 16.0, "consistency": 0.90, "flow_index": 0.62}
 UNDERFLOW_SLIP = 6.0e-5  # slip velocity over wall stress [m/(s.Pa)]
 UNDERFLOW_ENTRANCE = 2.5  # entrance loss in diameters
 UNDERFLOW_DIAMETERS = (8.0, 12.5, 20.0)  # mm
-UNDERFLOW_LENGTH = 1.2  # m
+UNDERFLOW_LENGTH = 2.0  # m
 UNDERFLOW_RATES = (25.0, 800.0)  # 1/s at the wall, lowest and highest
 UNDERFLOW_POINTS = 9
 

@@ -6,8 +6,10 @@ import io
 import zipfile
 from pathlib import Path
 
+import numpy as np
 import pytest
 
+import rheo
 from sample_data import make_samples
 
 FOLDER = Path(__file__).resolve().parent.parent / "sample_data"
@@ -38,3 +40,33 @@ def test_each_file_says_that_it_is_invented(path: Path) -> None:
     content = _content(path.read_bytes(), path.name)
     pieces = content.values() if isinstance(content, dict) else [content]
     assert any(b"nvented" in piece for piece in pieces)
+
+
+def _worst_error(found: rheo.Model, truth: rheo.Model, low: float, high: float) -> float:
+    rate = np.geomspace(low, high, 25)
+    return float(np.max(np.abs(found.stress(rate) / truth.stress(rate) - 1.0)))
+
+
+@pytest.mark.parametrize("celsius", make_samples.SAUCE_TEMPERATURES)
+def test_fit_finds_the_true_sauce(celsius: float) -> None:
+    readings = rheo.read_readings(FOLDER / "sauce_readings.csv")
+    near = np.abs(readings.temperature - celsius - make_samples.ZERO_CELSIUS) < 2.0
+    fits = rheo.fit(readings.select(near & (readings.branch == "down")))
+    assert fits.best.model.key == "herschel-bulkley"
+    # Eight readings with 0.8 % noise and more at low torque.
+    assert _worst_error(fits.best.model, make_samples.sauce(celsius), 3.0, 300.0) < 0.02
+
+
+def test_fit_finds_the_true_underflow() -> None:
+    fits = rheo.fit(rheo.read_readings(FOLDER / "thickener_readings.csv"))
+    truth = rheo.model("herschel-bulkley", **make_samples.UNDERFLOW)
+    # The slip and the entrance loss in the readings are not taken off here.
+    assert _worst_error(fits.best.model, truth, 30.0, 700.0) < 0.04
+
+
+def test_fit_finds_the_true_gum() -> None:
+    fits = rheo.fit(rheo.read_readings(FOLDER / "gum_readings.xlsx"))
+    assert fits.best.model.key == "carreau"
+    assert (
+        _worst_error(fits.best.model, rheo.model("carreau", **make_samples.GUM), 0.02, 800.0) < 0.02
+    )
