@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
+from dataclasses import dataclass
 
 import numpy as np
 
@@ -29,7 +30,73 @@ ONE_TEMPERATURE = 2.0
 ROOM_TEMPERATURE = 293.15
 
 
-def run_case(case: Case, readings: Sequence[Readings] | None = None) -> CaseResult:
+@dataclass(frozen=True, eq=False)
+class FittedCase:
+    """The first half of a result, which does not depend on the line.
+
+    Parameters
+    ----------
+    readings : tuple of Readings
+        Each set as read.
+    fitted : Readings
+        What was fitted: the sets joined, the branch chosen.
+    fits : Fits
+        The ranked models.
+    chosen : Fit
+        The model that is used.
+    product : Product
+        Flow curve, draws and properties, as the line uses them.
+    """
+
+    readings: tuple[Readings, ...]
+    fitted: Readings
+    fits: Fits
+    chosen: Fit
+    product: Product
+
+
+def fit_case(
+    case: Case, readings: Sequence[Readings] | None = None, fits: Fits | None = None
+) -> FittedCase:
+    """Go from a case to its product: readings, ranked models, draws.
+
+    Parameters
+    ----------
+    case : Case
+        The case.
+    readings : sequence of Readings, optional
+        One a set of the case, where they have been read already; they are read when absent.
+    fits : Fits, optional
+        The models fitted to just these readings, where that has been done already.
+
+    Returns
+    -------
+    FittedCase
+        What `run_case` starts from.
+
+    Raises
+    ------
+    InputError
+        If readings cannot be read or fitted.
+    """
+    sets = all_readings(case) if readings is None else tuple(readings)
+    if len(sets) != len(case.readings):
+        raise CaseError(
+            f"{len(sets)} sets of readings are given and the case has {len(case.readings)}; "
+            "give one for each",
+            "readings",
+        )
+    fitted = joined(
+        [branch_of(one, block.sweep) for one, block in zip(sets, case.readings, strict=True)]
+    )
+    fits = _fits(case, fitted) if fits is None else fits
+    chosen = fits.best if case.fit.model == AUTO else fits[case.fit.model]
+    return FittedCase(sets, fitted, fits, chosen, _product(case, fitted, fits, chosen))
+
+
+def run_case(
+    case: Case, readings: Sequence[Readings] | None = None, fitted: FittedCase | None = None
+) -> CaseResult:
     """Go from a case to its result.
 
     Parameters
@@ -38,6 +105,9 @@ def run_case(case: Case, readings: Sequence[Readings] | None = None) -> CaseResu
         From `load_case`, or made in Python.
     readings : sequence of Readings, optional
         One a set of the case, where they have been read already; they are read when absent.
+    fitted : FittedCase, optional
+        From `fit_case` for the same readings, fit, product and doubt, where only the line, the
+        duty or the pump is another.
 
     Returns
     -------
@@ -50,19 +120,8 @@ def run_case(case: Case, readings: Sequence[Readings] | None = None) -> CaseResu
         If readings cannot be read or fitted, or the line cannot be worked out; the sentence says
         what was found and what is allowed.
     """
-    sets = all_readings(case) if readings is None else tuple(readings)
-    if len(sets) != len(case.readings):
-        raise CaseError(
-            f"{len(sets)} sets of readings are given and the case has {len(case.readings)}; "
-            "give one for each",
-            "readings",
-        )
-    fitted = joined(
-        [branch_of(one, block.sweep) for one, block in zip(sets, case.readings, strict=True)]
-    )
-    fits = _fits(case, fitted)
-    chosen = fits.best if case.fit.model == AUTO else fits[case.fit.model]
-    product = _product(case, fitted, fits, chosen)
+    found = fit_case(case, readings) if fitted is None else fitted
+    sets, fits, chosen, product = found.readings, found.fits, found.chosen, found.product
     pump = None if case.pump is None else case.pump.build()
     efficiency = _efficiency(case, pump)
     line = solve_line(
@@ -78,11 +137,13 @@ def run_case(case: Case, readings: Sequence[Readings] | None = None) -> CaseResu
         *(screen(one) for one in sets),
         fits.data_cautions,
         chosen.cautions,
-        _temperature_cautions(fitted, product),
+        _temperature_cautions(found.fitted, product),
         line.cautions,
         _solids_cautions(case, line),
     )
-    return CaseResult(case, sets, fitted, fits, chosen, product, line, pump, efficiency, cautions)
+    return CaseResult(
+        case, sets, found.fitted, fits, chosen, product, line, pump, efficiency, cautions
+    )
 
 
 def _fits(case: Case, readings: Readings) -> Fits:
