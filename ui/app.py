@@ -20,6 +20,8 @@ def main() -> None:
     style.apply()
     pages = walk.pages()
     page = st.navigation(list(pages.values()), position="hidden")
+    with st.spinner("Working out the case"):
+        guard.run(lambda: state.result())
     with st.sidebar:
         case = state.case()
         st.html(

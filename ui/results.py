@@ -22,7 +22,10 @@ import streamlit as st
 from rheo.case import Case, case_text, run_case
 from rheo.case.embed import embedded
 from rheo.case.load_readings import all_readings
+from rheo.case.run import FittedCase, fit_case
+from rheo.case.schema import AUTO
 from rheo.errors import InputError
+from rheo.fitting import Fits
 from rheo.readings import Readings
 
 
@@ -114,10 +117,43 @@ def saved_text(case: Case, files: Files) -> str:
 
 def readings_of(case: Case, files: Files) -> Outcome:
     """Return the readings of a case: a tuple of Readings, one a set."""
-    document = case.document()
-    key = digest(document["readings"], document["product"], _file_digests(files))
-    found: Outcome = _read(key, case, files)
+    found: Outcome = _read(_readings_key(case, files), case, files)
     return found
+
+
+def fitted_of(case: Case, files: Files) -> Outcome:
+    """Return what was fitted to the readings of a case: a FittedCase.
+
+    The models are fitted once for the same readings, whichever of them is chosen.
+    """
+    sets = readings_of(case, files)
+    if sets.value is None:
+        return sets
+    document = case.document()
+    fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
+    fits_key = digest(_readings_key(case, files), fit)
+    fits: Outcome = _fits(fits_key, case, sets.value)
+    if fits.value is None:
+        return fits
+    parts = [document.get(name) for name in ("product", "fit", "doubt")]
+    found: Outcome = _fitted(digest(fits_key, parts), case, sets.value, fits.value)
+    return found
+
+
+def result_of(case: Case, files: Files) -> Outcome:
+    """Return the result of a case: a CaseResult."""
+    fitted = fitted_of(case, files)
+    if fitted.value is None:
+        return fitted
+    key = digest(case.document(), _file_digests(files))
+    found: Outcome = _result(key, case, fitted.value)
+    return found
+
+
+def _readings_key(case: Case, files: Files) -> str:
+    document = case.document()
+    product = {key: document["product"].get(key) for key in ("density", "solids")}
+    return digest(document["readings"], product, _file_digests(files))
 
 
 @st.cache_resource(max_entries=24, show_spinner=False)
@@ -129,15 +165,22 @@ def _read(key: str, _case: Case, _files: Files) -> Outcome:  # noqa: ARG001
     return outcome_of(calculate)
 
 
-def result_of(case: Case, files: Files) -> Outcome:
-    """Return the result of a case: a CaseResult."""
-    sets = readings_of(case, files)
-    if sets.value is None:
-        return sets
-    found: Outcome = _run(digest(case.document(), _file_digests(files)), case, sets.value)
-    return found
+@st.cache_resource(max_entries=24, show_spinner=False)
+def _fits(key: str, _case: Case, _readings: tuple[Readings, ...]) -> Outcome:  # noqa: ARG001
+    any_model = _case.model_copy(update={"fit": _case.fit.model_copy(update={"model": AUTO})})
+    return outcome_of(lambda: fit_case(any_model, _readings).fits)
 
 
 @st.cache_resource(max_entries=48, show_spinner=False)
-def _run(key: str, _case: Case, _readings: tuple[Readings, ...]) -> Outcome:  # noqa: ARG001
-    return outcome_of(lambda: run_case(_case, _readings))
+def _fitted(
+    key: str,  # noqa: ARG001
+    _case: Case,
+    _readings: tuple[Readings, ...],
+    _fits: Fits,
+) -> Outcome:
+    return outcome_of(lambda: fit_case(_case, _readings, _fits))
+
+
+@st.cache_resource(max_entries=64, show_spinner=False)
+def _result(key: str, _case: Case, _fitted: FittedCase) -> Outcome:  # noqa: ARG001
+    return outcome_of(lambda: run_case(_case, fitted=_fitted))

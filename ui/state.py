@@ -12,6 +12,7 @@ How stops use it::
     case = state.case()                       # what the user has
     result = state.result()                   # CaseResult, or None: then state.problem() says why
     sets = state.readings()                   # tuple of Readings, or None
+    fitted = state.fitted()                   # FittedCase (ranked models, product), or None
     state.change(("duty", "flow"), "5 m3/h")  # put a value into the case; raises InputError
     state.attempt("flow", state.change, ("duty", "flow"), "5 m3/h")
                                               # the same; an InputError becomes complaint "flow"
@@ -32,6 +33,7 @@ from typing import Any
 import streamlit as st
 
 from rheo.case import Case, CaseResult, case_from_document
+from rheo.case.run import FittedCase
 from rheo.errors import InputError
 from rheo.readings import Readings
 from rheo.report.text import one_line
@@ -140,6 +142,12 @@ def change_document(edit: Callable[[dict[str, Any]], None]) -> None:
 def readings() -> tuple[Readings, ...] | None:
     """Return every set of readings as the case says they are read; None with a problem."""
     found: tuple[Readings, ...] | None = results.readings_of(case(), files()).value
+    return found
+
+
+def fitted() -> FittedCase | None:
+    """Return what was fitted to the readings, line or no line; None with a problem."""
+    found: FittedCase | None = results.fitted_of(case(), files()).value
     return found
 
 
