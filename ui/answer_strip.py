@@ -123,7 +123,9 @@ def _regime(result: CaseResult) -> Cell:
     return Cell(
         "Regime",
         " and ".join(dict.fromkeys(str(pipe.regime) for pipe in pipes)),
-        f"Re at {number(closest, 2)} of critical",
+        f"Re is {number(100 * closest, 2)} % of critical"
+        if closest < 1
+        else f"Re is {number(closest, 2)} times critical",
         "warning" if 0.7 < closest < 1.4 else "",
     )
 

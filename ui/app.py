@@ -10,7 +10,13 @@ import streamlit as st
 
 from ui import case_menu, guard, opening, state, style, units_switch, walk
 
-st.set_page_config(page_title="rheo", page_icon=":material/waves:", layout="wide")
+# Drawn here: a named icon would be fetched from the network.
+_ICON = (
+    '<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 32 32"><rect width="32" height="32" '
+    'rx="6" fill="#0559b7"/><path d="M6 26C8 15 15 9 27 7" fill="none" stroke="#fff" '
+    'stroke-width="3.6" stroke-linecap="round"/></svg>'
+)
+st.set_page_config(page_title="rheo", page_icon=_ICON, layout="wide")
 
 
 def main() -> None:
