@@ -18,7 +18,7 @@ import zlib
 from typing import Any
 
 MEMORY_BYTES = 700 * 2**20
-CPU_SECONDS = 20
+CPU_SECONDS = 8
 UNPACKED_BYTES = 60 * 2**20
 MOST_CELLS = 2_000_000
 MOST_TEXT = 30 * 2**20

@@ -24,7 +24,7 @@ _PROTECTED = re.compile(
     + rb"|\x09\x08\x10\x00.{16}(?:\x86\x00\x00\x00)?\x2f\x00",
     re.DOTALL,
 )
-_WALL_SECONDS = 30.0
+_WALL_SECONDS = 20.0
 _TOO_MUCH = "reading the workbook takes too much memory or time; save only the sheet that "
 _TOO_MUCH += "holds the readings, as CSV"
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import datetime
 import io
+import subprocess
 import sys
 import time
 import zipfile
@@ -16,7 +17,7 @@ import pytest
 from xls_file import xls_bytes
 
 from rheo import InputError, read_readings
-from rheo.readings import workbook_child
+from rheo.readings import workbook_child, workbook_grid
 from rheo.readings.workbook_child import RefusedError, check_archive
 
 TABLE: list[list[object]] = [
@@ -236,6 +237,43 @@ def test_cells_that_blow_up_are_stopped_by_the_limits_on_the_child() -> None:
         InputError, match=r"^big.xlsx: (reading the workbook takes|the workbook un)"
     ):
         read_readings(archive_of(**parts), name="big.xlsx")
+
+
+def test_the_child_bounds_its_own_time_and_memory() -> None:
+    code = (
+        "import runpy, sys\n"
+        "child = runpy.run_path(sys.argv[1])\n"
+        "child['limit_this_process'].__globals__.update(CPU_SECONDS=1, MEMORY_BYTES=2**28)\n"
+        "child['limit_this_process']()\n"
+    )
+    for work, ends in (("while True: pass", -9), ("bytearray(2**29)", 1)):
+        done = subprocess.run(
+            [sys.executable, "-c", code + work, workbook_child.__file__],
+            capture_output=True,
+            timeout=60,
+            check=False,
+        )
+        # Out of processor time the system ends the process; out of memory Python says so.
+        assert done.returncode in {ends, -24} if ends < 0 else b"MemoryError" in done.stderr
+
+
+@pytest.mark.parametrize(
+    ("script", "sentence"),
+    [
+        ("import os; os.kill(os.getpid(), 24)", "reading the workbook takes too much memory or"),
+        ("import os; os.abort()", "reading the workbook takes too much memory or time; save only"),
+        ("import time; time.sleep(60)", "reading the workbook takes too much memory or time"),
+        ("raise SystemExit(1)", "the file cannot be read as a workbook; open it in a spreadsheet"),
+    ],
+)
+def test_however_the_child_ends_there_is_a_sentence(
+    script: str, sentence: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    (tmp_path / "child.py").write_text("import sys; sys.stdin.buffer.read()\n" + script)
+    monkeypatch.setattr(workbook_child, "__file__", str(tmp_path / "child.py"))
+    monkeypatch.setattr(workbook_grid, "_WALL_SECONDS", 2.0)
+    with pytest.raises(InputError, match=f"^a.xlsx: {sentence}"):
+        read_readings(xlsx(Run=TABLE), name="a.xlsx")
 
 
 def test_the_child_takes_nothing_from_the_program() -> None:
