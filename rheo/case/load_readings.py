@@ -44,7 +44,7 @@ def readings_of(case: Case, number: int = 0) -> Readings:
     source, name = _source(case, block, place)
     readings = read_readings(
         source,
-        columns=block.columns or None,
+        columns={key: heading or None for key, heading in block.columns.items()} or None,
         geometry=None if block.geometry is None else block.geometry.as_stated(),
         sheet=block.sheet,
         units=block.units or None,

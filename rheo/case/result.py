@@ -34,6 +34,7 @@ from rheo.line.holding import HoldingTube
 from rheo.line.limits import Limits
 from rheo.line.measure_next import NextReadings
 from rheo.line.operating import OperatingPoint
+from rheo.line.product import FlowCurveSource
 from rheo.line.result import plain
 from rheo.line.sizing import Sizing
 from rheo.line.system import SystemCurve
@@ -41,6 +42,8 @@ from rheo.models import Model
 from rheo.readings import Readings
 
 _FLOW_SPAN = np.geomspace(0.2, 2.0, 41)
+# Enough flow curves for a band to be drawn; the interval at the duty takes all of them.
+_BAND_DRAWS = 200
 
 
 @dataclass(frozen=True, eq=False)
@@ -137,7 +140,8 @@ class CaseResult:
     def system_curve(self) -> SystemCurve:
         """Pressure against flow from a fifth of the duty to twice the duty."""
         method = self.case.line.friction_method
-        return system_curve(self.line.line, self.product, self.flow * _FLOW_SPAN, method)
+        fewer = replace(self.product, draws=_thinned(self.product.draws, self.product.draw_count))
+        return system_curve(self.line.line, fewer, self.flow * _FLOW_SPAN, method)
 
     @cached_property
     def doubt(self) -> DoubtBudget:
@@ -269,6 +273,17 @@ class CaseResult:
             "cautions": as_data.cautions_data(self.cautions),
             "safety": [*line.safety, line.start_up.safety],
         }
+
+
+def _thinned(draws: tuple[FlowCurveSource, ...], count: int) -> tuple[FlowCurveSource, ...]:
+    """Return about `_BAND_DRAWS` of the draws, every so many of each model's."""
+    step = max(1, count // _BAND_DRAWS)
+    return tuple(
+        source.map(lambda value: value[::step] if value.ndim else value)
+        if isinstance(source, Model)
+        else source
+        for source in draws
+    )
 
 
 def sizes_to_compare(case: Case) -> tuple[PipeSize, ...]:

@@ -154,7 +154,13 @@ def _fits(case: Case, readings: Readings) -> Fits:
         float(wanted.percent_of_full_scale or 0.0),
         readings,
     )
-    return fit(readings, models=wanted.models, weighting=weighting)
+    return fit(
+        readings,
+        models=wanted.models,
+        weighting=weighting,
+        entrance=wanted.entrance,
+        slip=wanted.slip,
+    )
 
 
 def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product:

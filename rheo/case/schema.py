@@ -10,7 +10,7 @@ import json
 from pathlib import Path
 from typing import Annotated, Any, Self
 
-from pydantic import Field, PrivateAttr, field_validator, model_validator
+from pydantic import Field, PrivateAttr, StrictBool, field_validator, model_validator
 
 from rheo.case.block import Block, KeyedError
 from rheo.case.design_blocks import (
@@ -78,6 +78,8 @@ class FitBlock(Block):
     weighting: Text = "relative"
     percent_of_reading: Percent | None = None
     percent_of_full_scale: Percent | None = None
+    entrance: StrictBool = False
+    slip: StrictBool = False
 
     @field_validator("models")
     @classmethod

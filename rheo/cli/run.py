@@ -68,7 +68,7 @@ def _show(result: CaseResult, units: str) -> None:
     terminal.heading(out, "Start-up")
     terminal.sentence(out, result.line.start_up.sentence)
     _show_asked_for(out, result, units)
-    show_doubt(out, result.doubt)
+    show_doubt(out, result.doubt, units)
     terminal.cautions(out, result.cautions)
     terminal.safety(out, (*result.line.safety, result.line.start_up.safety))
 

@@ -15,6 +15,7 @@ if TYPE_CHECKING:
     from rheo.line.result import PartResult
 
 _BAR = 24
+_DOUBT = "± is the 95 % interval by readings and model choice"
 
 
 def with_interval(value: Any, interval: Any, quantity: str, units: str) -> str:
@@ -37,7 +38,7 @@ def show_duty(out: Console, result: LineResult, units: str, efficiency: float | 
         result.differential_pressure, result.differential_pressure_interval, "pressure", units
     )
     doubtful = result.differential_pressure_interval is not None
-    terminal.heading(out, "Duty", "± is the 95 % interval" if doubtful else "")
+    terminal.heading(out, "Duty", _DOUBT if doubtful else "")
     power = text(result.hydraulic_power, "power", units) + " hydraulic"
     if result.shaft_power is not None and efficiency is not None:
         power += f", {text(result.shaft_power, 'power', units)} shaft at {100 * efficiency:.3g} %"
@@ -147,14 +148,13 @@ def show_parts(out: Console, result: LineResult, units: str) -> None:
 def _part_rows(parts: tuple[PartResult, ...], units: str) -> list[tuple[Any, ...]]:
     from rheo.report.display import shown
 
-    def cells(values: list[float | None], quantity: str) -> list[str]:
-        return terminal.column(
-            [None if one is None else float(shown(one, quantity, units)) for one in values]
-        )
+    def cells(values: list[float | None], quantity: str, digits: int = 3) -> list[str]:
+        converted = [None if one is None else float(shown(one, quantity, units)) for one in values]
+        return terminal.column(converted, digits)
 
     pipes = [part.kind == "pipe" for part in parts]
-    losses = cells([float(part.pressure_loss) for part in parts], "pressure")
-    heights = cells([float(part.elevation_pressure) or None for part in parts], "pressure")
+    losses = cells([float(part.pressure_loss) for part in parts], "pressure", 4)
+    heights = cells([float(part.elevation_pressure) or None for part in parts], "pressure", 4)
     velocities = cells(_of_pipes([float(part.velocity) for part in parts], pipes), "velocity")
     rates = cells(_of_pipes([float(part.wall_rate) for part in parts], pipes), "rate")
     regimes = [_regime(part) for part in parts]
@@ -174,10 +174,18 @@ def _regime(part: PartResult) -> Text:
     return words
 
 
-def show_doubt(out: Console, budget: DoubtBudget) -> None:
+def _interval(budget: DoubtBudget) -> tuple[float, float]:
+    half = 1.96 * budget.standard_deviation
+    return budget.pressure - half, budget.pressure + half
+
+
+def show_doubt(out: Console, budget: DoubtBudget, units: str) -> None:
     """Write the doubt budget as bars, the largest first."""
+    from rheo.report.display import text
+
     terminal.heading(out, "What makes the pressure uncertain")
-    terminal.sentence(out, budget.sentence)
+    whole = text(budget.pressure, "pressure", units, *_interval(budget))
+    terminal.sentence(out, f"{budget.sentence} With all of it: {whole} (95 %).")
     rows = []
     for one in budget.shares:
         if one.share < 0.005:

@@ -71,6 +71,9 @@ discharge = [
 [pump]
 efficiency = "50 %"
 rated_pressure = "8 bar"
+
+[doubt]
+draws = 200
 """
 
 
