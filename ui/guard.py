@@ -17,7 +17,7 @@ UNEXPECTED = (
 )
 
 
-def run(draw: Callable[[], None]) -> None:
+def run(draw: Callable[[], object]) -> None:
     """Draw a part of the page; what breaks in it becomes a sentence in its place."""
     try:
         draw()

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from functools import cache
 from pathlib import Path
 
-from rheo.case import case_from_document, case_from_text
+from rheo.case import Case, case_from_document, case_from_text
 from rheo.errors import CaseError
 from rheo.report.text import one_line
 from ui import state
@@ -21,10 +22,43 @@ def sample_names() -> tuple[str, ...]:
     return tuple(sorted(names, key=lambda name: name != FIRST_SAMPLE))
 
 
+@cache
+def sample(name: str) -> Case:
+    """Return a sample case."""
+    path = SAMPLES / f"{name}.toml"
+    return case_from_text(path.read_text(encoding="utf-8"), path.name)
+
+
+def is_sample_title(title: str) -> bool:
+    """Return whether a title is that of a sample."""
+    return any(sample(name).title == title for name in sample_names())
+
+
+def borrowed() -> tuple[str, ...]:
+    """Return which parts of the case are still those of a sample though its readings are not.
+
+    Returns
+    -------
+    tuple of str
+        Some of ``product``, ``duty``, ``line``; none while a sample is shown as it is.
+    """
+    case = state.case()
+    samples = [sample(name) for name in sample_names()]
+    if any(case.readings == one.readings for one in samples):
+        return ()
+    parts = []
+    if any(case.product.density == one.product.density for one in samples):
+        parts.append("product")
+    if any(case.duty == one.duty for one in samples):
+        parts.append("duty")
+    if any(case.line == one.line for one in samples):
+        parts.append("line")
+    return tuple(parts)
+
+
 def open_sample(name: str) -> None:
     """Open a sample case with its files."""
-    path = SAMPLES / f"{name}.toml"
-    found = case_from_text(path.read_text(encoding="utf-8"), path.name)
+    found = sample(name)
     named = [block.file for block in found.readings if block.file]
     files = {one: StoredFile((SAMPLES / one).read_bytes(), one) for one in named}
     state.put(found, files, opened=True)

@@ -46,6 +46,7 @@ _UNITS = "rheo.units"
 _WHAT_IF = "rheo.what_if"
 _COMPLAINTS = "rheo.complaints"
 _GENERATION = "rheo.generation"
+_VERSION = "rheo.version"
 
 
 def is_empty() -> bool:
@@ -89,6 +90,16 @@ def put(new: Case, new_files: Files | None = None, *, opened: bool = False) -> N
 def key(name: str) -> str:
     """Return a widget key that changes when another case is opened."""
     return f"{name}.{st.session_state.get(_GENERATION, 0)}"
+
+
+def version() -> int:
+    """Return a number that grows whenever `touch` is called; a part of the keys of editors."""
+    return int(st.session_state.get(_VERSION, 0))
+
+
+def touch() -> None:
+    """Make editors draw the case anew, after it was changed from elsewhere."""
+    st.session_state[_VERSION] = version() + 1
 
 
 def change(path: tuple[str | int, ...], value: Any) -> None:

@@ -1,0 +1,1 @@
+"""Parts of the flow curve stop: ranking, pictures, choice of the model, what to measure next."""

@@ -1,0 +1,1 @@
+"""Parts of the readings stop: where readings come from, columns, geometry, points."""
