@@ -23,12 +23,22 @@ from rheo.errors import CaseError
 from rheo.line.pumps import CentrifugalPump, DisplacementPump, Pump
 
 
-class DutyPumpBlock(Block):
+class PumpBlock(Block):
+    """What every pump has."""
+
+    efficiency: PositiveShare | None = None
+
+    @property
+    def has_efficiency(self) -> bool:
+        """Whether the pump's efficiency is given."""
+        return self.efficiency is not None
+
+
+class DutyPumpBlock(PumpBlock):
     """A pump of which no curve is known: it is taken to give the duty."""
 
     kind: Literal["duty"] = "duty"
     name: Text = "pump"
-    efficiency: PositiveShare | None = None
     rated_pressure: Pressure | None = None
 
     def build(self) -> Pump | None:
@@ -45,7 +55,7 @@ class CurvePoint(Block):
     npsh_required: NotNegativeLength | None = None
 
 
-class CentrifugalPumpBlock(Block):
+class CentrifugalPumpBlock(PumpBlock):
     """A centrifugal pump by the points of its curve."""
 
     kind: Literal["centrifugal"]
@@ -54,7 +64,6 @@ class CentrifugalPumpBlock(Block):
     for_water: StrictBool = True
     speed: AngularSpeed | None = None
     stages: Annotated[StrictInt, Field(ge=1, le=1000)] = 1
-    efficiency: PositiveShare | None = None
     rated_pressure: Pressure | None = None
 
     @model_validator(mode="after")
@@ -68,6 +77,11 @@ class CentrifugalPumpBlock(Block):
                 )
         self.build()
         return self
+
+    @property
+    def has_efficiency(self) -> bool:
+        """Whether the efficiency is given, at the points or as one value."""
+        return self.efficiency is not None or self.points[0].efficiency is not None
 
     def build(self) -> CentrifugalPump:
         """Return the pump for the engine."""
@@ -88,7 +102,7 @@ class CentrifugalPumpBlock(Block):
         return None if values[0] is None else tuple(float(value) for value in values)
 
 
-class DisplacementPumpBlock(Block):
+class DisplacementPumpBlock(PumpBlock):
     """A positive-displacement pump: lobe, progressing cavity, gear, piston."""
 
     kind: Literal["positive-displacement"]
@@ -99,7 +113,6 @@ class DisplacementPumpBlock(Block):
     slip_flow: NotNegativeFlow = Quantity(0.0)
     slip_pressure: Pressure | None = None
     slip_exponent: Positive = Quantity(1.0)
-    efficiency: PositiveShare | None = None
     npsh_required: NotNegativeLength | None = None
 
     @model_validator(mode="after")

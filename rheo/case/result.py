@@ -168,8 +168,14 @@ class CaseResult:
         sizes = case.sizes
         spread = {} if sizes is None else sizes.spread()
         costs = None
-        if case.cost is not None and case.duty.hours_a_year is not None and case.pump is not None:
-            costs = case.cost.build(float(case.duty.hours_a_year), float(case.pump.efficiency or 0))
+        if case.cost is not None and case.duty.hours_a_year is not None:
+            if self.efficiency is None:
+                raise CaseError(
+                    "the pump's efficiency is not known at the flow of the duty; give points "
+                    "around that flow, or efficiency",
+                    "pump",
+                )
+            costs = case.cost.build(float(case.duty.hours_a_year), self.efficiency)
         return size_line(
             self.line.line,
             self.product,

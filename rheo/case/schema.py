@@ -174,8 +174,8 @@ class Case(Block):
         if self.cost is not None:
             if self.duty.hours_a_year is None:
                 raise KeyedError("it needs duty.hours_a_year, the running hours a year", "cost")
-            if self.pump is None or self.pump.efficiency is None:
-                raise KeyedError("it needs pump.efficiency, such as '55 %'", "cost")
+            if self.pump is None or not self.pump.has_efficiency:
+                raise KeyedError("it needs the pump's efficiency, such as '55 %'", "cost")
         return self
 
     def __eq__(self, other: object) -> bool:

@@ -36,7 +36,9 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
     from rheo.report.display import unit_label
 
     priced = any(one.annual_cost is not None for one in sizing.candidates)
-    terminal.heading(out, "Sizes")
+    standards = {one.size.standard for one in sizing.candidates}
+    alike = standards.pop() if len(standards) == 1 else ""
+    terminal.heading(out, "Sizes", "" if alike == "own" else alike)
     best = [i for i, one in enumerate(sizing.candidates) if one is sizing.recommended]
     headings = [
         "size",
@@ -51,7 +53,7 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
     terminal.table(
         out,
         headings,
-        (_row(one, units, priced) for one in sizing.candidates),
+        (_row(one, units, priced, bool(alike)) for one in sizing.candidates),
         left=2,
         bold_rows=best,
     )
@@ -62,7 +64,7 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
     terminal.safety(out, sizing.safety)
 
 
-def _row(one: Candidate, units: str, priced: bool) -> tuple[Any, ...]:
+def _row(one: Candidate, units: str, priced: bool, alike: bool) -> tuple[Any, ...]:
     from rheo.report.display import shown
     from rheo.report.numbers import number, with_interval
 
@@ -75,7 +77,7 @@ def _row(one: Candidate, units: str, priced: bool) -> tuple[Any, ...]:
         pressure = with_interval(*(float(end) for end in ends))
     verdict = terminal.text("passes", "green") if one.passes else terminal.text("fails", "red")
     cells = [
-        one.size.name,
+        one.size.label if alike else one.size.name,
         verdict,
         pressure,
         cell(one.velocity, "velocity"),
@@ -89,7 +91,7 @@ def _row(one: Candidate, units: str, priced: bool) -> tuple[Any, ...]:
 
 def _show_moves(out: Console, sizing: Sizing, units: str) -> None:
     if sizing.choice_by_draw:
-        likely = ", ".join(f"{name} {100 * share:.0f} %" for name, share in sizing.choice_by_draw)
+        likely = ", ".join(f"{name} {_percent(share)}" for name, share in sizing.choice_by_draw)
         terminal.sentence(out, f"Over the doubt in the product the choice would be: {likely}.")
     if len({name for _, name in sizing.choice_by_flow}) > 1:
         flows = ", ".join(
@@ -97,6 +99,10 @@ def _show_moves(out: Console, sizing: Sizing, units: str) -> None:
             for flow, name in sizing.choice_by_flow
         )
         terminal.sentence(out, f"Over the spread of the flow: {flows}.")
+
+
+def _percent(share: float) -> str:
+    return f"{100 * share:.0f} %" if share >= 0.005 else "under 1 %"
 
 
 def _show_reasons(out: Console, sizing: Sizing) -> None:
