@@ -1,12 +1,105 @@
-"""Flow curve."""
+"""Flow curve: which model, why, how far to trust it, and what another would change."""
 
 from __future__ import annotations
 
 import streamlit as st
 
-from ui import answer_strip, cautions, walk
+from rheo.case import CaseResult
+from rheo.fitting import Fit
+from rheo.report.case_pictures import flow_curve_picture, residuals_picture
+from rheo.report.sections.fitted import parameter_table, ranking_table
+from rheo.report.words import capital
+from ui import answer_strip, blocks, cautions, pictures, state, style, walk
+from ui.flow_curve import compare, measure
 
-st.header("Flow curve")
-answer_strip.show()
-cautions.safety("pressure", "start-up")
-walk.onward("flow_curve")
+
+def show() -> None:
+    """Draw the stop."""
+    st.header("Flow curve")
+    result = answer_strip.show()
+    if result is None:
+        _show_fit_alone()
+    else:
+        _show_result(result)
+    cautions.safety("pressure", "start-up")
+    walk.onward("flow_curve")
+
+
+def _show_result(result: CaseResult) -> None:
+    st.html(f'<p class="rheo-text lead">{style.escape(_reason(result))}</p>')
+    left, right = st.columns([3, 2], gap="medium")
+    with right:
+        looked_at, other = compare.choose(result)
+        if other is result:
+            compare.show_return(result)
+        else:
+            compare.show(result, other)
+        cautions.show(looked_at.cautions)
+        cautions.show(result.fits.data_cautions)
+        cautions.show(cautions.of(result.cautions, codes=("temperature-of-readings",)))
+    with left:
+        _show_picture(result if looked_at.key == result.chosen.key else other, looked_at)
+    blocks.show(ranking_table(result.fits, result.chosen), "ranking")
+    with st.expander("Parameters, with their intervals", expanded=True):
+        blocks.show(parameter_table(looked_at), "parameters")
+        st.caption(
+            f"Valid: {style.plain(looked_at.record.validity)} "
+            f"Source: {style.plain(looked_at.record.source)}"
+        )
+    with st.expander("Residuals: what the model leaves unexplained", expanded=True):
+        pictures.show(
+            residuals_picture(result, looked_at, state.system()), "residuals", title=False
+        )
+    with st.expander("What to measure next", expanded=True):
+        measure.show(result)
+
+
+def _reason(result: CaseResult) -> str:
+    if result.chosen.key == result.fits.best.key:
+        return result.fits.reason
+    chosen = capital(result.chosen.record.name)
+    return f"{chosen} is your choice. By the ranking: {result.fits.reason}"
+
+
+def _show_picture(result: CaseResult, looked_at: Fit) -> None:
+    with st.container(horizontal=True, horizontal_alignment="left"):
+        viscosity = st.segmented_control(
+            "Draw",
+            (False, True),
+            default=False,
+            required=True,
+            format_func=lambda on: "Viscosity" if on else "Stress",
+            key=state.key("flow_curve.viscosity"),
+            label_visibility="collapsed",
+        )
+        log = st.segmented_control(
+            "Axes",
+            (True, False),
+            default=True,
+            required=True,
+            format_func=lambda on: "Logarithmic" if on else "Linear",
+            key=state.key("flow_curve.log"),
+            label_visibility="collapsed",
+        )
+    picture = flow_curve_picture(
+        result,
+        viscosity=bool(viscosity),
+        log=bool(log),
+        fit=result.fits[looked_at.key],
+        system=state.system(),
+    )
+    pictures.show(picture, "flow_curve", title=False)
+
+
+def _show_fit_alone() -> None:
+    """Show the ranking where the line cannot be worked out."""
+    fitted = state.fitted()
+    if fitted is None:
+        return
+    st.html(f'<p class="rheo-text lead">{style.escape(fitted.fits.reason)}</p>')
+    blocks.show(ranking_table(fitted.fits, fitted.chosen), "ranking")
+    blocks.show(parameter_table(fitted.chosen), "parameters")
+    cautions.show(fitted.chosen.cautions)
+
+
+show()

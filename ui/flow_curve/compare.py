@@ -1,0 +1,145 @@
+"""Another model beside the one in use: what the line would then need."""
+
+from __future__ import annotations
+
+import streamlit as st
+
+from rheo.case import CaseResult
+from rheo.case.schema import AUTO
+from rheo.fitting import Fit
+from rheo.report import display
+from rheo.report.case_pictures import wall_rate_words
+from rheo.report.numbers import number
+from rheo.report.words import capital
+from ui import cautions, results, state, style, table, words
+
+
+def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
+    """Draw the choice of the model to look at; return its fit and the result with it.
+
+    Parameters
+    ----------
+    result : CaseResult
+        With the model in use.
+
+    Returns
+    -------
+    tuple
+        The fit looked at, and the result of the case with that model (the one given while it is
+        the model in use).
+    """
+    keys = [fit.key for fit in result.fits]
+    widget = state.key(f"looked_at.{result.chosen.key}")
+    looked_at = st.selectbox(
+        "Look at the model",
+        keys,
+        index=keys.index(result.chosen.key),
+        format_func=lambda key: _name(result, key),
+        key=widget,
+    )
+    if looked_at == result.chosen.key:
+        return result.chosen, result
+    with st.spinner("Working out the line with it"):
+        other = results.result_of(
+            state.changed(state.case(), ("fit", "model"), looked_at), state.files()
+        )
+    if other.value is None:
+        if other.problem is not None:
+            cautions.complaint(state.sentence(other.problem))
+        return result.fits[looked_at], result
+    return result.fits[looked_at], other.value
+
+
+def show(result: CaseResult, other: CaseResult) -> None:
+    """Draw both results side by side, and the button that takes the other model."""
+    system = state.system()
+    table.show(
+        [
+            "With",
+            table.Number(f"{capital(result.chosen.record.name)} (in use)"),
+            table.Number(capital(other.chosen.record.name)),
+            table.Number("Change"),
+        ],
+        comparison(result, other, system),
+    )
+    name = other.chosen.record.name
+    st.button(
+        f"Use {style.plain(name)}",
+        type="primary",
+        on_click=state.attempt,
+        args=("model", state.change, ("fit", "model"), other.chosen.key),
+    )
+    cautions.complaint(state.complaint("model"))
+
+
+def show_return(result: CaseResult) -> None:
+    """Draw the way back to the ranking's own choice, where the user has chosen a model."""
+    if state.case().fit.model == AUTO:
+        return
+    best = result.fits.best
+    if best.key == result.chosen.key:
+        words_ = "You have fixed this model. The interval leaves out the doubt about the model."
+    else:
+        words_ = f"You chose this model; the ranking has {best.record.name} first."
+    st.html(f'<p class="rheo-text small">{style.escape(words_)}</p>')
+    st.button(
+        "Let the ranking choose",
+        on_click=state.attempt,
+        args=("model", state.change, ("fit", "model"), None),
+    )
+
+
+def comparison(result: CaseResult, other: CaseResult, system: str) -> list[list[str]]:
+    """Return what changes with another result: name, before, after, change in percent."""
+    rows = []
+    for name, attribute, interval in (
+        ("Pressure drop (friction)", "friction_pressure", "friction_pressure_interval"),
+        ("Pump adds", "differential_pressure", "differential_pressure_interval"),
+    ):
+        before, after = (float(getattr(one.line, attribute)) for one in (result, other))
+        rows.append(
+            [
+                name,
+                *(
+                    words.with_interval(
+                        getattr(one.line, attribute),
+                        getattr(one.line, interval),
+                        "pressure",
+                        system,
+                    )
+                    for one in (result, other)
+                ),
+                _change(before, after),
+            ]
+        )
+    rates = [0.0 if one.wall_rates is None else one.wall_rates[1] for one in (result, other)]
+    rows.append(
+        [
+            "Wall shear rate",
+            *(wall_rate_words(one, system) for one in (result, other)),
+            _change(*rates),
+        ]
+    )
+    start = [float(one.line.start_up.pressure) for one in (result, other)]
+    rows.append(
+        [
+            "Start-up pressure",
+            *(display.text(value, "pressure", system) for value in start),
+            _change(*start),
+        ]
+    )
+    return rows
+
+
+def _change(before: float, after: float) -> str:
+    if before <= 0:
+        return ""
+    change = 100.0 * (after / before - 1.0)
+    return (
+        "0 %" if abs(change) < 0.05 else f"{'+' if change > 0 else '−'}{number(abs(change), 2)} %"
+    )
+
+
+def _name(result: CaseResult, key: str) -> str:
+    name = capital(result.fits[key].record.name)
+    return f"{name} (in use)" if key == result.chosen.key else name
