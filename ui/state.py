@@ -194,7 +194,7 @@ def dark() -> bool:
     return st.context.theme.type == "dark"
 
 
-def attempt(name: str, act: Callable[..., Any], *arguments: Any) -> bool:
+def attempt(name: str, act: Callable[..., Any], *arguments: Any) -> None:
     """Call `act`; what goes wrong becomes the complaint `name`, to be shown beside its widget.
 
     Parameters
@@ -205,11 +205,6 @@ def attempt(name: str, act: Callable[..., Any], *arguments: Any) -> bool:
         Such as `change`.
     *arguments : object
         For `act`.
-
-    Returns
-    -------
-    bool
-        Whether it went well.
     """
     complaints: dict[str, str] = st.session_state.setdefault(_COMPLAINTS, {})
     complaints.pop(name, None)
@@ -217,8 +212,6 @@ def attempt(name: str, act: Callable[..., Any], *arguments: Any) -> bool:
         act(*arguments)
     except InputError as error:
         complaints[name] = sentence(error)
-        return False
-    return True
 
 
 def complaint(name: str) -> str:

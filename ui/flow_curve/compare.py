@@ -91,53 +91,35 @@ def show_return(result: CaseResult) -> None:
 
 def comparison(result: CaseResult, other: CaseResult, system: str) -> list[list[str]]:
     """Return what changes with another result: name, before, after, change in percent."""
+    both = (result, other)
     rows = []
-    for name, attribute, interval in (
-        ("Pressure drop (friction)", "friction_pressure", "friction_pressure_interval"),
-        ("Pump adds", "differential_pressure", "differential_pressure_interval"),
+    for name, key in (
+        ("Pressure drop (friction)", "friction_pressure"),
+        ("Pump adds", "differential_pressure"),
     ):
-        before, after = (float(getattr(one.line, attribute)) for one in (result, other))
-        rows.append(
-            [
-                name,
-                *(
-                    words.with_interval(
-                        getattr(one.line, attribute),
-                        getattr(one.line, interval),
-                        "pressure",
-                        system,
-                    )
-                    for one in (result, other)
-                ),
-                _change(before, after),
-            ]
-        )
-    rates = [0.0 if one.wall_rates is None else one.wall_rates[1] for one in (result, other)]
-    rows.append(
-        [
-            "Wall shear rate",
-            *(wall_rate_words(one, system) for one in (result, other)),
-            _change(*rates),
+        values = [getattr(one.line, key) for one in both]
+        intervals = [getattr(one.line, f"{key}_interval") for one in both]
+        texts = [
+            words.with_interval(value, interval, "pressure", system)
+            for value, interval in zip(values, intervals, strict=True)
         ]
-    )
-    start = [float(one.line.start_up.pressure) for one in (result, other)]
+        rows.append([name, *texts, change(*map(float, values))])
+    rates = [0.0 if one.wall_rates is None else one.wall_rates[1] for one in both]
     rows.append(
-        [
-            "Start-up pressure",
-            *(display.text(value, "pressure", system) for value in start),
-            _change(*start),
-        ]
+        ["Wall shear rate", *(wall_rate_words(one, system) for one in both), change(*rates)]
     )
-    return rows
+    start = [float(one.line.start_up.pressure) for one in both]
+    texts = [display.text(value, "pressure", system) for value in start]
+    return [*rows, ["Start-up pressure", *texts, change(*start)]]
 
 
-def _change(before: float, after: float) -> str:
+def change(before: float, after: float) -> str:
+    """Return a change in percent, with its sign."""
     if before <= 0:
         return ""
-    change = 100.0 * (after / before - 1.0)
-    return (
-        "0 %" if abs(change) < 0.05 else f"{'+' if change > 0 else '−'}{number(abs(change), 2)} %"
-    )
+    percent = 100.0 * (after / before - 1.0)
+    sign = "+" if percent > 0 else "−"
+    return "0 %" if abs(percent) < 0.05 else f"{sign}{number(abs(percent), 2)} %"
 
 
 def _name(result: CaseResult, key: str) -> str:
