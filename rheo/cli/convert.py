@@ -94,6 +94,7 @@ def _show(result: Conversion, words: str, units: str) -> None:
         out,
         ("geometry", "setting", "shear rate\n1/s", "stress\nPa", "viscosity\nPa·s", "nominal\n1/s"),
         (_row(name, point, units) for name, point in points.items()),
+        least_wanted=(5, 4),
     )
     terminal.sentence(out, words)
     terminal.cautions(out, [one for point in points.values() for one in point.cautions])

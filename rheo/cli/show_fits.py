@@ -74,6 +74,7 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
             for fit in fits.ranking
         ),
         bold_rows=(place,),
+        least_wanted=(1, 5, 2),
     )
     terminal.sentence(out, fits.reason)
     if chosen is not fits.best:
@@ -96,6 +97,7 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
             for key, one in chosen.parameters.items()
         ),
         left=2,
+        least_wanted=(1, 3),
     )
 
 

@@ -142,6 +142,7 @@ def show_parts(out: Console, result: LineResult, units: str) -> None:
             "regime",
         ),
         _part_rows(result.parts, units),
+        least_wanted=(3, 2, 5),
     )
 
 

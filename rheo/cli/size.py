@@ -11,6 +11,7 @@ from rheo.cli.terminal import Units
 if TYPE_CHECKING:
     from rich.console import Console
 
+    from rheo.line import PipeSize
     from rheo.line.size_words import Candidate
     from rheo.line.sizing import Sizing
 
@@ -36,9 +37,9 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
     from rheo.report.display import unit_label
 
     priced = any(one.annual_cost is not None for one in sizing.candidates)
-    standards = {one.size.standard for one in sizing.candidates}
-    alike = standards.pop() if len(standards) == 1 else ""
-    terminal.heading(out, "Sizes", "" if alike == "own" else alike)
+    sizes = [one.size for one in sizing.candidates]
+    shared, labels = _short_labels(sizes)
+    terminal.heading(out, "Sizes", shared)
     best = [i for i, one in enumerate(sizing.candidates) if one is sizing.recommended]
     headings = [
         "size",
@@ -47,16 +48,13 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
         f"velocity\n{unit_label('velocity', units)}",
         "wall rate\n1/s",
         f"start-up\n{unit_label('pressure', units)}",
+        *(["cost\na year"] if priced else []),
     ]
-    if priced:
-        headings.append("cost\na year")
-    terminal.table(
-        out,
-        headings,
-        (_row(one, units, priced, bool(alike)) for one in sizing.candidates),
-        left=2,
-        bold_rows=best,
-    )
+    rows = [
+        (label, *_cells(one, units, priced))
+        for label, one in zip(labels, sizing.candidates, strict=True)
+    ]
+    terminal.table(out, headings, rows, left=2, bold_rows=best, least_wanted=(5, 4, 3))
     terminal.sentence(out, sizing.sentence, "bold")
     _show_moves(out, sizing, units)
     _show_reasons(out, sizing)
@@ -64,7 +62,19 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
     terminal.safety(out, sizing.safety)
 
 
-def _row(one: Candidate, units: str, priced: bool, alike: bool) -> tuple[Any, ...]:
+def _short_labels(sizes: list[PipeSize]) -> tuple[str, list[str]]:
+    """Return what all names share, for the heading, and the labels without it."""
+    if len({size.standard for size in sizes}) > 1:
+        return "", [size.name for size in sizes]
+    standard = "" if sizes[0].standard == "own" else sizes[0].standard
+    schedules = {size.label.partition(" schedule ")[2] for size in sizes}
+    if len(schedules) > 1 or schedules == {""}:
+        return standard, [size.label for size in sizes]
+    shared = f"{standard} schedule {schedules.pop()}"
+    return shared, [size.label.partition(" schedule ")[0] for size in sizes]
+
+
+def _cells(one: Candidate, units: str, priced: bool) -> tuple[Any, ...]:
     from rheo.report.display import shown
     from rheo.report.numbers import number, with_interval
 
@@ -73,11 +83,10 @@ def _row(one: Candidate, units: str, priced: bool, alike: bool) -> tuple[Any, ..
 
     pressure = cell(one.pressure, "pressure")
     if one.pressure_interval is not None:
-        ends = shown([one.pressure, *one.pressure_interval], "pressure", units)
-        pressure = with_interval(*(float(end) for end in ends))
+        value, low, high = shown([one.pressure, *one.pressure_interval], "pressure", units)
+        pressure = with_interval(float(value), float(low), float(high))
     verdict = terminal.text("passes", "green") if one.passes else terminal.text("fails", "red")
     cells = [
-        one.size.label if alike else one.size.name,
         verdict,
         pressure,
         cell(one.velocity, "velocity"),

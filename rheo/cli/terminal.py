@@ -6,7 +6,7 @@ import json
 import sys
 from collections.abc import Iterable, Sequence
 from enum import StrEnum
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, TypeGuard
 
 from rheo.errors import Caution
 
@@ -17,6 +17,8 @@ if TYPE_CHECKING:
 WIDEST = 110
 # Words of a table up to this length are not broken.
 SHORT = 26
+# To no less than this are columns of words narrowed.
+LEAST = 14
 
 
 class Units(StrEnum):
@@ -125,7 +127,7 @@ def values(out: Console, rows: Iterable[tuple[str, object]]) -> None:
     out.print(table)
 
 
-def _is_text(value: object) -> bool:
+def _is_text(value: object) -> TypeGuard[Text]:
     from rich.text import Text
 
     return isinstance(value, Text)
@@ -137,6 +139,7 @@ def table(
     rows: Iterable[Sequence[object]],
     left: int = 1,
     bold_rows: Sequence[int] = (),
+    least_wanted: Sequence[int] = (),
 ) -> None:
     """Write a table.
 
@@ -152,28 +155,49 @@ def table(
         So many columns hold words and are set to the left, the others numbers.
     bold_rows : sequence of int
         Rows to set off, counted from 0.
+    least_wanted : sequence of int
+        Columns that go, one after the other, where the terminal is too narrow for all.
     """
     from rich import box
     from rich.table import Table
 
+    listed = [tuple(_cell(cell) for cell in row) for row in rows]
+    longest = [
+        max([len(row[i].plain) for row in listed] + [len(part) for part in words.split("\n")])
+        for i, words in enumerate(headings)
+    ]
+    kept = _columns_that_fit(longest, left, out.width, least_wanted)
     made = Table(box=box.SIMPLE_HEAD, pad_edge=True, header_style="dim", padding=(0, 1))
-    listed = [tuple(row) for row in rows]
-    for index, words in enumerate(headings):
-        longest = max((len(str(row[index] or "")) for row in listed), default=0)
+    for index in kept:
         made.add_column(
-            text(words),
+            text(headings[index]),
             justify="left" if index < left else "right",
             vertical="bottom",
-            no_wrap=index >= left or longest <= SHORT,
-            overflow="ellipsis" if index >= left else "fold",
+            # Words are cut before numbers are: a number that lacks digits is another number.
+            min_width=min(longest[index], LEAST) if index < left else longest[index],
+            no_wrap=index >= left or longest[index] <= SHORT,
+            overflow="ellipsis" if longest[index] <= SHORT else "fold",
         )
-    for index, row in enumerate(listed):
-        style = "bold" if index in bold_rows else ""
-        made.add_row(
-            *("" if cell is None else cell if _is_text(cell) else line(cell) for cell in row),
-            style=style,
-        )
+    for number, row in enumerate(listed):
+        made.add_row(*(row[i] for i in kept), style="bold" if number in bold_rows else "")
     out.print(made)
+
+
+def _cell(cell: object) -> Text:
+    return cell if _is_text(cell) else line("" if cell is None else cell)
+
+
+def _columns_that_fit(
+    longest: Sequence[int], left: int, width: int, least_wanted: Sequence[int]
+) -> list[int]:
+    kept = list(range(len(longest)))
+    for index in least_wanted:
+        # Columns of words up to SHORT are never broken; each column has a space on either side.
+        needed = sum(min(longest[i], SHORT if i < left else longest[i]) + 2 for i in kept)
+        if needed + 2 <= width:
+            break
+        kept.remove(index)
+    return kept
 
 
 def cautions(out: Console, found: Iterable[Caution]) -> None:
