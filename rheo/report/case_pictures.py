@@ -17,6 +17,7 @@ from rheo.report.figures import Curve, flow_curve, residuals
 from rheo.report.figures.flow_curve import temperature_groups
 from rheo.report.numbers import number
 from rheo.report.picture import FloatArray, Picture
+from rheo.report.text import one_line
 from rheo.report.words import capital
 
 _GRID = 121
@@ -182,8 +183,8 @@ def sizes_picture(result: CaseResult, system: str = "metric") -> Picture | None:
 
 
 def currency(result: CaseResult) -> str:
-    """Return the currency of the case."""
-    return "" if result.case.cost is None else result.case.cost.currency
+    """Return the currency of the case, short enough for a heading."""
+    return "" if result.case.cost is None else one_line(result.case.cost.currency, 16)
 
 
 def wall_rate_words(result: CaseResult, system: str = "metric") -> str:

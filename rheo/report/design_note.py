@@ -35,6 +35,10 @@ from rheo.report.sections.sizes import sizes_section
 from rheo.report.sections.starting import cleaning_section, holding_section, start_up_section
 from rheo.report.sections.summary import purpose_section, summary_section
 from rheo.report.sections.system import system_section
+from rheo.report.text import one_line
+
+# The inputs give a longer title in full.
+LONGEST_TITLE = 200
 
 
 def design_note(
@@ -90,8 +94,9 @@ def design_note(
     ]
     product, route = case.product.name, case.line.name
     return Note(
-        title=case.title.strip() or f"{product} in {route}",
-        subtitle=f"{product}, {route}",
+        title=one_line(case.title, LONGEST_TITLE)
+        or one_line(f"{product} in {route}", LONGEST_TITLE),
+        subtitle=one_line(f"{product}, {route}", LONGEST_TITLE),
         sections=tuple(sections),
         date=date or datetime.date.today(),
         version=__version__,

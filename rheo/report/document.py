@@ -14,7 +14,10 @@ from typing import Any
 
 from rheo.errors import Caution
 from rheo.report.picture import Picture
-from rheo.report.text import clean
+from rheo.report.text import clean, one_line
+
+# The name of a place longer than this stands in full among the inputs.
+LONGEST_PLACE = 120
 
 
 @dataclass(frozen=True)
@@ -188,7 +191,7 @@ def _figure(block: Figure) -> dict[str, Any]:
 
 
 def _cautions(block: Cautions) -> dict[str, Any]:
-    rows = [[c.place, c.sentence, c.advice] for c in block.cautions]
+    rows = [[one_line(c.place, LONGEST_PLACE), c.sentence, c.advice] for c in block.cautions]
     return {"type": "cautions", "rows": [[clean(cell) for cell in row] for row in rows]}
 
 

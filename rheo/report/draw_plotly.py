@@ -287,12 +287,10 @@ def _bars(mark: Bars, colours: Palette) -> list[dict[str, Any]]:
 
 def _aside(words: str, mark: Label) -> str:
     """Move a text away from the marker at its point."""
-    if mark.shift >= 12:
-        return f"{words}<br>&nbsp;"
-    if mark.shift == 0 and mark.anchor != "middle":
+    if mark.anchor != "middle":
         room = "&nbsp;" * 3
-        return room + words if mark.anchor == "start" else words + room
-    return words
+        words = room + words if mark.anchor == "start" else words + room
+    return f"{words}<br>&nbsp;" if mark.shift >= 12 else words
 
 
 def _label(mark: Label, colours: Palette) -> list[dict[str, Any]]:

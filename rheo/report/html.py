@@ -15,6 +15,7 @@ from importlib import resources
 from typing import Any
 
 from rheo.report.document import (
+    LONGEST_PLACE,
     Answer,
     Block,
     Cautions,
@@ -27,7 +28,7 @@ from rheo.report.document import (
 )
 from rheo.report.palette import LIGHT
 from rheo.report.scripts import pieces
-from rheo.report.text import clean
+from rheo.report.text import breakable, clean, one_line
 
 _DRAW = """
 for (const figure of document.querySelectorAll("figure[data-figure]")) {
@@ -105,7 +106,11 @@ _TAGS = {"sub": ("<sub>", "</sub>"), "super": ("<sup>", "</sup>"), "": ("", "")}
 
 
 def _text(value: str) -> str:
-    return "".join(escape(part).join(_TAGS[script]) for part, script in pieces(clean(value)))
+    """Escape a text; symbols get their scripts, and long words places to break at."""
+    whole = "".join(
+        escape(part).join(_TAGS[script]) for part, script in pieces(breakable(clean(value)))
+    )
+    return whole.replace("\u200b", "<wbr>")
 
 
 def _paragraph(block: Paragraph) -> str:
@@ -170,12 +175,15 @@ def _figure(block: Figure) -> str:
 
 
 def _cautions(block: Cautions) -> str:
-    return "".join(
-        f'<div class="caution" dir="auto">'
-        f"{f'<b>{_text(one.place)}:</b> ' if one.place else ''}{_text(one.sentence)} "
-        f'<span class="advice">{_text(one.advice)}</span></div>\n'
-        for one in block.cautions
-    )
+    rows = []
+    for one in block.cautions:
+        place = _text(one_line(one.place, LONGEST_PLACE))
+        named = f"<b>{place}:</b> " if place else ""
+        rows.append(
+            f'<div class="caution" dir="auto">{named}{_text(one.sentence)} '
+            f'<span class="advice">{_text(one.advice)}</span></div>\n'
+        )
+    return "".join(rows)
 
 
 def _sign_off(block: SignOff) -> str:

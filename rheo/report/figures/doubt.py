@@ -38,7 +38,7 @@ def doubt_budget(names: Sequence[str], shares: ArrayLike) -> Picture:
         key="doubt-budget",
         title="Where the doubt comes from",
         description="Share of the variance of the pressure drop by source, largest first.",
-        x=Axis("Share of the variance of the pressure drop", "%", low=0.0, high=top),
+        x=Axis("Share of the variance", "%", low=0.0, high=top),
         panels=(
             Panel(
                 Axis("", "", low=-0.6, high=at.size - 0.4, ticks=ticks, descending=True), (bars,)

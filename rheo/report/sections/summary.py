@@ -11,6 +11,7 @@ from rheo.report.display import text
 from rheo.report.document import Answer, Block, Paragraph, Section
 from rheo.report.numbers import number
 from rheo.report.sections.pressure import pressure_text
+from rheo.report.text import one_line
 from rheo.report.words import capital
 
 _REGIMES = ("laminar", "transition", "turbulent")
@@ -93,9 +94,9 @@ def summary_section(result: CaseResult, sizing: Sizing | None, system: str) -> S
 def purpose_section(result: CaseResult) -> Section:
     """Return the section on what the note is for."""
     case = result.case
-    line = case.line.name
+    line, product = one_line(case.line.name, 80), one_line(case.product.name, 80)
     words = (
-        f"To find the pressure, the pump duty and the pipe size for {case.product.name} in "
+        f"To find the pressure, the pump duty and the pipe size for {product} in "
         f"the {line}, from viscometer readings."
     )
     blocks: list[Block] = [Paragraph(words)]
