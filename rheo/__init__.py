@@ -36,6 +36,8 @@ _PUBLIC = {
     "pipe_flow": "rheo.hydraulics",
     "friction_factor": "rheo.hydraulics",
     "critical_velocity": "rheo.hydraulics",
+    "velocity_for_gradient": "rheo.hydraulics",
+    "diameter_for_gradient": "rheo.hydraulics",
     "Line": "rheo.line",
     "LineResult": "rheo.line",
     "Product": "rheo.line",

@@ -39,9 +39,9 @@ class Pipe:
             self.roughness[index],
         )
 
-    def with_diameter(self, diameter: FloatArray) -> Pipe:
-        """Return the same product in pipes of another diameter [m]."""
-        return Pipe(self.model, diameter, self.density, self.roughness)
+    def with_bore(self, diameter: FloatArray, roughness: FloatArray) -> Pipe:
+        """Return the same product in other pipes: diameter and roughness [m]."""
+        return Pipe(self.model, diameter, self.density, roughness)
 
     @property
     def size(self) -> int:

@@ -28,7 +28,7 @@ _ZOOMS = 5
 
 @dataclass(frozen=True)
 class Bridge:
-    """Where the bridge ends: ln(rate) and ln(velocity), 1-D; ``-inf`` and 0 where none is needed."""
+    """Where the bridge ends: ln(rate), ln(velocity), 1-D; ``-inf`` and 0 where none is needed."""
 
     log_rate: FloatArray
     log_velocity: FloatArray
@@ -42,7 +42,7 @@ class Bridge:
         before = log_rate < self.log_rate
         with np.errstate(invalid="ignore"):
             height = self.log_velocity + _BRIDGE_SLOPE * (log_rate - self.log_rate)
-        return np.exp(np.where(before, height, 700.0))
+        return np.exp(np.where(before, height, np.inf))
 
 
 def find_bridge(pipe: Pipe, method: TurbulentMethod) -> Bridge:

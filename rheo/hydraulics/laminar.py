@@ -13,6 +13,25 @@ from rheo.hydraulics.roots import IndexArray, solve_rising
 _FURTHEST = 50.0
 
 
+def rate_at_stress(pipe: Pipe, stress: FloatArray) -> FloatArray:
+    """Return the shear rate [1/s] at a stress [Pa], 0 up to yield.
+
+    Turbulent stresses may lie where a strongly thinning curve needs more than the 1e20 1/s to
+    which `Model.rate` goes; there the search goes on.
+    """
+    rate = np.array(pipe.model.rate(stress))
+    beyond = np.flatnonzero(np.isposinf(rate) & np.isfinite(stress))
+    if beyond.size:
+        target = np.log(stress[beyond])
+
+        def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
+            model = pipe.take(beyond[index]).model
+            return np.log(model.record.stress(np.exp(log_rate), *model)) - target[index]
+
+        rate[beyond] = np.exp(solve_rising(gap, np.full(beyond.size, 40.0), step=20.0))
+    return rate
+
+
 def laminar_velocity(pipe: Pipe, wall_rate: FloatArray) -> FloatArray:
     """Return the mean velocity [m/s] of laminar flow at a wall shear rate [1/s] above 0."""
     return 0.125 * pipe.diameter * nominal_rate(pipe.model, wall_rate)

@@ -2,9 +2,9 @@
 
 Let ζ be the criterion's number over its critical value at a velocity. Up to ζ = 1 the flow is
 laminar. From ζ = S = 4000/2100, the span of the Newtonian transition (common practice), it is
-turbulent. Between them the logarithm of the wall stress goes from the laminar to the turbulent value
-at the same velocity with the weight 1 - (1 - ln ζ/ln S)². For shear-thickening fluids S is raised to
-the power 2n - 1, because their number hardly changes with the velocity. Nowhere is the
+turbulent. Between them the logarithm of the wall stress goes from the laminar to the turbulent
+value at the same velocity with the weight 1 - (1 - ln ζ/ln S)². For shear-thickening fluids S is
+raised to the power 2n - 1, because their number hardly changes with the velocity. Nowhere is the
 stress less than laminar flow would need: where the turbulent curve still lies below the laminar one
 the laminar stress stands and the regime is called transition.
 
@@ -22,7 +22,7 @@ from numpy.typing import NDArray
 
 from rheo.geometry.tube_flow import wall_rate
 from rheo.hydraulics.conditions import FloatArray, Pipe
-from rheo.hydraulics.laminar import laminar_velocity
+from rheo.hydraulics.laminar import laminar_velocity, rate_at_stress
 from rheo.hydraulics.record import Criterion, TurbulentMethod
 from rheo.hydraulics.roots import IndexArray, solve_rising
 from rheo.hydraulics.transition.stability import surely_stable
@@ -43,11 +43,22 @@ class Law:
 
 @dataclass(frozen=True)
 class Wall:
-    """What happens at the wall: stress [Pa], its shear rate [1/s] and the regime, 1-D arrays."""
+    """What happens at the wall: 1-D arrays.
+
+    Parameters
+    ----------
+    stress, rate : array
+        Wall stress [Pa] and the shear rate [1/s] of the flow curve there.
+    regime : array of int
+        An index into `REGIMES`.
+    turbulence : array
+        The weight of the turbulent value [-]: 0 laminar, 1 turbulent.
+    """
 
     stress: FloatArray
     rate: FloatArray
     regime: NDArray[np.intp]
+    turbulence: FloatArray
 
 
 def progress(pipe: Pipe, laminar_rate: FloatArray, criterion: Criterion) -> FloatArray:
@@ -72,7 +83,9 @@ def wall_at_velocity(pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray,
         Criterion and turbulent method.
     """
     stress = pipe.model.record.stress(laminar_rate, *pipe.model)
-    wall = Wall(stress, laminar_rate.copy(), np.zeros(pipe.size, dtype=np.intp))
+    wall = Wall(
+        stress, laminar_rate.copy(), np.zeros(pipe.size, dtype=np.intp), np.zeros(pipe.size)
+    )
     index = np.flatnonzero(~_laminar_at_sight(pipe, laminar_rate, law))
     if index.size:
         share = progress(pipe.take(index), laminar_rate[index], law.criterion)
@@ -80,25 +93,50 @@ def wall_at_velocity(pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray,
     if index.size == 0:
         return wall
     part = pipe.take(index)
-    raised = _blend(part, velocity[index], laminar_rate[index], share, law)
+    raised = blend(part, velocity[index], laminar_rate[index], share, law.method)
     above = raised > stress[index]
     stress[index] = np.where(above, raised, stress[index])
     wall.regime[index] = np.where((share >= 1) & above, TURBULENT, TRANSITION)
+    wall.turbulence[index] = _weight(share)
     moved = index[above]
     if moved.size:
-        wall.rate[moved] = pipe.take(moved).model.rate(stress[moved])
+        wall.rate[moved] = rate_at_stress(pipe.take(moved), stress[moved])
     return wall
 
 
-def _blend(
-    pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray, share: FloatArray, law: Law
+def blend(
+    pipe: Pipe,
+    velocity: FloatArray,
+    laminar_rate: FloatArray,
+    share: FloatArray,
+    method: TurbulentMethod,
+    floor: bool = True,
 ) -> FloatArray:
-    """Return the wall stress [Pa] in and beyond the transition, not less than the laminar one."""
+    """Return the wall stress [Pa] in and beyond the transition.
+
+    Parameters
+    ----------
+    pipe : Pipe
+        Product and pipe, flat.
+    velocity, laminar_rate : array
+        Mean velocity [m/s] and wall shear rate [1/s] of laminar flow at it.
+    share : array
+        Progress through the transition [-], 0 or more.
+    method : TurbulentMethod
+        Friction method.
+    floor : bool
+        Whether the stress is at least the laminar one.
+    """
     laminar = pipe.model.record.stress(laminar_rate, *pipe.model)
-    turbulent = stress_at_velocity(pipe, law.method, velocity, laminar_rate)
-    weight = 1.0 - np.maximum(1.0 - share, 0.0) ** 2
+    turbulent = stress_at_velocity(pipe, method, velocity, laminar_rate)
+    if not floor:
+        return turbulent
     ratio = np.fmax(turbulent / laminar, 1.0)
-    return np.where(share >= 1, np.fmax(turbulent, laminar), laminar * ratio**weight)
+    return np.where(share >= 1, np.fmax(turbulent, laminar), laminar * ratio ** _weight(share))
+
+
+def _weight(share: FloatArray) -> FloatArray:
+    return 1.0 - np.maximum(1.0 - share, 0.0) ** 2
 
 
 def velocity_at_wall(
@@ -109,10 +147,12 @@ def velocity_at_wall(
     The inverse of `wall_at_velocity`. Outside the transition no root of it is sought; inside, the
     velocity lies between those of the turbulent and the laminar curve at the same stress.
     """
-    rate = pipe.model.rate(stress)
+    rate = rate_at_stress(pipe, stress)
     velocity = np.zeros(pipe.size)
     regime = np.zeros(pipe.size, dtype=np.intp)
-    index = np.flatnonzero(rate > 0)
+    # A curve with a largest stress that is exceeded: nothing holds the flow.
+    velocity[np.isposinf(rate)], regime[np.isposinf(rate)] = np.inf, TURBULENT
+    index = np.flatnonzero((rate > 0) & np.isfinite(rate))
     velocity[index] = laminar_velocity(pipe.take(index), rate[index])
     index = index[~_laminar_at_sight(pipe.take(index), rate[index], law)]
     if index.size:
@@ -149,7 +189,7 @@ def _inside_transition(
         part, velocity = pipe.take(index), np.exp(log_velocity)
         rate = laminar_rate(part, velocity)
         share = np.maximum(progress(part, rate, law.criterion), 0.0)
-        return np.log(_blend(part, velocity, rate, share, law)) - target[index]
+        return np.log(blend(part, velocity, rate, share, law.method)) - target[index]
 
     start = np.log(np.where(lowest > 0, np.sqrt(np.maximum(lowest, 0.0) * highest), highest))
     velocity = np.exp(solve_rising(gap, start, step=0.1))

@@ -16,6 +16,7 @@ LOWEST = -230.0
 HIGHEST = 230.0
 _TOLERANCE = 4e-15
 _STEPS = 120
+_SMALLEST_STEP = 1e-4
 
 
 def solve_rising(
@@ -64,32 +65,36 @@ def solve_rising(
 def _bracket(
     gap: Gap, start: FloatArray, step: float, low: float, high: float
 ) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
-    everyone = np.arange(start.size)
-    value = gap(start, everyone)
+    value = gap(start, np.arange(start.size))
     below, gap_below = start.copy(), value.copy()
     above, gap_above = start.copy(), value.copy()
-    width = step
-    active = everyone
+    width = np.full(start.size, step)
+    active = np.arange(start.size)
     while True:
+        down = gap_below[active] > 0
         searching = np.where(
-            gap_below[active] > 0,
-            below[active] > low,
-            (gap_above[active] < 0) & (above[active] < high),
+            down, below[active] > low, (gap_above[active] < 0) & (above[active] < high)
         )
-        active = active[searching]
+        active = active[searching & (width[active] > _SMALLEST_STEP)]
         if active.size == 0:
-            return below, gap_below, above, gap_above
-        downwards = gap_below[active] > 0
-        here = np.where(downwards, below[active], above[active])
-        there = np.clip(np.where(downwards, here - width, here + width), low, high)
+            break
+        down = gap_below[active] > 0
+        here = np.where(down, below[active], above[active])
+        stride = np.where(down, -width[active], width[active])
+        there = np.clip(here + stride, low, high)
         value = gap(there, active)
+        # Where the relation cannot be worked out a shorter step is tried.
+        known = ~np.isnan(value)
+        width[active] *= np.where(known, 2.0, 0.25)
+        lower, upper = active[known & down], active[known & ~down]
         # The point left behind closes the bracket from the other side.
-        down, up = active[downwards], active[~downwards]
-        above[down], gap_above[down] = below[down], gap_below[down]
-        below[up], gap_below[up] = above[up], gap_above[up]
-        below[down], gap_below[down] = there[downwards], value[downwards]
-        above[up], gap_above[up] = there[~downwards], value[~downwards]
-        width *= 2.0
+        above[lower], gap_above[lower] = below[lower], gap_below[lower]
+        below[upper], gap_below[upper] = above[upper], gap_above[upper]
+        below[lower], gap_below[lower] = there[known & down], value[known & down]
+        above[upper], gap_above[upper] = there[known & ~down], value[known & ~down]
+    stuck = (width <= _SMALLEST_STEP) | np.isnan(gap_below) | np.isnan(gap_above)
+    gap_below[stuck] = np.nan
+    return below, gap_below, above, gap_above
 
 
 def _chandrupatla(

@@ -106,4 +106,4 @@ def _rise_above_laminar(pipe: Pipe, velocity: FloatArray, rate: FloatArray) -> F
     stress = pipe.model.record.stress(rate, *pipe.model)
     slope = pipe.model.record.log_slope(rate, *pipe.model)
     rise = np.log(0.0025 * pipe.density * velocity**2 / stress)
-    return np.clip(rise, -5.0, 10.0) / np.maximum(slope, 0.05)
+    return np.clip(rise, -3.0, 3.0) / np.maximum(slope, 0.1)

@@ -54,9 +54,10 @@ def stability_number(pipe: Pipe, wall_rate: FloatArray) -> tuple[FloatArray, Flo
         here = 0.5 * (below + above)
         rise = np.maximum((above - below) / (2.0 * _NUDGE), 0.0)
         step = (np.log(integral) - here) / (np.exp(here) / integral + rise)
-        depth = depth - np.clip(step, -1.0, 0.5 * depth)
+        # The last depth stays: the value there is flat, and its integral is at hand.
         if np.all(np.abs(step) <= _DEPTH_TOLERANCE):
             break
+        depth = depth - np.clip(step, -1.0, 0.5 * depth)
     stress = model.record.stress(wall_rate, *model)
     radius = 0.5 * pipe.diameter
     log_number = top - depth + np.log(integral) - 2.0 * np.log(stress)

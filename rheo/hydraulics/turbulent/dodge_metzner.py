@@ -47,8 +47,8 @@ RECORD = TurbulentMethod(
     range=Range(flow_index=(0.36, 1.0), reynolds=(2900.0, 36000.0)),
     source="D. W. Dodge & A. B. Metzner, AIChE J. 5 (1959) 189, n' and K' at the wall stress",
     validity="Fluids without drag reduction; their experiments cover n' 0.36 to 1 and Reynolds "
-    "numbers 2900 to 36000 in smooth pipes, the equation is used from 0.2 to 2 (common practice); a "
-    "local index below 0.1 is taken as 0.1 (our choice).",
+    "numbers 2900 to 36000 in smooth pipes, the equation is used from 0.2 to 2 (common practice). "
+    "A local index below 0.1 is taken as 0.1 (our choice).",
     default_rank=lambda model: 1 if model.record.has_yield_stress else 2,
     may_fold=True,
 )
