@@ -30,6 +30,7 @@ from rheo.line import (
 )
 from rheo.line.cleaning import Cleaning
 from rheo.line.doubt import DoubtBudget
+from rheo.line.draw_blocks import Progress
 from rheo.line.holding import HoldingTube
 from rheo.line.limits import Limits
 from rheo.line.measure_next import NextReadings
@@ -164,6 +165,26 @@ class CaseResult:
         InputError
             If the case names no sizes and its pipes belong to no standard.
         """
+        return self.compare_sizes()
+
+    def compare_sizes(self, progress: Progress | None = None) -> Sizing:
+        """Compare sizes, telling on the way how far it is; `sizing` keeps what comes of it.
+
+        Parameters
+        ----------
+        progress : callable, optional
+            Told the share that is done [-]; what it raises ends the comparison.
+
+        Returns
+        -------
+        Sizing
+            That of `sizing`.
+
+        Raises
+        ------
+        InputError
+            As for `sizing`.
+        """
         case = self.case
         sizes = case.sizes
         spread = {} if sizes is None else sizes.spread()
@@ -176,7 +197,7 @@ class CaseResult:
                     "pump",
                 )
             costs = case.cost.build(float(case.duty.hours_a_year), self.efficiency)
-        return size_line(
+        found = size_line(
             self.line.line,
             self.product,
             self.flow,
@@ -184,8 +205,12 @@ class CaseResult:
             limits=self.limits,
             costs=costs,
             method=case.line.friction_method,
+            progress=progress,
             **spread,
         )
+        # As a cached property keeps its value: not worked out again when it is asked for.
+        self.__dict__["sizing"] = found
+        return found
 
     @property
     def limits(self) -> Limits:

@@ -23,6 +23,7 @@ from rheo.line import (
     solve_line,
 )
 from rheo.line.constants import GRAVITY
+from rheo.line.thickness import thicker
 from rheo.readings import Readings, screen
 
 # Readings this much apart in temperature [K] are no longer taken at one temperature.
@@ -138,6 +139,7 @@ def run_case(
         fits.data_cautions,
         chosen.cautions,
         _temperature_cautions(found.fitted, product),
+        _thickness_cautions(case),
         line.cautions,
         _solids_cautions(case, line),
     )
@@ -177,7 +179,7 @@ def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product
         temperature = ROOM_TEMPERATURE if taken is None else float(np.mean(taken))
     else:
         temperature = float(warm)
-    return Product(
+    product = Product(
         model=chosen.model,
         density=float(given.density),
         temperature=temperature,
@@ -188,6 +190,8 @@ def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product
         draws=draws,
         name=given.name,
     )
+    factor = given.stress_factor
+    return product if factor is None else thicker(product, float(factor))
 
 
 def _efficiency(case: Case, pump: CentrifugalPump | DisplacementPump | None) -> float | None:
@@ -224,6 +228,21 @@ def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution
             f"is pumped at {product.temperature - 273.15:.1f} °C.",
             "Take readings at the temperature of the line, or at two temperatures around it.",
             product.name,
+        ),
+    )
+
+
+def _thickness_cautions(case: Case) -> tuple[Caution, ...]:
+    factor = case.product.stress_factor
+    if factor is None or factor == 1.0:
+        return ()
+    return (
+        Caution(
+            "product-not-as-measured",
+            f"The product is taken to have {float(factor):.3g} times the measured stress at every "
+            "shear rate.",
+            "Take readings of the product as it will be pumped.",
+            case.product.name,
         ),
     )
 

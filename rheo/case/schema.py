@@ -29,6 +29,7 @@ from rheo.case.fields import (
     Length,
     NotNegativePressure,
     Percent,
+    Positive,
     Share,
     Stress,
     Temperature,
@@ -59,7 +60,10 @@ class SolidsBlock(Block):
 
 
 class ProductBlock(Block):
-    """What is pumped."""
+    """What is pumped.
+
+    `stress_factor` makes it thicker or thinner than its readings, alike at every shear rate.
+    """
 
     name: Text = "product"
     density: Density
@@ -67,6 +71,7 @@ class ProductBlock(Block):
     heat_capacity: HeatCapacity | None = None
     vapour_pressure: NotNegativePressure | None = None
     static_yield_stress: Stress | None = None
+    stress_factor: Positive | None = None
     solids: SolidsBlock | None = None
 
 
@@ -148,6 +153,8 @@ class Case(Block):
 
     title: Text = ""
     notes: Text = ""
+    prepared_by: Text = ""
+    checked_by: Text = ""
     product: ProductBlock
     readings: Annotated[tuple[ReadingsBlock, ...], Field(min_length=1, max_length=100)]
     fit: FitBlock = FitBlock()

@@ -13,6 +13,7 @@ from rheo.line.catalogue import PipeSize
 from rheo.line.checks import require_positive, require_share
 from rheo.line.cleaning import cleaning
 from rheo.line.cost import Costs
+from rheo.line.draw_blocks import Progress, counted, in_blocks
 from rheo.line.limits import Check, Limits
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import Product, interval
@@ -26,6 +27,10 @@ from rheo.line.size_values import (
     with_diameters,
 )
 from rheo.line.size_words import Candidate, size_cautions, size_sentence
+
+# Draws worked out in one go: as many as memory bears, fewer where someone watches the progress.
+_BLOCK = 2000
+_SHOWN_BLOCK = 250
 
 
 @dataclass(frozen=True)
@@ -71,6 +76,7 @@ def size_line(
     confidence: float = 0.9,
     flow_spread: float = 0.2,
     method: str | None = None,
+    progress: Progress | None = None,
 ) -> Sizing:
     """Compare pipe sizes for a line and recommend one.
 
@@ -94,6 +100,9 @@ def size_line(
         Part of the flow by which it may be more or less [-].
     method : str, optional
         Turbulent friction method.
+    progress : callable, optional
+        Told the share of the draws that is done [-], from time to time; what it raises ends the
+        comparison.
 
     Returns
     -------
@@ -120,7 +129,7 @@ def size_line(
     shares = pressures = None
     choice_by_draw: tuple[tuple[str, float], ...] = ()
     if product.draws:
-        pressures, kept = _over_draws(line, product, flow, ordered, keep, method)
+        pressures, kept = _over_draws(line, product, flow, ordered, keep, method, progress)
         shares = kept.mean(axis=-1)
         merit = _merit(costs, ordered, length, pressures, flow)
         choice_by_draw = _shares(_choose(merit, kept), ordered)
@@ -171,6 +180,7 @@ def _over_draws(
     sizes: tuple[PipeSize, ...],
     limits: Limits,
     method: str | None,
+    progress: Progress | None,
 ) -> tuple[FloatArray, NDArray[np.bool_]]:
     """Pressure [Pa] and whether all limits are kept, shape (sizes, draws)."""
 
@@ -179,7 +189,8 @@ def _over_draws(
         kept = _all_pass(checks(values, limits), len(sizes))
         return np.stack(np.broadcast_arrays(values.pressure, kept.astype(float)))
 
-    pressure, kept = product.over_draws(both)
+    blocks = in_blocks(product, _BLOCK if progress is None else _SHOWN_BLOCK)
+    pressure, kept = counted(blocks, both, progress)
     return pressure, kept > 0.5
 
 
