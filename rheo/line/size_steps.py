@@ -66,7 +66,7 @@ def candidate_in_line(sizing: Sizing, line: Line) -> Candidate | None:
     named = {pipe.size_name for pipe in line.pipes() if not pipe.fixed_size}
     same = [one for one in sizing.candidates if abs(one.size.inside_diameter - diameter) < 1e-9]
     by_name = [one for one in same if one.size.name in named]
-    return (by_name or same or [None])[0]
+    return next(iter(by_name or same), None)
 
 
 def _step(one: Candidate, at: Candidate) -> SizeStep:

@@ -35,7 +35,7 @@ def scaled(model: Model, factor: ArrayLike) -> Model:
     """
     times = np.asarray(factor, dtype=float)
     if not np.all((times > 0) & np.isfinite(times)):
-        raise InputError(f"factor is {factor}; it must be a finite number above 0", "thickness")
+        raise InputError(f"factor is {factor!r}; it must be a finite number above 0", "thickness")
     values = {
         one.key: model.parameters[one.key] * (times if one.unit.startswith("Pa") else 1.0)
         for one in model.record.parameters

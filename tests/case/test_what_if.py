@@ -98,7 +98,7 @@ def test_more_solids_thicken_and_weigh(result):
         what_if(result, WhatIf(solids=SolidsChange(0.2, 0.9)))
 
 
-def test_a_size_is_taken_into_every_pipe_that_is_free(result):
+def test_a_size_is_taken_into_every_pipe_that_is_free():
     case = with_size(CASE, pipe_size("ISO 2037 76.1"))
     suction, discharge = case.line.suction, case.line.discharge
     assert suction[1].size == "ISO 2037 63.5"
@@ -109,7 +109,7 @@ def test_a_size_is_taken_into_every_pipe_that_is_free(result):
     assert float(own.line.discharge[2].inside_diameter) == pytest.approx(0.04321)
 
 
-def test_a_line_of_fixed_sizes_takes_no_other(result):
+def test_a_line_of_fixed_sizes_takes_no_other():
     document = CASE.document()
     for part in document["line"]["discharge"]:
         if part["part"] == "pipe":

@@ -72,11 +72,15 @@ def test_progress_rises_to_one_and_changes_nothing(sizing):
 
 
 def test_what_progress_raises_ends_the_comparison():
-    class Enough(Exception):
+    class EnoughError(Exception):
         pass
 
-    def stop(share: float) -> None:
-        raise Enough
+    told: list[float] = []
 
-    with pytest.raises(Enough):
+    def stop(share: float) -> None:
+        told.append(share)
+        raise EnoughError
+
+    with pytest.raises(EnoughError):
         size_line(LINE, PRODUCT, 1.5e-3, SIZES, progress=stop)
+    assert len(told) == 1
