@@ -165,21 +165,20 @@ def doubt_picture(result: CaseResult) -> Picture:
     return line.doubt_picture(result.doubt)
 
 
-def sizing_of(result: CaseResult) -> Sizing | None:
-    """Return the comparison of sizes, or None where the case names none to compare."""
+def sizing_of(result: CaseResult) -> tuple[Sizing | None, str]:
+    """Return the comparison of sizes; or None, and the sentence that says why there is none."""
     try:
-        return result.sizing
-    except InputError:
-        return None
+        return result.sizing, ""
+    except InputError as error:
+        return None, error.sentence
 
 
 def sizes_picture(result: CaseResult, system: str = "metric") -> Picture | None:
     """Draw the candidate sizes; None where the case names none to compare."""
-    sizing = sizing_of(result)
+    sizing, _ = sizing_of(result)
     if sizing is None:
         return None
-    limit = result.case.limits.build().pressure
-    return line.sizes_picture(sizing, limit, currency(result), system)
+    return line.sizes_picture(sizing, result.limits.pressure, currency(result), system)
 
 
 def currency(result: CaseResult) -> str:

@@ -63,7 +63,7 @@ def design_note(
     from rheo import __version__
 
     case = result.case
-    sizing = sizing_of(result)
+    sizing, why_no_sizes = sizing_of(result)
     line = result.line
     rating = line.start_up.rating
     points = case_points(result)
@@ -82,8 +82,11 @@ def design_note(
     if result.cleaning is not None:
         sections.append(cleaning_section(result.cleaning, system))
     if sizing is not None:
-        limit = case.limits.build().pressure
+        limit = result.limits.pressure
         sections.append(sizes_section(sizing, limit, currency(result), system))
+    else:
+        words = f"Sizes are not compared: {why_no_sizes}."
+        sections.append(Section("Sizes compared", (Paragraph(words),)))
     geometries = tuple(one.geometry for one in result.readings if one.geometry is not None)
     sections += [
         _cautions(result),

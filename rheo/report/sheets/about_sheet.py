@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from rheo.report.sheets.book import Book
+from rheo.report.sheets.book import Book, Sheet
 
 _HOW_TO_READ = (
     "Every number is in SI, with its unit in the heading.",
@@ -16,6 +16,10 @@ _HOW_TO_READ = (
     "What the program works out by itself (turbulent friction, intervals, start-up) does not "
     "follow a changed input: run the case again.",
 )
+
+
+_WIDTH = 110.0
+_LINE_HEIGHT = 15.0
 
 
 def about_sheet(
@@ -35,11 +39,11 @@ def about_sheet(
         Sentences that belong to the pressures and times in it.
     """
     sheet = book.sheet("About", title)
-    sheet.widths(26, 110)
+    sheet.widths(26, _WIDTH)
     row = 2
     for name, value in facts:
         sheet.text(row, 0, name, "muted")
-        sheet.text(row, 1, value, "wrapped")
+        _wrapped(sheet, row, value)
         row += 1
     for heading, sentences in (("How to read it", _HOW_TO_READ), ("Safety", safety)):
         row += 1
@@ -47,5 +51,12 @@ def about_sheet(
         sheet.text(row, 1, "", "head")
         for sentence in sentences:
             row += 1
-            sheet.text(row, 1, sentence, "wrapped")
+            _wrapped(sheet, row, sentence)
         row += 1
+
+
+def _wrapped(sheet: Sheet, row: int, text: str) -> None:
+    """Write a sentence in a row that is high enough for it; viewers do not make it so."""
+    sheet.text(row, 1, text, "wrapped")
+    lines = min(-(-len(text) // int(_WIDTH)), 12)
+    sheet.sheet.set_row(row, _LINE_HEIGHT * max(lines, 1))

@@ -17,17 +17,18 @@ if TYPE_CHECKING:
 
 # A cell holds no more characters than this (ECMA-376 viewers agree on it).
 LONGEST_CELL = 32_767
-_HEAD_HEIGHT = 48
+_HEAD_HEIGHT = 46
 # Significant digits that a cell shows; it holds all of them.
 _SHOWN = 5
 _FORMATS: dict[str, dict[str, Any]] = {
     "title": {"bold": True, "font_size": 15, "font_color": LIGHT.accent},
     "head": {
-        "bold": True, "text_wrap": True, "valign": "top", "bottom": 2, "bg_color": LIGHT.strip,
+        "bold": True, "text_wrap": True, "valign": "vcenter", "bottom": 1, "indent": 1,
+        "bg_color": LIGHT.strip,
     },
-    "text": {"valign": "top"},
-    "wrapped": {"text_wrap": True, "valign": "top"},
-    "muted": {"font_color": LIGHT.muted, "valign": "top"},
+    "text": {"valign": "top", "indent": 1},
+    "wrapped": {"text_wrap": True, "valign": "top", "indent": 1},
+    "muted": {"font_color": LIGHT.muted, "valign": "top", "indent": 1},
     "input": {
         "bg_color": "#fff8dc", "border": 1, "border_color": LIGHT.rule,
     },

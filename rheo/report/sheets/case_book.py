@@ -60,8 +60,10 @@ def case_book(result: CaseResult, date: datetime.date | None = None) -> bytes:
     fits_sheet(book, result.fits, result.chosen)
     line_sheets(book, result.line)
     system_sheet(book, result.system_curve)
-    sizing = sizing_of(result)
-    if sizing is not None:
+    sizing, why = sizing_of(result)
+    if sizing is None:
+        book.sheet("Sizes", "Sizes compared", f"Sizes are not compared: {why}.")
+    else:
         sizes_sheet(book, sizing, result.flow, _costs(result))
     doubt_sheet(book, result.doubt)
     return book.bytes()
@@ -69,9 +71,9 @@ def case_book(result: CaseResult, date: datetime.date | None = None) -> bytes:
 
 def _costs(result: CaseResult) -> Costs | None:
     case = result.case
-    if case.cost is None or case.duty.hours_a_year is None or case.pump is None:
+    if case.cost is None or case.duty.hours_a_year is None or result.efficiency is None:
         return None
-    return case.cost.build(float(case.duty.hours_a_year), float(case.pump.efficiency or 0.0))
+    return case.cost.build(float(case.duty.hours_a_year), result.efficiency)
 
 
 def _fitted_curves(result: CaseResult, points: CasePoints) -> list[FittedCurve]:
