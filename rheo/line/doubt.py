@@ -114,9 +114,9 @@ def doubt_budget(
 
     Readings and model choice come from the product's draws, by the law of total variance: the
     spread within the draws of each model, and the spread between the models' means, both over the
-    middle 99 % of the draws (one wild draw would outweigh all others). The friction
-    method is the spread of all methods that apply to the flow curve. Each other input is moved up
-    and down by its standard deviation.
+    middle 99 % of the draws (one wild draw would outweigh all others). The friction method is the
+    spread of all methods that apply to the flow curve and are in their range. Each other input is
+    moved up and down by its standard deviation.
 
     Parameters
     ----------
@@ -157,7 +157,7 @@ def doubt_budget(
         (
             "friction-method",
             "Friction method",
-            _of_methods(product, lambda key: pressure(method_=key)),
+            _of_methods(line, product, flow, lambda key: pressure(method_=key)),
         ),
         (
             "density",
@@ -253,11 +253,16 @@ def _of_product(
     return float(np.sqrt(within)), float(np.sqrt(between))
 
 
-def _of_methods(product: Product, pressure: Callable[[str], FloatArray]) -> float:
+def _of_methods(
+    line: Line, product: Product, flow: float, pressure: Callable[[str], FloatArray]
+) -> float:
+    """Standard deviation [Pa] of the methods that count in every pipe of the line."""
     model = product.model_at(product.temperature)
-    keys = [key for key, record in turbulent_methods().items() if record.applies(model)]
-    values = np.array([float(pressure(key)) for key in keys])
-    values = values[np.isfinite(values)]
+    keys = {key for key, record in turbulent_methods().items() if record.applies(model)}
+    for step in walk(line, product, flow).steps:
+        if step.kind == "pipe" and step.flow is not None:
+            keys &= {key for key, counts in step.flow.method_counts.items() if np.all(counts)}
+    values = np.array([float(pressure(key)) for key in sorted(keys)])
     return float(values.std(ddof=1)) if values.size > 1 else 0.0
 
 

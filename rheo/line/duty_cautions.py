@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -45,7 +46,7 @@ def duty_cautions(
         _suction(found, product, npsh),
         _vapour(found, product, profile),
         (
-            caution
+            replace(caution, place=step.name)
             for step in found.steps
             if step.flow is not None and step.kind == "pipe"
             for caution in step.flow.cautions

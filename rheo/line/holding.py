@@ -8,7 +8,8 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from rheo.errors import Caution
-from rheo.hydraulics import pipe_flow
+from rheo.geometry import tube_flow
+from rheo.hydraulics import PipeFlow, pipe_flow
 from rheo.line.checks import require_positive
 from rheo.line.parts import FloatArray
 from rheo.line.product import FlowCurveSource, Product, interval
@@ -55,6 +56,24 @@ class HoldingTube:
     safety: str = FOOD_SAFETY
 
 
+def fastest_velocity_ratio(flow: PipeFlow) -> FloatArray:
+    """Return the velocity of the fastest particle over the mean [-], on the safe side.
+
+    Laminar: that of the product's profile. Turbulent: that of the logarithmic profile, at least
+    1.25. In transition: the largest of the laminar value and of these.
+    """
+    regime = np.asarray(flow.regime)
+    if np.all(regime == "laminar"):
+        return np.asarray(flow.velocity_ratio)
+    laminar = tube_flow.velocity_ratio(flow.model, np.asarray(flow.laminar_wall_rate))
+    turbulent = np.maximum(flow.velocity_ratio, TURBULENT_VELOCITY_RATIO)
+    return np.where(
+        regime == "laminar",
+        laminar,
+        np.where(regime == "transition", np.maximum(laminar, turbulent), turbulent),
+    )
+
+
 def holding_tube(
     product: Product,
     diameter: ArrayLike,
@@ -65,8 +84,8 @@ def holding_tube(
     """Return the length of tube that holds the fastest particle long enough.
 
     In laminar flow the fastest particle moves on the axis at V (u_max/V) of the product's own
-    velocity profile; in transition and turbulent flow 1.25 V is taken (common practice), or the
-    laminar value where that is larger and the flow is in transition.
+    velocity profile; in turbulent flow that of the logarithmic profile is taken, at least 1.25 V
+    (common practice), in transition the laminar value where that is larger.
 
     Parameters
     ----------
@@ -99,17 +118,7 @@ def holding_tube(
             velocity=wide(velocity),
             density=product.density,
         )
-        regime = np.asarray(flow_there.regime)
-        laminar = np.asarray(flow_there.velocity_ratio, dtype=float)
-        ratio = np.where(
-            regime == "laminar",
-            laminar,
-            np.where(
-                regime == "transition",
-                np.maximum(laminar, TURBULENT_VELOCITY_RATIO),
-                TURBULENT_VELOCITY_RATIO,
-            ),
-        )
+        ratio, regime = fastest_velocity_ratio(flow_there), np.asarray(flow_there.regime)
         return ratio, np.asarray(flow_there.pressure_gradient), regime
 
     ratio, gradient, regime = found(None, False)
@@ -124,8 +133,8 @@ def holding_tube(
         cautions.append(
             Caution(
                 "holding-tube-not-laminar",
-                "The flow in the holding tube is not laminar everywhere; 1.25 times the mean "
-                "velocity is taken there (common practice).",
+                "The flow in the holding tube is not laminar everywhere; at least 1.25 times the "
+                "mean velocity is taken there (common practice).",
                 "Food law in many places asks for the laminar ratio of 2 unless the flow is shown "
                 "to be turbulent: ask the process authority.",
                 "holding tube",

@@ -24,7 +24,6 @@ from rheo.line.product import Product
 
 if TYPE_CHECKING:
     from rheo.fitting import Fit, Fits
-    from rheo.fitting.reading_problem import ReadingProblem
     from rheo.geometry import Geometry
     from rheo.line.rivals import Candidates, Rival
 
@@ -179,12 +178,11 @@ def measure_next(
 
 def _candidates(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None) -> Candidates:
     """Readings that could be taken, with each of the tubes or cups that there are."""
-    from rheo.fitting.reading_problem import ReadingProblem
     from rheo.line.rivals import Candidates
 
     problem = fit.problem
-    if geometry is None and isinstance(problem, ReadingProblem):
-        geometry = problem.geometry
+    own: Geometry | None = getattr(problem, "geometry", None)
+    geometry = geometry or own
     if geometry is None:
         at = _settings(settings, fit.rates[fit.rates > 0])
         return Candidates("rate", at, None, ("",) * at.size)
@@ -194,20 +192,21 @@ def _candidates(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None)
         ends = np.asarray(geometry.setting_for_rate(fit.model, used), dtype=float)
         at = _settings(settings, ends)
         return Candidates(kind, at, geometry, ("",) * at.size)
-    if not isinstance(problem, ReadingProblem) or problem.geometry.key != geometry.key:
+    if own is None or own.key != geometry.key:
         raise InputError("its dimensions must be single numbers here", f"geometry {geometry.key}")
-    return _several(problem, settings)
+    used = np.asarray(problem.setting)  # type: ignore[attr-defined]
+    return _several(own, used, settings)
 
 
-def _several(problem: ReadingProblem, settings: ArrayLike | None) -> Candidates:
+def _several(geometry: Geometry, used: FloatArray, settings: ArrayLike | None) -> Candidates:
     """Candidates for readings that were taken in several tubes or cups."""
     from rheo.line.rivals import Candidates
 
-    geometry, count = problem.geometry, problem.setting.size
-    table = np.stack([np.broadcast_to(v, (count,)) for v in geometry.dimensions.values()], axis=-1)
+    columns = geometry.dimensions.values()
+    table = np.stack([np.broadcast_to(value, used.shape) for value in columns], axis=-1)
     rows, group = np.unique(table, axis=0, return_inverse=True)
     group = group.reshape(-1)
-    parts = [_settings(settings, problem.setting[group == i]) for i in range(len(rows))]
+    parts = [_settings(settings, used[group == i]) for i in range(len(rows))]
     index = np.repeat(np.arange(len(rows)), [part.size for part in parts])
     keys = list(geometry.dimensions)
     whole = geometry.replaced(**{key: rows[index, i] for i, key in enumerate(keys)})

@@ -11,6 +11,7 @@ from numpy.typing import ArrayLike
 from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow
 from rheo.line.catalogue import PipeSize
+from rheo.line.holding import fastest_velocity_ratio
 from rheo.line.limits import Check, Limits, make_check
 from rheo.line.parts import FloatArray, Line, Part, Pipe
 from rheo.line.product import FlowCurveSource, Product
@@ -120,7 +121,7 @@ class SizeValues:
         """Time of the fastest particle in the pipes that are sized [s]."""
         return self._table(
             total(
-                step.length / (step.flow.velocity_ratio * step.flow.velocity)
+                step.length / (fastest_velocity_ratio(step.flow) * step.flow.velocity)
                 for step in self._steps
                 if step.flow is not None
             )

@@ -9,7 +9,7 @@ from hypothesis import strategies as st
 
 import rheo
 from rheo.geometry import tube_flow
-from rheo.line.kinetic_energy import TURBULENT_FACTOR, kinetic_energy_factor, laminar_factor
+from rheo.line.kinetic_energy import kinetic_energy_factor, laminar_factor
 
 
 @settings(deadline=None, max_examples=60, derandomize=True)
@@ -46,10 +46,18 @@ def test_other_flow_curves_by_quadrature() -> None:
     assert 1.0 < found < 2.0
 
 
-def test_each_regime_has_its_own() -> None:
-    water = rheo.model("newtonian", viscosity=1e-3)
-    flow = rheo.pipe_flow(water, 0.05, np.array([0.01, 2.0]), 1000.0)
-    found = kinetic_energy_factor(flow)
-    np.testing.assert_allclose(found, [2.0, TURBULENT_FACTOR], rtol=1e-12)
-    # Common practice: about 1.06 in turbulent flow.
-    assert pytest.approx(1.06, abs=0.005) == TURBULENT_FACTOR
+@pytest.mark.parametrize(
+    "model",
+    [
+        rheo.model("newtonian", viscosity=1e-3),
+        rheo.model("herschel-bulkley", yield_stress=5.0, consistency=0.3, flow_index=0.6),
+    ],
+)
+def test_in_every_regime_it_is_that_of_the_pipe_flow(model: rheo.Model) -> None:
+    flow = rheo.pipe_flow(model, 0.05, np.geomspace(0.01, 8.0, 60), 1000.0)
+    assert {"laminar", "transition", "turbulent"} <= set(flow.regime)
+    np.testing.assert_allclose(kinetic_energy_factor(flow), flow.kinetic_energy_factor, rtol=1e-9)
+    one = rheo.pipe_flow(model, 0.05, 1.0, 1000.0)
+    assert float(kinetic_energy_factor(one)) == pytest.approx(
+        float(one.kinetic_energy_factor), rel=1e-9
+    )
