@@ -70,10 +70,19 @@ class CasePoints:
         """Shear stresses [Pa] at those rates: the model's, times reading over predicted reading."""
         found = np.concatenate([curve.stress for curve in self.curves])
         flowing = self.fit.rates > 0
-        model = np.asarray(self.fit.model.stress(self.fit.rates[flowing]), dtype=float)
+        model = self._model_stress(flowing)
         ratio = self.fit.observed[flowing] / self.fit.predicted[flowing]
         found[self.fitted[flowing]] = model * ratio
         return found
+
+    def _model_stress(self, flowing: NDArray[np.bool_]) -> FloatArray:
+        """Stress of the fitted model at the fitted readings, each at its own temperature [Pa]."""
+        product, warm = self.result.product, self.temperature
+        chosen = self.fit.key == self.result.chosen.key
+        model = self.fit.model
+        if chosen and product.knows_temperature and warm is not None:
+            model = product.model_at(warm[self.fitted[flowing]])
+        return np.asarray(model.stress(self.fit.rates[flowing]), dtype=float)
 
     @cached_property
     def temperature(self) -> FloatArray | None:

@@ -28,6 +28,7 @@ from rheo.report.numbers import exact
 from rheo.report.sections.fitted import fit_blocks
 from rheo.report.sections.inputs import inputs_section, versions
 from rheo.report.sections.methods import methods_section
+from rheo.report.sections.methods_used import rows_of_case
 from rheo.report.sections.pressure import pressure_section
 from rheo.report.sections.readings import readings_blocks
 from rheo.report.sections.route import route_section
@@ -90,7 +91,13 @@ def design_note(
     geometries = tuple(one.geometry for one in result.readings if one.geometry is not None)
     sections += [
         _cautions(result),
-        methods_section(line, result.chosen.record, geometries, line.start_up.method),
+        methods_section(
+            line,
+            result.chosen.record,
+            geometries,
+            line.start_up.method,
+            rows_of_case(result, sizing),
+        ),
         inputs_section(case),
         Section("Versions", (Facts(versions()),)),
         Section("Prepared and checked", (SignOff(),)),

@@ -113,6 +113,8 @@ def test_every_caution_and_safety_sentence_is_in_all_formats(
 
 def test_sources_and_ranges_are_named(html: str) -> None:
     shown = words("".join(read(html).text))
+    for source in ("Holdingtube", "ISO2037", "Atkinson", "Yearlycost", "Cleaninginplace"):
+        assert source in shown
     for source in ("Herschel&R.Bulkley", "Metzner", "Ryan&M.M.Johnson", "Burnham", "Wilson"):
         assert source in shown
 

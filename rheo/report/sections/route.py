@@ -47,8 +47,8 @@ def route_section(
     """
     blocks: list[Block] = [
         Figure(drawing_picture(line, system)),
-        _breakdown(line, system),
-        _conditions(line, system),
+        breakdown_table(line, system),
+        pipes_table(line, system),
         Paragraph(
             "Friction factors are Fanning's. Reynolds numbers are Metzner and Reed's with the "
             "local n′ and K′ of laminar flow at the same 8V/D.",
@@ -69,7 +69,8 @@ def _cell(value: object, quantity: str, system: str) -> str:
     return number(known) if math.isfinite(known) else ""
 
 
-def _breakdown(line: LineResult, system: str) -> Table:
+def breakdown_table(line: LineResult, system: str) -> Table:
+    """Return what each part of a line takes."""
     pressure = unit_label("pressure", system)
     length = unit_label("length", system)
     rows = [
@@ -110,7 +111,8 @@ def _breakdown(line: LineResult, system: str) -> Table:
     )
 
 
-def _conditions(line: LineResult, system: str) -> Table:
+def pipes_table(line: LineResult, system: str) -> Table:
+    """Return the flow in each pipe of a line."""
     pipes = [part for part in line.parts if part.kind == "pipe"]
     rate, temperature = unit_label("rate", system), unit_label("temperature", system)
     rows = tuple(
