@@ -13,6 +13,7 @@ from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
 from rheo.errors import CaseError, Caution, merge_cautions
 from rheo.fitting import Fit, Fits, fit
+from rheo.fitting.draws import covariance_draws
 from rheo.line import (
     CentrifugalPump,
     DisplacementPump,
@@ -171,7 +172,7 @@ def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product
     if case.fit.model == AUTO:
         draws = fits.draws(doubt.draws, seed=doubt.seed)
     else:
-        draws = (chosen.bootstrap(doubt.draws, seed=doubt.seed),)
+        draws = (covariance_draws(chosen, doubt.draws, doubt.seed),)
     rates = chosen.rates[chosen.rates > 0]
     warm = given.temperature
     if warm is None:

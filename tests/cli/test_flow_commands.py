@@ -91,7 +91,7 @@ def replaced(old, new):
         ([*PIPE, "--velocity", "1 m/s"], "found both of --flow and --velocity; give one of them"),
         ([*PIPE[:-4], *PIPE[-2:]], "found neither of --flow and --velocity; give one of them"),
         ([*PIPE, "--length", "-1 m"], "--length: found '-1 m'; it must be above 0 m, such as 30m"),
-        ([*PIPE, "--regime", "plug"], "unknown regime 'plug'; it takes laminar or turbulent"),
+        ([*PIPE, "--regime", "plug"], "'plug'; it takes laminar or turbulent"),
         ([*PIPE, "--method", "guess"], "unknown"),
         ([*CONVERT], "found neither of --at and --rate; give one of them"),
         ([*CONVERT, "--at", "60 rpm"], "--at (flow): unit 'rpm' does not measure what is wanted"),
