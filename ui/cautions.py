@@ -38,7 +38,9 @@ def show(cautions: Iterable[Caution], *, codes: Iterable[str] = (), place: str =
 
 def html(caution: Caution) -> str:
     """Return one Caution as HTML."""
-    where = f"{style.escape(caution.place, 60)}: " if caution.place else ""
+    # Places in code form are for JSON; the sentence names what it is about.
+    coded = "_" in caution.place
+    where = f"{style.escape(caution.place, 60)}: " if caution.place and not coded else ""
     return (
         f'<div class="rheo-caution" role="note">{where}{style.escape(caution.sentence)} '
         f'<span class="advice">{style.escape(caution.advice)}</span></div>'

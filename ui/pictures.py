@@ -7,7 +7,7 @@ from typing import Any
 import streamlit as st
 
 from rheo.report.picture import Picture
-from ui import state
+from ui import legend, state
 
 _CONFIG = {
     "displaylogo": False,
@@ -40,6 +40,10 @@ def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = Tr
     if title:
         st.markdown(f"**{picture.title}**")
     figure = picture.plotly(state.dark())
+    key_to_it = legend.html(figure)
+    if key_to_it:
+        st.html(key_to_it)
+    figure.update_layout(showlegend=False, margin={"l": 58, "r": 10, "t": 14, "b": 48})
     chosen: dict[str, Any] = {} if select == "ignore" else {"selection_mode": "points"}
     return st.plotly_chart(
         figure,

@@ -9,6 +9,7 @@ from rheo.line.catalogue import PipeSize
 from rheo.line.parts import Pipe
 from rheo.readings import Readings, screen
 from rheo.report import display
+from rheo.report.numbers import exact
 
 
 def with_interval(value: Any, interval: Any, quantity: str, system: str) -> str:
@@ -36,6 +37,12 @@ def line_sizes(result: CaseResult) -> tuple[str, ...]:
     pipes = tuple(result.line.line.pipes())
     free = [pipe for pipe in pipes if not pipe.fixed_size] or pipes
     return tuple(dict.fromkeys(size_name(pipe) for pipe in free))
+
+
+def flow_text(result: CaseResult, system: str) -> str:
+    """Return the flow of the duty as the user gave it, in the unit shown."""
+    shown = float(display.shown(result.flow, "flow", system))
+    return f"{exact(shown)} {display.unit_label('flow', system)}"
 
 
 def velocity_note(result: CaseResult, system: str) -> str:
