@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from typing import Any
+from urllib.parse import quote
 
 from ui import style
 
@@ -59,7 +60,9 @@ def _swatch(trace: dict[str, Any]) -> str:
             f'stroke-width="{line.get("width", 2)}"{dashes}/>'
         )
     size = f'width="{_WIDE}" height="{_HIGH}" viewBox="0 0 {_WIDE} {_HIGH}"'
-    return f'<svg {size} aria-hidden="true">{inside}</svg>'
+    drawn = f'<svg xmlns="http://www.w3.org/2000/svg" {size}>{inside}</svg>'
+    # An image, because drawings that stand in the text itself are taken out of it.
+    return f'<img alt="" width="{_WIDE}" height="{_HIGH}" src="data:image/svg+xml,{quote(drawn)}">'
 
 
 def _marker(marker: dict[str, Any]) -> str:

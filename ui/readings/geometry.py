@@ -10,13 +10,11 @@ import streamlit as st
 from rheo.geometry import GeometryRecord, geometry_record, geometry_records
 from rheo.geometry.record import Dimension
 from rheo.report import display
-from rheo.report.numbers import exact
-from ui import cautions, results, state, units_switch
+from ui import cautions, dimension, results, state, units_switch
 from ui.readings import sets
 
 NONE = ""
 NONE_WORDS = "none: shear rate and stress as the instrument gives them"
-KINDS = {"m": "diameter", "rad": "", "-": ""}
 
 
 def show() -> None:
@@ -42,9 +40,9 @@ def show() -> None:
     if kind:
         record = geometry_record(kind)
         columns = st.columns(min(len(record.dimensions), 4))
-        for place, dimension in enumerate(record.dimensions):
+        for place, one in enumerate(record.dimensions):
             with columns[place % len(columns)]:
-                _show_dimension(number, record, dimension)
+                _show_dimension(number, record, one)
         if block.geometry is None and in_use is not None:
             st.caption("As the file states it. What you write here wins.")
     cautions.complaint(state.complaint("geometry"))
@@ -64,35 +62,38 @@ def choose_kind(number: int, kind: str) -> None:
         state.change(("readings", number, "geometry"), None)
         return
     record = geometry_record(kind)
-    given = {one.key: _written(one, one.default) for one in record.dimensions if one.default}
+    given = {
+        one.key: dimension.written(one, one.default) for one in record.dimensions if one.default
+    }
     state.change(("readings", number, "geometry"), {"kind": kind, **given})
     state.change(("readings", number, "nominal_form"), None)
 
 
-def _show_dimension(number: int, record: GeometryRecord, dimension: Dimension) -> None:
-    value = _value(number, dimension.key)
+def _show_dimension(number: int, record: GeometryRecord, one: Dimension) -> None:
+    value, system = _value(number, one.key), state.system()
     by_reading = value is not None and np.ndim(value) > 0
-    shown = "by reading" if by_reading else "" if value is None else _shown(dimension, value)
-    name = f"geometry.{dimension.key}"
-    widget = state.key(f"{name}.{number}.{record.key}.{shown}.{state.system()}")
+    shown = "by reading" if by_reading else ""
+    if value is not None and not by_reading:
+        shown = dimension.text(record, one, float(value), system)
+    widget = state.key(f"geometry.{one.key}.{number}.{record.key}.{shown}.{system}")
 
     def take() -> None:
         typed = str(st.session_state[widget]).strip()
         if typed and typed != shown:
-            state.attempt("geometry", change_dimension, number, record, dimension, typed)
+            state.attempt("geometry", change_dimension, number, record, one, typed)
             state.touch()
 
     st.text_input(
-        f"{dimension.description[:1].upper()}{dimension.description[1:]}, {dimension.symbol}",
+        dimension.label(one),
         value=shown,
         key=widget,
         on_change=take,
         disabled=by_reading,
-        placeholder="such as 12.5 mm" if dimension.unit == "m" else None,
+        placeholder="such as 12.5 mm" if one.unit == "m" else None,
     )
 
 
-def change_dimension(number: int, record: GeometryRecord, dimension: Dimension, typed: str) -> None:
+def change_dimension(number: int, record: GeometryRecord, changed: Dimension, typed: str) -> None:
     """Put one dimension into the case; those that the file states stay as they are.
 
     Raises
@@ -107,14 +108,8 @@ def change_dimension(number: int, record: GeometryRecord, dimension: Dimension, 
         if block.geometry is not None and one.key in block.geometry.dimensions:
             given[one.key] = block.geometry.write()[one.key]
         elif value is not None and np.ndim(value) == 0:
-            given[one.key] = _written(one, float(value))
-    if dimension.unit == "m":
-        given[dimension.key] = units_switch.with_unit(typed, "diameter", state.system())
-    elif dimension.unit == "rad":
-        bare = typed.replace(".", "", 1).isdigit()
-        given[dimension.key] = f"{typed} degree" if bare else typed
-    else:
-        given[dimension.key] = typed
+            given[one.key] = dimension.written(one, float(value))
+    given[changed.key] = dimension.with_unit(record, changed, typed, state.system())
     new = state.changed(state.case(), ("readings", number, "geometry"), given)
     problem = results.readings_of(new, state.files()).problem
     if problem is not None and state.readings() is not None:
@@ -133,21 +128,6 @@ def _value(number: int, key: str) -> Any:
         return None
     value = geometry.dimensions.get(key)
     return value if value is None or np.ndim(value) else float(value)
-
-
-def _shown(dimension: Dimension, value: float) -> str:
-    if dimension.unit == "m":
-        system = state.system()
-        number = exact(float(display.shown(value, "diameter", system)))
-        return f"{number} {display.unit_label('diameter', system)}"
-    if dimension.unit == "rad":
-        return f"{exact(float(np.degrees(value)))} °"
-    return exact(value)
-
-
-def _written(dimension: Dimension, value: float | None) -> str:
-    unit = "" if dimension.unit == "-" else dimension.unit
-    return f"{value!r} {unit}".strip()
 
 
 def _show_instrument(number: int, record: GeometryRecord) -> None:

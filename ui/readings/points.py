@@ -100,7 +100,7 @@ def show_table(readings: Readings) -> None:
             "Use": st.column_config.CheckboxColumn(width="small"),
             "No.": st.column_config.NumberColumn(width="small"),
             **{
-                name: st.column_config.NumberColumn(format="%.4g")
+                name: st.column_config.NumberColumn(format=_format(values))
                 for name, values in rows.items()
                 if name not in ("No.", "Use") and values and isinstance(values[0], float)
             },
@@ -143,6 +143,13 @@ def toggle(points: Iterable[Any]) -> None:
         return
     now = set(np.flatnonzero(_excluded(readings)).tolist())
     exclude(now ^ {int(np.ravel(point)[0]) for point in points})
+
+
+def _format(values: list[float]) -> str:
+    """Return a format with so many decimals that the middle value shows four digits."""
+    middle = float(np.median(np.abs(values)))
+    leading = int(np.floor(np.log10(middle))) if middle > 0 else 0
+    return f"%.{min(max(3 - leading, 0), 6)}f"
 
 
 def _act(points: list[int]) -> None:

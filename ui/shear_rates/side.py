@@ -12,12 +12,18 @@ import streamlit as st
 
 from rheo.case import CaseResult
 from rheo.errors import InputError
-from rheo.geometry import Geometry, geometry_record, geometry_records, make_geometry
+from rheo.geometry import (
+    Geometry,
+    GeometryRecord,
+    geometry_record,
+    geometry_records,
+    make_geometry,
+)
 from rheo.geometry.record import Dimension
 from rheo.report import display
 from rheo.report.numbers import exact
 from rheo.units import parse_quantity
-from ui import state, units_switch
+from ui import dimension, state, units_switch
 from ui.shear_rates.line_rates import instrument
 
 _KEY = "rheo.converter"
@@ -59,13 +65,15 @@ def show(side: str, result: CaseResult, default: str) -> Geometry:
     columns = st.columns(2)
     values: dict[str, float] = {}
     missing = []
-    for place, dimension in enumerate(record.dimensions):
+    # End corrections that are zero in a plain geometry would only crowd the converter.
+    asked = [one for one in record.dimensions if one.default != 0]
+    for place, one in enumerate(asked):
         with columns[place % 2]:
-            typed = _field(side, kind, dimension, known.get(dimension.key))
+            typed = _field(side, record, one, known.get(one.key))
         if typed:
-            values[dimension.key] = read(dimension, typed)
+            values[one.key] = dimension.read(record, one, typed, state.system())
         else:
-            missing.append(dimension.description)
+            missing.append(one.description)
     if missing:
         raise InputError(f"give the {' and the '.join(missing)} of the {record.name}")
     return make_geometry(kind, **values)
@@ -95,15 +103,6 @@ def known_dimensions(result: CaseResult, kind: str) -> dict[str, float]:
     return {one.key: one.default for one in record.dimensions if one.default is not None}
 
 
-def read(dimension: Dimension, typed: str) -> float:
-    """Return a dimension in SI; raises InputError if it is no such quantity."""
-    if dimension.unit == "m":
-        typed = units_switch.with_unit(typed, "diameter", state.system())
-    unit = "dimensionless" if dimension.unit == "-" else dimension.unit
-    default = "degree" if dimension.unit == "rad" else None
-    return parse_quantity(typed, unit, dimension.description, default)
-
-
 def text(value: float, quantity: str) -> str:
     """Return an SI value as the fields show it."""
     system = state.system()
@@ -123,14 +122,7 @@ def field(label: str, side: str, name: str, default: str, **more: Any) -> str:
     return st.text_input(label, value=shown, key=widget, on_change=take, **more).strip()
 
 
-def _field(side: str, kind: str, dimension: Dimension, known: float | None) -> str:
-    if known is None:
-        default = ""
-    elif dimension.unit == "m":
-        default = text(known, "diameter")
-    elif dimension.unit == "rad":
-        default = f"{exact(float(np.degrees(known)))} °"
-    else:
-        default = exact(known)
-    label = f"{dimension.description[:1].upper()}{dimension.description[1:]}, {dimension.symbol}"
-    return field(label, side, f"{kind}.{dimension.key}", default)
+def _field(side: str, record: GeometryRecord, one: Dimension, known: float | None) -> str:
+    system = state.system()
+    default = "" if known is None else dimension.text(record, one, known, system)
+    return field(dimension.label(one), side, f"{record.key}.{one.key}", default)
