@@ -8,6 +8,7 @@ import numpy as np
 
 from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow
+from rheo.hydraulics.fittings import fitting, reducer_loss
 from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import Entrance, Exit, Fitting, FloatArray, Pipe, Reducer
 from rheo.line.route import Step
@@ -32,7 +33,7 @@ def minor_loss(step: Step, at: PipeFlow, beside: Callable[[Pipe], PipeFlow]) -> 
     """
     part = step.part
     if isinstance(part, Fitting):
-        return part.count * _fitting_coefficient(part) * velocity_pressure(at)
+        return part.count * _fitting_coefficient(part, at) * velocity_pressure(at)
     if isinstance(part, Entrance):
         return np.asarray(part.loss_coefficient) * velocity_pressure(at)
     if isinstance(part, Exit):
@@ -49,15 +50,15 @@ def velocity_pressure(at: PipeFlow) -> FloatArray:
     return 0.5 * at.density * at.velocity**2
 
 
-def _fitting_coefficient(part: Fitting) -> FloatArray:
+def _fitting_coefficient(part: Fitting, at: PipeFlow) -> FloatArray:
     if part.loss_coefficient is not None:
         return np.asarray(part.loss_coefficient, dtype=float)
-    raise InputError(f"'{part.name}' has no loss_coefficient")
+    return fitting(part.kind).coefficient(np.asarray(at.reynolds), np.asarray(at.diameter))
 
 
 def _reducer_loss(part: Reducer, before: PipeFlow, after: PipeFlow) -> FloatArray:
+    if part.loss_coefficient is None:
+        return reducer_loss(before, after, part.angle)
     narrow = np.asarray(before.diameter) <= np.asarray(after.diameter)
     pressure = np.where(narrow, velocity_pressure(before), velocity_pressure(after))
-    if part.loss_coefficient is not None:
-        return np.asarray(part.loss_coefficient) * pressure
-    raise InputError(f"'{part.name}' has no loss_coefficient")
+    return np.asarray(part.loss_coefficient) * pressure
