@@ -299,6 +299,26 @@ def _along(mark: Mark, axis: str) -> Iterator[ArrayLike]:
         yield mark.x if axis == "x" else mark.y
 
 
+def _extent_of_marks(axis: Axis, marks: tuple[Mark, ...], which: str) -> tuple[float, float]:
+    """Return the ends of what is drawn; a band no more than doubles what the rest needs."""
+
+    def of(chosen: list[Mark]) -> tuple[float, float] | None:
+        columns = [array(values) for mark in chosen for values in _along(mark, which)]
+        return extent(np.concatenate(columns), axis.log) if columns else None
+
+    every = of(list(marks))
+    rest = of([mark for mark in marks if not isinstance(mark, Band)])
+    if every is None:
+        return (1.0, 10.0) if axis.log else (0.0, 1.0)
+    if rest is None or which == "x":
+        return every
+    if axis.log:
+        factor = max(rest[1] / rest[0], 10.0)
+        return max(every[0], rest[0] / factor), min(every[1], rest[1] * factor)
+    room = rest[1] - rest[0] or abs(rest[1])
+    return max(every[0], rest[0] - room), min(every[1], rest[1] + room)
+
+
 def axis_range(axis: Axis, marks: tuple[Mark, ...], which: str) -> tuple[float, float]:
     """Return the ends of an axis: its own where given, else those of its marks with some room.
 
@@ -316,9 +336,7 @@ def axis_range(axis: Axis, marks: tuple[Mark, ...], which: str) -> tuple[float, 
     tuple of float
         Low and high; positive on a logarithmic axis, never equal.
     """
-    columns = [array(values) for mark in marks for values in _along(mark, which)]
-    found = extent(np.concatenate(columns), axis.log) if columns else None
-    low, high = found or ((1.0, 10.0) if axis.log else (0.0, 1.0))
+    low, high = _extent_of_marks(axis, marks, which)
     if axis.log:
         room = max(0.04 * np.log(high / low), 0.05)
         low, high = low * float(np.exp(-room)), high * float(np.exp(room))

@@ -11,8 +11,21 @@ import pytest
 import rheo
 from rheo.report import figures
 from rheo.report.draw_plotly import label
-from rheo.report.picture import Axis, Band, Bars, Label, Limit, Line, Panel, Picture, Points, Strip
+from rheo.report.picture import (
+    Axis,
+    Band,
+    Bars,
+    Label,
+    Limit,
+    Line,
+    Panel,
+    Picture,
+    Points,
+    Strip,
+    axis_range,
+)
 from rheo.report.ticks import linear_ticks, log_ticks
+from rheo.report.words import without_shared_words
 
 HOSTILE = "<script>alert(1)</script> & %{x} <b>bold</b> =1+1 " + "x" * 10_000 + " \u202e שלום 😀"
 MODEL = rheo.model("herschel-bulkley", yield_stress=12.0, consistency=4.2, flow_index=0.45)
@@ -265,3 +278,33 @@ def test_linear_ticks_are_round(low: float, high: float, expected: list[str]) ->
 )
 def test_log_ticks_name_decades(low: float, high: float, expected: list[str]) -> None:
     assert [name for _, name in log_ticks(low, high)[0]] == expected
+
+
+def test_a_wild_band_does_not_flatten_the_rest() -> None:
+    x = np.array([1.0, 10.0])
+    marks = (Line(x, np.array([1.0, 2.0])), Band(x, np.array([-1e9, -1e9]), np.array([1e9, 1e9])))
+    low, high = axis_range(Axis("y", "m"), marks, "y")
+    assert low >= -0.5
+    assert high <= 4.0
+    low, high = axis_range(Axis("y", "m", log=True), (marks[0], Band(x, x * 1e-9, x)), "y")
+    assert low > 0.05
+
+
+@pytest.mark.parametrize(
+    ("names", "shared", "short"),
+    [
+        (["ISO 2037 38", "ISO 2037 51"], "ISO 2037", ("38", "51")),
+        (
+            ["B36 DN 50 (2 in) schedule 40", "B36 DN 65 (2 1/2 in) schedule 40"],
+            "B36 DN … schedule 40",
+            ("50 (2 in)", "65 (2 1/2 in)"),
+        ),
+        (["one", "two"], "", ("one", "two")),
+        (["alone here"], "", ("alone here",)),
+        (["same 1", "same 1"], "same", ("1", "1")),
+    ],
+)
+def test_words_in_common_are_said_once(
+    names: list[str], shared: str, short: tuple[str, ...]
+) -> None:
+    assert without_shared_words(names) == (shared, short)

@@ -10,6 +10,10 @@ from numpy.typing import ArrayLike
 from rheo.report.display import shown, unit_label
 from rheo.report.picture import Axis, Bars, Limit, Mark, Panel, Picture, array
 from rheo.report.text import one_line
+from rheo.report.words import without_shared_words
+
+# Letters that fit along the axis.
+_TICK_LETTERS = 110
 
 
 def sizes(
@@ -93,9 +97,10 @@ def sizes(
                 )
         high = _cut(values, failed, limits) if number == 0 else None
         panels.append(Panel(Axis(quantity, unit, low=0.0, high=high), (*bars, *limits)))
-    every = max(1, -(-count // 14))
-    prefix = _common_words(names)
-    ticks = tuple((float(i), one_line(names[i][len(prefix) :], 24)) for i in range(0, count, every))
+    shared, short = without_shared_words(names)
+    longest = max((len(name) for name in short), default=1)
+    every = max(1, -(-count * (longest + 2) // _TICK_LETTERS))
+    ticks = tuple((float(i), one_line(short[i], 24)) for i in range(0, count, every))
     return Picture(
         key="sizes",
         title="Sizes",
@@ -104,7 +109,7 @@ def sizes(
             "fail a limit; the table gives the reason."
         ),
         x=Axis(
-            f"Size, {one_line(prefix, 40)}" if prefix else "Size",
+            f"Size, {one_line(shared, 50)}" if shared else "Size",
             "",
             low=-0.6,
             high=count - 0.4,
@@ -113,17 +118,6 @@ def sizes(
         panels=tuple(panels),
         height=150.0 * len(panels) + 60.0,
     )
-
-
-def _common_words(names: Sequence[str]) -> str:
-    """Return the words, with the space after them, that all names begin with."""
-    if len(names) < 2:
-        return ""
-    words = [name.split(" ") for name in names]
-    count = 0
-    while all(len(one) > count + 1 for one in words) and len({one[count] for one in words}) == 1:
-        count += 1
-    return "".join(f"{word} " for word in words[0][:count])
 
 
 def _cut(values: np.ndarray, failed: np.ndarray, limits: Sequence[Mark]) -> float | None:

@@ -8,6 +8,7 @@ from rheo.report.display import shown, text, unit_label
 from rheo.report.document import Block, Cautions, Figure, Paragraph, Section, Table
 from rheo.report.line_pictures import sizes_picture
 from rheo.report.numbers import number, with_interval
+from rheo.report.words import without_shared_words
 
 
 def sizes_section(
@@ -71,9 +72,10 @@ def _table(sizing: Sizing, currency: str, system: str) -> Table:
     if priced:
         head.append(f"Cost [{currency}/year]")
     rows = []
-    for one in sizing.candidates:
+    shared, short = without_shared_words([one.size.name for one in sizing.candidates])
+    for one, name in zip(sizing.candidates, short, strict=True):
         row = [
-            one.size.name,
+            name,
             number(float(shown(one.size.inside_diameter, "diameter", system))),
             number(float(shown(one.velocity, "velocity", system))),
             number(one.wall_rate),
@@ -88,7 +90,7 @@ def _table(sizing: Sizing, currency: str, system: str) -> Table:
         (*head, "Verdict"),
         tuple(rows),
         numeric=tuple(range(1, len(head))),
-        caption="Every size against the limits",
+        caption=f"Every size of {shared} against the limits" if shared else "Every size",
         states=tuple(_state(one, sizing) for one in sizing.candidates),
         widths=(1.3, *[0.0] * (len(head) - 1), 2.2),
     )
