@@ -136,3 +136,19 @@ def test_models_are_listed_from_the_registry(command):
     listed = json.loads(command("models", "--json").out)
     assert [one["key"] for one in listed] == list(rheo.model_records())
     assert rheo.cli.models.models.__doc__
+
+
+def test_open_starts_the_page_in_this_process(command, monkeypatch):
+    started = []
+
+    def main():
+        started.append(list(sys.argv))
+        return 0
+
+    monkeypatch.setattr("streamlit.web.cli.main", main)
+    assert command("open", "--no-browser", "--port", "8600").status == 0
+    (arguments,) = started
+    assert arguments[:2] == ["streamlit", "run"]
+    assert Path(arguments[2]).parts[-2:] == ("ui", "app.py")
+    assert Path(arguments[2]).exists()
+    assert arguments[3:] == ["--server.port", "8600", "--server.headless", "true"]
