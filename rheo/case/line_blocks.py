@@ -107,6 +107,7 @@ class FittingBlock(PartBlock):
     count: Annotated[StrictInt, Field(ge=1, le=10_000)] = 1
     loss_coefficient: NotNegative | None = None
     diameter: Length | None = None
+    table: Text | None = None
 
     def build(self) -> Fitting:
         """Return the fitting for the engine."""
@@ -131,7 +132,8 @@ class EntranceBlock(PartBlock):
 
     part: Literal["entrance"]
     name: Text = "entrance"
-    loss_coefficient: NotNegative = Quantity(0.5)
+    kind: Text = "entrance"
+    loss_coefficient: NotNegative | None = None
 
     def build(self) -> Entrance:
         """Return the entrance for the engine."""

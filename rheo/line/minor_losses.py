@@ -8,9 +8,10 @@ import numpy as np
 
 from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow
-from rheo.hydraulics.fittings import fitting, reducer_loss
+from rheo.hydraulics.fittings import reducer_loss
 from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import Entrance, Exit, Fitting, FloatArray, Pipe, Reducer
+from rheo.line.published_losses import published_entrance, published_fitting
 from rheo.line.route import Step
 
 
@@ -35,7 +36,7 @@ def minor_loss(step: Step, at: PipeFlow, beside: Callable[[Pipe], PipeFlow]) -> 
     if isinstance(part, Fitting):
         return part.count * _fitting_coefficient(part, at) * velocity_pressure(at)
     if isinstance(part, Entrance):
-        return np.asarray(part.loss_coefficient) * velocity_pressure(at)
+        return _entrance_coefficient(part, at) * velocity_pressure(at)
     if isinstance(part, Exit):
         if part.loss_coefficient is None:
             return kinetic_pressure(at)
@@ -53,7 +54,14 @@ def velocity_pressure(at: PipeFlow) -> FloatArray:
 def _fitting_coefficient(part: Fitting, at: PipeFlow) -> FloatArray:
     if part.loss_coefficient is not None:
         return np.asarray(part.loss_coefficient, dtype=float)
-    return fitting(part.kind).coefficient(np.asarray(at.reynolds), np.asarray(at.diameter))
+    published = published_fitting(part.kind, part.table, part.name)
+    return published.coefficient(at.reynolds, at.diameter)
+
+
+def _entrance_coefficient(part: Entrance, at: PipeFlow) -> FloatArray:
+    if part.loss_coefficient is not None:
+        return np.asarray(part.loss_coefficient, dtype=float)
+    return published_entrance(part.kind, part.name).coefficient(at.reynolds, at.diameter)
 
 
 def _reducer_loss(part: Reducer, before: PipeFlow, after: PipeFlow) -> FloatArray:

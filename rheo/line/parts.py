@@ -12,6 +12,7 @@ from numpy.typing import NDArray
 from rheo.errors import InputError
 from rheo.line.catalogue import PipeSize, pipe_size
 from rheo.line.checks import require_number, require_optional, require_positive
+from rheo.line.published_losses import published_entrance, published_fitting
 
 FloatArray = NDArray[np.float64]
 Number = float | FloatArray
@@ -129,7 +130,7 @@ class Fitting:
     Parameters
     ----------
     kind : str
-        A name of the published fittings, such as ``elbow-90-long``; any text when
+        A published fitting, such as ``elbow-90-long`` or ``valve-ball``; any text when
         `loss_coefficient` is given.
     count : int
         How many of them.
@@ -139,6 +140,9 @@ class Fitting:
         Inside diameter [m] whose velocity counts; that of the pipe before it when absent.
     name : str
         For display; the kind when empty.
+    table : str, optional
+        ``darby-3k`` or ``hooper-2k``; when absent Darby's, and Hooper's for a kind that only he
+        lists.
     """
 
     kind: str = "fitting"
@@ -146,6 +150,7 @@ class Fitting:
     loss_coefficient: Number | None = None
     diameter: Number | None = None
     name: str = ""
+    table: str | None = None
 
     def __post_init__(self) -> None:
         if not self.name:
@@ -154,7 +159,9 @@ class Fitting:
             raise InputError(
                 f"count is {self.count!r}; it must be a whole number above 0", self.name
             )
-        if self.loss_coefficient is not None:
+        if self.loss_coefficient is None:
+            published_fitting(self.kind, self.table, self.name)
+        else:
             require_number(self.loss_coefficient, "loss_coefficient [-]", self.name, low=0.0)
         require_optional(self.diameter, "diameter [m]", self.name)
 
@@ -192,17 +199,23 @@ class Entrance:
 
     Parameters
     ----------
-    loss_coefficient : float
-        K in velocity heads of that pipe [-]; 0.5 for a sharp edge (common practice).
+    loss_coefficient : float, optional
+        The user's own K, in velocity heads of that pipe [-]; that of its kind when absent.
     name : str
         For display.
+    kind : str
+        ``entrance`` (sharp edge), ``entrance-projecting`` or ``entrance-rounded``.
     """
 
-    loss_coefficient: Number = 0.5
+    loss_coefficient: Number | None = None
     name: str = "entrance"
+    kind: str = "entrance"
 
     def __post_init__(self) -> None:
-        require_number(self.loss_coefficient, "loss_coefficient [-]", self.name, low=0.0)
+        if self.loss_coefficient is None:
+            published_entrance(self.kind, self.name)
+        else:
+            require_number(self.loss_coefficient, "loss_coefficient [-]", self.name, low=0.0)
 
 
 @dataclass(frozen=True)

@@ -44,6 +44,13 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
         (lambda: Fitting("bend", count=0), "bend: count is 0; it must be a whole number above 0"),
         (lambda: Fitting("bend", count=1.5), "count is 1.5"),  # type: ignore[arg-type]
         (lambda: Fitting("bend", loss_coefficient=-1.0), "loss_coefficient [-] is -1"),
+        (
+            lambda: Fitting("elbow-90-lang", name="bend at the wall"),
+            "bend at the wall: unknown fitting 'elbow-90-lang' (did you mean 'elbow-90-long'?)",
+        ),
+        (lambda: Fitting("bend"), "or give its loss_coefficient"),
+        (lambda: Fitting("elbow-90", table="crane"), "unknown table 'crane'; there are darby-3k"),
+        (lambda: Entrance(kind="hole"), "unknown entrance 'hole'; there are entrance, entrance-"),
         (lambda: Reducer(angle=4.0), "reducer: angle is 4 rad; it must be above 0 and at most π"),
         (lambda: Entrance(-0.5), "entrance: loss_coefficient [-] is -0.5"),
         (lambda: Exit(-0.5), "exit: loss_coefficient [-] is -0.5"),
@@ -55,7 +62,7 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
         ),
         (lambda: Vessel(np.inf), "vessel: level [m] is inf; it must be a finite number"),
         (lambda: Line(), "the line has no pipe"),
-        (lambda: Line(discharge=(Fitting("bend"),)), "the line has no pipe"),
+        (lambda: Line(discharge=(Fitting("bend", loss_coefficient=1.0),)), "the line has no pipe"),
         (lambda: Line(discharge=("pipe",)), "str is no part of a line; there are Vessel, Pipe"),  # type: ignore[arg-type]
         (
             lambda: Line(discharge=(Vessel(name="middle"), Pipe(1.0, 0.05))),
@@ -97,9 +104,13 @@ def test_an_efficiency_is_a_share() -> None:
         rheo.solve_line(line, Product(WATER, 1000.0), 1e-3, efficiency=60)
 
 
+def _own(name: str) -> Fitting:
+    return Fitting(name, loss_coefficient=1.0)
+
+
 def test_a_fitting_takes_the_pipe_before_it_and_else_the_one_after() -> None:
     first, second = Pipe(1.0, 0.05, name="first"), Pipe(1.0, 0.08, name="second")
-    line = Line(discharge=(Fitting("a"), first, Fitting("b"), second, Fitting("c")))
+    line = Line(discharge=(_own("a"), first, _own("b"), second, _own("c")))
     found = {step.part.name: step.pipe for step in route(line)}
     assert found["a"] is first
     assert found["b"] is first
@@ -108,7 +119,7 @@ def test_a_fitting_takes_the_pipe_before_it_and_else_the_one_after() -> None:
 
 def test_a_fitting_on_a_side_without_pipe_takes_the_other_side() -> None:
     pipe = Pipe(1.0, 0.05)
-    line = Line(suction=(Vessel(), Entrance(), Fitting("foot valve")), discharge=(pipe,))
+    line = Line(suction=(Vessel(), Entrance(), _own("foot valve")), discharge=(pipe,))
     assert {step.pipe for step in route(line)} == {pipe}
 
 
@@ -173,3 +184,58 @@ def test_water_at_twenty_degrees() -> None:
     assert float(found.model_at(293.15).viscosity(1.0)) == pytest.approx(1.002e-3, rel=0.025)
     assert float(found.density) == pytest.approx(998.2, rel=5e-4)
     assert found.vapour_pressure == pytest.approx(2339.0, rel=1e-3)
+
+
+OIL = Product(rheo.model("newtonian", viscosity=0.1), 900.0)
+
+
+def _loss(part: Fitting | Entrance, flow: float) -> tuple[float, float, float]:
+    """Loss over ρV²/2, Reynolds number and inside diameter [in] in a 50 mm pipe."""
+    parts = (part, Pipe(1.0, 0.05)) if isinstance(part, Entrance) else (Pipe(1.0, 0.05), part)
+    found = rheo.solve_line(Line(discharge=parts), OIL, flow)
+    row = next(one for one in found.parts if one.kind != "pipe")
+    head = 0.5 * 900.0 * float(row.velocity) ** 2
+    return float(row.pressure_loss) / head, float(row.reynolds), 0.05 / 0.0254
+
+
+@pytest.mark.parametrize("flow", [5e-4, 5e-2])
+def test_published_fittings_by_their_forms(flow: float) -> None:
+    """Long-radius elbow: Darby 800/Re + 0.071(1 + 4.2/D^0.3); Hooper 800/Re + 0.2(1 + 1/D).
+
+    D in inches; constants from memory.
+    """
+    darby, reynolds, inches = _loss(Fitting("elbow-90-long", count=3), flow)
+    by_hand = 3 * (800 / reynolds + 0.071 * (1 + 4.2 / inches**0.3))
+    assert darby == pytest.approx(by_hand, rel=1e-9)
+    hooper, reynolds, inches = _loss(Fitting("elbow-90-long", table="hooper-2k"), flow)
+    assert hooper == pytest.approx(800 / reynolds + 0.2 * (1 + 1 / inches), rel=1e-9)
+
+
+def test_what_only_hooper_lists_is_found() -> None:
+    """Butterfly valve: 800/Re + 0.25(1 + 1/D), from memory."""
+    found, reynolds, inches = _loss(Fitting("valve-butterfly"), 1e-3)
+    assert found == pytest.approx(800 / reynolds + 0.25 * (1 + 1 / inches), rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("kind", "constant"),
+    [("entrance", 0.5), ("entrance-projecting", 1.0), ("entrance-rounded", 0.04)],
+)
+def test_entrances_by_their_form(kind: str, constant: float) -> None:
+    """Hooper 1981, from memory: 160/Re and a constant."""
+    found, reynolds, _ = _loss(Entrance(kind=kind), 1e-3)
+    assert found == pytest.approx(160 / reynolds + constant, rel=1e-9)
+    own, _, _ = _loss(Entrance(0.3), 1e-3)
+    assert own == pytest.approx(0.3, rel=1e-12)
+
+
+def test_a_reducer_without_coefficient_takes_the_published_loss() -> None:
+    """Sudden narrowing in turbulent flow, Hooper 1988: (0.6 + 0.48 f)β²(β² - 1), Darcy's f."""
+    thin = Product(rheo.model("newtonian", viscosity=1e-3), 1000.0)
+    line = Line(discharge=(Pipe(1.0, 0.08), Reducer(), Pipe(1.0, 0.04)))
+    found = rheo.solve_line(line, thin, 5e-3).parts
+    wide = found[0]
+    area = (0.08 / 0.04) ** 2
+    k = (0.6 + 0.48 * 4 * float(wide.friction_factor)) * area * (area - 1)
+    by_hand = k * 0.5 * 1000.0 * float(wide.velocity) ** 2
+    assert float(found[1].pressure_loss) == pytest.approx(by_hand, rel=1e-9)
