@@ -30,14 +30,19 @@ class LaminarFlow:
     rate: FloatArray
 
 
+def log_slope(friction_factor: FloatArray) -> FloatArray:
+    """Return a = 2.5 V*/V [-], the slope of u/V against ln(1 - r/R), at a friction factor [-]."""
+    return _SLOPE * np.sqrt(0.5 * friction_factor)
+
+
 def turbulent_excess(friction_factor: FloatArray) -> FloatArray:
     """Return u_max/V - 1 [-] of the logarithmic profile at a Fanning friction factor [-]."""
-    return 1.5 * _SLOPE * np.sqrt(0.5 * friction_factor)
+    return 1.5 * log_slope(friction_factor)
 
 
 def turbulent_kinetic_energy_factor(friction_factor: FloatArray) -> FloatArray:
     """Return α = ∫u³dA/(V³A) [-] of the logarithmic profile at a Fanning friction factor [-]."""
-    a = _SLOPE * np.sqrt(0.5 * friction_factor)
+    a = log_slope(friction_factor)
     return 1.0 + 3.75 * a**2 - 2.25 * a**3
 
 
@@ -72,8 +77,7 @@ def velocity_profile(flow: PipeFlow, radius_ratio: ArrayLike) -> FloatArray:
     laminar = tube_flow.velocity(flow.model.with_new_axis(), rate, place)
     if not np.any(share > 0):
         return speed * laminar
-    friction = np.asarray(flow.friction_factor)[..., np.newaxis]
-    slope = _SLOPE * np.sqrt(0.5 * friction)
+    slope = log_slope(np.asarray(flow.friction_factor)[..., np.newaxis])
     with np.errstate(divide="ignore"):
         logarithmic = 1.0 + slope * (1.5 + np.log1p(-place))
     wall_rate = np.asarray(flow.wall_rate)[..., np.newaxis]
