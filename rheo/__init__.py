@@ -16,6 +16,8 @@ _PUBLIC = {
     "Fits": "rheo.fitting",
     "FlowCurve": "rheo.readings",
     "Instrument": "rheo.fitting",
+    "fit_concentrations": "rheo.fitting.concentration",
+    "fit_temperatures": "rheo.fitting.temperature",
     "fit": "rheo.fitting",
     "Readings": "rheo.readings",
     "read_readings": "rheo.readings",

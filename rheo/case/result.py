@@ -40,6 +40,7 @@ from rheo.line.result import plain
 from rheo.line.sizing import Sizing
 from rheo.line.system import SystemCurve
 from rheo.models import Model
+from rheo.models.state_curve import ScaledCurve
 from rheo.readings import Readings
 
 _FLOW_SPAN = np.geomspace(0.2, 2.0, 41)
@@ -311,7 +312,7 @@ def _thinned(draws: tuple[FlowCurveSource, ...], count: int) -> tuple[FlowCurveS
     step = max(1, count // _BAND_DRAWS)
     return tuple(
         source.map(lambda value: value[::step] if value.ndim else value)
-        if isinstance(source, Model)
+        if isinstance(source, Model | ScaledCurve)
         else source
         for source in draws
     )

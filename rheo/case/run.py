@@ -13,7 +13,8 @@ from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
 from rheo.errors import CaseError, Caution, merge_cautions
 from rheo.fitting import Fit, Fits, fit
-from rheo.fitting.draws import covariance_draws
+from rheo.fitting.scaled_fits import ScaledFits
+from rheo.fitting.temperature import fit_temperatures
 from rheo.line import (
     CentrifugalPump,
     DisplacementPump,
@@ -157,6 +158,16 @@ def _fits(case: Case, readings: Readings) -> Fits:
         float(wanted.percent_of_full_scale or 0.0),
         readings,
     )
+    taken = readings.temperature
+    if taken is not None and np.ptp(taken) > ONE_TEMPERATURE:
+        if wanted.entrance or wanted.slip:
+            raise CaseError(
+                "entrance loss and slip are fitted at one temperature only; exclude the readings "
+                "at the others, or leave entrance and slip out",
+                "fit",
+            )
+        reference = float(np.clip(_temperature(case, readings), taken.min(), taken.max()))
+        return fit_temperatures(readings, wanted.models, weighting, reference)
     return fit(
         readings,
         models=wanted.models,
@@ -169,30 +180,30 @@ def _fits(case: Case, readings: Readings) -> Fits:
 def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product:
     given = case.product
     doubt = case.doubt
-    if case.fit.model == AUTO:
-        draws = fits.draws(doubt.draws, seed=doubt.seed)
-    else:
-        draws = (covariance_draws(chosen, doubt.draws, doubt.seed),)
+    named = None if case.fit.model == AUTO else chosen.key
     rates = chosen.rates[chosen.rates > 0]
-    warm = given.temperature
-    if warm is None:
-        taken = readings.temperature
-        temperature = ROOM_TEMPERATURE if taken is None else float(np.mean(taken))
-    else:
-        temperature = float(warm)
     product = Product(
-        model=chosen.model,
+        model=fits.source(chosen.key),
         density=float(given.density),
-        temperature=temperature,
+        temperature=_temperature(case, readings),
         heat_capacity=_plain(given.heat_capacity),
         vapour_pressure=_plain(given.vapour_pressure),
         static_yield_stress=_plain(given.static_yield_stress),
         measured_rates=(float(rates.min()), float(rates.max())) if rates.size else None,
-        draws=draws,
+        temperature_range=fits.range if isinstance(fits, ScaledFits) else None,
+        draws=fits.draws(doubt.draws, doubt.seed, named),
         name=given.name,
     )
     factor = given.stress_factor
     return product if factor is None else thicker(product, float(factor))
+
+
+def _temperature(case: Case, readings: Readings) -> float:
+    """Temperature of the product [K]: as given, else that of the readings."""
+    if case.product.temperature is not None:
+        return float(case.product.temperature)
+    taken = readings.temperature
+    return ROOM_TEMPERATURE if taken is None else float(np.mean(taken))
 
 
 def _efficiency(case: Case, pump: CentrifugalPump | DisplacementPump | None) -> float | None:

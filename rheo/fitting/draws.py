@@ -2,21 +2,25 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.fitting.problem import coordinates
 from rheo.models import Model
+
+FloatArray = NDArray[np.float64]
 
 if TYPE_CHECKING:
     from rheo.fitting.fits import Fits
     from rheo.fitting.result import Fit
 
 
-def covariance_draws(fit: Fit, count: int, seed: int) -> Model:
-    """Draw parameters from a normal distribution in the coordinates of the search.
+def parameter_draws(fit: Fit, count: int, seed: int) -> FloatArray:
+    """Draw all parameters of a fit from a normal distribution in the coordinates of the search.
 
     Parameters
     ----------
@@ -29,8 +33,8 @@ def covariance_draws(fit: Fit, count: int, seed: int) -> Model:
 
     Returns
     -------
-    Model
-        With parameter arrays of shape (count,).
+    array, shape (count, p)
+        The model's parameters, then those of the instrument or of a scaling law.
     """
     best = fit.final.parameters
     scale = coordinates(fit.problem)
@@ -44,7 +48,22 @@ def covariance_draws(fit: Fit, count: int, seed: int) -> Model:
         )
         low, high = scale.inner_bounds
         inner[:, free] = np.clip(inner[:, free] + normal, low[free], high[free])
-    return fit.model_of(scale.outer(inner))
+    return scale.outer(inner)
+
+
+def covariance_draws(fit: Fit, count: int, seed: int) -> Model:
+    """Return the flow curve with arrays of drawn parameters of shape (count,)."""
+    return fit.model_of(parameter_draws(fit, count, seed))
+
+
+def shares(weights: Sequence[float], count: int) -> list[int]:
+    """Return how many of `count` draws each weight earns: whole numbers that add up to `count`."""
+    if count < 1:
+        raise InputError(f"the number of draws is {count}; it must be 1 or more")
+    exact = count * np.asarray(weights, dtype=float)
+    parts = np.floor(exact).astype(int)
+    parts[np.argsort(parts - exact, kind="stable")[: count - int(parts.sum())]] += 1
+    return [int(part) for part in parts]
 
 
 def mixed_draws(fits: Fits, count: int, seed: int) -> tuple[Model, ...]:
@@ -69,14 +88,9 @@ def mixed_draws(fits: Fits, count: int, seed: int) -> tuple[Model, ...]:
     InputError
         If `count` is less than 1.
     """
-    if count < 1:
-        raise InputError(f"the number of draws is {count}; it must be 1 or more")
-    exact = count * np.array([fit.weight for fit in fits])
-    shares = np.floor(exact).astype(int)
-    left = count - int(shares.sum())
-    shares[np.argsort(shares - exact, kind="stable")[:left]] += 1
+    parts = shares([fit.weight for fit in fits], count)
     return tuple(
-        covariance_draws(fit, int(share), seed + index)
-        for index, (fit, share) in enumerate(zip(fits, shares, strict=True))
-        if share > 0
+        covariance_draws(fit, part, seed + index)
+        for index, (fit, part) in enumerate(zip(fits, parts, strict=True))
+        if part > 0
     )

@@ -63,7 +63,7 @@ def fit(
         than those of tubes that differ.
     """
     weights = resolve_weighting(weighting)
-    return rank(task_of(data, weights, entrance, slip), _records(models), weights)
+    return rank(task_of(data, weights, entrance, slip), records_of(models), weights)
 
 
 def task_of(
@@ -85,13 +85,16 @@ def curve_task(curve: FlowCurve, weights: Weighting) -> Task:
         raise FitError("all points are excluded; there must be at least one to fit", "fit")
     rate, stress = curve.rate[points], curve.stress[points]
 
+    def pose(records: Sequence[ModelRecord]) -> list[CurveProblem]:
+        return [CurveProblem(record, rate, stress, weights) for record in records]
+
     def solve(records: Sequence[ModelRecord]) -> list[tuple[Problem, FloatArray, float]]:
-        problems = [CurveProblem(record, rate, stress, weights) for record in records]
+        problems = pose(records)
         starts = search(records, rate, stress, weights.sigma(stress))
         minima = global_minima(problems, starts)
         return [(problem, *found) for problem, found in zip(problems, minima, strict=True)]
 
-    return Task(solve, stress, np.unique(rate).size, points)
+    return Task(solve, pose, stress, np.unique(rate).size, points)
 
 
 def rank(task: Task, records: Iterable[ModelRecord], weights: Weighting) -> Fits:
@@ -118,7 +121,8 @@ def rank(task: Task, records: Iterable[ModelRecord], weights: Weighting) -> Fits
     return Fits(ranking, weights, skipped, (*task.cautions, *_skipped_caution(skipped)))
 
 
-def _records(models: str | Sequence[str] | None) -> list[ModelRecord]:
+def records_of(models: str | Sequence[str] | None) -> list[ModelRecord]:
+    """Return the records of the models named; of all when none is."""
     if models is None:
         return list(model_records().values())
     keys = [models] if isinstance(models, str) else list(models)

@@ -7,11 +7,14 @@ from dataclasses import dataclass
 from functools import cached_property
 
 from rheo.errors import Caution, InputError, merge_cautions
-from rheo.fitting.draws import mixed_draws
+from rheo.fitting.draws import covariance_draws, mixed_draws
 from rheo.fitting.ranking import TIE
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Weighting
 from rheo.models import Model
+from rheo.models.state_curve import ScaledCurve
+
+FlowCurveSource = Model | ScaledCurve
 
 
 @dataclass(frozen=True, eq=False)
@@ -89,12 +92,35 @@ class Fits:
         """What to know of the readings, of the best fit and of the models left out."""
         return merge_cautions(self.data_cautions, self.best.cautions)
 
-    def draws(self, count: int, seed: int = 1) -> tuple[Model, ...]:
-        """Return flow curves with arrays of drawn parameters, mixed over models by Akaike weight.
+    def source(self, key: str | None = None) -> FlowCurveSource:
+        """Return the flow curve of the best model, or of one named, as a line takes it.
 
-        The lengths of the arrays add up to `count`; models whose share is below one draw are
-        left out.
+        A model; or, from readings at several temperatures, a function of temperature [K].
         """
+        return (self.best if key is None else self[key]).model
+
+    def draws(
+        self, count: int, seed: int = 1, key: str | None = None
+    ) -> tuple[FlowCurveSource, ...]:
+        """Return flow curves with arrays of drawn parameters, as `source` gives them.
+
+        Parameters
+        ----------
+        count : int
+            Number of draws over all models, which share them by Akaike weight; a model whose share
+            is below one draw is left out.
+        seed : int
+            Of the random numbers.
+        key : str, optional
+            The only model to draw from.
+
+        Returns
+        -------
+        tuple
+            With arrays whose lengths add up to `count`.
+        """
+        if key is not None:
+            return (covariance_draws(self[key], count, seed),)
         return mixed_draws(self, count, seed)
 
     def __repr__(self) -> str:

@@ -44,7 +44,7 @@ def reading_task(
     InputError
         If entrance loss or slip is asked of another geometry, or of tubes that do not differ.
     """
-    points = np.flatnonzero(~readings.excluded)
+    points = np.flatnonzero(np.logical_not(readings.excluded))
     if points.size == 0:
         raise FitError("all readings are excluded; there must be at least one to fit", "fit")
     used = readings.used()
@@ -61,10 +61,14 @@ def reading_task(
         geometry = find_tube_corrections(geometry, setting, reading, entrance, slip).geometry
     curve = _start_curve(geometry, setting, reading)
 
-    def solve(records: Sequence[ModelRecord]) -> list[tuple[Problem, FloatArray, float]]:
-        problems = [
-            ReadingProblem(record, geometry, setting, reading, weights, extra) for record in records
+    def pose(records: Sequence[ModelRecord]) -> list[ReadingProblem]:
+        return [
+            ReadingProblem(record, geometry, setting, reading, weights, curve[0], extra)
+            for record in records
         ]
+
+    def solve(records: Sequence[ModelRecord]) -> list[tuple[Problem, FloatArray, float]]:
+        problems = pose(records)
         rate, stress = curve
         share = weights.sigma(reading) / reading
         found = search(records, rate, stress, share * stress, QUICK)
@@ -72,10 +76,10 @@ def reading_task(
         starts = [
             np.concatenate([one, np.tile(corrections, (len(one), 1))], axis=-1) for one in found
         ]
-        minima = global_minima(problems, starts, damping=1e-6)
+        minima = global_minima(problems, starts, near=True)
         return [(problem, *one) for problem, one in zip(problems, minima, strict=True)]
 
-    return Task(solve, reading, np.unique(setting).size, points, len(extra))
+    return Task(solve, pose, reading, np.unique(setting).size, points, len(extra))
 
 
 def _start_curve(

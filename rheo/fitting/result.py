@@ -16,7 +16,9 @@ from rheo.fitting.intervals import FittedParameter, fitted_parameters
 from rheo.fitting.judge import misfit_cautions
 from rheo.fitting.problem import Problem, parameter_keys
 from rheo.fitting.runs import runs_test
+from rheo.fitting.scaling import ScaledProblem
 from rheo.models import Model, ModelRecord
+from rheo.models.state_curve import ScaledCurve
 
 FloatArray = NDArray[np.float64]
 
@@ -178,6 +180,15 @@ class Fit:
         """Return the flow curve at parameters of shape (..., p)."""
         keys = self.record.parameter_keys
         return Model(self.record, {key: parameters[..., i] for i, key in enumerate(keys)})
+
+    def source_of(self, parameters: FloatArray) -> Model | ScaledCurve:
+        """Return the flow curve at all parameters of the fit, shape (..., p), as a line takes it.
+
+        A function of temperature or solids where readings at several were fitted.
+        """
+        if isinstance(self.problem, ScaledProblem):
+            return self.problem.curve(parameters)
+        return self.model_of(parameters)
 
     def jacobian(self, rate: ArrayLike) -> FloatArray:
         """Return d stress/d parameter at shear rates [1/s], shape (..., k), by `parameter_keys`.

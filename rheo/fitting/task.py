@@ -9,7 +9,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.errors import Caution
-from rheo.fitting.problem import Problem
+from rheo.fitting.problem import CurveProblem, Problem
+from rheo.fitting.reading_problem import ReadingProblem
 from rheo.models import ModelRecord
 
 FloatArray = NDArray[np.float64]
@@ -24,6 +25,8 @@ class Task:
     solve : callable
         ``solve(records)``: for each model the problem, and the parameters and the sum of squares
         at the global minimum.
+    pose : callable
+        ``pose(records)``: for each model the problem alone.
     observed : array, shape (n,)
         Measured readings.
     distinct : int
@@ -37,6 +40,7 @@ class Task:
     """
 
     solve: Callable[[Sequence[ModelRecord]], list[tuple[Problem, FloatArray, float]]]
+    pose: Callable[[Sequence[ModelRecord]], Sequence[CurveProblem | ReadingProblem]]
     observed: FloatArray
     distinct: int
     points: NDArray[np.intp]

@@ -8,6 +8,7 @@ from dataclasses import replace
 from rheo.line.parts import FloatArray
 from rheo.line.product import FlowCurveSource, Product
 from rheo.models import Model
+from rheo.models.state_curve import ScaledCurve
 
 # After each block: the share of the work that is done [-]. What it raises ends the work.
 Progress = Callable[[float], None]
@@ -38,7 +39,7 @@ def _part(source: FlowCurveSource, start: int, end: int) -> FlowCurveSource:
     def cut(value: FloatArray) -> FloatArray:
         return value[..., start:end] if value.ndim and value.shape[-1] > 1 else value
 
-    if isinstance(source, Model):
+    if isinstance(source, Model | ScaledCurve):
         return source.map(cut)
     by_temperature = source
     return lambda temperature: by_temperature(temperature).map(cut)

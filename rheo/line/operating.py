@@ -18,6 +18,7 @@ from rheo.line.solve import npsh_available, pump_flows, suction_total_pressure
 from rheo.line.viscosity_correction import correct_for_viscosity
 from rheo.line.walk import Walk, walk
 from rheo.models import Model
+from rheo.models.state_curve import ScaledCurve
 
 _STEP = 0.05
 
@@ -203,7 +204,7 @@ def _solve(
 
     def gap(log_flow: FloatArray, index: NDArray[np.intp]) -> FloatArray:
         flow = np.exp(log_flow)
-        if source is None or isinstance(source, Model):
+        if source is None or isinstance(source, Model | ScaledCurve):
             some = None if source is None else source.map(lambda v: v[index] if v.ndim else v)
             need = walk(line, product, flow, source=some, method=method).differential_pressure
         else:

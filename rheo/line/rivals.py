@@ -154,17 +154,18 @@ def _log_pressure(
 
     A parameter of the instrument does not reach the pipe: its derivative is 0.
     """
-    count = len(fit.record.parameters)
-    own = np.flatnonzero(free[:count])
-    lower = np.array([one.lower for one in fit.record.parameters])[own]
-    upper = np.array([one.upper for one in fit.record.parameters])[own]
+    every = (*fit.record.parameters, *fit.problem.extra)
+    own = np.flatnonzero(free)
+    lower = np.array([one.lower for one in every])[own]
+    upper = np.array([one.upper for one in every])[own]
     room = 0.5 * np.minimum(values[own] - lower, upper - values[own])
-    step = np.minimum(_STEP * np.abs(values[own]), room)
-    moved = np.repeat(values[np.newaxis, :count], 2 * own.size + 1, axis=0)
+    size = np.where(values[own] != 0, np.abs(values[own]), 1.0)
+    step = np.minimum(_STEP * size, room)
+    moved = np.repeat(values[np.newaxis], 2 * own.size + 1, axis=0)
     row = np.arange(own.size)
     moved[1 + 2 * row, own] += step
     moved[2 + 2 * row, own] -= step
-    found = walk(line, product, np.full(1, flow), source=fit.model_of(moved), method=method)
+    found = walk(line, product, np.full(1, flow), source=fit.source_of(moved), method=method)
     pressure = found.differential_pressure
     if not np.all(pressure > 0):
         raise InputError(
@@ -193,15 +194,16 @@ def _new_readings(
         table = np.stack([np.broadcast_to(slope, at.shape) for slope in slopes])
         return reading, table, weighting.sigma(reading) / reading
     row = np.arange(values.size)
-    step = _STEP * np.where(values > 0, values, 1.0)
+    step = _STEP * np.where(values != 0, np.abs(values), 1.0)
     moved = np.repeat(values[np.newaxis], 2 * values.size + 1, axis=0)
     moved[1 + 2 * row, row] += step
-    moved[2 + 2 * row, row] -= np.where(values > 0, step, 0.0)
+    moved[2 + 2 * row, row] -= np.where(values != 0, step, 0.0)
     models = fit.model_of(moved[:, :count]).with_new_axis()
     fitted = {one.key: moved[:, count + i, np.newaxis] for i, one in enumerate(extra)}
     same = geometry.key == getattr(getattr(fit.problem, "geometry", None), "key", None)
-    if same and fitted:
-        geometry = geometry.replaced(**fitted)
+    instrument = {key: value for key, value in fitted.items() if key in geometry.dimensions}
+    if same and instrument:
+        geometry = geometry.replaced(**instrument)
     readings = np.broadcast_to(geometry.predict(models, at), (moved.shape[0], at.size))
     width = moved[1 + 2 * row, row] - moved[2 + 2 * row, row]
     table = (readings[1::2] - readings[2::2]) / width[:, np.newaxis]

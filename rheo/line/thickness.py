@@ -12,6 +12,7 @@ from rheo.line.parts import FloatArray
 from rheo.line.product import FlowCurveSource, Product
 from rheo.models import Model
 from rheo.models.scaled import scaled
+from rheo.models.state_curve import ScaledCurve
 
 # Common practice: spheres of mixed size pack at random to about this share of the volume.
 RANDOM_PACKING = 0.63
@@ -46,6 +47,8 @@ def thicker(product: Product, factor: float) -> Product:
 def _scaled(source: FlowCurveSource, factor: float) -> FlowCurveSource:
     if isinstance(source, Model):
         return scaled(source, factor)
+    if isinstance(source, ScaledCurve):
+        return source.thicker(factor)
     by_temperature = source
     return lambda temperature: scaled(by_temperature(temperature), factor)
 

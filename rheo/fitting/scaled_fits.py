@@ -1,0 +1,230 @@
+"""One fit over readings at several temperatures or solids fractions."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import ArrayLike, NDArray
+
+from rheo.errors import Caution, InputError
+from rheo.fitting.draws import parameter_draws, shares
+from rheo.fitting.entry import rank, records_of, task_of
+from rheo.fitting.final import global_minima
+from rheo.fitting.fits import Fits
+from rheo.fitting.problem import CurveProblem, Problem
+from rheo.fitting.reading_problem import ReadingProblem
+from rheo.fitting.result import Fit
+from rheo.fitting.scaling import ScaledProblem
+from rheo.fitting.search import search
+from rheo.fitting.task import Task
+from rheo.fitting.weighting import Instrument, Weighting, resolve_weighting
+from rheo.models import Model, ModelRecord
+from rheo.models.state_curve import ScaledCurve, ScalingLaw
+from rheo.readings import FlowCurve, Readings
+
+FloatArray = NDArray[np.float64]
+
+# States nearer to each other than this share of their range are taken as one.
+_APART = 0.05
+
+
+@dataclass(frozen=True, eq=False)
+class ScaledFits(Fits):
+    """Models fitted over readings at several states, with a law for their parameters.
+
+    The ranking, the parameters and the intervals are those of `Fits`, at the reference state; the
+    slopes stand among each fit's parameters.
+
+    Parameters
+    ----------
+    law : ScalingLaw
+        How the parameters follow the state.
+    states : array, shape (n,)
+        State of each reading that was fitted.
+    """
+
+    law: ScalingLaw | None = None
+    states: FloatArray | None = None
+
+    @property
+    def _law(self) -> ScalingLaw:
+        assert self.law is not None
+        return self.law
+
+    @property
+    def range(self) -> tuple[float, float]:
+        """Smallest and largest state among the readings."""
+        assert self.states is not None
+        return float(self.states.min()), float(self.states.max())
+
+    def source(self, key: str | None = None) -> ScaledCurve:
+        """Return the flow curve as a function of the state, of the best model or of one named."""
+        fit = self.best if key is None else self[key]
+        return self._curve(fit, fit.final.parameters)
+
+    def at(self, state: ArrayLike, key: str | None = None) -> Model:
+        """Return the flow curve at a state; `cautions_at` says whether that is inside the data."""
+        return self.source(key)(state)
+
+    def draws(self, count: int, seed: int = 1, key: str | None = None) -> tuple[ScaledCurve, ...]:
+        """Return drawn flow curves as functions of the state.
+
+        Parameters
+        ----------
+        count : int
+            Number of draws over all models.
+        seed : int
+            Of the random numbers.
+        key : str, optional
+            The only model to draw from; all, by Akaike weight, when absent.
+
+        Returns
+        -------
+        tuple of ScaledCurve
+            With arrays whose lengths add up to `count`.
+        """
+        fits = list(self) if key is None else [self[key]]
+        parts = [count] if key is not None else shares([fit.weight for fit in fits], count)
+        return tuple(
+            self._curve(fit, parameter_draws(fit, part, seed + index))
+            for index, (fit, part) in enumerate(zip(fits, parts, strict=True))
+            if part > 0
+        )
+
+    def _curve(self, fit: Fit, parameters: FloatArray) -> ScaledCurve:
+        return ScaledCurve(fit.record, self._law, tuple(np.moveaxis(parameters, -1, 0)))
+
+    def cautions_at(self, state: float, place: str = "") -> tuple[Caution, ...]:
+        """Return a Caution for a state outside those of the readings."""
+        low, high = self.range
+        slack = 1e-6 * max(abs(low), abs(high))
+        if low - slack <= state <= high + slack:
+            return ()
+        law = self._law
+        shown, *ends = (f"{_shown(law, value)}" for value in (state, low, high))
+        return (
+            Caution(
+                f"outside-measured-{law.state.split()[-1]}",
+                f"The {law.state} is {shown}; the readings were taken between {ends[0]} and "
+                f"{ends[1]}.",
+                f"Take readings at this {law.state} before relying on the curve there.",
+                place,
+            ),
+        )
+
+    def misfit_by_state(self, key: str | None = None) -> dict[float, float]:
+        """Return the root mean square relative error [-] of the readings about each state."""
+        assert self.states is not None
+        fit = self.best if key is None else self[key]
+        order = np.argsort(self.states, kind="stable")
+        apart = np.diff(self.states[order]) > _APART * np.ptp(self.states)
+        groups = np.split(order, np.flatnonzero(apart) + 1)
+        return {
+            float(np.mean(self.states[group])): float(
+                np.sqrt(np.mean(fit.relative_errors[group] ** 2))
+            )
+            for group in groups
+        }
+
+
+def _shown(law: ScalingLaw, value: float) -> str:
+    return f"{value - 273.15:.1f} °C" if law.unit == "K" else f"{value:.3g}"
+
+
+def fit_scaled(
+    data: FlowCurve | Readings,
+    states: ArrayLike,
+    law: ScalingLaw,
+    models: str | Sequence[str] | None = None,
+    weighting: str | Instrument | Weighting = "relative",
+) -> ScaledFits:
+    """Fit models over readings at several states and rank them.
+
+    Parameters
+    ----------
+    data : FlowCurve or Readings
+        With a geometry the fit is made in what was measured. What the user excluded is left out.
+    states : array_like, shape (n,)
+        State of every reading, those excluded too.
+    law : ScalingLaw
+        How the parameters follow the state.
+    models, weighting
+        As for `rheo.fit`.
+
+    Returns
+    -------
+    ScaledFits
+
+    Raises
+    ------
+    FitError
+        If no model can be fitted to so few readings.
+    InputError
+        If there are not as many states as readings, or all states are the same.
+    """
+    weights = resolve_weighting(weighting)
+    task = task_of(data, weights)
+    every = np.asarray(states, dtype=float)
+    if every.ndim != 1 or every.size <= int(task.points.max()):
+        raise InputError(
+            f"{law.state} has {every.size} values; give one for each reading", law.state
+        )
+    used = every[task.points]
+    if np.ptp(used) <= 1e-9 * np.abs(used).max():
+        raise InputError(
+            f"all readings have the same {law.state}; at least two are needed", law.state
+        )
+
+    def solve(records: Sequence[ModelRecord]) -> list[tuple[Problem, FloatArray, float]]:
+        return _solve(task, records, law, used)
+
+    scaled = replace(task, solve=solve, extra=2)
+    found = rank(scaled, records_of(models), weights)
+    return ScaledFits(found.ranking, found.weighting, found.skipped, found.data_cautions, law, used)
+
+
+def _solve(
+    task: Task, records: Sequence[ModelRecord], law: ScalingLaw, states: FloatArray
+) -> list[tuple[Problem, FloatArray, float]]:
+    bases = task.pose(records)
+    problems = [ScaledProblem(base, law, states) for base in bases]
+    rate, stress = _curve_of(bases[0])
+    x = law.x(states)
+    slope = _common_slope(rate, stress, x)
+    sigma = bases[0].weighting.sigma(task.observed) / task.observed
+    at_reference = stress * np.exp(-slope * x)
+    found = search(records, rate, at_reference, sigma * at_reference)
+    starts = [
+        _with_slopes(one, len(problem.extra), slope)
+        for one, problem in zip(found, problems, strict=True)
+    ]
+    minima = global_minima(problems, starts)
+    return [(problem, *one) for problem, one in zip(problems, minima, strict=True)]
+
+
+def _curve_of(base: CurveProblem | ReadingProblem) -> tuple[FloatArray, FloatArray]:
+    if isinstance(base, CurveProblem):
+        return base.rate, base.observed
+    rate, stress = base.geometry.nominal(base.setting, base.observed)
+    return np.asarray(rate), np.asarray(stress)
+
+
+def _common_slope(rate: FloatArray, stress: FloatArray, x: FloatArray) -> float:
+    """Return the slope of ln(stress) by x when ln(stress) is quadratic in ln(rate)."""
+    log_rate = np.log(rate)
+    columns = np.stack([np.ones_like(x), log_rate, log_rate**2, x], axis=-1)
+    scale = np.maximum(np.abs(columns).max(axis=0), 1e-300)
+    found, *_ = np.linalg.lstsq(columns / scale, np.log(stress), rcond=None)
+    return float(found[-1] / scale[-1])
+
+
+def _with_slopes(starts: FloatArray, count: int, slope: float) -> FloatArray:
+    """Return starts (c·k, p + count) with several slopes for each."""
+    few = starts[:6]
+    tries = np.array([[1.0, 1.0], [1.0, 0.0], [1.5, 0.3], [0.5, 1.0]])[:, :count]
+    tries = np.unique(tries, axis=0) * slope
+    return np.concatenate(
+        [np.repeat(few, len(tries), axis=0), np.tile(tries, (len(few), 1))], axis=-1
+    )

@@ -1,0 +1,184 @@
+"""Fits over several temperatures or solids fractions."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+import rheo
+from rheo.errors import InputError
+from rheo.models import model_records
+from rheo.models.state_curve import AT_YIELD, VISCOUS
+
+R = 8.314462618
+CELSIUS = 273.15
+TEMPERATURES = np.repeat(np.array([20.0, 40.0, 60.0]) + CELSIUS, 14)
+REFERENCE = 40.0 + CELSIUS
+ENERGY, YIELD_ENERGY = 25e3, 8e3
+TRUE = {
+    "viscosity": 2.0,
+    "consistency": 4.0,
+    "flow_index": 0.45,
+    "yield_stress": 9.0,
+    "plastic_viscosity": 0.3,
+    "casson_viscosity": 0.7,
+    "zero_shear_viscosity": 30.0,
+    "infinite_shear_viscosity": 0.02,
+    "time_constant": 2.0,
+    "yasuda_exponent": 1.3,
+    "rate_index": 0.7,
+    "rate_offset": 3.0,
+    "half_stress": 8.0,
+    "stress_index": 2.5,
+}
+
+
+def truth(key, temperature):
+    lag = (1.0 / temperature - 1.0 / REFERENCE) / R
+    energy = {
+        name: ENERGY if name in VISCOUS else YIELD_ENERGY if name in AT_YIELD else 0.0
+        for name in model_records()[key].parameter_keys
+    }
+    return rheo.model(key, **{name: TRUE[name] * np.exp(one * lag) for name, one in energy.items()})
+
+
+def exact_curve(key):
+    rate = np.tile(np.geomspace(0.02, 2000.0, 14), 3)
+    return rheo.FlowCurve(rate, truth(key, TEMPERATURES).stress(rate), temperature=TEMPERATURES)
+
+
+@pytest.mark.parametrize("key", list(model_records()))
+def test_exact_readings_give_the_parameters_and_energies_back(key):
+    found = rheo.fit_temperatures(exact_curve(key), models=key, reference=REFERENCE).best
+    for name in model_records()[key].parameter_keys:
+        assert found.parameters[name].value == pytest.approx(TRUE[name], rel=1e-6)
+    energies = {"activation_energy": ENERGY, "yield_activation_energy": YIELD_ENERGY}
+    for name, energy in energies.items():
+        if name in found.parameters:
+            assert found.parameters[name].value == pytest.approx(energy, rel=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("kind", "dimensions", "setting"),
+    [
+        ("concentric-cylinders", {"inner_radius": 0.01, "outer_radius": 0.02, "length": 0.05},
+         np.geomspace(0.1, 40.0, 14)),
+        ("spindle", {"rate_factor": 2.0, "stress_factor": 1e4}, np.geomspace(0.1, 40.0, 14)),
+    ],
+)  # fmt: skip
+def test_readings_are_fitted_in_their_geometry(kind, dimensions, setting):
+    geometry = rheo.geometry(kind, **dimensions)
+    speed = np.tile(setting, 3)
+    torque = geometry.predict(truth("herschel-bulkley", TEMPERATURES), speed)
+    readings = rheo.Readings(geometry, angular_speed=speed, torque=torque, temperature=TEMPERATURES)
+    fits = rheo.fit_temperatures(readings, "herschel-bulkley", reference=REFERENCE)
+    values = fits.best.parameters
+    assert values["yield_stress"].value == pytest.approx(TRUE["yield_stress"], rel=1e-5)
+    assert values["consistency"].value == pytest.approx(TRUE["consistency"], rel=1e-5)
+    assert values["activation_energy"].value == pytest.approx(ENERGY, rel=1e-5)
+
+
+def test_the_right_family_is_found_and_evaluated_between_the_temperatures():
+    fits = rheo.fit_temperatures(exact_curve("herschel-bulkley"))
+    assert fits.best.key == "herschel-bulkley"
+    rate = np.geomspace(0.1, 1000.0, 9)
+    for celsius in (20.0, 33.0, 60.0):
+        expected = truth("herschel-bulkley", celsius + CELSIUS).stress(rate)
+        np.testing.assert_allclose(fits.at(celsius + CELSIUS).stress(rate), expected, rtol=1e-6)
+
+
+def test_draws_are_functions_of_temperature_that_cover_the_truth():
+    curve = exact_curve("herschel-bulkley")
+    noise = 1.0 + 0.02 * np.random.default_rng(7).standard_normal(curve.rate.size)
+    fits = rheo.fit_temperatures(
+        rheo.FlowCurve(curve.rate, curve.stress * noise, temperature=TEMPERATURES),
+        "herschel-bulkley",
+    )
+    (draws,) = fits.draws(2000, seed=3)
+    stress = draws(np.asarray(303.15)).stress(50.0)
+    assert stress.shape == (2000,)
+    low, high = np.percentile(stress, [0.5, 99.5])
+    assert low < float(truth("herschel-bulkley", 303.15).stress(50.0)) < high
+    assert high / low < 1.1
+
+
+def test_draws_of_several_models_add_up():
+    curve = exact_curve("carreau")
+    noise = 1.0 + 0.05 * np.random.default_rng(1).standard_normal(curve.rate.size)
+    noisy = rheo.FlowCurve(curve.rate, curve.stress * noise, temperature=TEMPERATURES)
+    fits = rheo.fit_temperatures(noisy, ["carreau", "cross", "ellis"])
+    assert sum(one(np.asarray(300.0)).shape[0] for one in fits.draws(500, seed=1)) == 500
+
+
+def test_a_temperature_outside_the_readings_has_a_caution():
+    fits = rheo.fit_temperatures(exact_curve("power-law"), "power-law")
+    assert fits.cautions_at(30.0 + CELSIUS) == ()
+    (caution,) = fits.cautions_at(75.0 + CELSIUS, "hot end")
+    assert caution.code == "outside-measured-temperature"
+    assert "75.0 °C" in caution.sentence
+    assert "between 20.0 °C and 60.0 °C" in caution.sentence
+    assert caution.place == "hot end"
+
+
+def test_misfit_is_told_by_temperature():
+    curve = exact_curve("power-law")
+    stress = np.where(TEMPERATURES > 330.0, curve.stress * 1.2, curve.stress)
+    jitter = np.tile([-0.1, 0.1], TEMPERATURES.size // 2)
+    fits = rheo.fit_temperatures(
+        rheo.FlowCurve(curve.rate, stress, temperature=TEMPERATURES + jitter), "power-law"
+    )
+    assert [round(one - CELSIUS) for one in fits.misfit_by_state()] == [20, 40, 60]
+    assert max(fits.misfit_by_state().values()) > 0.02
+
+
+def test_water_follows_arrhenius_over_a_short_range():
+    """Viscosity of water, mPa.s: IAPWS 2008 values as in the CRC Handbook (from memory).
+
+    Arrhenius's law is an approximation for water: the energy falls as it warms. Between 20 and
+    40 °C the handbook values give 16.2 kJ/mol.
+    """
+    celsius = np.array([20.0, 25.0, 30.0, 40.0])
+    viscosity = np.array([1.0016e-3, 0.8900e-3, 0.7972e-3, 0.6527e-3])
+    rate = np.tile(np.array([10.0, 100.0, 1000.0]), 4)
+    curve = rheo.FlowCurve(
+        rate, np.repeat(viscosity, 3) * rate, temperature=np.repeat(celsius, 3) + CELSIUS
+    )
+    fits = rheo.fit_temperatures(curve, "newtonian")
+    ends = R * np.log(viscosity[0] / viscosity[-1]) / (1 / 293.15 - 1 / 313.15)
+    assert fits.best.parameters["activation_energy"].value == pytest.approx(ends, rel=0.01)
+    assert fits.at(298.15).parameters["viscosity"] == pytest.approx(0.8900e-3, rel=0.005)
+
+
+@pytest.mark.parametrize("form", ["exponential", "power"])
+def test_solids_fractions_give_their_slopes_back(form):
+    fraction = np.repeat([0.25, 0.30, 0.35], 12)
+    x = fraction - 0.30 if form == "exponential" else np.log(fraction / 0.30)
+    slope, yield_slope = (18.0, 26.0) if form == "exponential" else (4.0, 3.0)
+    rate = np.tile(np.geomspace(1.0, 600.0, 12), 3)
+    stress = 12.0 * np.exp(yield_slope * x) + 0.05 * np.exp(slope * x) * rate
+    fits = rheo.fit_concentrations(rheo.FlowCurve(rate, stress), fraction, "bingham", form=form)
+    values = fits.best.parameters
+    assert values["yield_stress"].value == pytest.approx(12.0, rel=1e-6)
+    assert values["solids_slope"].value == pytest.approx(slope, rel=1e-6)
+    assert values["yield_solids_slope"].value == pytest.approx(yield_slope, rel=1e-6)
+    thick = fits.at(0.35)
+    assert thick.yield_stress == pytest.approx(stress[-12:].min() - 0.05 * np.exp(slope * x[-1]))
+    assert fits.cautions_at(0.40)[0].code == "outside-measured-fraction"
+
+
+def test_what_is_missing_is_named():
+    curve = exact_curve("power-law")
+    bare = rheo.FlowCurve(curve.rate, curve.stress)
+    with pytest.raises(InputError, match="no temperatures; give one for each"):
+        rheo.fit_temperatures(bare)
+    level = rheo.FlowCurve(curve.rate, curve.stress, temperature=np.full(curve.rate.size, 300.0))
+    with pytest.raises(InputError, match="all readings have the same temperature"):
+        rheo.fit_temperatures(level)
+    with pytest.raises(InputError, match=r"80\.0 °C; it must lie between 20\.0 and 60\.0 °C"):
+        rheo.fit_temperatures(curve, reference=353.15)
+    with pytest.raises(InputError, match="35; it must lie between 0 and 1"):
+        rheo.fit_concentrations(bare, np.full(curve.rate.size, 35.0))
+    with pytest.raises(InputError, match="unknown form 'cubic'; there are exponential, power"):
+        rheo.fit_concentrations(bare, np.linspace(0.1, 0.2, curve.rate.size), form="cubic")
+    with pytest.raises(InputError, match="give one for each reading"):
+        rheo.fit_concentrations(bare, [0.1, 0.2])
