@@ -15,7 +15,7 @@ from ui import cautions, pictures, style, table
 def show(block: Block, key: str) -> None:
     """Draw a block; `key` is the widget key of a figure."""
     if isinstance(block, Paragraph):
-        st.html(f'<p class="rheo-text {block.kind}">{style.escape(block.text)}</p>')
+        st.html(f'<p class="rheo-text {block.kind}">{style.scripted(block.text)}</p>')
     elif isinstance(block, Facts):
         st.html(facts_html(block))
     elif isinstance(block, Table):
@@ -42,6 +42,7 @@ def table_html(block: Table) -> str:
 def facts_html(block: Facts) -> str:
     """Return names with values as HTML of the page."""
     pairs = "".join(
-        f"<dt>{style.escape(name)}</dt><dd>{style.escape(value)}</dd>" for name, value in block.rows
+        f"<dt>{style.scripted(name)}</dt><dd>{style.scripted(value)}</dd>"
+        for name, value in block.rows
     )
     return f'<dl class="rheo-facts">{pairs}</dl>'

@@ -17,9 +17,9 @@ _BARE = re.compile(r"\s*[\d.]+\s*")
 
 
 def label(dimension: Dimension) -> str:
-    """Return the name of its field, such as ``Radius of the bob, R_i``."""
-    words = dimension.description
-    return f"{words[:1].upper()}{words[1:]}, {dimension.symbol}"
+    """Return the name of its field in Markdown, such as ``Radius of the bob, $R_i$``."""
+    words, symbol = dimension.description, dimension.symbol
+    return f"{words[:1].upper()}{words[1:]}, {f'${symbol}$' if symbol.isascii() else symbol}"
 
 
 def quantity(record: GeometryRecord, dimension: Dimension) -> str:

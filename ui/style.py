@@ -12,6 +12,7 @@ from pathlib import Path
 import streamlit as st
 
 from rheo.report.palette import Palette, palette
+from rheo.report.scripts import pieces
 from rheo.report.text import one_line
 from ui import state
 
@@ -24,6 +25,17 @@ def colours() -> Palette:
 def escape(value: object, longest: int | None = None) -> str:
     """Return text that stands for itself in HTML, on one line."""
     return _escape(one_line(value, longest))
+
+
+def scripted(value: object, longest: int | None = None) -> str:
+    """Return text for HTML in which symbols such as ``τ_y`` have their subscripts set lower."""
+    return "".join(
+        f"<{place}>{_escape(piece)}</{place}>" if place in ("sub", "sup") else _escape(piece)
+        for piece, place in (
+            (piece, "sup" if place == "super" else place)
+            for piece, place in pieces(one_line(value, longest))
+        )
+    )
 
 
 def plain(value: object, longest: int | None = None) -> str:

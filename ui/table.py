@@ -48,19 +48,19 @@ def html(
     classes = [' class="n"' if isinstance(one, Number) else "" for one in headings]
     names = [one.heading if isinstance(one, Number) else one for one in headings]
     head = "".join(
-        f'<th scope="col"{cls}>{style.escape(name)}</th>'
+        f'<th scope="col"{cls}>{style.scripted(name)}</th>'
         for cls, name in zip(classes, names, strict=True)
     )
     body = []
     for row in rows:
         kept = row if isinstance(row, Row) else Row(row)
         cells = "".join(
-            f"<td{cls}>{style.escape(cell)}</td>"
+            f"<td{cls}>{style.scripted(cell)}</td>"
             for cls, cell in zip(classes, kept.cells, strict=True)
         )
         hover = f' title="{style.escape(kept.hover)}"' if kept.hover else ""
         body.append(f'<tr class="{kept.mark}"{hover}>{cells}</tr>')
-    below = f"<caption>{style.escape(caption)}</caption>" if caption else ""
+    below = f"<caption>{style.scripted(caption)}</caption>" if caption else ""
     return (
         f'<div class="rheo-scroll"><table class="rheo">{below}<thead><tr>{head}</tr></thead>'
         f"<tbody>{''.join(body)}</tbody></table></div>"

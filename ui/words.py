@@ -9,7 +9,7 @@ from rheo.line.catalogue import PipeSize
 from rheo.line.parts import Pipe
 from rheo.readings import Readings, screen
 from rheo.report import display
-from rheo.report.numbers import exact
+from rheo.report.numbers import exact, number
 
 
 def with_interval(value: Any, interval: Any, quantity: str, system: str) -> str:
@@ -103,3 +103,29 @@ def walk_states(
 
 def _capital(text: str) -> str:
     return text[:1].upper() + text[1:]
+
+
+def fluid_words(result: CaseResult, system: str) -> str:
+    """Return what kind of fluid it is, as the pipes see it."""
+    model = result.model
+    yield_stress = float(model.yield_stress)
+    at_rest = (
+        f"yields at {display.text(yield_stress, 'stress', system)}" if yield_stress > 0 else ""
+    )
+    indices = [float(pipe.local_flow_index) for pipe in result.pipes]
+    if not indices:
+        return f"{_capital(at_rest)}." if at_rest else "It flows at any stress."
+    index = min(indices, key=lambda one: -abs(one - 1.0))
+    kind = "thins" if index < 0.97 else "thickens" if index > 1.03 else "keeps its viscosity"
+    shear = f"{kind} with shear (local flow index n′ {number(index, 2)} in the pipes)"
+    viscosities = [
+        float(pipe.wall_stress / pipe.wall_rate) for pipe in result.pipes if pipe.wall_rate > 0
+    ]
+    seen = ""
+    if viscosities:
+        low, high = (
+            display.text(value, "viscosity", system, digits=2)
+            for value in (min(viscosities), max(viscosities))
+        )
+        seen = f"; its viscosity at the wall is {low if low == high else f'{low} to {high}'}"
+    return f"The product {f'{at_rest} and ' if at_rest else ''}{shear}{seen}."

@@ -39,7 +39,7 @@ def show() -> None:
     )
     if kind:
         record = geometry_record(kind)
-        columns = st.columns(min(len(record.dimensions), 4))
+        columns = st.columns(min(len(record.dimensions), 4), vertical_alignment="bottom")
         for place, one in enumerate(record.dimensions):
             with columns[place % len(columns)]:
                 _show_dimension(number, record, one)
@@ -132,7 +132,7 @@ def _value(number: int, key: str) -> Any:
 
 def _show_instrument(number: int, record: GeometryRecord) -> None:
     readings = sets.readings()
-    columns = st.columns(3)
+    columns = st.columns(3, vertical_alignment="bottom")
     with columns[0]:
         if record.reading == "torque":
             stated = None if readings is None else readings.full_scale_torque

@@ -5,6 +5,7 @@ What is entered is kept in the session under a key of this module; it is no part
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 import numpy as np
@@ -62,12 +63,14 @@ def show(side: str, result: CaseResult, default: str) -> Geometry:
     )
     record = geometry_record(kind)
     known = known_dimensions(result, kind)
-    columns = st.columns(2)
     values: dict[str, float] = {}
     missing = []
     # End corrections that are zero in a plain geometry would only crowd the converter.
     asked = [one for one in record.dimensions if one.default != 0]
+    columns: Sequence[Any] = ()
     for place, one in enumerate(asked):
+        if place % 2 == 0:
+            columns = st.columns(2, vertical_alignment="bottom")
         with columns[place % 2]:
             typed = _field(side, record, one, known.get(one.key))
         if typed:

@@ -7,10 +7,10 @@ import streamlit as st
 from rheo.case import CaseResult
 from rheo.fitting import Fit
 from rheo.report.case_pictures import flow_curve_picture, residuals_picture
-from rheo.report.sections.fitted import parameter_table, ranking_table
+from rheo.report.sections.fitted import parameter_table
 from rheo.report.words import capital
-from ui import answer_strip, blocks, cautions, pictures, state, style, walk
-from ui.flow_curve import compare, measure
+from ui import answer_strip, blocks, cautions, pictures, state, style, walk, words
+from ui.flow_curve import compare, measure, ranking
 
 
 def show() -> None:
@@ -26,7 +26,8 @@ def show() -> None:
 
 
 def _show_result(result: CaseResult) -> None:
-    st.html(f'<p class="rheo-text lead">{style.escape(_reason(result))}</p>')
+    said = f"{words.fluid_words(result, state.system())} {_reason(result)}"
+    st.html(f'<p class="rheo-text lead">{style.scripted(said)}</p>')
     left, right = st.columns([3, 2], gap="medium")
     with right:
         looked_at, other = compare.choose(result)
@@ -39,7 +40,7 @@ def _show_result(result: CaseResult) -> None:
         cautions.show(cautions.of(result.cautions, codes=("temperature-of-readings",)))
     with left:
         _show_picture(result if looked_at.key == result.chosen.key else other, looked_at)
-    blocks.show(ranking_table(result.fits, result.chosen), "ranking")
+    ranking.show(result.fits, result.chosen)
     with st.expander("Parameters, with their intervals", expanded=True):
         blocks.show(parameter_table(looked_at), "parameters")
         st.caption(
@@ -97,7 +98,7 @@ def _show_fit_alone() -> None:
     if fitted is None:
         return
     st.html(f'<p class="rheo-text lead">{style.escape(fitted.fits.reason)}</p>')
-    blocks.show(ranking_table(fitted.fits, fitted.chosen), "ranking")
+    ranking.show(fitted.fits, fitted.chosen)
     blocks.show(parameter_table(fitted.chosen), "parameters")
     cautions.show(fitted.chosen.cautions)
 

@@ -1,0 +1,72 @@
+"""The ranked models in words and numbers."""
+
+from __future__ import annotations
+
+from rheo.fitting import Fit, Fits
+from rheo.fitting.ranking import TIE
+from rheo.report.numbers import number
+from rheo.report.words import capital, percent
+from ui import table, words
+
+# A model with less than this chance of being the best of them is called one that misses the shape.
+_LEAST_WEIGHT = 0.01
+
+
+def show(fits: Fits, chosen: Fit) -> None:
+    """Draw the ranking, the model in use marked."""
+    rows = [
+        table.Row(
+            [
+                capital(fit.record.name),
+                verdict(fit, fits, chosen),
+                str(fit.parameter_count),
+                percent(fit.rms_relative_error),
+                percent(fit.worst_relative_error),
+                number(fit.aicc - fits.best.aicc, 3) if fit is not fits.best else "0",
+                percent(fit.weight),
+            ],
+            "chosen" if fit.key == chosen.key else "",
+            fit.record.equation,
+        )
+        for fit in fits
+    ]
+    rows += [
+        table.Row([capital(key), f"not fitted: {reason}", *[""] * 5], "muted")
+        for key, reason in fits.skipped.items()
+    ]
+    table.show(
+        [
+            "Model",
+            "In words",
+            table.Number("Parameters"),
+            table.Number("RMS error"),
+            table.Number("Worst error"),
+            table.Number("AICc above first"),
+            table.Number("Weight"),
+        ],
+        rows,
+        "All fitted to the same readings with the same weights. AICc weighs the misfit against the "
+        "number of parameters; the weight (Akaike) is the chance that a model is the best of them.",
+    )
+
+
+def verdict(fit: Fit, fits: Fits, chosen: Fit) -> str:
+    """Return in a few words how a model compares with the first of the ranking."""
+    best = fits.best
+    above = fit.aicc - best.aicc
+    more = fit.parameter_count - best.parameter_count
+    if fit.key == best.key:
+        said = "first of the ranking" if chosen.key != fit.key else "in use: first of the ranking"
+    elif above <= 0:
+        said = f"fits as well, with {words.count(more, 'parameter')} more"
+    elif above <= _AS_LIKELY:
+        said = (
+            "as likely" if more <= 0 else f"as likely, with {words.count(more, 'parameter')} more"
+        )
+    elif fit.rms_relative_error <= 1.05 * best.rms_relative_error and more > 0:
+        said = f"no better fit for {words.count(more, 'parameter')} more"
+    elif fit.weight >= _LEAST_WEIGHT:
+        said = "less likely"
+    else:
+        said = "misses the shape"
+    return f"in use by your choice: {said}" if fit.key == chosen.key != best.key else said
