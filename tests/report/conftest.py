@@ -200,6 +200,11 @@ def _rows() -> str:
 
 def small_case(**texts: str) -> CaseResult:
     """Return the result of a small case with these texts in its fields."""
+    return run_case(case_from_text(small_case_text(**texts)))
+
+
+def small_case_text(**texts: str) -> str:
+    """Return the file of a small case with these texts in its fields."""
     words = {
         "title": "Brown sauce to the filler",
         "notes": "Holm Fen works, an invented plant.",
@@ -220,13 +225,21 @@ def small_case(**texts: str) -> CaseResult:
         )
         for key, text in quoted.items()
     }
-    return run_case(case_from_text(CASE.format(readings=_rows(), **quoted)))
+    return CASE.format(readings=_rows(), **quoted)
 
 
 @pytest.fixture(scope="session")
 def small_result() -> CaseResult:
     """A whole result that is quick to work out."""
     return small_case()
+
+
+@pytest.fixture(scope="session")
+def small_case_file(tmp_path_factory: pytest.TempPathFactory) -> Path:
+    """The case of `small_result` as a file."""
+    path = tmp_path_factory.mktemp("case") / "sauce.toml"
+    path.write_text(small_case_text(), "utf-8")
+    return path
 
 
 @pytest.fixture(scope="session")

@@ -14,6 +14,7 @@ from pathlib import Path
 import pytest
 
 from rheo.case import CaseResult
+from rheo.cli import main
 from rheo.errors import InputError
 from rheo.line.safety import FOOD_SAFETY, GENERAL, PRESSURE, START_UP
 from rheo.report import note_html, note_pdf, workbook, write_note
@@ -290,3 +291,25 @@ def test_a_folder_that_is_a_file_is_refused(small_result: CaseResult, tmp_path: 
 )
 def test_scripts_of_symbols(text: str, expected: list[tuple[str, str]]) -> None:
     assert pieces(text) == expected
+
+
+def test_the_command_writes_the_same_files(
+    small_case_file: Path,
+    small_result: CaseResult,
+    tmp_path: Path,
+    monkeypatch: pytest.MonkeyPatch,
+    capsys: pytest.CaptureFixture[str],
+) -> None:
+    folder = tmp_path / "out"
+    command = ["rheo", "run", str(small_case_file), "--json", "--out", str(folder)]
+    monkeypatch.setattr("sys.argv", command)
+    with pytest.raises(SystemExit) as ended:
+        main()
+    assert not ended.value.code
+    json.loads(capsys.readouterr().out)
+    today = datetime.date.today().isoformat()
+    written = (folder / "design-note.html").read_text("utf-8")
+    assert design_note(small_result, DATE).content_hash in written
+    assert today in written
+    assert (folder / "design-note.pdf").read_bytes().startswith(b"%PDF-")
+    assert (folder / "workbook.xlsx").read_bytes().startswith(b"PK")

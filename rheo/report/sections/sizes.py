@@ -92,7 +92,7 @@ def _table(sizing: Sizing, currency: str, system: str) -> Table:
         numeric=tuple(range(1, len(head))),
         caption=f"Every size of {shared} against the limits" if shared else "Every size",
         states=tuple(_state(one, sizing) for one in sizing.candidates),
-        widths=(1.3, *[0.0] * (len(head) - 1), 2.2),
+        widths=(1.2, *[0.8] * (len(head) - 1), 2.6),
     )
 
 
