@@ -59,10 +59,9 @@ def verdict(fit: Fit, fits: Fits, chosen: Fit) -> str:
         said = "first of the ranking" if chosen.key != fit.key else "in use: first of the ranking"
     elif above <= 0:
         said = f"fits as well, with {words.count(more, 'parameter')} more"
-    elif above <= _AS_LIKELY:
-        said = (
-            "as likely" if more <= 0 else f"as likely, with {words.count(more, 'parameter')} more"
-        )
+    elif above <= TIE:
+        extra = f", with {words.count(more, 'parameter')} more" if more > 0 else ""
+        said = f"as likely{extra}"
     elif fit.rms_relative_error <= 1.05 * best.rms_relative_error and more > 0:
         said = f"no better fit for {words.count(more, 'parameter')} more"
     elif fit.weight >= _LEAST_WEIGHT:
