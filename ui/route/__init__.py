@@ -1,0 +1,1 @@
+"""Parts of the route stop: duty, vessels, tables of parts, one part in detail, pump."""
