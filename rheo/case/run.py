@@ -13,8 +13,8 @@ from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
 from rheo.errors import CaseError, Caution, merge_cautions
 from rheo.fitting import Fit, Fits, fit
+from rheo.fitting.any_state import ONE_TEMPERATURE, at_several_temperatures, fit_readings
 from rheo.fitting.scaled_fits import ScaledFits
-from rheo.fitting.temperature import fit_temperatures
 from rheo.line import (
     CentrifugalPump,
     DisplacementPump,
@@ -28,8 +28,6 @@ from rheo.line.constants import GRAVITY
 from rheo.line.thickness import thicker
 from rheo.readings import Readings, screen
 
-# Readings this much apart in temperature [K] are no longer taken at one temperature.
-ONE_TEMPERATURE = 2.0
 ROOM_TEMPERATURE = 293.15
 
 
@@ -158,16 +156,14 @@ def _fits(case: Case, readings: Readings) -> Fits:
         float(wanted.percent_of_full_scale or 0.0),
         readings,
     )
-    taken = readings.temperature
-    if taken is not None and np.ptp(taken) > ONE_TEMPERATURE:
+    if at_several_temperatures(readings):
         if wanted.entrance or wanted.slip:
             raise CaseError(
                 "entrance loss and slip are fitted at one temperature only; exclude the readings "
                 "at the others, or leave entrance and slip out",
                 "fit",
             )
-        reference = float(np.clip(_temperature(case, readings), taken.min(), taken.max()))
-        return fit_temperatures(readings, wanted.models, weighting, reference)
+        return fit_readings(readings, wanted.models, weighting, _temperature(case, readings))
     return fit(
         readings,
         models=wanted.models,
