@@ -24,6 +24,7 @@ from rheo.report.picture import (
     axis_range,
 )
 from rheo.report.text import one_line
+from rheo.report.ticks import log_ticks
 
 if TYPE_CHECKING:
     import plotly.graph_objects
@@ -141,8 +142,13 @@ def _axis(axis: Axis, ends: tuple[float, float], colours: Palette) -> dict[str, 
         low, high = math.log10(low), math.log10(high)
         minor = {"showgrid": high - low < 4, "dtick": "D1", "gridcolor": _rgba(colours.rule, 0.45)}
         drawn |= {"type": "log", "dtick": 1, "minexponent": 3, "minor": minor}
-        if high - low < 1.2:
-            drawn |= {"dtick": "D2"}
+        if high - low < 1.5:
+            # Plotly would name 20 and 50 as bare 2 and 5.
+            named, _ = log_ticks(*ends)
+            drawn |= {
+                "tickvals": [at for at, _ in named],
+                "ticktext": [words for _, words in named],
+            }
     if axis.ticks:
         names = [label(name, 28) for _, name in axis.ticks]
         drawn |= {"tickvals": [at for at, _ in axis.ticks], "ticktext": names, "showgrid": False}
