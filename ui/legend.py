@@ -27,11 +27,19 @@ def html(figure: Any) -> str:
         From ``picture.plotly()``.
     """
     entries = []
+    bands = 0
     for trace in figure.data:
-        if trace.showlegend and trace.name:
-            name = style.escape(str(trace.name).replace("<br>", " "))
-            swatch = _swatch(trace.to_plotly_json())
-            entries.append(f"<span>{swatch}{_unescaped(name)}</span>")
+        if not (trace.showlegend and trace.name):
+            continue
+        name = style.escape(str(trace.name).replace("<br>", " "))
+        if trace.fill:
+            # One entry for all bands: each has the colour of its line.
+            bands += 1
+            if bands > 1:
+                continue
+            name = name.rpartition(", ")[2]
+        swatch = _swatch(trace.to_plotly_json())
+        entries.append(f"<span>{swatch}{_unescaped(name)}</span>")
     return f'<div class="rheo-legend">{"".join(entries)}</div>' if len(entries) > 1 else ""
 
 

@@ -23,7 +23,7 @@ def show(fits: Fits, chosen: Fit) -> None:
                 percent(fit.rms_relative_error),
                 percent(fit.worst_relative_error),
                 number(fit.aicc - fits.best.aicc, 3) if fit is not fits.best else "0",
-                percent(fit.weight),
+                percent(fit.weight) if fit.weight >= 1e-4 else "< 0.01 %",
             ],
             "chosen" if fit.key == chosen.key else "",
             fit.record.equation,
