@@ -11,7 +11,7 @@ from rheo.geometry.convert import Conversion, ShearPoint, convert, sentence, she
 from rheo.report import display
 from rheo.report.numbers import number
 from rheo.units import parse_quantity
-from ui import cautions, state, style, table, units_switch
+from ui import cautions, guard, state, style, table, units_switch
 from ui.shear_rates import side
 from ui.shear_rates.line_rates import instrument
 
@@ -21,6 +21,10 @@ WAYS = ("From a flow or speed", "From a shear rate")
 @st.fragment
 def show(result: CaseResult) -> None:
     """Draw both sides and what comes out."""
+    guard.run(lambda: _draw(result))
+
+
+def _draw(result: CaseResult) -> None:
     kept = side.entered("way")
     way = st.segmented_control(
         "Convert",
