@@ -10,9 +10,10 @@ from rheo.fitting import Fit
 from rheo.line.product import FlowCurveSource, Product, interval
 from rheo.line.result import PartResult
 from rheo.line.sizing import Sizing
+from rheo.models import Model
 from rheo.report import line_pictures as line
-from rheo.report.case_readings import case_points
-from rheo.report.display import shown, unit_label
+from rheo.report.case_readings import case_points, model_at, temperature_law
+from rheo.report.display import shown, text, unit_label
 from rheo.report.figures import Curve, flow_curve, residuals
 from rheo.report.figures.flow_curve import temperature_groups
 from rheo.report.numbers import number
@@ -57,8 +58,11 @@ def flow_curve_picture(
     seen = result.wall_rates
     reach = [points.rate.min(), points.rate.max(), *(seen or ())]
     grid = np.geomspace(0.8 * min(reach), 1.25 * max(reach), _GRID)
+    warm = result.product.temperature
+    law = temperature_law(result)
+    at = "" if law is None else f", {text(warm, 'temperature', system)}"
     rivals = [
-        Curve(capital(one.record.name), grid, np.asarray(one.model.stress(grid)))
+        Curve(f"{capital(one.record.name)}{at}", grid, _stress(model_at(result, one, warm), grid))
         for one in result.fits
         if one.key != looked_at.key and one.weight > _LEAST_WEIGHT
     ]
@@ -82,10 +86,8 @@ def _chosen_curves(
     result: CaseResult, fit: Fit, temperature: FloatArray | None, grid: FloatArray, system: str
 ) -> list[Curve]:
     name = capital(fit.record.name)
-    if fit.key != result.chosen.key:
-        return [Curve(name, grid, np.asarray(fit.model.stress(grid)))]
     product = result.product
-    if temperature is None or not product.knows_temperature:
+    if temperature is None or temperature_law(result) is None:
         kelvins, names = [product.temperature], [name]
     else:
         groups, words = temperature_groups(temperature, temperature.size, system)
@@ -93,10 +95,16 @@ def _chosen_curves(
         names = [f"{name}, {word}" for word in words]
     found = []
     for style, (kelvin, words_) in enumerate(zip(kelvins, names, strict=True)):
-        low, high = _band(product, kelvin, grid)
-        stress = np.asarray(product.model_at(kelvin).stress(grid), dtype=float)
+        low = high = None
+        if fit.key == result.chosen.key:
+            low, high = _band(product, kelvin, grid)
+        stress = _stress(model_at(result, fit, kelvin), grid)
         found.append(Curve(words_, grid, stress, low, high, style))
     return found
+
+
+def _stress(model: Model, grid: FloatArray) -> FloatArray:
+    return np.asarray(model.stress(grid), dtype=float)
 
 
 def _band(

@@ -11,6 +11,9 @@ from numpy.typing import NDArray
 from rheo.case.result import CaseResult
 from rheo.errors import Caution
 from rheo.fitting import Fit
+from rheo.fitting.scaled_fits import ScaledFits
+from rheo.models import Model
+from rheo.models.state_curve import ScalingLaw
 from rheo.readings import FlowCurve, Readings, screen
 from rheo.report.picture import FloatArray
 
@@ -77,11 +80,8 @@ class CasePoints:
 
     def _model_stress(self, flowing: NDArray[np.bool_]) -> FloatArray:
         """Stress of the fitted model at the fitted readings, each at its own temperature [Pa]."""
-        product, warm = self.result.product, self.temperature
-        chosen = self.fit.key == self.result.chosen.key
-        model = self.fit.model
-        if chosen and product.knows_temperature and warm is not None:
-            model = product.model_at(warm[self.fitted[flowing]])
+        warm = None if self.temperature is None else self.temperature[self.fitted[flowing]]
+        model = model_at(self.result, self.fit, warm)
         return np.asarray(model.stress(self.fit.rates[flowing]), dtype=float)
 
     @cached_property
@@ -119,6 +119,19 @@ class CasePoints:
                 mask[inside] = True
             start += len(one)
         return mask
+
+
+def temperature_law(result: CaseResult) -> ScalingLaw | None:
+    """Return how the fitted flow curves follow the temperature; None where they do not."""
+    law = getattr(result.fits, "law", None)
+    return law if isinstance(law, ScalingLaw) and law.state == "temperature" else None
+
+
+def model_at(result: CaseResult, fit: Fit, kelvin: FloatArray | float | None) -> Model:
+    """Return the flow curve of a fit at temperatures [K], as far as it knows of temperature."""
+    if kelvin is None or temperature_law(result) is None or not isinstance(result.fits, ScaledFits):
+        return fit.model
+    return result.fits.at(kelvin, fit.key)
 
 
 def case_points(result: CaseResult, fit: Fit | None = None) -> CasePoints:

@@ -9,10 +9,13 @@ import re
 
 Piece = tuple[str, str]
 
-_SUBSCRIPT = r"(?<=[α-ωΑ-Ω\u0307])_(?P<sub>[0-9A-Za-z∞½]+(?:,static)?)"
+_SUBSCRIPT = (
+    r"(?:(?<=[α-ωΑ-Ω\u0307])_(?P<sub>[0-9A-Za-z∞½]+(?:,static)?)"
+    r"|(?<=\bT)_(?P<reference>ref)\b|(?<=\bE)_(?P<energy>[yη])\b)"
+)
 _SUPERSCRIPT = r"(?<=[\u0307sα-ω)\]])\^(?P<super>\((?:[^()]|\([^()]*\))*\)|[0-9A-Za-z]+)"
 _SCRIPTS = re.compile(f"{_SUBSCRIPT}|{_SUPERSCRIPT}")
-_HAS_SYMBOLS = re.compile(r"[α-ωΑ-Ω]|^Pa\.s\^")
+_HAS_SYMBOLS = re.compile(r"[α-ωΑ-Ω]|^Pa\.s\^|^E_y$|T_ref")
 
 
 def pieces(text: str) -> list[Piece]:
@@ -36,8 +39,9 @@ def pieces(text: str) -> list[Piece]:
     for match in _SCRIPTS.finditer(text):
         if match.start() > at:
             found.append((text[at : match.start()], ""))
-        if match["sub"] is not None:
-            found.append((match["sub"], "sub"))
+        lowered = match["sub"] or match["reference"] or match["energy"]
+        if lowered:
+            found.append((lowered, "sub"))
         else:
             exponent = match["super"]
             found.append((exponent[1:-1] if exponent.startswith("(") else exponent, "super"))

@@ -286,6 +286,9 @@ def test_a_folder_that_is_a_file_is_refused(small_result: CaseResult, tmp_path: 
             [("[1 + (λγ̇)²]", ""), ("(n-1)/2", "super")],
         ),
         ("Pa.s^n", [("Pa.s", ""), ("n", "super")]),
+        ("E_η", [("E", ""), ("η", "sub")]),
+        ("E_y", [("E", ""), ("y", "sub")]),
+        ("K(T_ref) exp", [("K(T", ""), ("ref", "sub"), (") exp", "")]),
         ("file_name and x^2", [("file_name and x^2", "")]),
     ],
 )

@@ -97,7 +97,7 @@ def flow_curve(
     for curve in chosen:
         if curve.low is not None and curve.high is not None:
             low, high = height(curve.rate, curve.low), height(curve.rate, curve.high)
-            marks.append(Band(curve.rate, low, high, f"{curve.name}, interval", curve.style))
+            marks.append(Band(curve.rate, low, high, "95 % interval", curve.style))
     for number, curve in enumerate(rivals):
         line = height(curve.rate, curve.stress)
         marks.append(

@@ -5,8 +5,9 @@ from __future__ import annotations
 import numpy as np
 
 from rheo.fitting import Fit, Fits
+from rheo.models.state_curve import ScalingLaw
 from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Table
-from rheo.report.numbers import number, with_doubt
+from rheo.report.numbers import exact, number, with_doubt
 from rheo.report.picture import Picture
 from rheo.report.scripts import unit_words
 from rheo.report.words import capital, percent
@@ -43,8 +44,11 @@ def ranking_table(fits: Fits, chosen: Fit) -> Table:
     )
 
 
-def parameter_table(fit: Fit) -> Table:
-    """Return the parameters of a fit with their intervals."""
+def parameter_table(fit: Fit, law: ScalingLaw | None = None) -> Table:
+    """Return the parameters of a fit with their intervals, at the reference of a law."""
+    at = ""
+    if law is not None:
+        at = f"; values at {exact(round(law.reference, 2))} {law.unit}, {law.equation}"
     words = {one.key: one.description for one in fit.record.parameters}
     rows = tuple(
         (
@@ -62,7 +66,7 @@ def parameter_table(fit: Fit) -> Table:
         ("Parameter", "Symbol", "Unit", "Value ± standard error", "95 % from", "to", "Remark"),
         rows,
         numeric=(3, 4, 5),
-        caption=f"{capital(fit.record.name)}: {fit.record.equation}",
+        caption=f"{capital(fit.record.name)}: {fit.record.equation}{at}",
     )
 
 
@@ -89,6 +93,7 @@ def fit_blocks(fits: Fits, chosen: Fit, picture: Picture) -> list[Block]:
             f"{capital(chosen.record.name)} was chosen by the user. "
             f"By the ranking it would be another: {fits.reason}"
         )
+    law = getattr(fits, "law", None)
     facts = (
         ("Readings fitted", str(int(np.size(chosen.observed)))),
         ("Weighting", fits.weighting.name),
@@ -98,7 +103,7 @@ def fit_blocks(fits: Fits, chosen: Fit, picture: Picture) -> list[Block]:
     blocks: list[Block] = [
         Paragraph(reason, "lead"),
         ranking_table(fits, chosen),
-        parameter_table(chosen),
+        parameter_table(chosen, law if isinstance(law, ScalingLaw) else None),
         Facts(facts),
         Figure(picture),
     ]

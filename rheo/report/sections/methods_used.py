@@ -3,10 +3,13 @@
 from __future__ import annotations
 
 from rheo.case.result import CaseResult
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.hydraulics.fittings import DEFAULT_TABLE, fitting_tables
 from rheo.line import STANDARDS, CentrifugalPump
 from rheo.line.parts import Fitting, Reducer
 from rheo.line.sizing import Sizing
+from rheo.models.state_curve import ScalingLaw
+from rheo.report.numbers import exact
 from rheo.report.sections.methods import Row
 
 
@@ -25,7 +28,14 @@ def rows_of_case(result: CaseResult, sizing: Sizing | None) -> tuple[Row, ...]:
     tuple of (str, str, str, str)
         Rows for `methods_section`.
     """
-    rows: list[Row] = [*_fittings(result)]
+    rows: list[Row] = []
+    law = getattr(result.fits, "law", None)
+    if isinstance(law, ScalingLaw) and isinstance(result.fits, ScaledFits):
+        low, high = (exact(round(end, 2)) for end in result.fits.range)
+        words = f"{law.equation}; indices are shared"
+        span = f"Between the {low} and {high} {law.unit} of the readings"
+        rows.append((f"Flow curve over {law.state}", words, law.source, span))
+    rows += _fittings(result)
     if result.next_readings is not None:
         rows.append(
             (

@@ -7,7 +7,7 @@ import datetime
 from rheo.case.result import CaseResult
 from rheo.line.cost import Costs
 from rheo.report.case_pictures import sizing_of
-from rheo.report.case_readings import CasePoints, case_points
+from rheo.report.case_readings import CasePoints, case_points, temperature_law
 from rheo.report.display import shown
 from rheo.report.figures.flow_curve import temperature_groups
 from rheo.report.sections.inputs import versions
@@ -81,7 +81,7 @@ def _fitted_curves(result: CaseResult, points: CasePoints) -> list[FittedCurve]:
     name = capital(result.chosen.record.name)
     numbers, product = points.fitted, result.product
     rate, stress = points.rate[numbers], points.stress[numbers]
-    if points.temperature is None or not product.knows_temperature:
+    if points.temperature is None or temperature_law(result) is None:
         return [FittedCurve(name, result.model, numbers, rate, stress)]
     kelvin = points.temperature[numbers]
     groups, _ = temperature_groups(kelvin, kelvin.size, "metric")
