@@ -21,6 +21,7 @@ from rheo.errors import Caution, InputError
 from rheo.line.checks import require_positive
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import Product
+from rheo.models import Model
 
 if TYPE_CHECKING:
     from rheo.fitting import Fit, Fits
@@ -102,6 +103,7 @@ def measure_next(
     geometry: Geometry | None = None,
     settings: ArrayLike | None = None,
     count: int = 2,
+    state: float | None = None,
     method: str | None = None,
 ) -> NextReadings:
     """Rank the speeds at which further readings would narrow the pressure drop most.
@@ -123,7 +125,9 @@ def measure_next(
         Speeds that the instrument has, in the unit of its setting; 41 speeds over the range used
         so far when absent.
     count : int
-        Readings to be taken at one speed.
+        Readings to be taken at one speed, at the product's temperature.
+    state : float, optional
+        For fits over solids fractions the product's fraction; the reference when absent.
     method : str, optional
         Turbulent friction method.
 
@@ -140,11 +144,12 @@ def measure_next(
     """
     if isinstance(count, bool) or int(count) != count or count < 1:
         raise InputError(f"count is {count!r}; it must be a whole number above 0", "measure_next")
-    from rheo.line.rivals import rival
+    from rheo.line.rivals import model_at, rival
 
     likely = [fit for fit in fits if fit.weight >= _LEAST_WEIGHT]
-    candidates = _candidates(fits.best, geometry, settings)
-    found = [rival(fit, line, product, flow, candidates, method) for fit in likely]
+    model = model_at(fits.best, product, state)
+    candidates = _candidates(fits.best, model, geometry, settings)
+    found = [rival(fit, line, product, flow, candidates, state, method) for fit in likely]
     rivals = [one for one in found if one is not None]
     if not rivals:
         raise InputError(
@@ -154,7 +159,7 @@ def measure_next(
         )
     before = _variance_now(rivals)
     after = np.clip(before - _expected_fall(rivals, count), 0.0, None)
-    rates = _rates(fits.best, candidates)
+    rates = _rates(model, candidates)
     ranking = tuple(
         Suggestion(
             float(candidates.setting[i]),
@@ -171,12 +176,14 @@ def measure_next(
         count,
         half_width,
         ranking,
-        _sentence(candidates.kind, count, half_width, ranking[0]),
+        _sentence(candidates.kind, count, half_width, ranking[0], _where(fits.best, product)),
         tuple(_cautions(likely, found)),
     )
 
 
-def _candidates(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None) -> Candidates:
+def _candidates(
+    fit: Fit, model: Model, geometry: Geometry | None, settings: ArrayLike | None
+) -> Candidates:
     """Readings that could be taken, with each of the tubes or cups that there are."""
     from rheo.line.rivals import Candidates
 
@@ -189,8 +196,10 @@ def _candidates(fit: Fit, geometry: Geometry | None, settings: ArrayLike | None)
     kind = geometry.record.setting
     if geometry.shape == ():
         used = fit.rates[fit.rates > 0]
-        ends = np.asarray(geometry.setting_for_rate(fit.model, used), dtype=float)
-        at = _settings(settings, ends)
+        used = np.asarray(geometry.setting_for_rate(model, used), dtype=float)
+        if own is not None and own.key == geometry.key:
+            used = np.asarray(problem.setting)  # type: ignore[attr-defined]
+        at = _settings(settings, used)
         return Candidates(kind, at, geometry, ("",) * at.size)
     if own is None or own.key != geometry.key:
         raise InputError("its dimensions must be single numbers here", f"geometry {geometry.key}")
@@ -226,10 +235,10 @@ def _settings(settings: ArrayLike | None, used: FloatArray) -> FloatArray:
     return at
 
 
-def _rates(fit: Fit, candidates: Candidates) -> FloatArray:
+def _rates(model: Model, candidates: Candidates) -> FloatArray:
     if candidates.geometry is None:
         return candidates.setting
-    rate, _ = candidates.geometry.sheared(fit.model, candidates.setting)
+    rate, _ = candidates.geometry.sheared(model, candidates.setting)
     return np.broadcast_to(rate, candidates.setting.shape)
 
 
@@ -268,8 +277,16 @@ def _expected_fall(rivals: list[Rival], count: int) -> FloatArray:
     return np.einsum("l,g,lgs->s", weight, _WEIGHTS, (mean - centre) ** 2)
 
 
-def _sentence(kind: str, count: int, now: float, best: Suggestion) -> str:
-    where = f", {best.place}," if best.place else ""
+def _where(fit: Fit, product: Product) -> str:
+    """The temperature of the new readings, where the fit knows temperatures."""
+    law = getattr(fit.problem, "law", None)
+    if law is None or law.state != "temperature":
+        return ""
+    return f" at {product.temperature - 273.15:.0f} °C"
+
+
+def _sentence(kind: str, count: int, now: float, best: Suggestion, warmth: str) -> str:
+    where = warmth + (f", {best.place}," if best.place else "")
     numbers = {1: "One more reading", 2: "Two more readings", 3: "Three more readings"}
     start = numbers.get(count, f"{count} more readings")
     if kind == "angular_speed":

@@ -11,11 +11,14 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
 from rheo.errors import InputError
+from rheo.fitting.scaling import ScaledProblem
 from rheo.line.parts import FloatArray, Line
-from rheo.line.product import Product
+from rheo.line.product import FlowCurveSource, Product
 from rheo.line.walk import walk
+from rheo.models import Model
 
 if TYPE_CHECKING:
     from rheo.fitting import Fit
@@ -77,13 +80,46 @@ class Rival:
     noise: FloatArray
 
 
+def curve_at(fit: Fit, values: FloatArray, state: float | None) -> FlowCurveSource:
+    """Return the flow curve of a fit at parameters of shape (..., p), for use in a line.
+
+    Parameters
+    ----------
+    fit : Fit
+        The fitted model.
+    values : array, shape (..., p)
+        Parameters of the model and what is fitted with it.
+    state : float or None
+        For a fit over solids fractions the product's fraction; the reference when None.
+
+    Returns
+    -------
+    Model or callable
+        A function of temperature for a fit over temperatures.
+    """
+    problem = fit.problem
+    if not isinstance(problem, ScaledProblem):
+        return fit.model_of(values[..., : len(fit.record.parameters)])
+    curve = problem.curve(values)
+    if problem.law.state == "temperature":
+        return curve
+    return curve(problem.law.reference if state is None else state)
+
+
+def model_at(fit: Fit, product: Product, state: float | None) -> Model:
+    """Return the fitted flow curve at the product's temperature, or its solids fraction."""
+    values = np.array([one.value for one in fit.parameters.values()], dtype=float)
+    return product.model_at(product.temperature, curve_at(fit, values, state))
+
+
 def rival(
     fit: Fit,
     line: Line,
     product: Product,
     flow: float,
     candidates: Candidates,
-    method: str | None,
+    state: float | None = None,
+    method: str | None = None,
 ) -> Rival | None:
     """Return a fitted model as a rival.
 
@@ -92,10 +128,13 @@ def rival(
     fit : Fit
         The fitted model.
     line, product, flow : Line, Product, float
-        Where the pressure drop is wanted, and the flow [m3/s].
+        Where the pressure drop is wanted, and the flow [m3/s]; readings would be taken at the
+        product's temperature.
     candidates : Candidates
         Readings that could be taken.
-    method : str or None
+    state : float, optional
+        For a fit over solids fractions the product's fraction; the reference when absent.
+    method : str, optional
         Turbulent friction method.
 
     Returns
@@ -104,12 +143,7 @@ def rival(
         None where the readings leave the pressure drop by this model open.
     """
     problem = fit.problem
-    values = np.concatenate(
-        [
-            [float(value) for value in fit.model],
-            [fit.parameters[one.key].value for one in problem.extra],
-        ]
-    )
+    values = np.array([one.value for one in fit.parameters.values()], dtype=float)
     free = np.array([key in fit.parameter_keys for key in fit.parameters])
     if not free.any() or fit.freedom < 1:
         return None
@@ -118,98 +152,88 @@ def rival(
     scale = np.linalg.norm(weighted, axis=-1)
     if not np.all(np.isfinite(scale) & (scale > 0)):
         return None
-    _, singular, directions = np.linalg.svd(
-        (weighted / scale[:, np.newaxis]).T, full_matrices=False
-    )
-    log_pressure, by_parameter = _log_pressure(fit, values, free, line, product, flow, method)
-    pull = directions @ (by_parameter / scale)
+    scaled = (weighted / scale[:, np.newaxis]).T
+    _, singular, directions = np.linalg.svd(scaled, full_matrices=False)
+    moved, width = _moved(fit, values, free)
+    source = curve_at(fit, moved, state)
+    logs = _log_pressures(line, product, flow, source, moved.shape[0], method)
+    pull = directions @ ((logs[1::2] - logs[2::2]) / width / scale)
     seen = singular > _UNSEEN * singular[0]
     if np.any(np.abs(pull[~seen]) > _NO_MATTER * np.abs(pull).max()):
         return None
-    reading, new_slopes, share = _new_readings(fit, values, candidates)
-    push = directions[seen] @ (new_slopes[free] / scale[:, np.newaxis])
+    model = product.model_at(product.temperature, source)
+    readings, share = _new_readings(fit, model, moved, candidates)
+    new_slopes = (readings[1::2] - readings[2::2]) / (width * scale)[:, np.newaxis]
+    push = directions[seen] @ new_slopes
     scatter = max(fit.scatter, 1.0) if problem.weighting.known else fit.scatter
     size = scatter**2 / singular[seen] ** 2
     return Rival(
         fit.weight,
-        log_pressure,
+        float(logs[0]),
         float(np.sum(size * pull[seen] ** 2)),
-        reading,
+        readings[0],
         (size * pull[seen]) @ push,
         size @ push**2,
-        share * reading * scatter,
+        share * readings[0] * scatter,
     )
 
 
-def _log_pressure(
-    fit: Fit,
-    values: FloatArray,
-    free: FloatArray,
+def _moved(fit: Fit, values: FloatArray, free: NDArray[np.bool_]) -> tuple[FloatArray, FloatArray]:
+    """Parameters at the fit and with each free one moved up and down in turn, and the widths."""
+    every = (*fit.record.parameters, *fit.problem.extra)
+    index = np.flatnonzero(free)
+    lower = np.array([one.lower for one in every])[index]
+    upper = np.array([one.upper for one in every])[index]
+    room = 0.5 * np.minimum(values[index] - lower, upper - values[index])
+    size = np.where(values[index] != 0, np.abs(values[index]), 1.0)
+    step = np.minimum(_STEP * size, room)
+    moved = np.repeat(values[np.newaxis], 2 * index.size + 1, axis=0)
+    row = np.arange(index.size)
+    moved[1 + 2 * row, index] += step
+    moved[2 + 2 * row, index] -= step
+    return moved, moved[1 + 2 * row, index] - moved[2 + 2 * row, index]
+
+
+def _log_pressures(
     line: Line,
     product: Product,
     flow: float,
+    source: FlowCurveSource,
+    count: int,
     method: str | None,
-) -> tuple[float, FloatArray]:
-    """ln(pressure) and its derivatives by the free parameters, by central differences in one call.
-
-    A parameter of the instrument does not reach the pipe: its derivative is 0.
-    """
-    every = (*fit.record.parameters, *fit.problem.extra)
-    own = np.flatnonzero(free)
-    lower = np.array([one.lower for one in every])[own]
-    upper = np.array([one.upper for one in every])[own]
-    room = 0.5 * np.minimum(values[own] - lower, upper - values[own])
-    size = np.where(values[own] != 0, np.abs(values[own]), 1.0)
-    step = np.minimum(_STEP * size, room)
-    moved = np.repeat(values[np.newaxis], 2 * own.size + 1, axis=0)
-    row = np.arange(own.size)
-    moved[1 + 2 * row, own] += step
-    moved[2 + 2 * row, own] -= step
-    found = walk(line, product, np.full(1, flow), source=fit.source_of(moved), method=method)
-    pressure = found.differential_pressure
+) -> FloatArray:
+    found = walk(line, product, np.full(1, flow), source=source, method=method)
+    pressure = np.broadcast_to(found.differential_pressure, (count,))
     if not np.all(pressure > 0):
         raise InputError(
             "the line needs no pressure at this flow, so that there is nothing to narrow", line.name
         )
-    logs = np.log(np.broadcast_to(pressure, (moved.shape[0],)))
-    slopes = np.zeros(values.size)
-    width = moved[1 + 2 * row, own] - moved[2 + 2 * row, own]
-    slopes[own] = (logs[1::2] - logs[2::2]) / width
-    return float(logs[0]), slopes[free]
+    return np.log(pressure)
 
 
 def _new_readings(
-    fit: Fit, values: FloatArray, candidates: Candidates
-) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Predicted readings, their slopes (p, candidates), and their weighting as shares of them.
-
-    Slopes by central differences, all shifted parameters in one call.
-    """
-    weighting, extra = fit.problem.weighting, fit.problem.extra
-    count = len(fit.record.parameters)
-    at, geometry = candidates.setting, candidates.geometry
+    fit: Fit, model: Model, moved: FloatArray, candidates: Candidates
+) -> tuple[FloatArray, FloatArray]:
+    """Readings at every row of parameters, and their weighting at the fit as shares of them."""
+    weighting, at, geometry = fit.problem.weighting, candidates.setting, candidates.geometry
+    rows = model.with_new_axis()
     if geometry is None:
-        slopes = fit.record.jacobian(at, *fit.model)
-        reading = fit.model.stress(at)
-        table = np.stack([np.broadcast_to(slope, at.shape) for slope in slopes])
-        return reading, table, weighting.sigma(reading) / reading
-    row = np.arange(values.size)
-    step = _STEP * np.where(values != 0, np.abs(values), 1.0)
-    moved = np.repeat(values[np.newaxis], 2 * values.size + 1, axis=0)
-    moved[1 + 2 * row, row] += step
-    moved[2 + 2 * row, row] -= np.where(values != 0, step, 0.0)
-    models = fit.model_of(moved[:, :count]).with_new_axis()
-    fitted = {one.key: moved[:, count + i, np.newaxis] for i, one in enumerate(extra)}
-    same = geometry.key == getattr(getattr(fit.problem, "geometry", None), "key", None)
-    instrument = {key: value for key, value in fitted.items() if key in geometry.dimensions}
-    if same and instrument:
-        geometry = geometry.replaced(**instrument)
-    readings = np.broadcast_to(geometry.predict(models, at), (moved.shape[0], at.size))
-    width = moved[1 + 2 * row, row] - moved[2 + 2 * row, row]
-    table = (readings[1::2] - readings[2::2]) / width[:, np.newaxis]
-    if same:
-        return readings[0], table, weighting.sigma(readings[0]) / readings[0]
+        readings = rows.stress(at)
+        return readings, weighting.sigma(readings[0]) / readings[0]
+    count = len(fit.record.parameters)
+    fitted = {
+        one.key: moved[:, count + i, np.newaxis]
+        for i, one in enumerate(fit.problem.extra)
+        if one.key in geometry.record.dimension_keys
+    }
+    whole = geometry.replaced(**fitted) if fitted else geometry
+    readings = np.broadcast_to(whole.predict(rows, at), (moved.shape[0], at.size))
+    own = getattr(fit.problem, "geometry", None)
+    if own is not None and own.key == geometry.key:
+        return readings, weighting.sigma(readings[0]) / readings[0]
     # The readings so far are stresses or of another instrument: a new one is as good, relatively,
     # as a stress is there.
-    _, stress = geometry.sheared(fit.model, at)
-    return readings[0], table, weighting.sigma(stress) / stress
+    _, stress = geometry.sheared(
+        model.map(lambda value: value[..., 0] if value.ndim else value), at
+    )
+    return readings, weighting.sigma(stress) / stress

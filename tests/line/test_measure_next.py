@@ -10,6 +10,7 @@ import pytest
 
 import rheo
 from rheo.fitting import fit
+from rheo.fitting.temperature import fit_temperatures
 from rheo.line import Line, Pipe, Product
 from rheo.line.walk import walk
 
@@ -194,6 +195,30 @@ def test_readings_with_a_geometry_speak_of_it_by_themselves() -> None:
     settings = [one.setting for one in found.ranking]
     assert min(settings) == pytest.approx(0.5, rel=1e-6)
     assert max(settings) == pytest.approx(30.0, rel=1e-6)
+
+
+def test_fits_over_temperatures_are_taken_at_that_of_the_product() -> None:
+    """Readings at 20 and 60 °C, a line at 60 °C: the parameters there decide, slopes included."""
+    rng = np.random.default_rng(12)
+    temperature = np.repeat([293.15, 333.15], RATES.size)
+    rates = np.tile(RATES, 2)
+    consistency = 6.0 * np.exp(2000.0 * (1.0 / temperature - 1.0 / 293.15))
+    stress = consistency * rates**0.5 * (1.0 + NOISE * rng.standard_normal(rates.size))
+    curve = rheo.FlowCurve(rates, stress, temperature=temperature)
+    fits = fit_temperatures(curve, models="power-law", reference=293.15)
+    warm = Product(TRUTH, 1050.0, temperature=333.15)
+    found = rheo.measure_next(fits, LINE, warm, 1e-3, settings=CHOICES)
+    assert " at 60 °C would cut" in found.sentence
+    # The same by draws from the covariance of the fit.
+    draws = fits.draws(4000, seed=3)
+    product = Product(fits.source(), 1050.0, temperature=333.15, draws=draws)
+    pressures = rheo.solve_line(LINE, product, 1e-3).draws
+    assert pressures is not None
+    # A standard deviation of 4,000 draws is known to about 1.1 %.
+    by_draws = 1.959964 * float(np.log(pressures).std())
+    assert found.half_width == pytest.approx(by_draws, rel=0.05)
+    cold = rheo.measure_next(fits, LINE, PRODUCT, 1e-3, settings=CHOICES)
+    assert cold.half_width != found.half_width
 
 
 def test_speeds_are_found_from_the_readings_when_none_are_given() -> None:
