@@ -80,14 +80,15 @@ def diameter_for_gradient(
     density : array_like
         Density [kg/m3].
     roughness : array_like
-        Wall roughness [m]; only diameters above twice the roughness are sought.
+        Wall roughness [m].
     method, transition : str
         Turbulent method and transition criterion, as for `pipe_flow`.
 
     Returns
     -------
     array
-        Inside diameter [m], to 1e-13 relative.
+        Inside diameter [m], to 1e-13 relative. Only diameters above twice the roughness are
+        sought; twice the roughness where even that pipe takes less than the gradient.
 
     Raises
     ------

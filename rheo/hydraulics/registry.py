@@ -68,7 +68,7 @@ def turbulent_method(key: str | None, model: Model) -> TurbulentMethod:
 def _chosen(key: str, model: Model, records: Mapping[str, _Record], what: str) -> _Record:
     able = ", ".join(name for name, record in records.items() if record.applies(model))
     if key not in records:
-        near = difflib.get_close_matches(str(key), records, n=1)
+        near = difflib.get_close_matches(str(key), records, n=1, cutoff=0.5)
         hint = f" (did you mean '{near[0]}'?)" if near else ""
         raise InputError(
             f"unknown {what} '{key}'{hint}; for {model.key} there are {able}", "method"
