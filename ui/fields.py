@@ -175,6 +175,8 @@ def place(document: dict[str, Any], path: Path, draft: dict[str, Any] | None = N
         Put there first, in place of what was there.
     """
     where: Any = document
+    if not path:
+        return where
     for step in path[:-1]:
         where = where[step] if isinstance(step, int) else where.setdefault(step, {})
     last = path[-1]

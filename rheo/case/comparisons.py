@@ -9,6 +9,7 @@ import numpy as np
 from rheo.case.result import CaseResult
 from rheo.errors import InputError
 from rheo.fitting import Fit
+from rheo.hydraulics.registry import criteria
 from rheo.line.thickness import thicker
 from rheo.line.walk import walk
 
@@ -92,6 +93,8 @@ class RegimeMargin:
         Where laminar flow ends [m/s], [-].
     critical_flow : float
         Flow at which it ends in this pipe [m3/s].
+    by_criterion : tuple of (str, float)
+        The same by every criterion made for the flow curve, with its name [m3/s].
     """
 
     name: str
@@ -101,6 +104,7 @@ class RegimeMargin:
     critical_velocity: float
     critical_reynolds: float
     critical_flow: float
+    by_criterion: tuple[tuple[str, float], ...] = ()
 
     @property
     def share(self) -> float:
@@ -124,6 +128,10 @@ def regime_margins(result: CaseResult) -> tuple[RegimeMargin, ...]:
                 critical,
                 float(np.asarray(pipe.critical_reynolds)),
                 result.flow * critical / velocity,
+                tuple(
+                    (criteria()[key].name, result.flow * float(np.asarray(other)) / velocity)
+                    for key, other in pipe.critical_velocities.items()
+                ),
             )
         )
     return tuple(found)

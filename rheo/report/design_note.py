@@ -100,7 +100,7 @@ def design_note(
         ),
         inputs_section(case),
         Section("Versions", (Facts(versions()),)),
-        Section("Prepared and checked", (SignOff(),)),
+        Section("Prepared and checked", (SignOff(names=(case.prepared_by, case.checked_by)),)),
     ]
     product, route = case.product.name, case.line.name
     return Note(

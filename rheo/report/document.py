@@ -88,9 +88,10 @@ class Cautions:
 
 @dataclass(frozen=True)
 class SignOff:
-    """Lines to be signed: name, signature, date."""
+    """Lines to be signed: name, signature, date; the names are those that are known."""
 
     roles: tuple[str, ...] = ("Prepared", "Checked")
+    names: tuple[str, ...] = ("", "")
 
 
 Block = Paragraph | Facts | Answer | Table | Figure | Cautions | SignOff
@@ -196,7 +197,11 @@ def _cautions(block: Cautions) -> dict[str, Any]:
 
 
 def _sign_off(block: SignOff) -> dict[str, Any]:
-    return {"type": "signoff", "roles": [clean(role) for role in block.roles]}
+    return {
+        "type": "signoff",
+        "roles": [clean(role) for role in block.roles],
+        "names": [one_line(name, LONGEST_PLACE) for name in block.names],
+    }
 
 
 _DATA: dict[type[Block], Any] = {

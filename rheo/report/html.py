@@ -41,26 +41,31 @@ for (const figure of document.querySelectorAll("figure[data-figure]")) {
 """
 
 
-def note_as_html(note: Note) -> str:
+def note_as_html(note: Note, interactive: bool = True) -> str:
     """Return a note as the text of an HTML file.
 
     Parameters
     ----------
     note : Note
         What to write.
+    interactive : bool
+        Whether the figures can be looked into; else they are those of the PDF, and the text is
+        some thirty times shorter.
 
     Returns
     -------
     str
         The same for the same note; it opens without a network.
     """
-    from plotly.offline import get_plotlyjs
+    policy = "default-src 'none'; style-src 'unsafe-inline'; img-src data: blob:"
+    scripts = ""
+    writers = _WRITERS | ({} if interactive else {Figure: _drawing})
+    if interactive:
+        from plotly.offline import get_plotlyjs
 
-    library = get_plotlyjs()
-    policy = (
-        "default-src 'none'; style-src 'unsafe-inline'; img-src data: blob:; "
-        f"script-src {_hash_source(library)} {_hash_source(_DRAW)}"
-    )
+        library = get_plotlyjs()
+        policy += f"; script-src {_hash_source(library)} {_hash_source(_DRAW)}"
+        scripts = f"<script>{library}</script>\n<script>{_DRAW}</script>\n"
     style = resources.files("rheo.report").joinpath("note.css").read_text("utf-8")
     colours = "".join(
         f"--{name}: {getattr(LIGHT, name)};"
@@ -87,12 +92,12 @@ def note_as_html(note: Note) -> str:
         if section.title:
             number += 1
             parts.append(f"<h2>{number}&ensp;{_text(section.title)}</h2>\n")
-        parts += [_WRITERS[type(block)](block) for block in section.blocks]
+        parts += [writers[type(block)](block) for block in section.blocks]
         parts.append("</section>\n")
     parts.append(
         f"<footer>rheo {_text(note.version)}, content {note.content_hash}, "
         f"{note.date.isoformat()}</footer>\n</main>\n"
-        f"<script>{library}</script>\n<script>{_DRAW}</script>\n</body>\n</html>\n"
+        f"{scripts}</body>\n</html>\n"
     )
     return "".join(parts)
 
@@ -174,6 +179,15 @@ def _figure(block: Figure) -> str:
     )
 
 
+def _drawing(block: Figure) -> str:
+    picture = block.picture
+    caption = clean(block.caption or picture.description)
+    return (
+        f'<figure><div class="plot">{picture.svg()}</div>\n'
+        f"<figcaption><b>{_text(picture.title)}.</b> {_text(caption)}</figcaption></figure>\n"
+    )
+
+
 def _cautions(block: Cautions) -> str:
     rows = []
     for one in block.cautions:
@@ -188,7 +202,9 @@ def _cautions(block: Cautions) -> str:
 
 def _sign_off(block: SignOff) -> str:
     rows = "".join(
-        f"<tr><td>{_text(role)}</td><td></td><td></td><td></td></tr>\n" for role in block.roles
+        f'<tr><td>{_text(role)}</td><td dir="auto">{_text(one_line(name, LONGEST_PLACE))}</td>'
+        "<td></td><td></td></tr>\n"
+        for role, name in zip(block.roles, block.names, strict=True)
     )
     head = "<tr><th></th><th>Name</th><th>Signature</th><th>Date</th></tr>"
     return f'<table class="signoff"><thead>{head}</thead><tbody>\n{rows}</tbody></table>\n'

@@ -35,9 +35,9 @@ def sizes_section(
     blocks: list[Block] = [
         Paragraph(sizing.sentence, "lead"),
         Figure(sizes_picture(sizing, pressure_limit, currency, system)),
-        _table(sizing, currency, system),
+        sizes_table(sizing, currency, system),
     ]
-    moves = _moves(sizing, system)
+    moves = moves_sentence(sizing, system)
     if moves:
         blocks.append(Paragraph(moves))
     if sizing.cautions:
@@ -58,7 +58,8 @@ def _pressure(one: Candidate, system: str) -> str:
     return with_interval(values[0], values[1], values[2])
 
 
-def _table(sizing: Sizing, currency: str, system: str) -> Table:
+def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
+    """Return every size against the limits, with the reason where it fails."""
     priced = any(one.annual_cost is not None for one in sizing.candidates)
     pressure = unit_label("pressure", system)
     head = [
@@ -96,7 +97,7 @@ def _table(sizing: Sizing, currency: str, system: str) -> Table:
     )
 
 
-def _moves(sizing: Sizing, system: str) -> str:
+def moves_sentence(sizing: Sizing, system: str) -> str:
     """Say how the choice moves with the doubt in the product and with the flow."""
     parts = []
     if sizing.choice_by_draw:

@@ -1,0 +1,1 @@
+"""Parts of the note stop: files to download, and the preview."""

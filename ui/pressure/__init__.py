@@ -1,0 +1,1 @@
+"""Parts of the pressure stop: what-if controls, and the views of the line."""

@@ -1,0 +1,243 @@
+"""What if: other values beside those of the case, which stays until the user keeps them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+import streamlit as st
+
+from rheo.case import Case, CaseResult
+from rheo.case.what_if import SolidsChange, WhatIf, what_if
+from rheo.errors import InputError
+from rheo.report import display
+from rheo.units import parse_quantity
+from ui import cautions, guard, results, state, table, words
+from ui.flow_curve.compare import change, comparison
+from ui.units_switch import with_unit
+
+_NAMES = ("flow", "thicker", "warmer", "before", "after", "density")
+
+
+@dataclass(frozen=True)
+class Asked:
+    """What the controls ask for.
+
+    Parameters
+    ----------
+    change : WhatIf or None
+        None where it cannot be understood.
+    complaint : str
+        Why, in a sentence.
+    """
+
+    change: WhatIf | None
+    complaint: str = ""
+
+
+def asked(values: dict[str, Any], system: str) -> Asked:
+    """Return what the values of the controls ask for.
+
+    Parameters
+    ----------
+    values : dict
+        Of the controls by name: ``flow``, ``before``, ``after`` and ``density`` as typed,
+        ``thicker`` in percent, ``warmer`` as typed, in degrees of the unit system.
+    system : str
+        Unit system.
+    """
+
+    def text(name: str) -> str:
+        return str(values.get(name) or "").strip()
+
+    try:
+        flow = with_unit(text("flow"), "flow", system) if text("flow") else None
+        warmer = 0.0
+        if text("warmer"):
+            warmer = parse_quantity(
+                with_unit(text("warmer"), "temperature_rise", system).replace("°F", "delta_degF"),
+                "K",
+                "warmer or colder",
+            )
+        solids = None
+        if text("before") or text("after"):
+            share = [
+                parse_quantity(
+                    text(name) if "%" in text(name) else f"{text(name)} %",
+                    "dimensionless",
+                    "solids",
+                )
+                for name in ("before", "after")
+            ]
+            density = None
+            if text("density"):
+                density = parse_quantity(
+                    with_unit(text("density"), "density", system), "kg/m^3", "density of the solids"
+                )
+            solids = SolidsChange(share[0], share[1], density)
+    except InputError as error:
+        return Asked(None, state.sentence(error))
+    return Asked(WhatIf(flow, 1.0 + float(values.get("thicker") or 0) / 100.0, warmer, solids))
+
+
+@st.fragment
+def show(result: CaseResult) -> None:
+    """Draw the controls, and old and new side by side."""
+    if st.session_state.pop("rheo.what_if.kept", False):
+        st.rerun()
+    with guard.Guard(), st.container(border=True, key="what_if"):
+        st.markdown("**What if** the flow, the batch or the temperature were otherwise?")
+        _controls(result)
+        wanted = asked(state.what_if(), state.system())
+        if wanted.change is None:
+            cautions.complaint(wanted.complaint)
+        elif not wanted.change.changes_nothing:
+            _show_comparison(result, wanted.change)
+
+
+def _controls(result: CaseResult) -> None:
+    system = state.system()
+    degrees = display.unit_label("temperature_rise", system)
+    columns = st.columns([1.2, 1.5, 1.2, 1], vertical_alignment="bottom")
+    flow = display.text(result.flow, "flow", system)
+    _entry(columns[0], "flow", "Flow", f"now {flow}")
+    key = _key("thicker")
+    columns[1].slider(
+        "Thinner or thicker [%]",
+        -50,
+        200,
+        int(state.what_if().get("thicker") or 0),
+        5,
+        key=key,
+        on_change=_take,
+        args=("thicker",),
+        help="So much less or more stress at every shear rate.",
+    )
+    _entry(
+        columns[2],
+        "warmer",
+        f"Warmer or colder [{degrees}]",
+        "-10 is colder",
+        "Added to every temperature of the product along the line.",
+    )
+    with columns[3], st.popover("Solids", icon=":material/grain:", width="stretch"):
+        _entry(st, "before", "Solids in the readings [% by volume]", "such as 20")
+        _entry(st, "after", "What if there were [% by volume]", "such as 25")
+        _entry(
+            st,
+            "density",
+            "Density of the solids, if the product's is to move",
+            display.unit_label("density", system),
+        )
+        st.caption(
+            "Thickened as spheres without attraction (Krieger and Dougherty 1959). Flocculated "
+            "and fine slurries thicken faster: measure them."
+        )
+
+
+def _entry(place: Any, name: str, label: str, placeholder: str, help: str | None = None) -> None:
+    place.text_input(
+        label,
+        value=str(state.what_if().get(name) or ""),
+        placeholder=placeholder,
+        key=_key(name),
+        on_change=_take,
+        args=(name,),
+        help=help,
+    )
+
+
+def _key(name: str) -> str:
+    return state.key(f"what_if.{name}.{st.session_state.get('rheo.what_if.turn', 0)}")
+
+
+def _take(name: str) -> None:
+    state.what_if()[name] = st.session_state[_key(name)]
+
+
+def _show_comparison(result: CaseResult, wanted: WhatIf) -> None:
+    try:
+        case = what_if(result, wanted)
+    except InputError as error:
+        cautions.complaint(state.sentence(error))
+        return
+    with st.spinner("Working it out"):
+        other = results.result_of(case, state.files())
+    if other.value is None:
+        if other.problem is not None:
+            cautions.complaint(state.sentence(other.problem))
+        return
+    new: CaseResult = other.value
+    rows = compared(result, new, state.system())
+    table.show(["", table.Number("Now"), table.Number("What if"), table.Number("Change")], rows)
+    known = set(result.cautions)
+    cautions.show(one for one in new.cautions if one not in known)
+    if wanted.warmer and not new.product.knows_temperature:
+        st.html(
+            '<p class="rheo-text small">The readings are at one temperature, so the flow curve '
+            "does not move with it. Take readings at two temperatures around the line's.</p>"
+        )
+    with st.container(horizontal=True):
+        st.button("Keep these values", type="primary", on_click=_keep, args=(case,))
+        st.button("Back to the case as it is", on_click=_forget)
+    cautions.complaint(state.complaint("what_if"))
+
+
+def compared(result: CaseResult, other: CaseResult, system: str) -> list[list[str]]:
+    """Return name, value now, value then and change of what a duty is judged by."""
+    flows = [display.text(one.flow, "flow", system) for one in (result, other)]
+    rows = [
+        ["Flow", *flows, change(result.flow, other.flow)],
+        *comparison(result, other, system),
+    ]
+    rows.append(["Regime", _regimes(result), _regimes(other), ""])
+    for name, key, quantity in (
+        ("NPSH available", "npsh_available", "length"),
+        ("Shaft power", "shaft_power", "power"),
+        ("Time in the line", "residence_time", "time"),
+    ):
+        values = [getattr(one.line, key) for one in (result, other)]
+        if None not in values:
+            texts = [display.text(float(value), quantity, system) for value in values]
+            rows.append([name, *texts, change(*map(float, values))])
+    rating = result.line.start_up.rating
+    if rating is not None:
+        rows.append(["Starts again after a stop", _starts(result), _starts(other), ""])
+    return rows
+
+
+def _regimes(result: CaseResult) -> str:
+    return " and ".join(dict.fromkeys(part.regime for part in result.line.parts if part.regime))
+
+
+def _starts(result: CaseResult) -> str:
+    return "✓ yes" if bool(result.line.start_up.restarts) else "! no"
+
+
+def _keep(case: Case) -> None:
+    state.put(case)
+    state.touch()
+    _forget()
+    st.session_state["rheo.what_if.kept"] = True
+
+
+def _forget() -> None:
+    state.what_if().clear()
+    st.session_state["rheo.what_if.turn"] = int(st.session_state.get("rheo.what_if.turn", 0)) + 1
+
+
+def lead(result: CaseResult, system: str) -> str:
+    """Return what the pump must add, and of what it is made, in a sentence."""
+    line = result.line
+    adds = words.with_interval(
+        line.differential_pressure, line.differential_pressure_interval, "pressure", system
+    )
+    friction = words.with_interval(
+        line.friction_pressure, line.friction_pressure_interval, "pressure", system
+    )
+    static = display.text(float(line.static_pressure), "pressure", system)
+    flow = display.text(result.flow, "flow", system)
+    return (
+        f"At {flow} the pump must add {adds}: {friction} of friction and {static} for heights and "
+        "vessels."
+    )

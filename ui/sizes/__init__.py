@@ -1,0 +1,1 @@
+"""Parts of the sizes stop: comparison on the way, choice, limits and costs."""

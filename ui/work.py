@@ -1,0 +1,127 @@
+"""Long work beside the page: it tells how far it is, and can be cancelled.
+
+``work.outcome("sizes", result, lambda progress: result.compare_sizes(progress))`` returns what
+comes of it, as `ui.results.Outcome`; while it is at work it draws its progress with a button that
+ends it, and returns None. The page is drawn anew when it is done.
+"""
+
+from __future__ import annotations
+
+import sys
+import threading
+import traceback
+from collections.abc import Callable
+from dataclasses import dataclass, field
+from typing import Any
+
+import streamlit as st
+
+from rheo.errors import InputError
+from ui import guard, state
+from ui.results import Outcome
+
+Progress = Callable[[float], None]
+# What is done sooner than this [s] shows no progress.
+SOON = 0.35
+_LOOK_EVERY = 0.4
+
+
+class CancelledError(Exception):
+    """The user has ended the work."""
+
+
+@dataclass
+class Job:
+    """One piece of work.
+
+    Parameters
+    ----------
+    subject : object
+        What it is about: another subject is another job.
+    share : float
+        How much is done [-].
+    cancelled : bool
+        Whether the user has ended it.
+    outcome : Outcome or None
+        What came of it.
+    """
+
+    subject: Any
+    share: float = 0.0
+    cancelled: bool = False
+    outcome: Outcome | None = None
+    done: threading.Event = field(default_factory=threading.Event)
+
+    def tell(self, share: float) -> None:
+        """Note how much is done; raises CancelledError where the user has ended it."""
+        self.share = share
+        if self.cancelled:
+            raise CancelledError
+
+    def run(self, calculate: Callable[[Progress], Any]) -> None:
+        """Do the work; called in a thread of its own."""
+        try:
+            self.outcome = Outcome(calculate(self.tell))
+        except InputError as error:
+            self.outcome = Outcome(None, error)
+        except CancelledError:
+            self.cancelled = True
+        except Exception:  # nobody else could say it: the thread ends here
+            traceback.print_exc(file=sys.stderr)
+            self.outcome = Outcome(None, InputError(state.UNEXPECTED))
+        finally:
+            self.done.set()
+
+
+def outcome(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> Outcome | None:
+    """Return what comes of a piece of work, or draw how far it is and return None.
+
+    Parameters
+    ----------
+    name : str
+        Of the work; one piece of each name is at hand in a session.
+    subject : object
+        What it is about, compared by identity.
+    calculate : callable
+        Does the work; is given what it tells its progress to.
+    """
+    place = f"rheo.work.{name}"
+    job = st.session_state.get(place)
+    if job is None or job.subject is not subject:
+        if job is not None:
+            job.cancelled = True
+        job = _start(place, subject, calculate)
+    if job.done.wait(SOON):
+        if job.cancelled:
+            st.write("You have ended this.")
+            st.button("Start again", key=f"{place}.again", on_click=_forget, args=(place,))
+            return None
+        return job.outcome
+    _watch(place)
+    return None
+
+
+def _start(place: str, subject: Any, calculate: Callable[[Progress], Any]) -> Job:
+    job = Job(subject)
+    st.session_state[place] = job
+    threading.Thread(target=job.run, args=(calculate,), daemon=True).start()
+    return job
+
+
+def _forget(place: str) -> None:
+    st.session_state.pop(place, None)
+
+
+def _cancel(place: str) -> None:
+    st.session_state[place].cancelled = True
+
+
+@st.fragment(run_every=_LOOK_EVERY)
+def _watch(place: str) -> None:
+    with guard.Guard():
+        job = st.session_state.get(place)
+        if job is None or job.done.is_set():
+            st.rerun()
+        left, right = st.columns([5, 1], vertical_alignment="center")
+        left.progress(min(job.share, 1.0), text=f"{100 * job.share:.0f} % of the work is done")
+        right.button("Cancel", key=f"{place}.cancel", on_click=_cancel, args=(place,))
