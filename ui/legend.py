@@ -32,7 +32,7 @@ def html(figure: Any) -> str:
         if not (trace.showlegend and trace.name):
             continue
         name = style.escape(str(trace.name).replace("<br>", " "))
-        if trace.fill:
+        if trace.type == "scatter" and trace.fill:
             # One entry for all bands: each has the colour of its line.
             bands += 1
             if bands > 1:
