@@ -1,4 +1,4 @@
-"""Draws of the flow curve: parameter doubt by the covariance, model choice by Akaike weight."""
+"""Draws of the flow curve: parameter doubt by the bootstrap, model choice by Akaike weight."""
 
 from __future__ import annotations
 
@@ -9,51 +9,26 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.errors import InputError
-from rheo.fitting.problem import coordinates
+from rheo.fitting.bootstrap import bootstrap_parameters
 from rheo.models import Model
-
-FloatArray = NDArray[np.float64]
+from rheo.models.state_curve import ScaledCurve
 
 if TYPE_CHECKING:
     from rheo.fitting.fits import Fits
     from rheo.fitting.result import Fit
 
+FloatArray = NDArray[np.float64]
+
 
 def parameter_draws(fit: Fit, count: int, seed: int) -> FloatArray:
-    """Draw all parameters of a fit from a normal distribution in the coordinates of the search.
+    """Return parameters (count, p) of a fit from its bootstrap.
 
-    Parameters
-    ----------
-    fit : Fit
-        A fitted model. Parameters at a bound, or without a covariance, stay as they are.
-    count : int
-        Number of draws.
-    seed : int
-        Of the random numbers.
-
-    Returns
-    -------
-    array, shape (count, p)
-        The model's parameters, then those of the instrument or of a scaling law.
+    With as many free parameters as readings there is no scatter to draw from, and the fit's own
+    parameters are repeated: `Fit.cautions` says so.
     """
-    best = fit.final.parameters
-    scale = coordinates(fit.problem)
-    inner = np.repeat(scale.inner(best)[np.newaxis], count, axis=0)
-    if np.isfinite(fit.covariance).all():
-        free = fit.final.free
-        slope = scale.slope(inner[0], best)[free]
-        covariance = fit.covariance / np.outer(slope, slope)
-        normal = np.random.default_rng(seed).multivariate_normal(
-            np.zeros(int(free.sum())), 0.5 * (covariance + covariance.T), size=count, method="eigh"
-        )
-        low, high = scale.inner_bounds
-        inner[:, free] = np.clip(inner[:, free] + normal, low[free], high[free])
-    return scale.outer(inner)
-
-
-def covariance_draws(fit: Fit, count: int, seed: int) -> Model:
-    """Return the flow curve with arrays of drawn parameters of shape (count,)."""
-    return fit.model_of(parameter_draws(fit, count, seed))
+    if fit.freedom < 1:
+        return np.repeat(fit.final.parameters[np.newaxis], count, axis=0)
+    return bootstrap_parameters(fit, count, seed)
 
 
 def shares(weights: Sequence[float], count: int) -> list[int]:
@@ -66,7 +41,9 @@ def shares(weights: Sequence[float], count: int) -> list[int]:
     return [int(part) for part in parts]
 
 
-def mixed_draws(fits: Fits, count: int, seed: int) -> tuple[Model, ...]:
+def mixed_draws(
+    fits: Fits, count: int, seed: int, key: str | None = None
+) -> tuple[Model | ScaledCurve, ...]:
     """Draw flow curves from all models fitted, each in proportion to its Akaike weight.
 
     Parameters
@@ -77,10 +54,12 @@ def mixed_draws(fits: Fits, count: int, seed: int) -> tuple[Model, ...]:
         Number of draws over all models.
     seed : int
         Of the random numbers.
+    key : str, optional
+        The only model to draw from.
 
     Returns
     -------
-    tuple of Model
+    tuple of Model or ScaledCurve
         With parameter arrays whose lengths add up to `count`; models with no draw are left out.
 
     Raises
@@ -88,9 +67,10 @@ def mixed_draws(fits: Fits, count: int, seed: int) -> tuple[Model, ...]:
     InputError
         If `count` is less than 1.
     """
-    parts = shares([fit.weight for fit in fits], count)
+    some = list(fits) if key is None else [fits[key]]
+    parts = shares([fit.weight if key is None else 1.0 for fit in some], count)
     return tuple(
-        covariance_draws(fit, part, seed + index)
-        for index, (fit, part) in enumerate(zip(fits, parts, strict=True))
+        fit.source_of(parameter_draws(fit, part, seed + index))
+        for index, (fit, part) in enumerate(zip(some, parts, strict=True))
         if part > 0
     )

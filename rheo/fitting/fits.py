@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from functools import cached_property
 
 from rheo.errors import Caution, InputError, merge_cautions
-from rheo.fitting.draws import covariance_draws, mixed_draws
+from rheo.fitting.draws import mixed_draws
 from rheo.fitting.ranking import TIE
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Weighting
@@ -119,9 +119,7 @@ class Fits:
         tuple
             With arrays whose lengths add up to `count`.
         """
-        if key is not None:
-            return (covariance_draws(self[key], count, seed),)
-        return mixed_draws(self, count, seed)
+        return mixed_draws(self, count, seed, key)
 
     def __repr__(self) -> str:
         rows = ", ".join(f"{fit.key} ({fit.weight:.2f})" for fit in self.ranking)

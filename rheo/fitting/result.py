@@ -10,6 +10,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import Caution, merge_cautions
+from rheo.fitting.bootstrap import bootstrap_parameters
 from rheo.fitting.final import Final, finish
 from rheo.fitting.identify import identification_cautions
 from rheo.fitting.intervals import FittedParameter, fitted_parameters
@@ -180,6 +181,26 @@ class Fit:
         """Return the flow curve at parameters of shape (..., p)."""
         keys = self.record.parameter_keys
         return Model(self.record, {key: parameters[..., i] for i, key in enumerate(keys)})
+
+    def bootstrap(self, count: int, seed: int = 1, kind: str = "residual") -> Model | ScaledCurve:
+        """Return the flow curve with arrays of parameters from refits to drawn readings.
+
+        Parameters
+        ----------
+        count : int
+            Number of replicates.
+        seed : int
+            Of the random numbers.
+        kind : str
+            ``residual`` or ``parametric``: see `bootstrap.bootstrap_parameters`.
+
+        Returns
+        -------
+        Model or ScaledCurve
+            With parameter arrays of shape (count,); a function of the state where several
+            temperatures or solids fractions were fitted.
+        """
+        return self.source_of(bootstrap_parameters(self, count, seed, kind))
 
     def source_of(self, parameters: FloatArray) -> Model | ScaledCurve:
         """Return the flow curve at all parameters of the fit, shape (..., p), as a line takes it.

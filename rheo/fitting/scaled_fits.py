@@ -9,7 +9,6 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import Caution, InputError
-from rheo.fitting.draws import parameter_draws, shares
 from rheo.fitting.entry import rank, records_of, task_of
 from rheo.fitting.final import global_minima
 from rheo.fitting.fits import Fits
@@ -67,31 +66,6 @@ class ScaledFits(Fits):
     def at(self, state: ArrayLike, key: str | None = None) -> Model:
         """Return the flow curve at a state; `cautions_at` says whether that is inside the data."""
         return self.source(key)(state)
-
-    def draws(self, count: int, seed: int = 1, key: str | None = None) -> tuple[ScaledCurve, ...]:
-        """Return drawn flow curves as functions of the state.
-
-        Parameters
-        ----------
-        count : int
-            Number of draws over all models.
-        seed : int
-            Of the random numbers.
-        key : str, optional
-            The only model to draw from; all, by Akaike weight, when absent.
-
-        Returns
-        -------
-        tuple of ScaledCurve
-            With arrays whose lengths add up to `count`.
-        """
-        fits = list(self) if key is None else [self[key]]
-        parts = [count] if key is not None else shares([fit.weight for fit in fits], count)
-        return tuple(
-            self._curve(fit, parameter_draws(fit, part, seed + index))
-            for index, (fit, part) in enumerate(zip(fits, parts, strict=True))
-            if part > 0
-        )
 
     def _curve(self, fit: Fit, parameters: FloatArray) -> ScaledCurve:
         return ScaledCurve(fit.record, self._law, tuple(np.moveaxis(parameters, -1, 0)))

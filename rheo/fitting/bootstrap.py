@@ -1,0 +1,114 @@
+"""Bootstrap of a fit: new readings drawn and fitted again, all replicates at once.
+
+B. Efron & R. J. Tibshirani, An Introduction to the Bootstrap, Chapman & Hall (1993), chapters 6
+and 9.
+"""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rheo.errors import InputError
+from rheo.fitting.core import minimise
+from rheo.fitting.problem import coordinates, weighted
+
+if TYPE_CHECKING:
+    from rheo.fitting.result import Fit
+
+FloatArray = NDArray[np.float64]
+
+KINDS = ("residual", "parametric")
+# A replicate's parameters need not be known better than a small part of their scatter; along a
+# valley that the readings do not close, further steps move the parameters and not the curve.
+_TOLERANCE = 1e-7
+_STEPS = 12
+_DAMPING = 1e-6
+# Replicates times readings fitted together, so that memory stays small.
+_BLOCK = 40_000
+
+
+def bootstrap_parameters(fit: Fit, count: int, seed: int = 1, kind: str = "residual") -> FloatArray:
+    """Return the parameters of refits to drawn readings.
+
+    Parameters
+    ----------
+    fit : Fit
+        A fitted model with more readings than free parameters.
+    count : int
+        Number of replicates, 1 or more.
+    seed : int
+        Of the random numbers.
+    kind : str
+        ``residual``: the weighted residuals of the fit are drawn with replacement, enlarged by
+        sqrt(n/(n - p)) for the parameters that were fitted; ``parametric``: normal residuals of
+        the fit's own scatter, or of the instrument's where the weighting states it and it is
+        larger.
+
+    Returns
+    -------
+    array, shape (count, p)
+        The model's parameters, then those of the instrument or of a scaling law.
+
+    Raises
+    ------
+    InputError
+        For a count below 1, an unknown kind, or as many free parameters as readings.
+    """
+    if count < 1:
+        raise InputError(f"the number of replicates is {count}; it must be 1 or more", "bootstrap")
+    if kind not in KINDS:
+        raise InputError(f"unknown kind '{kind}'; there are {', '.join(KINDS)}", "bootstrap")
+    if fit.freedom < 1:
+        raise InputError(
+            f"{fit.observed.size} readings and {int(fit.final.free.sum())} free parameters leave "
+            "no scatter to draw from; more readings are needed",
+            "bootstrap",
+        )
+    readings = drawn_readings(fit, count, seed, kind)
+    start = fit.final.parameters
+    scale = coordinates(fit.problem)
+    found = np.empty((count, start.size))
+    step = max(1, _BLOCK // fit.observed.size)
+    for first in range(0, count, step):
+        some = readings[first : first + step]
+        found[first : first + step] = minimise(
+            weighted([fit.problem], [len(some)], some),
+            np.repeat(start[np.newaxis], len(some), axis=0),
+            scale,
+            steps=_STEPS,
+            damping=_DAMPING,
+            tolerance=_TOLERANCE,
+        ).parameters
+    return found
+
+
+def drawn_readings(fit: Fit, count: int, seed: int, kind: str) -> FloatArray:
+    """Return readings (count, n) as they might have come out, all above 0.
+
+    A residual that would take a reading to 0 or below is drawn again.
+    """
+    random = np.random.default_rng(seed)
+    predicted = fit.predicted
+    sigma = fit.problem.weighting.sigma(predicted)
+    known = fit.problem.weighting.known
+    scatter = max(fit.scatter, 1.0) if known else fit.scatter
+    own = (predicted - fit.observed) / fit.problem.weighting.sigma(fit.observed)
+    own = own - own.mean()
+    size = np.sqrt(np.mean(own**2))
+    own = own * (scatter / size) if size > 0 else own
+
+    def residuals(shape: tuple[int, ...]) -> FloatArray:
+        if kind == "parametric":
+            return random.standard_normal(shape) * scatter
+        return random.choice(own, size=shape)
+
+    readings = predicted + sigma * residuals((count, predicted.size))
+    wrong = readings <= 0
+    while wrong.any():
+        column = np.nonzero(wrong)[1]
+        readings[wrong] = predicted[column] + np.abs(sigma[column] * residuals(column.shape))
+        wrong = readings <= 0
+    return readings
