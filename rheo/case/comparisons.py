@@ -62,7 +62,7 @@ def pressure_by_model(
         used = fit.key == result.chosen.key
         if not used and fit.weight < least_weight:
             continue
-        product = replace(result.product, model=fit.model, draws=())
+        product = replace(result.product, model=result.fits.source(fit.key), draws=())
         try:
             at = walk(
                 line.line,
