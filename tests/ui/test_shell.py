@@ -10,8 +10,8 @@ import pytest
 
 from rheo.case import case_from_text, load_case
 from rheo.line.safety import GENERAL, PRESSURE, START_UP
-from rheo.report.palette import DARK, LIGHT
 from rheo.report.display import SYSTEMS
+from rheo.report.palette import DARK, LIGHT
 from ui import opening, results, state, walk
 from ui.results import safe_name
 

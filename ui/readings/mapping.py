@@ -69,11 +69,11 @@ def show() -> None:
 
 def file_columns(readings: Readings | None, sheets: Sequence[Sheet]) -> tuple[FileColumn, ...]:
     """Return the columns of the set that is shown, read or not."""
-    block = sets.block()
     if readings is not None and readings.columns:
         first = readings.table[0].rows[0] if readings.table and readings.table[0].rows else ()
         here = [column for column in readings.columns if column.block == readings.columns[0].block]
         return tuple(_read_column(column, first) for column in here)
+    block = sets.block()
     sheet = next((one for one in sheets if one.name == block.sheet), None)
     sheet = sheet or next((one for one in sheets if one.headings), None)
     if sheet is None:

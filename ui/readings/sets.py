@@ -44,6 +44,7 @@ def show() -> None:
     if count < 2:
         return
     widget = state.key(f"set.{count}")
+    names = [label(index) for index in range(count)]
 
     def take() -> None:
         chosen = st.session_state[widget]
@@ -55,7 +56,7 @@ def show() -> None:
             "Set of readings",
             range(count),
             default=number(),
-            format_func=label,
+            format_func=names.__getitem__,
             key=widget,
             on_change=take,
         )
