@@ -10,6 +10,7 @@ import numpy as np
 
 from rheo.errors import Caution
 from rheo.fitting import Fit, Fits
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.hydraulics import PipeFlow
 from rheo.line.result import plain
 from rheo.models import Model
@@ -82,7 +83,7 @@ def fit_data(fit: Fit) -> dict[str, Any]:
 
 def fits_data(fits: Fits) -> dict[str, Any]:
     """Return the ranking with its reason."""
-    return {
+    found: dict[str, Any] = {
         "best": fits.best.key,
         "reason": fits.reason,
         "weighting": fits.weighting.name,
@@ -90,6 +91,16 @@ def fits_data(fits: Fits) -> dict[str, Any]:
         "skipped": dict(fits.skipped),
         "cautions": cautions_data(fits.cautions),
     }
+    if isinstance(fits, ScaledFits) and fits.law is not None:
+        found["state"] = {
+            "name": fits.law.state,
+            "unit": fits.law.unit,
+            "reference": fits.law.reference,
+            "range": plain(fits.range),
+            "equation": fits.law.equation,
+            "source": fits.law.source,
+        }
+    return found
 
 
 PIPE_NAMES = (

@@ -45,6 +45,12 @@ def fit(
     full_scale: Annotated[
         str | None, typer.Option("--full-scale", help="Torque at full scale: '10 mN.m'.")
     ] = None,
+    temperature: Annotated[
+        str | None,
+        typer.Option(
+            "--temperature", help="Where readings have several: give the values at '40 °C'."
+        ),
+    ] = None,
     exclude: Annotated[
         list[int] | None,
         typer.Option("--exclude", "-x", min=1, help="Leave out a reading, counted from 1."),
@@ -57,10 +63,10 @@ def fit(
     With a geometry, in the file or by --geometry, the models are fitted to what the instrument
     measured; without one, to shear rate and stress.
     """
-    from rheo.case.as_data import fits_data, readings_data
+    from rheo.case.as_data import cautions_data, fits_data, readings_data
     from rheo.case.load_readings import branch_of, weighting_of
-    from rheo.fitting import fit as fitted
-    from rheo.readings import read_readings
+    from rheo.fitting.any_state import fit_readings
+    from rheo.readings import read_readings, screen
 
     found = read_readings(
         readings,
@@ -78,10 +84,12 @@ def fit(
         found = found.with_excluded([number - 1 for number in exclude])
     chosen = branch_of(found, sweep)
     weights = weighting_of(weighting, percent_of_reading, percent_of_full_scale, chosen)
-    fits = fitted(chosen.flow_curve(), models=models or None, weighting=weights)
-    cautions = merge_cautions(found.cautions, fits.cautions)
+    at = optional_quantity(temperature, "K", "--temperature")
+    fits = fit_readings(chosen, models or None, weights, at)
+    cautions = merge_cautions(found.cautions, screen(found), fits.cautions)
     if as_json:
-        terminal.print_json({"readings": readings_data(found), **fits_data(fits)})
+        printed = {"readings": readings_data(found), **fits_data(fits)}
+        terminal.print_json({**printed, "cautions": cautions_data(cautions)})
         return
     out = terminal.console()
     show_readings(out, found, units.value)

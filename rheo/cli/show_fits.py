@@ -82,6 +82,7 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
     terminal.heading(
         out, f"{chosen.record.name[:1].upper()}{chosen.record.name[1:]}", chosen.record.equation
     )
+    _show_state(out, fits)
     words = {one.key: one.description for one in chosen.record.parameters}
     terminal.table(
         out,
@@ -98,6 +99,21 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
         ),
         left=2,
         least_wanted=(1, 3),
+    )
+
+
+def _show_state(out: Console, fits: Fits) -> None:
+    """Write at which temperature the parameters are given, and how they follow it."""
+    from rheo.fitting.scaled_fits import ScaledFits
+    from rheo.report.numbers import number
+
+    if not isinstance(fits, ScaledFits) or fits.law is None:
+        return
+    at = number(fits.law.reference)
+    if fits.law.unit == "K":
+        at = f"{fits.law.reference - 273.15:.1f} °C"
+    terminal.sentence(
+        out, f"One fit over every {fits.law.state}; values at {at}, and {fits.law.equation}."
     )
 
 

@@ -149,13 +149,13 @@ def show_parts(out: Console, result: LineResult, units: str) -> None:
 def _part_rows(parts: tuple[PartResult, ...], units: str) -> list[tuple[Any, ...]]:
     from rheo.report.display import shown
 
-    def cells(values: list[float | None], quantity: str, digits: int = 3) -> list[str]:
+    def cells(values: list[float | None], quantity: str) -> list[str]:
         converted = [None if one is None else float(shown(one, quantity, units)) for one in values]
-        return terminal.column(converted, digits)
+        return terminal.column(converted)
 
     pipes = [part.kind == "pipe" for part in parts]
-    losses = cells([float(part.pressure_loss) for part in parts], "pressure", 4)
-    heights = cells([float(part.elevation_pressure) or None for part in parts], "pressure", 4)
+    losses = cells([float(part.pressure_loss) for part in parts], "pressure")
+    heights = cells([float(part.elevation_pressure) or None for part in parts], "pressure")
     velocities = cells(_of_pipes([float(part.velocity) for part in parts], pipes), "velocity")
     rates = cells(_of_pipes([float(part.wall_rate) for part in parts], pipes), "rate")
     regimes = [_regime(part) for part in parts]

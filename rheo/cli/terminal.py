@@ -62,20 +62,19 @@ def given(value: float, quantity: str, units: str) -> str:
     return f"{exact(float(shown(value, quantity, units)))} {unit_label(quantity, units)}"
 
 
-def column(values: Sequence[float | None], digits: int = 3) -> list[str]:
+def column(values: Sequence[float | None]) -> list[str]:
     """Return numbers of one column to one decimal place, which the largest of them sets.
 
     Parameters
     ----------
     values : sequence of float or None
         None and NaN become empty cells.
-    digits : int
-        Digits of the largest.
 
     Returns
     -------
     list of str
-        A number too small for that place is written ``<0.001``, never ``0.000``.
+        The largest has three digits, or four from 1 to 10. A number too small for that place is
+        written ``<0.001``, never ``0.000``.
     """
     import math
 
@@ -83,9 +82,10 @@ def column(values: Sequence[float | None], digits: int = 3) -> list[str]:
 
     known = [abs(one) for one in values if one is not None and math.isfinite(one)]
     largest = max(known, default=0.0)
-    if largest >= 10.0**digits or largest < 1e-4:
+    if largest >= 1e4 or largest < 1e-4:
         return [number(one) if one is not None and math.isfinite(one) else "" for one in values]
-    places = max(0, digits - 1 - math.floor(math.log10(largest)))
+    size = math.floor(math.log10(largest))
+    places = max(0, 3 - size if size == 0 else 2 - size)
     step = 10.0**-places
     cells = []
     for one in values:

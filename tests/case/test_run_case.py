@@ -247,3 +247,45 @@ def test_two_sets_are_fitted_together(result):
     assert (
         both.chosen.parameters["flow_index"].stderr < result.chosen.parameters["flow_index"].stderr
     )
+
+
+def warm_table():
+    """Stresses of a power law whose consistency halves from 20 to 50 °C."""
+    rows = ["Shear rate [1/s],Shear stress [Pa],Temperature [°C]"]
+    for celsius, factor in ((20, 1.0), (50, 0.5)):
+        stress = factor * TRUTH.stress(RATES) * WOBBLE
+        rows += [
+            f"{a!r},{b!r},{celsius}" for a, b in zip(RATES.tolist(), stress.tolist(), strict=True)
+        ]
+    return "\n".join(rows)
+
+
+def test_readings_at_several_temperatures_give_the_curve_at_each_part():
+    cooled = changed(
+        CASE,
+        {
+            "readings.0.text": warm_table(),
+            "product.temperature": "50 °C",
+            "line.discharge.0.temperature": "20 °C",
+        },
+    )
+    found = rheo.run_case(cooled)
+    assert found.product.knows_temperature
+    assert found.product.temperature_range == pytest.approx((293.15, 323.15))
+    warm, cold = (found.product.model_at(kelvin) for kelvin in (323.15, 293.15))
+    ratio = float(warm.parameters["consistency"] / cold.parameters["consistency"])
+    assert ratio == pytest.approx(0.5, rel=0.02)
+    one = rheo.run_case(CASE)
+    riser = [next(p for p in r.line.parts if p.name == "riser") for r in (found, one)]
+    assert riser[0].pressure_loss == pytest.approx(riser[1].pressure_loss, rel=0.02)
+    state = found.as_dict()["fits"]["state"]
+    assert state["reference"] == pytest.approx(323.15)
+    assert state["range"] == pytest.approx([293.15, 323.15])
+
+
+def test_entrance_loss_is_fitted_at_one_temperature_only():
+    case = changed(CASE, {"readings.0.text": warm_table(), "fit.entrance": True})
+    with pytest.raises(
+        CaseError, match="fit: entrance loss and slip are fitted at one temperature"
+    ):
+        rheo.run_case(case)

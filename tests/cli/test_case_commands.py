@@ -228,6 +228,35 @@ def test_fit_with_a_geometry_of_the_options(command, folder):
     )
 
 
+def test_fit_in_what_was_measured_and_over_temperatures(command, folder):
+    truth = rheo.model("herschel-bulkley", yield_stress=8, consistency=3, flow_index=0.5)
+    cup = rheo.geometry("concentric-cylinders", inner_radius=0.008, outer_radius=0.016, length=0.04)
+    speeds = [0.5 * 2**step for step in range(10)]
+    torques = cup.predict(truth, [speed * 0.10471975511965977 for speed in speeds]).tolist()
+    rows = [
+        f"{speed},{factor * torque!r},{celsius}"
+        for celsius, factor in ((20, 1.0), (40, 0.6))
+        for speed, torque in zip(speeds, torques, strict=True)
+    ]
+    (folder / "cup.csv").write_text(
+        "# geometry: concentric-cylinders, inner_radius 8 mm, outer_radius 16 mm, length 40 mm\n"
+        "Speed [rpm],Torque [N.m],Temperature [°C]\n" + "\n".join(rows),
+        "utf-8",
+    )
+    only = ("-m", "herschel-bulkley", "--temperature", "20 °C")
+    ended = command("fit", folder / "cup.csv", *only, "--json")
+    assert (ended.status, ended.err) == (0, "")
+    printed = json.loads(ended.out)
+    found = printed["ranking"][0]["parameters"]
+    for key, value in (("yield_stress", 8), ("consistency", 3), ("flow_index", 0.5)):
+        assert found[key]["value"] == pytest.approx(value, rel=1e-4), key
+    assert printed["state"]["reference"] == pytest.approx(293.15)
+    assert (
+        "One fit over every temperature; values at 20.0 °C"
+        in command("fit", folder / "cup.csv", *only).out
+    )
+
+
 def test_size_recommends_within_the_limits(command, folder):
     edited(folder, "[pump]", '[limits]\nmax_velocity = "1 m/s"\n[pump]')
     ended = command("size", folder / "case.toml")
