@@ -20,7 +20,7 @@ _BRIDGE_SLOPE = 0.02
 _RATES = np.linspace(-25.0, 50.0, 151)
 # No fold has been met where the flow curve's own slope stays above the first value, and none
 # reaches beyond the rate at which it has risen to the second.
-_LOWEST_SLOPE = 0.4
+_LOWEST_SLOPE = 0.3
 _RISEN_SLOPE = 0.8
 _POINTS = 33
 _ZOOMS = 5
@@ -86,19 +86,21 @@ def _last_dip(
 ) -> tuple[FloatArray, FloatArray]:
     """Return ln(rate) and velocity [m/s] at the last local minimum; NaN where there is none."""
     grid = np.linspace(0.0, 1.0, _POINTS)
-    everyone = np.arange(pipe.size)
-    found = np.full(pipe.size, True)
-    best = np.full(pipe.size, np.nan)
+    place, best = np.full(pipe.size, np.nan), np.full(pipe.size, np.nan)
+    index = np.arange(pipe.size)
     for _ in range(_ZOOMS):
         at = low[:, np.newaxis] + (high - low)[:, np.newaxis] * grid
-        velocity = _smooth_velocity(pipe, method, at)
+        velocity = _smooth_velocity(pipe.take(index), method, at)
         middle = velocity[:, 1:-1]
         dip = (middle < velocity[:, :-2]) & (middle <= velocity[:, 2:]) & (middle > 0)
-        found &= np.any(dip, axis=1)
-        place = _POINTS - 2 - np.argmax(dip[:, ::-1], axis=1)
-        low, high = at[everyone, place - 1], at[everyone, place + 1]
-        best = velocity[everyone, place]
-    return np.where(found, 0.5 * (low + high), np.nan), best
+        rows = np.flatnonzero(np.any(dip, axis=1))
+        if rows.size == 0:
+            break
+        last = _POINTS - 2 - np.argmax(dip[rows, ::-1], axis=1)
+        index = index[rows]
+        place[index], best[index] = at[rows, last], velocity[rows, last]
+        low, high = at[rows, last - 1], at[rows, last + 1]
+    return place, best
 
 
 def _smooth_velocity(pipe: Pipe, method: TurbulentMethod, log_rate: FloatArray) -> FloatArray:

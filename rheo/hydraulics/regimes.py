@@ -86,7 +86,7 @@ def wall_at_velocity(pipe: Pipe, velocity: FloatArray, laminar_rate: FloatArray,
     wall = Wall(
         stress, laminar_rate.copy(), np.zeros(pipe.size, dtype=np.intp), np.zeros(pipe.size)
     )
-    index = np.flatnonzero(~_laminar_at_sight(pipe, laminar_rate, law))
+    index = np.flatnonzero(~_laminar_at_sight(pipe, velocity, laminar_rate, law))
     if index.size:
         share = progress(pipe.take(index), laminar_rate[index], law.criterion)
         index, share = index[share > 0], share[share > 0]
@@ -154,7 +154,7 @@ def velocity_at_wall(
     velocity[np.isposinf(rate)], regime[np.isposinf(rate)] = np.inf, TURBULENT
     index = np.flatnonzero((rate > 0) & np.isfinite(rate))
     velocity[index] = laminar_velocity(pipe.take(index), rate[index])
-    index = index[~_laminar_at_sight(pipe.take(index), rate[index], law)]
+    index = index[~_laminar_at_sight(pipe.take(index), velocity[index], rate[index], law)]
     if index.size:
         index = index[progress(pipe.take(index), rate[index], law.criterion) > 0]
     if index.size == 0:
@@ -196,8 +196,10 @@ def _inside_transition(
     return velocity, progress(pipe, laminar_rate(pipe, velocity), law.criterion)
 
 
-def _laminar_at_sight(pipe: Pipe, wall_rate: FloatArray, law: Law) -> NDArray[np.bool_]:
+def _laminar_at_sight(
+    pipe: Pipe, velocity: FloatArray, wall_rate: FloatArray, law: Law
+) -> NDArray[np.bool_]:
     """Return where flow is laminar without a search; only the stability criterion has a bound."""
     if law.criterion.key != "stability":
         return np.zeros(pipe.size, dtype=bool)
-    return surely_stable(pipe, wall_rate)
+    return surely_stable(pipe, velocity, wall_rate)
