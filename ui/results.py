@@ -131,7 +131,8 @@ def fitted_of(case: Case, files: Files) -> Outcome:
         return sets
     document = case.document()
     fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
-    fits_key = digest(_readings_key(case, files), fit)
+    # Density and particles are for screening; they do not change a fit.
+    fits_key = digest(document["readings"], _file_digests(files), fit)
     fits: Outcome = _fits(fits_key, case, sets.value)
     if fits.value is None:
         return fits

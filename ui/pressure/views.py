@@ -52,7 +52,8 @@ def show(result: CaseResult) -> None:
     view = VIEWS[str(chosen or "line")]
     with guard.Guard(), st.spinner("Working it out"):
         view.draw(result)
-    cautions.safety(*view.safety)
+    # The answer strip shows the start-up pressure above every view.
+    cautions.safety(*view.safety, "start-up")
 
 
 def text(words: str, kind: str = "lead") -> None:
