@@ -46,11 +46,28 @@ def critical_wall_rate(pipe: Pipe, criterion: Criterion) -> FloatArray:
     def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
         return np.log(criterion.number(pipe.take(index), np.exp(log_rate)))
 
-    # The Newtonian value for the viscosity at 1 1/s.
-    viscosity = pipe.model.record.stress(np.ones(pipe.size), *pipe.model)
-    start = np.log(16800.0 * viscosity / (pipe.density * pipe.diameter**2))
-    root = solve_rising(gap, start, step=2.0, low=-_FURTHEST, high=_FURTHEST)
+    start = np.nan_to_num(_estimate(pipe), posinf=_FURTHEST, neginf=-_FURTHEST)
+    root = solve_rising(gap, start, step=0.05, low=-_FURTHEST, high=_FURTHEST)
     return np.exp(root)
+
+
+def _estimate(pipe: Pipe) -> FloatArray:
+    """Return ln of the critical rate [1/s] of the power law along the flow curve's tangent.
+
+    For a power law the stability parameter, 808 there, is ρR²γ̇w²/τw n/(2+n)^((2+n)/(1+n)).
+    """
+
+    def gap(log_rate: FloatArray, index: IndexArray) -> FloatArray:
+        part, rate = pipe.take(index), np.exp(log_rate)
+        n = part.model.record.log_slope(rate, *part.model)
+        shape = np.log(n) - (2.0 + n) / (1.0 + n) * np.log(2.0 + n)
+        stress = part.model.record.stress(rate, *part.model)
+        return shape + 2.0 * log_rate - np.log(stress) + size[index]
+
+    size = np.log(pipe.density * pipe.diameter**2 / (4.0 * 808.0))
+    # The Newtonian value for the viscosity at 1 1/s.
+    start = np.log(pipe.model.record.stress(np.ones(pipe.size), *pipe.model)) - size + 1.0
+    return solve_rising(gap, start, step=2.0, low=-_FURTHEST, high=_FURTHEST)
 
 
 def critical_point(pipe: Pipe, criterion: Criterion) -> tuple[FloatArray, FloatArray]:

@@ -17,6 +17,8 @@ _NODES, _WEIGHTS = 0.5 * (1.0 + _NODES), 0.5 * _WEIGHTS
 _DEPTH_TOLERANCE = 1e-7
 _NUDGE = 1e-4
 _STEPS = 40
+# Elements at a time: what the second-level cache of a processor core holds.
+_BLOCK = 2048
 
 
 def stability_number(pipe: Pipe, wall_rate: FloatArray) -> tuple[FloatArray, FloatArray]:
@@ -40,6 +42,15 @@ def stability_number(pipe: Pipe, wall_rate: FloatArray) -> tuple[FloatArray, Flo
     depth : array
         ln(wall rate/rate) [-] where Z is largest.
     """
+    if pipe.size <= _BLOCK:
+        return _stability_number(pipe, wall_rate)
+    parts = [np.arange(at, min(at + _BLOCK, pipe.size)) for at in range(0, pipe.size, _BLOCK)]
+    found = [_stability_number(pipe.take(part), wall_rate[part]) for part in parts]
+    number, depth = zip(*found, strict=True)
+    return np.concatenate(number), np.concatenate(depth)
+
+
+def _stability_number(pipe: Pipe, wall_rate: FloatArray) -> tuple[FloatArray, FloatArray]:
     model = pipe.model
     wide = model.with_new_axis()
     top = np.log(wall_rate)
