@@ -135,7 +135,7 @@ def run_case(
     )
     cautions = merge_cautions(
         *(one.cautions for one in sets),
-        *(screen(one) for one in sets),
+        *(_screened(one, case) for one in sets),
         fits.data_cautions,
         chosen.cautions,
         _temperature_cautions(found.fitted, product),
@@ -220,6 +220,13 @@ def _rating(
         return rated
     at_hand = max(pump.heads) * float(np.asarray(product.density)) * GRAVITY
     return at_hand if rated is None else min(rated, at_hand)
+
+
+def _screened(readings: Readings, case: Case) -> tuple[Caution, ...]:
+    """What is doubtful in readings, but for what the fit takes into account."""
+    fitted = {"slip"} if case.fit.slip else set()
+    fitted |= {"entrance-loss"} if case.fit.entrance else set()
+    return tuple(one for one in screen(readings) if one.code not in fitted)
 
 
 def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution, ...]:

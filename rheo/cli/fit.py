@@ -51,6 +51,12 @@ def fit(
             "--temperature", help="Where readings have several: give the values at '40 °C'."
         ),
     ] = None,
+    entrance: Annotated[
+        bool, typer.Option("--entrance", help="Fit the entrance loss of the tubes too.")
+    ] = False,
+    slip: Annotated[
+        bool, typer.Option("--slip", help="Fit the slip coefficient of the tubes too.")
+    ] = False,
     exclude: Annotated[
         list[int] | None,
         typer.Option("--exclude", "-x", min=1, help="Leave out a reading, counted from 1."),
@@ -65,6 +71,7 @@ def fit(
     """
     from rheo.case.as_data import cautions_data, fits_data, readings_data
     from rheo.case.load_readings import branch_of, weighting_of
+    from rheo.fitting import fit as fitted
     from rheo.fitting.any_state import fit_readings
     from rheo.readings import read_readings, screen
 
@@ -85,7 +92,10 @@ def fit(
     chosen = branch_of(found, sweep)
     weights = weighting_of(weighting, percent_of_reading, percent_of_full_scale, chosen)
     at = optional_quantity(temperature, "K", "--temperature")
-    fits = fit_readings(chosen, models or None, weights, at)
+    if entrance or slip:
+        fits = fitted(chosen, models or None, weights, entrance=entrance, slip=slip)
+    else:
+        fits = fit_readings(chosen, models or None, weights, at)
     cautions = merge_cautions(found.cautions, screen(found), fits.cautions)
     if as_json:
         printed = {"readings": readings_data(found), **fits_data(fits)}

@@ -98,7 +98,7 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
             for key, one in chosen.parameters.items()
         ),
         left=2,
-        least_wanted=(1, 3),
+        least_wanted=(3, 1),
     )
 
 

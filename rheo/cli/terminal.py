@@ -55,11 +55,18 @@ def line(value: object, style: str = "") -> Text:
 
 
 def given(value: float, quantity: str, units: str) -> str:
-    """Return an SI value that the user gave in the unit shown, with the digits that it has."""
-    from rheo.report.display import shown, unit_label
-    from rheo.report.numbers import exact
+    """Return an SI value that the user gave in the unit shown, with the digits that it has.
 
-    return f"{exact(float(shown(value, quantity, units)))} {unit_label(quantity, units)}"
+    Where it was given in another unit, four digits are enough.
+    """
+    from rheo.report.display import shown, unit_label
+    from rheo.report.numbers import exact, number
+
+    found = float(shown(value, quantity, units))
+    words = exact(found)
+    if sum(sign.isdigit() for sign in words) > 5:
+        words = number(found, 4)
+    return f"{words} {unit_label(quantity, units)}"
 
 
 def column(values: Sequence[float | None]) -> list[str]:
@@ -192,9 +199,10 @@ def _columns_that_fit(
 ) -> list[int]:
     kept = list(range(len(longest)))
     for index in least_wanted:
-        # Columns of words up to SHORT are never broken; each column has a space on either side.
-        needed = sum(min(longest[i], SHORT if i < left else longest[i]) + 2 for i in kept)
-        if needed + 2 <= width:
+        # Columns of words up to SHORT are never broken; each column has a space on either side,
+        # and a rule, which is a space too, before it and after the last.
+        needed = 1 + sum(min(longest[i], SHORT if i < left else longest[i]) + 3 for i in kept)
+        if needed <= width:
             break
         kept.remove(index)
     return kept

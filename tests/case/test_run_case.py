@@ -285,7 +285,28 @@ def test_readings_at_several_temperatures_give_the_curve_at_each_part():
 
 def test_entrance_loss_is_fitted_at_one_temperature_only():
     case = changed(CASE, {"readings.0.text": warm_table(), "fit.entrance": True})
-    with pytest.raises(
-        CaseError, match="fit: entrance loss and slip are fitted at one temperature"
-    ):
+    with pytest.raises(CaseError, match="fit: entrance loss and slip are fitted at one"):
         rheo.run_case(case)
+
+
+def test_slip_that_is_fitted_is_no_longer_a_caution():
+    tubes = [
+        rheo.geometry("tube", diameter=size, length=1.5, slip_coefficient=2e-4)
+        for size in (0.008, 0.014, 0.025)
+    ]
+    rows = ["Diameter [m],Length [m],Flow [m3/s],Pressure drop [Pa]"]
+    for number, tube in enumerate(tubes):
+        flows = tube.setting_for_rate(TRUTH, RATES[::2] * 1.1**number)
+        drops = tube.predict(TRUTH, flows)
+        size = float(tube.dimensions["diameter"])
+        pairs = zip(flows.tolist(), drops.tolist(), strict=True)
+        rows += [f"{size!r},1.5,{flow!r},{drop!r}" for flow, drop in pairs]
+    ignored = changed(
+        CASE, {"readings.0.text": "\n".join(rows), "readings.0.geometry": {"kind": "tube"}}
+    )
+    fitted = changed(ignored, {"fit.slip": True, "fit.models": ["power-law"]})
+    assert "slip" in {one.code for one in rheo.run_case(ignored).cautions}
+    found = rheo.run_case(fitted)
+    assert "slip" not in {one.code for one in found.cautions}
+    assert found.chosen.parameters["slip_coefficient"].value == pytest.approx(2e-4, rel=1e-3)
+    assert found.chosen.parameters["flow_index"].value == pytest.approx(0.4, rel=1e-4)
