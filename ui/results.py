@@ -146,9 +146,13 @@ def result_of(case: Case, files: Files) -> Outcome:
     fitted = fitted_of(case, files)
     if fitted.value is None:
         return fitted
-    key = digest(case.document(), _file_digests(files))
-    found: Outcome = _result(key, case, fitted.value)
+    found: Outcome = _result(result_key(case, files), case, fitted.value)
     return found
+
+
+def result_key(case: Case, files: Files) -> str:
+    """Return what everything that follows from a result is kept by."""
+    return digest(case.document(), _file_digests(files))
 
 
 def _readings_key(case: Case, files: Files) -> str:

@@ -40,7 +40,7 @@ def _show_result(result: CaseResult) -> None:
         cautions.show(cautions.of(result.cautions, codes=("temperature-of-readings",)))
     with left:
         _show_picture(result if looked_at.key == result.chosen.key else other, looked_at)
-    ranking.show(result.fits, result.chosen)
+    ranking.show(result.fits, result.chosen, ranking.pressures_of(result))
     with st.expander("Parameters, with their intervals", expanded=True):
         blocks.show(parameter_table(looked_at), "parameters")
         st.caption(
