@@ -14,7 +14,8 @@ import streamlit as st
 
 from rheo.errors import Caution
 from rheo.line.safety import SAFETY_SENTENCES
-from ui import style
+from rheo.report.restate import restated
+from ui import state, style
 
 
 def of(
@@ -41,9 +42,10 @@ def html(caution: Caution) -> str:
     # Places in code form are for JSON; the sentence names what it is about.
     coded = "_" in caution.place
     where = f"{style.escape(caution.place, 60)}: " if caution.place and not coded else ""
+    sentence, advice = (restated(one, state.system()) for one in (caution.sentence, caution.advice))
     return (
-        f'<div class="rheo-caution" role="note">{where}{style.escape(caution.sentence)} '
-        f'<span class="advice">{style.escape(caution.advice)}</span></div>'
+        f'<div class="rheo-caution" role="note">{where}{style.escape(sentence)} '
+        f'<span class="advice">{style.escape(advice)}</span></div>'
     )
 
 

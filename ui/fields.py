@@ -96,7 +96,7 @@ def group(
     path: Path,
     fields: Sequence[Field],
     *,
-    columns: int = 4,
+    columns: int | Sequence[float] = 4,
     draft: dict[str, Any] | None = None,
     then: Callable[[], None] | None = None,
 ) -> None:
@@ -110,8 +110,8 @@ def group(
         Where the table stands in the case.
     fields : sequence of Field
         Fields that belong together.
-    columns : int
-        How many stand side by side.
+    columns : int or sequence of float
+        How many stand side by side, or the shares of the width that they take.
     draft : dict, optional
         A new table to take the place of what is there, with what it has besides the fields.
     then : callable, optional
@@ -148,8 +148,9 @@ def group(
 
         state.attempt(name, act)
 
-    for start in range(0, len(fields), columns):
-        row = fields[start : start + columns]
+    count = columns if isinstance(columns, int) else len(columns)
+    for start in range(0, len(fields), count):
+        row = fields[start : start + count]
         for column, one in zip(st.columns(columns, vertical_alignment="bottom"), row, strict=False):
             column.text_input(
                 one.label,

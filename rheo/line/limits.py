@@ -127,7 +127,7 @@ def make_check(
     passes = value <= limit if upper else value >= limit
     word = "at most" if upper else "at least"
     sentences = tuple(
-        f"{what} {factor * float(row):.3g} {unit} ({word} {factor * limit:.3g} allowed)"
+        f"{what} {factor * float(row):.3g} {unit} ({word} {factor * limit:.3g} {unit} allowed)"
         for row in value[:, 0]
     )
     return Check(key, value, passes, sentences)

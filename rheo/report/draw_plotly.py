@@ -296,6 +296,8 @@ def _aside(words: str, mark: Label) -> str:
     if mark.anchor != "middle":
         room = "&nbsp;" * 3
         words = room + words if mark.anchor == "start" else words + room
+    if mark.shift <= -12:
+        return f"&nbsp;<br>{words}"
     return f"{words}<br>&nbsp;" if mark.shift >= 12 else words
 
 

@@ -122,7 +122,7 @@ def test_every_value_is_that_of_the_line_by_itself() -> None:
 @pytest.mark.parametrize(
     ("limits", "reason"),
     [
-        (Limits(pressure=3e5), "(at most 3 allowed)"),
+        (Limits(pressure=3e5), "(at most 3 bar allowed)"),
         (Limits(max_velocity=1.0), "velocity"),
         (Limits(max_wall_rate=100.0), "wall shear rate"),
         (Limits(keep_to_measured_rates=True), "1/s (measured 0.5 to 150)"),

@@ -8,6 +8,7 @@ import streamlit as st
 
 from rheo.case import CaseResult
 from rheo.line.cleaning import cleaning
+from rheo.report import display
 from rheo.report.sections.starting import cleaning_section, holding_section
 from ui import blocks, cautions, fields, state
 from ui.fields import Field
@@ -20,18 +21,17 @@ _HOLDING = (
         "Inside diameter",
         "diameter",
         "Of the holding tube.",
-        placeholder="such as 48.6 mm",
     ),
     Field(
         "temperature",
-        "Holding temperature",
+        "Temperature",
         "temperature",
-        "Left empty: that of the product.",
+        "Of the product while it is held; left empty, that of the product in the line.",
     ),
 )
 _CLEANING = (
     Field("velocity", "Velocity wanted", "velocity", "1.5 m/s is common practice."),
-    Field("temperature", "Temperature of the water", "temperature"),
+    Field("temperature", "Water at", "temperature"),
 )
 
 
@@ -75,7 +75,8 @@ def _holding_fields() -> None:
         draft = {}
         size = parts.first_size(state.case())
         if size is not None:
-            st.caption(f"The line's own size has {1e3 * size.inside_diameter:.4g} mm inside.")
+            own = display.text(size.inside_diameter, "diameter", state.system())
+            st.caption(f"The pipes of the line have {own} inside.")
     elif block.size is not None:
         shown = tuple(one for one in _HOLDING if one.key != "inside_diameter")
     fields.group("holding", ("holding_tube",), shown, columns=3, draft=draft, then=_again)

@@ -18,7 +18,9 @@ from rheo.report.case_pictures import (
 )
 from rheo.report.document import Facts, Figure, Paragraph, Section
 from rheo.report.numbers import number
+from rheo.report.restate import restated
 from rheo.report.sections.pressure import pressure_section
+from rheo.report.sections.profile import profile_facts
 from rheo.report.sections.regimes import regime_sentence, regimes_table
 from rheo.report.sections.starting import start_up_section
 from rheo.report.sections.system import system_section
@@ -77,7 +79,7 @@ def show_section(section: Section, key: str) -> None:
         for place, figure in enumerate(figures):
             pictures.show(figure.picture, f"{key}.{place}", title=False)
             st.caption(style.plain(figure.caption or figure.picture.description))
-    with right:
+    with right, st.container(key=f"facts_beside_{key.replace('.', '_')}"):
         for fact in facts:
             blocks.show(fact, key)
     for rest in parts:
@@ -93,9 +95,21 @@ def _show_line(result: CaseResult) -> None:
         result.cautions,
         codes=("below-vapour-pressure", "npsh-negative", "npsh-unknown", "runs-by-itself"),
     )
-    facts = pressure_section(result.line, None, None, state.system())
-    show_section(facts, "pressure.facts")
+    _show_facts(result)
     cautions.show(result.cautions, codes=("viscous-heating", "product-not-as-measured"))
+
+
+def _show_facts(result: CaseResult) -> None:
+    """Draw the facts of the duty in two columns, and what their intervals hold."""
+    found = pressure_section(result.line, None, None, state.system()).blocks
+    rows = [row for one in found if isinstance(one, Facts) for row in one.rows]
+    half = (len(rows) + 1) // 2
+    for column, part in zip(st.columns(2, gap="large"), (rows[:half], rows[half:]), strict=True):
+        with column, st.container(key=f"facts_beside_duty_{len(part)}_{part[0][0]}"):
+            blocks.show(Facts(tuple(part)), "pressure.facts")
+    for one in found:
+        if isinstance(one, Paragraph):
+            blocks.show(one, "pressure.facts")
 
 
 def _show_system(result: CaseResult) -> None:
@@ -121,15 +135,20 @@ def _show_regime(result: CaseResult) -> None:
             key=state.key(f"pressure.pipe.{len(pipes)}"),
             width=320,
         )
+        left, right = st.columns([3, 2], gap="medium", vertical_alignment="center")
         picture = velocity_picture(result, pipes[chosen], system)
-        if picture is None:
-            st.caption(
-                f"The flow in {style.plain(pipes[chosen].name, 60)} is {pipes[chosen].regime}; "
-                "the velocity across it is drawn for laminar flow only."
-            )
-        else:
-            pictures.show(picture, "pressure.velocity", title=False)
-            st.caption(style.plain(picture.description))
+        with left:
+            if picture is None:
+                st.caption(
+                    f"The flow in {style.plain(pipes[chosen].name, 60)} is "
+                    f"{pipes[chosen].regime}; the velocity across it is drawn for laminar flow "
+                    "only."
+                )
+            else:
+                pictures.show(picture, "pressure.velocity", title=False)
+                st.caption(style.plain(picture.description))
+        with right, st.container(key="facts_beside_profile"):
+            blocks.show(profile_facts(result.pipes[chosen], system), "pressure.profile")
     blocks.show(regimes_table(margins, system), "pressure.regimes")
     st.caption(
         "Reynolds numbers are Metzner and Reed's. By all criteria: from the most careful to the "
@@ -149,7 +168,7 @@ def _show_start_up(result: CaseResult) -> None:
 
 def _show_doubt(result: CaseResult) -> None:
     budget = result.doubt
-    text(budget.sentence)
+    text(restated(budget.sentence, state.system()))
     left, right = st.columns([3, 2], gap="medium")
     with left:
         pictures.show(doubt_picture(result), "pressure.doubt", title=False)
@@ -170,7 +189,7 @@ def _show_doubt(result: CaseResult) -> None:
     following = result.next_readings
     if following is not None:
         st.markdown("**What to measure next**")
-        text(following.sentence, "")
+        text(restated(following.sentence, state.system()), "")
 
 
 def by_model(result: CaseResult, system: str) -> list[table.Row]:

@@ -98,20 +98,20 @@ def show(result: CaseResult) -> None:
 def _controls(result: CaseResult) -> None:
     system = state.system()
     degrees = display.unit_label("temperature_rise", system)
-    columns = st.columns([1.2, 1.5, 1.2, 1], vertical_alignment="bottom")
+    columns = st.columns([1.2, 1.2, 1.2, 1], vertical_alignment="bottom")
     flow = display.text(result.flow, "flow", system)
     _entry(columns[0], "flow", "Flow", f"now {flow}")
     key = _key("thicker")
-    columns[1].slider(
+    columns[1].number_input(
         "Thinner or thicker [%]",
-        -50,
-        200,
-        int(state.what_if().get("thicker") or 0),
-        5,
+        min_value=-90,
+        max_value=900,
+        value=int(state.what_if().get("thicker") or 0),
+        step=10,
         key=key,
         on_change=_take,
         args=("thicker",),
-        help="So much less or more stress at every shear rate.",
+        help="So much less or more stress at every shear rate; below 0 is thinner.",
     )
     _entry(
         columns[2],

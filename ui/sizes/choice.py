@@ -12,13 +12,15 @@ from rheo.line.sizing import Sizing
 from rheo.report import display
 from rheo.report.case_pictures import currency
 from rheo.report.numbers import number
+from rheo.report.restate import restated
 from rheo.report.words import percent
 from ui import cautions, state, style, table
 
 
 def show(result: CaseResult, sizing: Sizing) -> None:
     """Draw the recommendation and the button that takes it."""
-    st.html(f'<p class="rheo-text lead">{style.escape(sizing.sentence)}</p>')
+    sentence = restated(sizing.sentence, state.system())
+    st.html(f'<p class="rheo-text lead">{style.escape(sentence)}</p>')
     now = candidate_in_line(sizing, result.line.line)
     best = sizing.recommended
     with st.container(horizontal=True, vertical_alignment="bottom"):
@@ -67,7 +69,7 @@ def show_steps(result: CaseResult, sizing: Sizing) -> None:
     system = state.system()
     money = currency(result)
     headings: list[str | table.Number] = [
-        "Next to the size in the route",
+        "",
         "Size",
         table.Number(f"Pressure [{display.unit_label('pressure', system)}]"),
         table.Number(f"Velocity [{display.unit_label('velocity', system)}]"),
@@ -78,13 +80,18 @@ def show_steps(result: CaseResult, sizing: Sizing) -> None:
             table.Number(f"Energy [{money}/year]"),
             table.Number(f"Cost [{money}/year]"),
         ]
-    headings.append("")
-    rows = []
-    for words, step in (("One size down", smaller), ("In the route", at), ("One size up", larger)):
-        if step is None:
-            continue
-        rows.append(_row(words, step, at, system))
-    table.show(headings, rows)
+    headings.append("Verdict")
+    now = "In the route" if candidate_in_line(sizing, result.line.line) else "Recommended"
+    rows = [
+        _row(words, step, at, system)
+        for words, step in (("One size down", smaller), (now, at), ("One size up", larger))
+        if step is not None
+    ]
+    caption = (
+        "" if at.annual_cost is None else "Costs of the sizes beside it: more or less than it."
+    )
+    with st.container(key="sizes_steps"):
+        table.show(headings, rows, caption)
 
 
 def _row(words: str, step: SizeStep | Candidate, at: Candidate, system: str) -> table.Row:
@@ -103,7 +110,7 @@ def _row(words: str, step: SizeStep | Candidate, at: Candidate, system: str) -> 
             else:
                 value = getattr(one, key)
                 cells.append("" if value is None else number(value))
-    cells.append("passes" if one.passes else f"fails: {one.reasons[0]}")
+    cells.append("passes" if one.passes else f"fails: {restated(one.reasons[0], system)}")
     mark = "chosen" if one is at else "" if one.passes else "failed"
     return table.Row(cells, mark)
 

@@ -20,7 +20,7 @@ def show() -> None:
     """Draw the stop."""
     st.header("Note")
     result = answer_strip.need_result()
-    fields.group("note", (), _NAMES, columns=3)
+    fields.group("note", (), _NAMES, columns=(2, 1, 1))
     _show_purpose()
     # The note compares sizes too: done here, where it tells how far it is.
     if work.outcome("sizes", result, result.compare_sizes) is not None:
@@ -60,7 +60,8 @@ def _show_preview(result: CaseResult) -> None:
         st.markdown("**Preview**")
         with st.spinner("Writing the note"):
             page = files.preview(result)
-        st.iframe(page, height=files.PREVIEW_HEIGHT, alt="Preview of the design note")
+        with st.container(border=True, key="preview"):
+            st.iframe(page, height=files.PREVIEW_HEIGHT, alt="Preview of the design note")
 
 
 show()

@@ -35,7 +35,8 @@ def _show_sizing(result: CaseResult, sizing: Sizing) -> None:
     if picture is not None:
         pictures.show(picture, "sizes.picture", title=False)
         st.caption(picture.description)
-    blocks.show(sizes_table(sizing, currency(result), system), "sizes.table")
+    with st.container(key="sizes_table"):
+        blocks.show(sizes_table(sizing, currency(result), system), "sizes.table")
     st.markdown("**How the choice moves**")
     choice.show_moves(sizing, system)
     with st.expander("More about each size: hold time, NPSH, cleaning"):

@@ -9,6 +9,10 @@ import numpy as np
 
 from rheo.report.display import shown, text, unit_label
 from rheo.report.picture import Axis, Label, Line, Mark, Panel, Picture, Points, array
+from rheo.report.text import one_line
+
+# Names stand this share of the width apart at least, or they would run into each other.
+_APART = 0.16
 
 # Marker number of each kind of part, and the words for the legend.
 SYMBOLS: dict[str, tuple[int, int, str]] = {
@@ -100,6 +104,7 @@ def line_drawing(
         anchor = "start" if share < 0.05 else "end" if share > 0.95 else "middle"
         words = text(pressure, "pressure", system)
         marks.append(Label(x, y, words, anchor, shift=13.0 if above else -13.0))
+    marks += _names(parts, farthest, [place for place, *_ in pressures], system)
     heights = [end[1] for part in parts for end in (part.start, part.end)] or [0.0]
     low, high = (
         float(shown(min(heights), "length", system)),
@@ -118,3 +123,24 @@ def line_drawing(
         panels=(Panel(Axis("Elevation", unit, low=low - room, high=high + room), tuple(marks)),),
         height=300.0,
     )
+
+
+def _names(
+    parts: Sequence[DrawnPart], farthest: float, taken: Sequence[float], system: str
+) -> list[Mark]:
+    """Name vessels and equipment below the line, where there is room beside what is there."""
+    found: list[Mark] = []
+    # The pressures at both ends stand above the line, and leave the room below it free.
+    places = [at for at in taken if 0 < at < farthest]
+    for part in parts:
+        if part.kind not in ("vessel", "equipment"):
+            continue
+        distance, elevation = part.start
+        if any(abs(distance - other) < _APART * farthest for other in places):
+            continue
+        places.append(distance)
+        x, y = (float(v) for v in shown(array([distance, elevation]), "length", system))
+        share = distance / farthest if farthest > 0 else 0.5
+        anchor = "start" if share < 0.05 else "end" if share > 0.9 else "middle"
+        found.append(Label(x, y, one_line(part.name, 26), anchor, shift=-13.0, colour="muted"))
+    return found

@@ -95,7 +95,7 @@ def sizes(
                         hover=tuple(hover[i] for i in where),
                     )
                 )
-        high = _cut(values, failed, limits) if number == 0 else None
+        high = _top(values, failed, limits) if number == 0 else None
         panels.append(Panel(Axis(quantity, unit, low=0.0, high=high), (*bars, *limits)))
     shared, short = without_shared_words(names)
     longest = max((len(name) for name in short), default=1)
@@ -120,7 +120,7 @@ def sizes(
     )
 
 
-def _cut(values: np.ndarray, failed: np.ndarray, limits: Sequence[Mark]) -> float | None:
+def _top(values: np.ndarray, failed: np.ndarray, limits: Sequence[Mark]) -> float | None:
     """Return the top of the pressure axis: very small sizes would flatten all the others."""
     passing = values[~failed & np.isfinite(values)]
     known = [mark.value for mark in limits if isinstance(mark, Limit)]
@@ -128,4 +128,7 @@ def _cut(values: np.ndarray, failed: np.ndarray, limits: Sequence[Mark]) -> floa
         return None
     interesting = max([*known, *passing.tolist()])
     top = float(np.nanmax(values, initial=0.0))
-    return 1.6 * interesting if top > 3 * interesting else None
+    if top > 3 * interesting:
+        return 1.6 * interesting
+    # Room for the name of the limit above its line.
+    return max(1.1 * top, 1.35 * max(known)) if known else None

@@ -94,9 +94,9 @@ def system_curve(
                 dash=3,
             )
         )
-    for name, point, marker, up_by in (
-        ("asked for", duty, 3, -12.0),
-        ("operating point", operating, 0, 12.0),
+    for name, point, other, marker, up_by in (
+        ("asked for", duty, operating, 3, -12.0),
+        ("operating point", operating, duty, 0, 12.0),
     ):
         if point is not None:
             x, y = (
@@ -109,7 +109,7 @@ def system_curve(
             marks.append(
                 Points(array(x), array(y), name, style=style, marker=marker, hover=hover, size=12.0)
             )
-            marks.append(Label(x, y, where, "end" if x > 0.6 * across.max() else "start", up_by))
+            marks.append(Label(x, y, where, _side(point, other, float(np.max(array(flow)))), up_by))
     far = ""
     if rating is not None:
         at_rating = float(shown(rating, "pressure", system))
@@ -130,6 +130,13 @@ def system_curve(
         panels=(Panel(Axis("Pressure", unit_label("pressure", system)), tuple(marks)),),
         height=400.0,
     )
+
+
+def _side(point: tuple[float, float], other: tuple[float, float] | None, farthest: float) -> str:
+    """Return where the text beside a point begins, so that it stays clear of the other point."""
+    if other is not None and point[0] != other[0]:
+        return "end" if point[0] < other[0] else "start"
+    return "end" if point[0] > 0.6 * farthest else "start"
 
 
 def _pieces(words: NDArray[np.str_]) -> list[tuple[str, int, slice]]:

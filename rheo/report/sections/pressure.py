@@ -9,6 +9,7 @@ from rheo.report.display import text
 from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Section, Table
 from rheo.report.line_pictures import doubt_picture
 from rheo.report.numbers import number
+from rheo.report.restate import restated
 
 
 def pressure_text(line: LineResult, system: str) -> str:
@@ -76,7 +77,7 @@ def pressure_section(
     if budget is not None:
         blocks += _budget(budget, system)
     if following is not None:
-        blocks.append(Paragraph(following.sentence))
+        blocks.append(Paragraph(restated(following.sentence, system)))
         if following.cautions:
             blocks.append(Cautions(following.cautions))
     return Section("Pressure drop", tuple(blocks))
@@ -96,7 +97,7 @@ def _budget(budget: DoubtBudget, system: str) -> list[Block]:
         for one in budget.shares
     )
     blocks: list[Block] = [
-        Paragraph(budget.sentence),
+        Paragraph(restated(budget.sentence, system)),
         Figure(doubt_picture(budget)),
         Table(
             ("Cause", "Standard deviation of the pressure drop", "Share of the variance"),

@@ -38,7 +38,6 @@ def regime_sentence(margins: Sequence[RegimeMargin]) -> str:
 def regimes_table(margins: Sequence[RegimeMargin], system: str) -> Table:
     """Return for each pipe its regime and where laminar flow ends."""
     flow = unit_label("flow", system)
-    velocity = unit_label("velocity", system)
 
     def cell(value: float, quantity: str) -> str:
         return number(float(shown(value, quantity, system)))
@@ -49,8 +48,7 @@ def regimes_table(margins: Sequence[RegimeMargin], system: str) -> Table:
             one.regime,
             number(one.reynolds),
             number(one.critical_reynolds),
-            cell(one.velocity, "velocity"),
-            cell(one.critical_velocity, "velocity"),
+            percent(one.share),
             cell(one.critical_flow, "flow"),
             _span([cell(at, "flow") for at in sorted(at for _, at in one.by_criterion)]),
         )
@@ -62,13 +60,12 @@ def regimes_table(margins: Sequence[RegimeMargin], system: str) -> Table:
             "Regime",
             "Reynolds number [-]",
             "Critical Re [-]",
-            f"Velocity [{velocity}]",
-            f"Laminar up to [{velocity}]",
+            "Flow over that",
             f"Laminar up to [{flow}]",
             f"By all criteria [{flow}]",
         ),
         rows,
-        numeric=tuple(range(2, 8)),
+        numeric=tuple(range(2, 7)),
         states=tuple("flagged" if NEAR[0] < one.share < NEAR[1] else "" for one in margins),
     )
 

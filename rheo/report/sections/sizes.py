@@ -8,6 +8,7 @@ from rheo.report.display import shown, text, unit_label
 from rheo.report.document import Block, Cautions, Figure, Paragraph, Section, Table
 from rheo.report.line_pictures import sizes_picture
 from rheo.report.numbers import number, with_interval
+from rheo.report.restate import restated
 from rheo.report.words import without_shared_words
 
 
@@ -33,7 +34,7 @@ def sizes_section(
         With the figure, and a table with the reason for each size that fails.
     """
     blocks: list[Block] = [
-        Paragraph(sizing.sentence, "lead"),
+        Paragraph(restated(sizing.sentence, system), "lead"),
         Figure(sizes_picture(sizing, pressure_limit, currency, system)),
         sizes_table(sizing, currency, system),
     ]
@@ -86,7 +87,9 @@ def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
         if priced:
             row.append("" if one.annual_cost is None else number(one.annual_cost))
         verdict = "recommended" if one is sizing.recommended else "passes"
-        rows.append((*row, verdict if one.passes else "fails: " + "; ".join(one.reasons)))
+        rows.append(
+            (*row, verdict if one.passes else "fails: " + restated("; ".join(one.reasons), system))
+        )
     return Table(
         (*head, "Verdict"),
         tuple(rows),

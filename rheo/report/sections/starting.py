@@ -10,6 +10,7 @@ from rheo.line.start_up import StartUp
 from rheo.report.display import shown, text, unit_label
 from rheo.report.document import Block, Cautions, Facts, Paragraph, Section, Table
 from rheo.report.numbers import number
+from rheo.report.restate import restated
 
 
 def start_up_section(start: StartUp, system: str) -> Section:
@@ -34,7 +35,7 @@ def start_up_section(start: StartUp, system: str) -> Section:
     if start.heat_to is not None:
         rows.append(("Starts when warmed to", text(start.heat_to, "temperature", system)))
     blocks: list[Block] = [
-        Paragraph(start.sentence, "lead"),
+        Paragraph(restated(start.sentence, system), "lead"),
         Paragraph(start.safety, "safety"),
         Facts(tuple(rows)),
     ]
@@ -90,7 +91,7 @@ def holding_section(tube: HoldingTube, system: str) -> Section:
         ("Pressure drop", text(float(tube.pressure_drop), "pressure", system)),
     )
     blocks: list[Block] = [
-        Paragraph(tube.sentence, "lead"),
+        Paragraph(restated(tube.sentence, system), "lead"),
         Paragraph(tube.safety, "safety"),
         Facts(rows),
     ]

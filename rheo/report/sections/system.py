@@ -9,6 +9,8 @@ from rheo.report.display import text
 from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Section
 from rheo.report.line_pictures import system_picture
 from rheo.report.numbers import number
+from rheo.report.restate import restated
+from rheo.report.words import capital
 
 
 def system_section(
@@ -47,7 +49,7 @@ def system_section(
             )
         )
         return Section("System curve", tuple(blocks))
-    blocks.insert(0, Paragraph(operating.sentence, "lead"))
+    blocks.insert(0, Paragraph(capital(restated(operating.sentence, system)), "lead"))
     rows: list[tuple[str, str]] = []
     if operating.flow is not None and operating.pressure is not None:
         ends = operating.flow_interval or (None, None)
