@@ -6,16 +6,19 @@ import re
 
 import streamlit as st
 
+from rheo.case import Case
 from rheo.errors import InputError
 from ui import cautions, opening, results, state
+from ui.results import Files
 
 
 def show() -> None:
     """Draw the menu."""
+    case, files = state.case(), state.files()
     with st.popover("Open or save the case", icon=":material/folder_open:", width="stretch"):
         st.download_button(
             "Save the case",
-            data=_saved,
+            data=lambda: saved(case, files),
             file_name=file_name(),
             mime="application/toml",
             icon=":material/download:",
@@ -51,9 +54,10 @@ def file_name() -> str:
     return f"{stem[:50] or 'case'}.toml"
 
 
-def _saved() -> bytes:
+def saved(case: Case, files: Files) -> bytes:
+    """Return the case as a file; made when it is asked for, outside of the session."""
     try:
-        return results.saved_text(state.case(), state.files()).encode("utf-8")
+        return results.saved_text(case, files).encode("utf-8")
     except InputError as error:
         # The download has begun: a file that says what is wrong is better than a broken one.
         return f"# The case could not be saved: {state.sentence(error)}\n".encode()

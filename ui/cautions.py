@@ -55,6 +55,11 @@ def complaint(sentence: str) -> None:
         st.html(f'<div class="rheo-caution bad-edge" role="alert">{style.escape(sentence)}</div>')
 
 
+def note(sentence: str) -> None:
+    """Draw something to keep in mind that is no Caution of the calculation."""
+    st.html(f'<div class="rheo-caution" role="note">{style.escape(sentence)}</div>')
+
+
 def safety(*keys: str) -> None:
     """Draw safety sentences by their keys, and the general one after them."""
     wanted = dict.fromkeys((*keys, "general"))

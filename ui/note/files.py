@@ -8,7 +8,6 @@ from typing import Any
 import streamlit as st
 
 from rheo.case import CaseResult
-from rheo.errors import InputError
 from rheo.report import note_html, note_pdf, workbook
 from rheo.report.design_note import design_note
 from rheo.report.html import note_as_html
@@ -24,29 +23,31 @@ def show() -> None:
         return
     stem = case_menu.file_name().removesuffix(".toml")
     today, system = datetime.date.today(), state.system()
+    # The files are made when they are asked for, outside of the session: all they need is here.
+    key, case, files = result_key(result), state.case(), state.files()
     columns = st.columns(4)
     for column, (label, ending, mime, make, help_) in zip(
         columns,
         (
             (
                 "Note, PDF", "pdf", "application/pdf",
-                lambda: _pdf(result_key(result), result, today, system),
+                lambda: _pdf(key, result, today, system),
                 "A4, to be signed.",
             ),
             (
                 "Note, HTML", "html", "text/html",
-                lambda: _html(result_key(result), result, today, system),
+                lambda: _html(key, result, today, system),
                 "One file; its figures can be looked into without a network.",
             ),
             (
                 "Workbook, XLSX",
                 "xlsx",
                 "application/vnd.openxmlformats-officedocument.spreadsheetml.sheet",
-                lambda: _workbook(result_key(result), result, today),
+                lambda: _workbook(key, result, today),
                 "The chain of the calculation with live formulas, in SI.",
             ),
             (
-                "Case, TOML", "toml", "application/toml", _case,
+                "Case, TOML", "toml", "application/toml", lambda: case_menu.saved(case, files),
                 "All inputs with the readings in it. Open it here or with rheo run.",
             ),
         ),
@@ -73,15 +74,7 @@ def preview(result: CaseResult) -> str:
 
 def result_key(result: CaseResult) -> str:
     """Return what the files of a result are kept by."""
-    files = sorted((name, file.digest) for name, file in state.files().items())
-    return results.digest(result.case.document(), files)
-
-
-def _case() -> bytes:
-    try:
-        return results.saved_text(state.case(), state.files()).encode("utf-8")
-    except InputError as error:
-        return f"# The case could not be saved: {state.sentence(error)}\n".encode()
+    return results.result_key(result.case, state.files())
 
 
 @st.cache_data(max_entries=8, show_spinner=False)

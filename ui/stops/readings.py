@@ -74,7 +74,7 @@ def _show_borrowed() -> None:
         return
     listed = " and ".join([", ".join(parts[:-1]), parts[-1]] if len(parts) > 1 else parts)
     verb = "is" if len(parts) == 1 else "are"
-    cautions.complaint(
+    cautions.note(
         f"The {listed} {verb} still the sample's. Set the product's density below, and duty and "
         "line under Route, before you use the pressure drop."
     )
