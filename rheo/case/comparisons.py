@@ -10,6 +10,7 @@ from rheo.case.result import CaseResult
 from rheo.errors import InputError
 from rheo.fitting import Fit
 from rheo.hydraulics.registry import criteria
+from rheo.line.operating import OperatingPoint, operating_point
 from rheo.line.thickness import thicker
 from rheo.line.walk import walk
 
@@ -77,6 +78,19 @@ def pressure_by_model(
         pressure = float(at.differential_pressure)
         found.append(ModelPressure(fit, friction, pressure, friction / now - 1.0 if now else 0.0))
     return tuple(found)
+
+
+def central_operating_point(result: CaseResult) -> OperatingPoint | None:
+    """Return where pump and line meet by the flow curve itself, without its draws.
+
+    Some hundred times quicker than ``result.operating``, for comparisons; None where the pump's
+    curve is not known.
+    """
+    if result.pump is None:
+        return None
+    product = replace(result.product, draws=())
+    method = result.case.line.friction_method
+    return operating_point(result.line.line, product, result.pump, method)
 
 
 @dataclass(frozen=True)

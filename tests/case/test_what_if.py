@@ -5,7 +5,11 @@ import pytest
 
 import rheo
 from rheo.case import case_from_text
-from rheo.case.comparisons import pressure_by_model, regime_margins
+from rheo.case.comparisons import (
+    central_operating_point,
+    pressure_by_model,
+    regime_margins,
+)
 from rheo.case.run import fit_case
 from rheo.case.take_size import with_size
 from rheo.case.what_if import SolidsChange, WhatIf, what_if
@@ -149,3 +153,14 @@ def test_margins_to_the_end_of_laminar_flow(result):
     )
     assert regime_margins(fast)[2].regime != "laminar"
     assert regime_margins(fast)[2].share > 1
+
+
+def test_the_central_operating_point_is_that_of_the_flow_curve_alone(result):
+    assert central_operating_point(result) is None
+    pump = {"kind": "positive-displacement", "displacement": "1 L", "speed": "100 rpm"}
+    pump |= {"rated_pressure": "10 bar", "slip_flow": "0.5 m3/h", "slip_pressure": "5 bar"}
+    pumped = rheo.run_case(rheo.case.changed(CASE, {"pump": pump}), result.readings)
+    point = central_operating_point(pumped)
+    assert point.found
+    assert point.flow == pytest.approx(pumped.operating.flow, rel=1e-9)
+    assert point.flow_interval is None

@@ -32,11 +32,11 @@ from ui.shear_rates import line_rates
 
 @dataclass(frozen=True)
 class View:
-    """One view: its name, what draws it, and the safety sentences that belong to it."""
+    """One view: its name, what draws it, and the safety sentences that it needs besides."""
 
     name: str
     draw: Callable[[CaseResult], None]
-    safety: tuple[str, ...] = ("pressure",)
+    safety: tuple[str, ...] = ()
 
 
 @st.fragment
@@ -54,8 +54,8 @@ def show(result: CaseResult) -> None:
     view = VIEWS[str(chosen or "line")]
     with guard.Guard(), st.spinner("Working it out"):
         view.draw(result)
-    # The answer strip shows the start-up pressure above every view.
-    cautions.safety(*view.safety, "start-up")
+    # The answer strip shows both pressures above every view.
+    cautions.safety("pressure", "start-up", *view.safety)
 
 
 def text(words: str, kind: str = "lead") -> None:
@@ -216,9 +216,9 @@ def by_model(result: CaseResult, system: str) -> list[table.Row]:
 VIEWS = {
     "line": View("Along the line", _show_line),
     "system": View("System and pump", _show_system),
-    "regime": View("Regime and profile", _show_regime, ()),
-    "rates": View("Shear rates", _show_rates, ()),
-    "start": View("Start-up", _show_start_up, ("start-up",)),
+    "regime": View("Regime and profile", _show_regime),
+    "rates": View("Shear rates", _show_rates),
+    "start": View("Start-up", _show_start_up),
     "doubt": View("Doubt", _show_doubt),
-    "holding": View("Holding and cleaning", holding.show, ("food-safety", "pressure")),
+    "holding": View("Holding and cleaning", holding.show, ("food-safety",)),
 }

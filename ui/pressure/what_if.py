@@ -8,8 +8,10 @@ from typing import Any
 import streamlit as st
 
 from rheo.case import Case, CaseResult
+from rheo.case.comparisons import central_operating_point
 from rheo.case.what_if import SolidsChange, WhatIf, what_if
 from rheo.errors import InputError
+from rheo.line.operating import OperatingPoint
 from rheo.report import display
 from rheo.units import parse_quantity
 from ui import cautions, guard, results, state, table, words
@@ -200,10 +202,19 @@ def compared(result: CaseResult, other: CaseResult, system: str) -> list[list[st
         if None not in values:
             texts = [display.text(float(value), quantity, system) for value in values]
             rows.append([name, *texts, change(*map(float, values))])
+    points = [central_operating_point(one) for one in (result, other)]
+    if points[0] is not None and points[1] is not None:
+        rows.append(["The pump would give", *(_moves(one, system) for one in points), ""])
     rating = result.line.start_up.rating
     if rating is not None:
         rows.append(["Starts again after a stop", _starts(result), _starts(other), ""])
     return rows
+
+
+def _moves(point: OperatingPoint | None, system: str) -> str:
+    if point is None or not point.found:
+        return "! no operating point"
+    return display.text(point.flow, "flow", system)
 
 
 def _regimes(result: CaseResult) -> str:

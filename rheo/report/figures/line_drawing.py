@@ -141,6 +141,6 @@ def _names(
         places.append(distance)
         x, y = (float(v) for v in shown(array([distance, elevation]), "length", system))
         share = distance / farthest if farthest > 0 else 0.5
-        anchor = "start" if share < 0.05 else "end" if share > 0.9 else "middle"
+        anchor = "end" if share > 0.9 else "start"
         found.append(Label(x, y, one_line(part.name, 26), anchor, shift=-13.0, colour="muted"))
     return found
