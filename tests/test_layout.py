@@ -19,6 +19,7 @@ ROOT = Path(__file__).resolve().parent.parent
 # Each may import from itself and from those before it.
 ORDER = (
     ("units", "errors"),
+    ("registry",),
     ("models",),
     ("geometry",),
     ("readings",),

@@ -2,31 +2,21 @@
 
 from __future__ import annotations
 
-import difflib
-import importlib
-import pkgutil
 from collections.abc import Mapping
 from functools import cache
 from typing import cast
 
 from numpy.typing import ArrayLike
 
-from rheo.errors import InputError
 from rheo.geometry.dimensioned import Geometry
 from rheo.geometry.record import FloatArray, GeometryRecord
+from rheo.registry import named, records_in
 
 
 @cache
 def geometry_records() -> dict[str, GeometryRecord]:
     """Return the records of all geometries by key, in alphabetical order."""
-    import rheo.geometry as package
-
-    found: list[GeometryRecord] = []
-    for module in pkgutil.iter_modules(package.__path__):
-        record = getattr(importlib.import_module(f"rheo.geometry.{module.name}"), "RECORD", None)
-        if record is not None:
-            found.append(record)
-    found.sort(key=lambda record: record.key)
+    found = sorted(records_in("rheo.geometry", GeometryRecord), key=lambda record: record.key)
     return {record.key: record for record in found}
 
 
@@ -38,12 +28,7 @@ def geometry_record(key: str) -> GeometryRecord:
     InputError
         If no geometry has this key; the sentence names those that exist.
     """
-    records = geometry_records()
-    if key not in records:
-        near = difflib.get_close_matches(str(key), records, n=1)
-        hint = f" (did you mean '{near[0]}'?)" if near else ""
-        raise InputError(f"unknown geometry '{key}'{hint}; there are {', '.join(records)}")
-    return records[key]
+    return named(geometry_records(), key, "geometry")
 
 
 def make_geometry(key: str, **dimensions: ArrayLike) -> Geometry:

@@ -2,9 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
-import importlib
-import pkgutil
 from collections.abc import Mapping
 from functools import cache
 from typing import TypeVar
@@ -12,32 +9,28 @@ from typing import TypeVar
 from rheo.errors import InputError
 from rheo.hydraulics.record import Criterion, TurbulentMethod
 from rheo.models import Model
+from rheo.registry import named, records_in
 
 _Record = TypeVar("_Record", Criterion, TurbulentMethod)
 
 DEFAULT_CRITERION = "stability"
 
 
-def _records_in(package_name: str, kind: type[_Record]) -> dict[str, _Record]:
-    package = importlib.import_module(package_name)
-    found = []
-    for module in pkgutil.iter_modules(package.__path__):
-        record = getattr(importlib.import_module(f"{package_name}.{module.name}"), "RECORD", None)
-        if isinstance(record, kind):
-            found.append(record)
-    return {record.key: record for record in sorted(found, key=lambda record: record.key)}
+def _by_key(package_name: str, kind: type[_Record]) -> dict[str, _Record]:
+    found = sorted(records_in(package_name, kind), key=lambda record: record.key)
+    return {record.key: record for record in found}
 
 
 @cache
 def criteria() -> dict[str, Criterion]:
     """Return the records of all transition criteria by key."""
-    return _records_in("rheo.hydraulics.transition", Criterion)
+    return _by_key("rheo.hydraulics.transition", Criterion)
 
 
 @cache
 def turbulent_methods() -> dict[str, TurbulentMethod]:
     """Return the records of all turbulent methods by key."""
-    return _records_in("rheo.hydraulics.turbulent", TurbulentMethod)
+    return _by_key("rheo.hydraulics.turbulent", TurbulentMethod)
 
 
 def criterion(key: str, model: Model) -> Criterion:
@@ -66,18 +59,12 @@ def turbulent_method(key: str | None, model: Model) -> TurbulentMethod:
 
 
 def _chosen(key: str, model: Model, records: Mapping[str, _Record], what: str) -> _Record:
-    able = ", ".join(name for name, record in records.items() if record.applies(model))
-    if key not in records:
-        near = difflib.get_close_matches(str(key), records, n=1, cutoff=0.5)
-        hint = f" (did you mean '{near[0]}'?)" if near else ""
-        raise InputError(
-            f"unknown {what} '{key}'{hint}; for {model.key} there are {able}", "method"
-        )
-    record = records[key]
+    able = [name for name, record in records.items() if record.applies(model)]
+    record = named(records, key, what, able, f"for {model.key}", "method")
     if not record.applies(model):
         raise InputError(
             f"{what} '{key}' is made for {', '.join(record.models or ())}, not for {model.key}; "
-            f"for {model.key} there are {able}",
+            f"for {model.key} there are {', '.join(able)}",
             "method",
         )
     return record

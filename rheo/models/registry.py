@@ -2,29 +2,20 @@
 
 from __future__ import annotations
 
-import difflib
-import importlib
-import pkgutil
 from collections.abc import Mapping
 from functools import cache
 from typing import cast
 
 from numpy.typing import ArrayLike
 
-from rheo.errors import InputError
 from rheo.models.record import FloatArray, Model, ModelRecord
+from rheo.registry import named, records_in
 
 
 @cache
 def model_records() -> dict[str, ModelRecord]:
     """Return the records of all models by key, the simplest first."""
-    import rheo.models as package
-
-    found: list[ModelRecord] = []
-    for module in pkgutil.iter_modules(package.__path__):
-        record = getattr(importlib.import_module(f"rheo.models.{module.name}"), "RECORD", None)
-        if record is not None:
-            found.append(record)
+    found = records_in("rheo.models", ModelRecord)
     found.sort(key=lambda record: (len(record.parameters), record.has_yield_stress, record.key))
     return {record.key: record for record in found}
 
@@ -37,12 +28,7 @@ def model_record(key: str) -> ModelRecord:
     InputError
         If no model has this key; the sentence names those that exist.
     """
-    records = model_records()
-    if key not in records:
-        near = difflib.get_close_matches(str(key), records, n=1)
-        hint = f" (did you mean '{near[0]}'?)" if near else ""
-        raise InputError(f"unknown model '{key}'{hint}; there are {', '.join(records)}")
-    return records[key]
+    return named(model_records(), key, "model")
 
 
 def model(key: str, **parameters: ArrayLike) -> Model:
