@@ -71,6 +71,11 @@ class ScaledProblem:
         return self.law.x(self.state)
 
     @property
+    def rough_rates(self) -> FloatArray:
+        """Shear rates [1/s] that the readings are about, shape (n,)."""
+        return self.base.rough_rates
+
+    @property
     def geometry(self) -> Geometry | None:
         """Where the fluid was sheared; None for a flow curve."""
         return self.base.geometry if isinstance(self.base, ReadingProblem) else None
@@ -142,7 +147,7 @@ class ScaledProblem:
         if relation is not None:
             model = bare_model(self.record, columns)
             reading, slopes, _ = relation(
-                model, base.setting, base.geometry.dimensions, base.start_rate
+                model, base.setting, base.geometry.dimensions, base.rough_rates
             )
             if not np.isnan(reading).any():
                 return reading, slopes
