@@ -7,6 +7,8 @@ together can be given one after the other; until they fit, the case stays and th
 
 from __future__ import annotations
 
+import math
+import re
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -63,10 +65,10 @@ class Field:
             return f"{exact(100.0 * float(value))} %"
         if self.kind in _FIXED:
             si, shown, written = _FIXED[self.kind]
-            return f"{exact(float(from_si(float(value), si, written)))} {shown}"
+            return f"{tidy(value, float(from_si(float(value), si, written)))} {shown}"
         system = state.system()
         number = float(display.shown(float(value), self.kind, system))
-        return f"{exact(number)} {display.unit_label(self.kind, system)}"
+        return f"{tidy(value, number)} {display.unit_label(self.kind, system)}"
 
     def written(self, typed: str) -> Any:
         """Return what was typed as it stands in the case file."""
@@ -81,6 +83,24 @@ class Field:
             bare = typed.removesuffix(shown).strip()
             return f"{bare} {written}" if _is_number(bare) else typed
         return with_unit(typed, self.kind, state.system())
+
+
+def tidy(value: Any, number_shown: float) -> str:
+    """Return a number as a field shows it: as typed, or in another unit with four digits.
+
+    Parameters
+    ----------
+    value : Quantity or float
+        The value of the case, with the text from which it was read.
+    number_shown : float
+        The same in the unit shown.
+    """
+    written = str(getattr(value, "written", None) or "")
+    first = re.match(r"[-+−]?[\d.]+(?:[eE][-+]?\d+)?", written.strip())
+    typed = None if first is None else float(first[0].replace("−", "-"))
+    if typed is not None and math.isclose(typed, number_shown, rel_tol=1e-9, abs_tol=1e-12):
+        return exact(number_shown)
+    return exact(float(f"{number_shown:.4g}"))
 
 
 def _is_number(text: str) -> bool:
@@ -149,17 +169,19 @@ def group(
         state.attempt(name, act)
 
     count = columns if isinstance(columns, int) else len(columns)
-    for start in range(0, len(fields), count):
-        row = fields[start : start + count]
-        for column, one in zip(st.columns(columns, vertical_alignment="bottom"), row, strict=False):
-            column.text_input(
-                one.label,
-                value=before[one.key],
-                key=widgets[one.key],
-                on_change=take,
-                help=one.help or None,
-                placeholder=one.placeholder or None,
-            )
+    with st.container(key=state.key(f"fields_{name}_{'_'.join(map(str, path))}")):
+        for start in range(0, len(fields), count):
+            row = fields[start : start + count]
+            places = st.columns(columns, vertical_alignment="bottom")
+            for column, one in zip(places, row, strict=False):
+                column.text_input(
+                    one.label,
+                    value=before[one.key],
+                    key=widgets[one.key],
+                    on_change=take,
+                    help=one.help or None,
+                    placeholder=one.placeholder or None,
+                )
     cautions.complaint(state.complaint(name))
 
 

@@ -76,4 +76,4 @@ def _restate(match: re.Match[str], system: str) -> str:
 
 def _digits(text: str) -> int:
     digits = text.lstrip("-−").split("e")[0].replace(".", "").lstrip("0")
-    return min(max(len(digits), 2), 4)
+    return min(max(len(digits), 3), 4)

@@ -13,7 +13,7 @@ _VESSEL = (
     Field("name", "Name", TEXT),
     Field(
         "level",
-        "Liquid above the nozzle",
+        "Liquid level",
         "length",
         "Height of the surface above the nozzle; negative when the nozzle lies above it.",
     ),
