@@ -84,12 +84,12 @@ def sauce_rows() -> list[Row]:
 # --- mineral thickener underflow: tube viscometer, three diameters ---------------------------
 
 UNDERFLOW = {"yield_stress": 16.0, "consistency": 0.90, "flow_index": 0.62}
-UNDERFLOW_SLIP = 6.0e-5  # slip velocity over wall stress [m/(s.Pa)]
+UNDERFLOW_SLIP = 1.5e-4  # slip velocity over wall stress [m/(s.Pa)]
 UNDERFLOW_ENTRANCE = 2.5  # entrance loss in diameters
-UNDERFLOW_DIAMETERS = (8.0, 12.5, 20.0)  # mm
+UNDERFLOW_DIAMETERS = (8.0, 14.0, 25.0)  # mm
 UNDERFLOW_LENGTH = 2.0  # m
-UNDERFLOW_RATES = (25.0, 800.0)  # 1/s at the wall, lowest and highest
-UNDERFLOW_POINTS = 9
+UNDERFLOW_RATES = (30.0, 600.0)  # 1/s at the wall, lowest and highest
+UNDERFLOW_POINTS = 10
 
 
 def underflow_rows() -> list[Row]:
@@ -110,8 +110,8 @@ def underflow_rows() -> list[Row]:
         setting = tube.setting_for_rate(truth, wall_rate)
         flow = setting * 6e4  # L/min
         drop = tube.predict(truth, setting) / 1e3  # kPa
-        flow = _with_noise(noise, flow, 0.006, 0.001)
-        drop = _with_noise(noise, drop, 0.008, 0.02)
+        flow = _with_noise(noise, flow, 0.005, 0.001)
+        drop = _with_noise(noise, drop, 0.005, 0.02)
         rows += [
             (f"{diameter:.1f}", f"{UNDERFLOW_LENGTH:.3f}", f"{one:.3f}", f"{other:.2f}")
             for one, other in zip(flow, drop, strict=True)

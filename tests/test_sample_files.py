@@ -58,10 +58,24 @@ def test_fit_finds_the_true_sauce(celsius: float) -> None:
 
 
 def test_fit_finds_the_true_underflow() -> None:
-    fits = rheo.fit(rheo.read_readings(FOLDER / "thickener_readings.csv"))
+    readings = rheo.read_readings(FOLDER / "thickener_readings.csv")
+    best = rheo.fit(readings, entrance=True, slip=True).best
     truth = rheo.model("herschel-bulkley", **make_samples.UNDERFLOW)
-    # The slip and the entrance loss in the readings are not taken off here.
-    assert _worst_error(fits.best.model, truth, 30.0, 700.0) < 0.04
+    assert best.model.key == "herschel-bulkley"
+    assert _worst_error(best.model, truth, 30.0, 600.0) < 0.01
+    for key, value in (
+        ("entrance_diameters", make_samples.UNDERFLOW_ENTRANCE),
+        ("slip_coefficient", make_samples.UNDERFLOW_SLIP),
+    ):
+        assert best.parameters[key].low < value < best.parameters[key].high
+
+
+def test_slip_and_entrance_loss_show_in_the_underflow() -> None:
+    """Left out of the fit they bend the curve so far that another model is taken."""
+    readings = rheo.read_readings(FOLDER / "thickener_readings.csv")
+    best = rheo.fit(readings).best
+    truth = rheo.model("herschel-bulkley", **make_samples.UNDERFLOW)
+    assert _worst_error(best.model, truth, 30.0, 600.0) > 0.03
 
 
 def test_fit_finds_the_true_gum() -> None:
