@@ -61,21 +61,22 @@ class Coordinates:
         """
         width = max(part.lower.size for part in parts)
 
-        def rows(name: str, filler: float) -> NDArray[np.generic]:
-            kind = bool if name in {"logarithmic", "root"} else float
-            whole = np.full((len(parts), width), filler, dtype=kind)
-            for row, part in zip(whole, parts, strict=True):
-                row[: part.lower.size] = getattr(part, name)
-            return np.repeat(whole, counts, axis=0)
-
-        return cls(rows("lower", 0.0), rows("upper", 0.0), rows("logarithmic", 0), rows("root", 0))
+        bounds = np.zeros((2, len(parts), width))
+        kinds = np.zeros((2, len(parts), width), dtype=bool)
+        for row, part in enumerate(parts):
+            bounds[:, row, : part.lower.size] = part.lower, part.upper
+            kinds[:, row, : part.lower.size] = part.logarithmic, part.root
+        lower, upper = np.repeat(bounds, counts, axis=1)
+        logarithmic, root = np.repeat(kinds, counts, axis=1)
+        return cls(lower, upper, logarithmic, root)
 
     def at(self, rows: IntArray) -> Coordinates:
         """Return the coordinates of some of the searches."""
         if self.lower.ndim == 1:
             return self
-        parts = (self.lower, self.upper, self.logarithmic, self.root)
-        return Coordinates(*(part[rows] for part in parts))
+        return Coordinates(
+            self.lower[rows], self.upper[rows], self.logarithmic[rows], self.root[rows]
+        )
 
     @cached_property
     def inner_bounds(self) -> tuple[FloatArray, FloatArray]:

@@ -22,8 +22,10 @@ Evaluate = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
 _LEAST_DAMPING = 1e-12
 _GIVEN_UP = 1e9
 _NOTHING_LEFT = 1e-15
-# Damping this weak leaves a step along the flattest valley that double precision can tell.
+# Damping this weak leaves a step along the flattest valley that double precision can tell; a
+# search that may end earlier may end with stronger damping.
 _WEAK = 1e-10
+_WEAK_SHARE = 1e-3
 
 
 @dataclass(frozen=True, eq=False)
@@ -138,7 +140,7 @@ def _advance(
     better = fall > 0
     gain = np.where(better, fall / promised, 0.0)
     settled = (promised >= 0.0) & (promised <= tolerance * state.total)
-    settled &= (state.strength <= _WEAK) | ~better
+    settled &= (state.strength <= max(_WEAK, _WEAK_SHARE * tolerance**0.5)) | ~better
     weaker = np.clip(1.0 - (2.0 * gain - 1.0) ** 3, 0.05, 2.0)
     strength = state.strength * np.where(better, weaker, state.growth)
     state.strength = np.maximum(strength, _LEAST_DAMPING)
@@ -261,5 +263,8 @@ def central_differences(
     flat = moved.reshape(-1, count)
     values = np.asarray(function(flat.T[..., np.newaxis]), dtype=float)
     values = values.reshape(count, 4, rows, -1)
-    slopes = (8.0 * (values[:, 2] - values[:, 1]) - (values[:, 3] - values[:, 0])) / 12.0
-    return np.moveaxis(slopes / step.T[..., np.newaxis], 0, 1)
+    slopes: FloatArray = (
+        8.0 * (values[:, 2] - values[:, 1]) - (values[:, 3] - values[:, 0])
+    ) / 12.0
+    found: FloatArray = np.moveaxis(slopes / step.T[..., np.newaxis], 0, 1)
+    return found

@@ -9,14 +9,24 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.coordinates import Coordinates
-from rheo.fitting.core import minimise
+from rheo.fitting.core import Minimum, minimise
 from rheo.fitting.problem import Problem, bounds, coordinates, is_allowed, weighted
+from rheo.fitting.stack import lowest, padded
 
 FloatArray = NDArray[np.float64]
 
 # A parameter whose whole effect is below this share of every reading is at its bound of 0.
 _NO_EFFECT = 1e-9
 _SAME = 1e-12
+# Steps from every start, and then from the lowest of those that have not ended.
+_FIRST_STEPS = 40
+_FOLLOWED = 6
+_LAST_STEPS = 300
+_FAR, _NEAR = 1e-3, 1e-6
+_ROUNDING = 1e-14
+# lmfit starts at the minimum; where it wanders on, along a valley that the readings do not close,
+# nothing is to be gained.
+_LAST_EVALUATIONS = 50
 
 
 @dataclass(frozen=True, eq=False)
@@ -42,7 +52,7 @@ class Final:
 
 
 def global_minima(
-    problems: Sequence[Problem], starts: Sequence[FloatArray], **how: float
+    problems: Sequence[Problem], starts: Sequence[FloatArray], tolerance: float = 1e-15
 ) -> list[tuple[FloatArray, float]]:
     """Return parameters (p,) and sum of squares of the best of several searches of each problem.
 
@@ -52,35 +62,60 @@ def global_minima(
         Of the same readings with the same weights.
     starts : sequence of array, shape (c, p)
         Starting parameters of each.
-    **how : float
-        Passed on to `core.minimise`: damping, steps, tolerance.
+    tolerance : float
+        Relative fall of the sum of squares below which a search ends. Above rounding it says
+        that the starts are near the minimum.
     """
-    counts = [len(start) for start in starts]
-    width = max(start.shape[-1] for start in starts)
-    stacked = np.zeros((sum(counts), width))
-    edges = np.concatenate([[0], np.cumsum(counts)])
-    for start, first in zip(starts, edges, strict=False):
-        stacked[first : first + len(start), : start.shape[-1]] = start
-    scales = Coordinates.stacked([coordinates(problem) for problem in problems], counts)
-    found = minimise(weighted(problems, counts), stacked, scales, **how)
+    near = tolerance > _ROUNDING
+    found = _searched(problems, starts, _FIRST_STEPS, _NEAR if near else _FAR, tolerance)
+    if not all(one.converged.all() for one in found):
+        kept = [one.parameters[lowest(one.sum_of_squares, _FOLLOWED)] for one in found]
+        found = _searched(problems, kept, _LAST_STEPS, _NEAR, tolerance)
     minima = []
-    for problem, start, first in zip(problems, starts, edges, strict=False):
-        best = first + int(np.argmin(found.sum_of_squares[first : first + len(start)]))
-        values = found.parameters[best, : start.shape[-1]]
-        minima.append(_snapped(problem, values, float(found.sum_of_squares[best])))
+    for problem, one in zip(problems, found, strict=True):
+        best = int(np.argmin(one.sum_of_squares))
+        minima.append(_snapped(problem, one.parameters[best], float(one.sum_of_squares[best])))
     return minima
+
+
+def _searched(
+    problems: Sequence[Problem],
+    starts: Sequence[FloatArray],
+    steps: int,
+    damping: float,
+    tolerance: float,
+) -> list[Minimum]:
+    """Search from all starts of all problems at once; return the minima of each."""
+    counts = [len(start) for start in starts]
+    scales = Coordinates.stacked([coordinates(problem) for problem in problems], counts)
+    evaluate = weighted(problems, counts)
+    found = minimise(evaluate, padded(starts), scales, steps, damping, tolerance)
+    edges = np.cumsum([0, *counts])
+    return [
+        Minimum(
+            found.parameters[first:last, : start.shape[-1]],
+            found.sum_of_squares[first:last],
+            found.converged[first:last],
+            found.steps,
+        )
+        for start, first, last in zip(starts, edges[:-1], edges[1:], strict=True)
+    ]
 
 
 def _snapped(problem: Problem, parameters: FloatArray, total: float) -> tuple[FloatArray, float]:
     """Move parameters without effect to their bound of 0, if the fit is as good there."""
     lower, _ = bounds(problem)
     small = (lower == 0.0) & (parameters != 0.0)
+    small[len(problem.record.parameters) :] = False
     if not small.any():
         return parameters, total
     with np.errstate(all="ignore"):
-        predicted, slopes = problem.sensitivity(parameters[np.newaxis])
-        effect = np.abs(parameters[:, np.newaxis] * slopes[0])
-        small &= np.nan_to_num(np.max(effect / predicted[0], axis=-1), nan=np.inf) < _NO_EFFECT
+        rate = problem.rough_rates
+        values = [np.asarray(value) for value in parameters[: len(problem.record.parameters)]]
+        stress = problem.record.stress(rate, *values)
+        for index, slope in enumerate(problem.record.jacobian(rate, *values)):
+            effect = np.max(np.abs(parameters[index] * slope / stress))
+            small[index] &= bool(effect < _NO_EFFECT)
         if not small.any():
             return parameters, total
         moved = np.where(small, 0.0, parameters)
@@ -142,7 +177,14 @@ def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
     for index, value in enumerate(whole[free]):
         start.add(f"p{index}", value=float(value))
     result = lmfit.minimize(
-        residuals, start, Dfun=slopes, col_deriv=1, ftol=1e-15, xtol=1e-15, gtol=0.0
+        residuals,
+        start,
+        Dfun=slopes,
+        col_deriv=1,
+        ftol=1e-15,
+        xtol=1e-15,
+        gtol=0.0,
+        max_nfev=_LAST_EVALUATIONS,
     )
     ended = at(result.params)[0]
     inside = bool(np.all((ended >= lower) & (ended <= upper)))

@@ -70,7 +70,6 @@ class Fits:
         best, others = self.best, self.ranking[1:]
         name = best.record.name
         name = name[0].upper() + name[1:]
-        error = f"an RMS error of {best.rms_relative_error:.2g}" if best.rms_relative_error else ""
         error = f"an RMS error of {best.rms_relative_error:.2%}"
         if not others:
             return f"{name} is the only model fitted, with {error}."

@@ -27,10 +27,11 @@ _NODES, _WIDE_NODES = 24, 72
 _WIDE_GAP = 1.2
 _PASSES = 12
 # The last step is exact to the square of this.
-_NEAR = 1e-5
+_NEAR = 1e-4
 _LARGEST_STEP = 3.0
 # Deeper in ln(rate) nothing is left of the flow.
 _DEEPEST = -40.0
+_CLOSE = 1e-5
 
 
 @cache
@@ -42,8 +43,8 @@ def _rule(count: int) -> tuple[FloatArray, FloatArray]:
 
 def bob_stress(
     model: Model, speed: FloatArray, log_ratio: FloatArray, start: FloatArray
-) -> tuple[FloatArray, FloatArray]:
-    """Return the stress at the bob (b, n) and its derivatives (b, p, n) at given speeds.
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Return stress (b, n) at the bob, its derivatives (b, p, n) and the rate (b, n) there.
 
     Parameters
     ----------
@@ -56,7 +57,7 @@ def bob_stress(
     Returns
     -------
     tuple of array
-        NaN where Newton's method did not settle.
+        NaN where Newton's method did not settle. The rate is that before the last step.
     """
     position, weight = _rule(_WIDE_NODES if np.max(log_ratio) > _WIDE_GAP else _NODES)
     shape = np.broadcast_shapes(speed.shape, model.shape)
@@ -64,11 +65,15 @@ def bob_stress(
     at = np.broadcast_to(np.log(start), shape)
     width = np.where(np.isfinite(log_ratio), log_ratio, 0.0)
     local = model.with_new_axis()
+    # d ln(cup rate) below the bob's, from which the next pass starts; none before the first.
+    drop: FloatArray | None = None
     for last in range(_PASSES):
         rate = np.exp(at)
         stress = model.record.stress(rate, *model)
         slope = model.record.log_slope(rate, *model)
-        cup = np.minimum(_cup_rate(model, rate, stress, slope, log_ratio), rate)
+        if drop is None:
+            drop = np.maximum(-2.0 * log_ratio / np.maximum(slope, 0.01), _DEEPEST)
+        cup, drop = _cup_rate(model, at, stress, log_ratio, drop)
         span = rate - cup
         inside = cup[..., np.newaxis] + span[..., np.newaxis] * position
         bent = model.record.log_slope(inside, *local) * position / inside
@@ -85,26 +90,24 @@ def bob_stress(
         slopes[..., index, :] = stress * ((column / total) @ weight)
     # From the rate where Newton's method stands to the speed asked for, along the flow curve.
     onward = np.where(settled, np.exp(gap * slope / rise), np.nan)
-    return stress * onward, slopes * onward[..., np.newaxis, :]
+    return stress * onward, slopes * onward[..., np.newaxis, :], rate
 
 
 def _cup_rate(
-    model: Model, rate: FloatArray, stress: FloatArray, slope: FloatArray, log_ratio: FloatArray
-) -> FloatArray:
-    """Return the shear rate [1/s] at the cup, 0 where the fluid is at rest there.
+    model: Model, at: FloatArray, stress: FloatArray, log_ratio: FloatArray, drop: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Return the shear rate [1/s] at the cup, 0 where the fluid rests, and ln of cup over bob rate.
 
-    Its error enters the speed in second order only, so that a solution to 1e-6 is enough.
+    Its error enters the speed in second order only, so that a solution to 1e-5 is enough.
     """
     if model.record.rate is not None:
-        return model.record.rate(stress * np.exp(-2.0 * log_ratio), *model)
+        return model.record.rate(stress * np.exp(-2.0 * log_ratio), *model), drop
     wanted = np.log(stress) - 2.0 * log_ratio
-    at = np.log(rate) + np.maximum(-2.0 * log_ratio / np.maximum(slope, 0.01), _DEEPEST)
-    lowest = np.log(rate) + _DEEPEST
     for _ in range(_PASSES):
-        here = np.exp(at)
+        here = np.exp(at + drop)
         gap = wanted - np.log(model.record.stress(here, *model))
         step = gap / np.maximum(model.record.log_slope(here, *model), 0.01)
-        at = np.maximum(at + step, lowest)
-        if not np.any(np.abs(step) > 1e-6):
+        drop = np.clip(drop + step, _DEEPEST, 0.0)
+        if not (np.abs(step) > _CLOSE).any():
             break
-    return np.exp(at)
+    return np.exp(at + drop), drop

@@ -43,6 +43,10 @@ class Problem(Protocol):
     def order(self) -> NDArray[np.intp]:
         """Indices of the readings in rising order of the setting, shape (n,)."""
 
+    @property
+    def rough_rates(self) -> FloatArray:
+        """Shear rates [1/s] that the readings are about, shape (n,)."""
+
     def predict(self, parameters: FloatArray) -> FloatArray:
         """Return predicted readings, shape (..., n)."""
 
@@ -81,6 +85,11 @@ class CurveProblem:
     def order(self) -> NDArray[np.intp]:
         """Indices of the readings in rising order of the shear rate."""
         return np.argsort(self.rate, kind="stable")
+
+    @property
+    def rough_rates(self) -> FloatArray:
+        """The shear rates [1/s] of the readings."""
+        return self.rate
 
     def predict(self, parameters: FloatArray) -> FloatArray:
         """Return predicted stresses [Pa], shape (..., n)."""

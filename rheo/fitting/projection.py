@@ -212,7 +212,7 @@ def shape_coordinates(key: str, record: ModelRecord) -> Coordinates:  # noqa: AR
     known = {one.key: one for one in record.parameters}
     names = record.separable.shape
     lower = np.array([known[name].lower if name in known else 0.0 for name in names])
-    upper = np.array([known[name].upper if name in known else 1e15 for name in names])
+    upper = np.array([known[name].upper if name in known else 1e18 for name in names])
     logarithmic = np.array(record.separable.logarithmic, dtype=bool)
     lower = np.where(logarithmic & (lower <= 0.0), 1e-12, lower)
     values, along = shape_directions(record, lower[np.newaxis], np.ones((1, 2)))

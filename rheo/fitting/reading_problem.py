@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.problem import bare_model, columns_of
+from rheo.fitting.reading_slopes import RELATIONS
 from rheo.fitting.weighting import Weighting
 from rheo.geometry import Geometry
 from rheo.models import Model, ModelRecord, Parameter
@@ -34,6 +35,8 @@ class ReadingProblem:
         Angular speed [rad/s] or flow [m3/s], and measured torque [N m] or pressure drop [Pa].
     weighting : Weighting
         How much each reading counts.
+    rough_rates : array, shape (n,)
+        Roughly the largest shear rate at each reading [1/s], from which solutions start.
     extra : tuple of Parameter
         Dimensions of the geometry that are fitted with the model, by their keys.
     """
@@ -43,7 +46,10 @@ class ReadingProblem:
     setting: FloatArray
     observed: FloatArray
     weighting: Weighting
+    rough_rates: FloatArray
     extra: tuple[Parameter, ...] = ()
+    # Rates of the last solution, from which the next one starts; no result depends on them.
+    _solved: dict[str, FloatArray] = field(default_factory=dict, init=False, repr=False)
 
     @cached_property
     def order(self) -> NDArray[np.intp]:
@@ -54,14 +60,27 @@ class ReadingProblem:
         """Return predicted readings, shape (..., n)."""
         model, dimensions = self._parts(parameters)
         record = self.geometry.record
-        rate, stress = record.sheared_at(model, self.setting, *dimensions)
-        return record.reading_at(model, rate, stress, *dimensions)
+        rate, stress = record.sheared_at(model, self.setting, *dimensions.values())
+        return record.reading_at(model, rate, stress, *dimensions.values())
 
     def sensitivity(self, parameters: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """Return predicted readings (b, n) and their derivatives (b, p, n), by differences.
+        """Return predicted readings (b, n) and their derivatives (b, p, n)."""
+        relation = RELATIONS.get(self.geometry.key)
+        if relation is None:
+            return self._by_differences(parameters)
+        model, dimensions = self._parts(parameters)
+        start = self._solved.get("rate", self.rough_rates)
+        reading, slopes, others, rate = relation(model, self.setting, dimensions, start)
+        if np.isnan(reading).any():
+            return self._by_differences(parameters)
+        self._solved["rate"] = np.broadcast_to(rate, reading.shape)[0]
+        if not self.extra:
+            return reading, slopes
+        more = [np.broadcast_to(others[one.key], reading.shape) for one in self.extra]
+        return reading, np.concatenate([slopes, np.stack(more, axis=1)], axis=1)
 
-        All shifted parameters go through the geometry in one call.
-        """
+    def _by_differences(self, parameters: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Return `sensitivity` by differences; all shifted parameters go through in one call."""
         count = parameters.shape[-1]
         step = self._steps(parameters)
         moved = np.repeat(parameters[:, np.newaxis, :], count + 1, axis=1)
@@ -75,17 +94,16 @@ class ReadingProblem:
     def rates(self, parameters: FloatArray) -> FloatArray:
         """Return the shear rates [1/s] where the stress is largest, shape (n,)."""
         model, dimensions = self._parts(parameters)
-        rate, _ = self.geometry.record.sheared_at(model, self.setting, *dimensions)
+        rate, _ = self.geometry.record.sheared_at(model, self.setting, *dimensions.values())
         return np.broadcast_to(rate, self.setting.shape)
 
-    def _parts(self, parameters: FloatArray) -> tuple[Model, list[FloatArray]]:
+    def _parts(self, parameters: FloatArray) -> tuple[Model, dict[str, FloatArray]]:
         """Return the model and the dimensions, each with a trailing axis for the readings."""
         columns = columns_of(parameters)
         keys = self.record.parameter_keys
         model = bare_model(self.record, columns[: len(keys)])
         fitted = dict(zip((one.key for one in self.extra), columns[len(keys) :], strict=True))
-        dimensions = {**self.geometry.dimensions, **fitted}
-        return model, list(dimensions.values())
+        return model, {**self.geometry.dimensions, **fitted}
 
     def _steps(self, parameters: FloatArray) -> FloatArray:
         """Return steps (b, p) that change readings by about a part in a million."""

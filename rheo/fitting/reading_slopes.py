@@ -20,8 +20,9 @@ from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
 Dimensions = Mapping[str, FloatArray]
-# reading (b, n), its derivatives by the model's parameters (b, p, n) and by fitted dimensions.
-Slopes = tuple[FloatArray, FloatArray, dict[str, FloatArray]]
+# Reading (b, n), its derivatives by the model's parameters (b, p, n) and by fitted dimensions, and
+# the largest shear rate (b, n).
+Slopes = tuple[FloatArray, FloatArray, dict[str, FloatArray], FloatArray]
 Relation = Callable[[Model, FloatArray, Dimensions, FloatArray], Slopes]
 
 _POWER, _NODES = 3, 40
@@ -58,52 +59,52 @@ def _cylinders(key: str) -> Relation:
     def relation(
         model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray
     ) -> Slopes:
-        ratio = np.inf
+        ratio = np.asarray(np.inf)
         if "outer_radius" in dimensions:
             ratio = dimensions["outer_radius"] / dimensions["inner_radius"]
         log_ratio = np.broadcast_to(np.log(ratio), setting.shape)
-        stress, slopes = bob_stress(model, setting, log_ratio, start)
+        stress, slopes, rate = bob_stress(model, setting, log_ratio, start)
         factor = np.broadcast_to(
             _scaled(geometry_record(key), dimensions, np.asarray(1.0)), setting.shape
         )
-        return stress * factor, slopes * factor, {}
+        return stress * factor, slopes * factor, {}, rate
 
     return relation
 
 
-def _cone(model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray) -> Slopes:
+def _cone(model: Model, setting: FloatArray, dimensions: Dimensions, _: FloatArray) -> Slopes:
     record = geometry_record("cone-plate")
     rate, stress = record.sheared_at(model, setting, *dimensions.values())
     factor = np.broadcast_to(_scaled(record, dimensions, np.asarray(1.0)), setting.shape)
     slopes = np.empty((stress.shape[0], len(model.record.parameters), setting.size))
     for index, column in enumerate(model.record.jacobian(rate, *model)):
         slopes[:, index] = column
-    return stress * factor, slopes * factor, {}
+    return stress * factor, slopes * factor, {}, rate
 
 
-def _plates(model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray) -> Slopes:
+def _plates(model: Model, setting: FloatArray, dimensions: Dimensions, _: FloatArray) -> Slopes:
     """M = 2πR³∫τ x² dx with x = γ̇/γ̇_R."""
     record = geometry_record("parallel-plate")
     rate, stress = record.sheared_at(model, setting, *dimensions.values())
     reading = record.reading_at(model, rate, stress, *dimensions.values())
     position, _ = _rule()
     rates = np.broadcast_to(rate, stress.shape)
-    means = _means(model, rates, lambda local, inside: position**2)
-    return reading, 2.0 * np.pi * dimensions["radius"] ** 3 * means, {}
+    means = _means(model, rates, lambda *_: position**2)
+    return reading, 2.0 * np.pi * dimensions["radius"] ** 3 * means, {}, rate
 
 
-def _slot(model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray) -> Slopes:
-    """Nominal rate G = (3/τ_w²)∫τγ̇dτ: dG = -(3/τ_w²)∫τ dτ dγ̇ at a wall stress, G' = (3γ̇_w - 2G)/τ_w."""
+def _slot(model: Model, setting: FloatArray, dimensions: Dimensions, _: FloatArray) -> Slopes:
+    """3V/h = G = (3/τ_w²)∫τγ̇dτ, G' = (3γ̇_w - 2G)/τ_w; at a wall stress dG = -(3/τ_w²)∫τ dτ dγ̇."""
     record = geometry_record("slot")
     rate, stress = record.sheared_at(model, setting, *dimensions.values())
     nominal, _ = record.nominal_forms["newtonian"](setting, setting, *dimensions.values())
     means = _means(model, rate, lambda local, inside: local.record.stress(inside, *local))
     share = 3.0 * rate / (stress * (3.0 * rate - 2.0 * nominal))
     factor = np.broadcast_to(_scaled(record, dimensions, np.asarray(1.0)), setting.shape)
-    return stress * factor, (share * factor)[:, np.newaxis] * means, {}
+    return stress * factor, (share * factor)[:, np.newaxis] * means, {}, rate
 
 
-def _tube(model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray) -> Slopes:
+def _tube(model: Model, setting: FloatArray, dimensions: Dimensions, _: FloatArray) -> Slopes:
     """8V/D = G + 8βτ_w/D with G = (4/τ_w³)∫τ²γ̇dτ, G' = (4γ̇_w - 3G)/τ_w; ΔP = 4τ_w(L/D + e).
 
     A fluid that slides as a block has a wall stress that slip alone decides.
@@ -124,7 +125,7 @@ def _tube(model: Model, setting: FloatArray, dimensions: Dimensions, start: Floa
         "entrance_diameters": 4.0 * stress,
         "slip_coefficient": -8.0 * stress / diameter / rise * aspect,
     }
-    return stress * aspect, (share * aspect)[:, np.newaxis] * means, extra
+    return stress * aspect, (share * aspect)[:, np.newaxis] * means, extra, rate
 
 
 RELATIONS: Mapping[str, Relation] = {

@@ -146,7 +146,7 @@ class ScaledProblem:
         relation = RELATIONS.get(base.geometry.key)
         if relation is not None:
             model = bare_model(self.record, columns)
-            reading, slopes, _ = relation(
+            reading, slopes, *_ = relation(
                 model, base.setting, base.geometry.dimensions, base.rough_rates
             )
             if not np.isnan(reading).any():

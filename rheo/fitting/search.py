@@ -15,15 +15,13 @@ from rheo.fitting.projection import (
     raw_parameters,
     sizes_from,
 )
-from rheo.fitting.stack import Stack
+from rheo.fitting.stack import Stack, lowest, padded
 from rheo.models import ModelRecord
 
 FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]
 
 _WORST = np.finfo(float).max
-# Minima whose sums of squares agree to this are one minimum.
-_APART = 1e-7
 
 
 @dataclass(frozen=True)
@@ -34,6 +32,9 @@ class Effort:
     ----------
     points : int
         Largest number of points for which the grid is worked out: it needs their course only.
+    cells : int
+        Largest number of cells of a grid; every second value of its axes is left out until it
+        is met.
     first_steps : int
         Steps from every cell of the grid that is the lowest of its line.
     kept : int
@@ -42,17 +43,24 @@ class Effort:
         Steps from each of these.
     tolerance : float
         Relative fall of the sum of squares below which a search ends.
+    direct : int
+        Number of shape coordinates from which on the cells of the grid are returned too, as they
+        are: with so many, a search over all parameters finds other minima than one over the shape.
     """
 
     points: int
+    cells: int
     first_steps: int
     kept: int
     steps: int
     tolerance: float
+    direct: int
 
 
-THOROUGH = Effort(points=200, first_steps=5, kept=16, steps=100, tolerance=1e-15)
-QUICK = Effort(points=15, first_steps=0, kept=3, steps=12, tolerance=1e-6)
+THOROUGH = Effort(
+    points=200, cells=10_000, first_steps=5, kept=16, steps=100, tolerance=1e-15, direct=3
+)
+QUICK = Effort(points=15, cells=600, first_steps=0, kept=2, steps=8, tolerance=1e-4, direct=99)
 
 
 def search(
@@ -80,17 +88,21 @@ def search(
     """
     with np.errstate(all="ignore"):
         thin = _thinned(rate, stress, sigma, effort.points)
-        cells = [_best_cells(record, *thin) for record in records]
+        grids = [_best_cells(record, thin, effort.cells) for record in records]
+        cells = grids
         if effort.first_steps:
             shapes, left = _refined(records, cells, rate, stress, sigma, effort.first_steps, 1e-15)
             cells = _kept(shapes, left, effort.kept)
         else:
             cells = [cell[: effort.kept] for cell in cells]
         shapes, left = _refined(records, cells, rate, stress, sigma, effort.steps, effort.tolerance)
-        cells = _kept(shapes, left, effort.kept)
+        cells = [
+            np.concatenate([cell, grid]) if cell.shape[-1] >= effort.direct else cell
+            for cell, grid in zip(_kept(shapes, left, effort.kept), grids, strict=True)
+        ]
         stack = Stack(records, [len(cell) for cell in cells])
         projection = Projection(stack, rate, stress, sigma)
-        return projection.parameters(_padded(cells), np.arange(stack.edges[-1]))
+        return projection.parameters(padded(cells), np.arange(stack.edges[-1]))
 
 
 def _refined(
@@ -104,7 +116,7 @@ def _refined(
 ) -> tuple[list[FloatArray], list[FloatArray]]:
     """Return improved shapes and their sums of squares, model by model."""
     stack = Stack(records, [len(cell) for cell in cells])
-    found = Projection(stack, rate, stress, sigma).refine(_padded(cells), steps, tolerance)
+    found = Projection(stack, rate, stress, sigma).refine(padded(cells), steps, tolerance)
     parts = [slice(*pair) for pair in zip(stack.edges[:-1], stack.edges[1:], strict=True)]
     widths = [cell.shape[-1] for cell in cells]
     return (
@@ -117,29 +129,9 @@ def _kept(shapes: Sequence[FloatArray], left: Sequence[FloatArray], count: int) 
     return [shape[lowest(values, count)] for shape, values in zip(shapes, left, strict=True)]
 
 
-def lowest(values: FloatArray, count: int, apart: float = _APART) -> IntArray:
-    """Return indices of the lowest values, none alike to a relative difference of `apart`."""
-    order = np.argsort(values, kind="stable")
-    ranked = values[order]
-    rise = np.diff(ranked)
-    new = np.concatenate([[True], rise > apart * np.abs(ranked[1:])])
-    return order[new][:count]
-
-
-def _padded(cells: Sequence[FloatArray]) -> FloatArray:
-    """Return shapes (c, q) of several models one under another, filled up with 0."""
-    width = max(1, *(cell.shape[-1] for cell in cells))
-    whole = np.zeros((sum(len(cell) for cell in cells), width))
-    at = 0
-    for cell in cells:
-        whole[at : at + len(cell), : cell.shape[-1]] = cell
-        at += len(cell)
-    return whole
-
-
 def _thinned(
     rate: FloatArray, stress: FloatArray, sigma: FloatArray, points: int
-) -> tuple[FloatArray, ...]:
+) -> tuple[FloatArray, FloatArray, FloatArray]:
     if rate.size <= points:
         return rate, stress, sigma
     chosen = np.argsort(rate, kind="stable")[np.linspace(0, rate.size - 1, points).astype(int)]
@@ -147,10 +139,13 @@ def _thinned(
 
 
 def _best_cells(
-    record: ModelRecord, rate: FloatArray, stress: FloatArray, sigma: FloatArray
+    record: ModelRecord, curve: tuple[FloatArray, FloatArray, FloatArray], count: int
 ) -> FloatArray:
     """Return the shapes (c, q) of the lowest cells of a model's grid, the lowest first."""
+    rate, stress, sigma = curve
     axes = record.separable.grid(rate)
+    while np.prod([axis.size for axis in axes]) > count:
+        axes = tuple(axis[::2] for axis in axes)
     mesh = np.meshgrid(*axes, indexing="ij")
     shapes = np.stack([part.reshape(-1) for part in mesh], axis=-1) if mesh else np.empty((1, 0))
     target = stress / sigma

@@ -10,6 +10,7 @@ from typing import Generic, TypeVar
 import numpy as np
 from numpy.typing import NDArray
 
+FloatArray = NDArray[np.float64]
 IntArray = NDArray[np.intp]
 Kind = TypeVar("Kind")
 
@@ -40,3 +41,23 @@ class Stack(Generic[Kind]):
         for kind, first, last in zip(self.kinds, places[:-1], places[1:], strict=True):
             if last > first:
                 yield kind, slice(int(first), int(last))
+
+
+def padded(parts: Sequence[FloatArray]) -> FloatArray:
+    """Return arrays (c, q) one under another, filled up with 0 to the widest."""
+    width = max(1, *(part.shape[-1] for part in parts), 0)
+    whole = np.zeros((sum(len(part) for part in parts), width))
+    first = 0
+    for part in parts:
+        whole[first : first + len(part), : part.shape[-1]] = part
+        first += len(part)
+    return whole
+
+
+def lowest(values: FloatArray, count: int, apart: float = 1e-7) -> IntArray:
+    """Return indices of the lowest values, none alike to a relative difference of `apart`."""
+    order = np.argsort(values, kind="stable")
+    ranked = values[order]
+    rise = np.diff(ranked)
+    new = np.concatenate([[True], rise > apart * np.abs(ranked[1:])])
+    return order[new][:count]
