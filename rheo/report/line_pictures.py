@@ -150,7 +150,10 @@ def drawing_picture(line: LineResult, system: str = "metric") -> Picture:
             drawn.append(DrawnPart(kind, part.name, at(start), at(end), loses, width))
     # The label before the pump stands below the line, so that it stays clear of the one after it.
     named = {pump - 1: False, pump: True, last: True}
-    pressures = [(*at(node), float(profile.pressure[node]), up) for node, up in named.items()]
+    # What is left of the pressures in an open end is rounding.
+    nothing = 1e-9 * float(np.max(np.abs(profile.pressure)))
+    level = np.where(np.abs(profile.pressure) > nothing, profile.pressure, 0.0)
+    pressures = [(*at(node), float(level[node]), up) for node, up in named.items()]
     return figures.line_drawing(drawn, pressures, system=system)
 
 

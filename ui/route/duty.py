@@ -21,6 +21,14 @@ _DUTY = (
     ),
     Field("hours_a_year", "Hours a year", NUMBER, "For the cost of energy."),
 )
+_NEW = (
+    ("length", "Length of pipe", ""),
+    ("rise", "Rise", ""),
+    ("bends", "90° bends", "0"),
+    ("valves", "Ball valves", "0"),
+    ("level", "Liquid above the pump", ""),
+    ("gauge_pressure", "Pressure at the end", ""),
+)
 _PARTS = {"product": "product", "duty": "duty", "line": "route"}
 
 
@@ -31,7 +39,9 @@ def show() -> list[str]:
         fields.group("duty", ("duty",), _DUTY, columns=3)
     with middle:
         sizes = parts.size_options(state.case(), *editor.choose_standard())
-    with right, st.popover("New route", icon=":material/add_road:", width="stretch"):
+    # Another key closes it, once the route has been replaced.
+    widget = state.key(f"route.new.{state.version()}")
+    with right, st.popover("New route", icon=":material/add_road:", width="stretch", key=widget):
         _show_new(sizes)
     old = state.key("route.before")
     if old in st.session_state:
@@ -53,34 +63,28 @@ def show_borrowed() -> None:
 
 def _show_new(sizes: list[str]) -> None:
     key = state.key("route.new")
-    size = st.selectbox("Size", sizes, index=_middle(sizes), key=f"{key}.size.{sizes[0]}")
-    first, second = st.columns(2)
-    texts = {}
-    for column, name, label, start in (
-        (first, "length", "Length of pipe", ""),
-        (second, "rise", "Rise", ""),
-        (first, "bends", "90° bends", "0"),
-        (first, "level", "Liquid above the pump", ""),
-        (second, "gauge_pressure", "Pressure at the end", ""),
-        (second, "valves", "Ball valves", "0"),
-    ):
-        texts[name] = column.text_input(label, value=start, key=f"{key}.{name}")
+    size_key = f"{key}.size.{sizes[0]}"
+    st.selectbox("Size", sizes, index=_now(sizes), key=size_key)
+    columns = st.columns(2)
+    for place, (name, label, start) in enumerate(_NEW):
+        columns[place % 2].text_input(label, value=start, key=f"{key}.{name}")
     st.caption(
         "From a vessel to a vessel, with the pump between; long-radius bends. Everything can be "
         "changed in the tables afterwards."
     )
-    st.button(
-        "Replace the route",
-        type="primary",
-        key=f"{key}.go",
-        on_click=state.attempt,
-        args=("route.new", _replace, size, texts),
-    )
+
+    def replace() -> None:
+        texts = {name: str(st.session_state[f"{key}.{name}"]) for name, _, _ in _NEW}
+        state.attempt("route.new", _replace, st.session_state[size_key], texts)
+
+    st.button("Replace the route", type="primary", key=f"{key}.go", on_click=replace)
     cautions.complaint(state.complaint("route.new"))
 
 
-def _middle(sizes: list[str]) -> int:
-    return len(sizes) // 2
+def _now(sizes: list[str]) -> int:
+    """Return the number of the size that the route has now; else of one in the middle."""
+    size = parts.first_size(state.case())
+    return sizes.index(size.name) if size is not None and size.name in sizes else len(sizes) // 2
 
 
 def _replace(size: str, texts: dict[str, str]) -> None:

@@ -68,7 +68,7 @@ def show(side: str, sizes: list[str]) -> None:
         state.attempt(f"route.{side}", _put, side, before, st.session_state[widget])
 
     st.data_editor(
-        shown,
+        text_table(shown),
         key=widget,
         on_change=take,
         num_rows="dynamic",
@@ -78,6 +78,13 @@ def show(side: str, sizes: list[str]) -> None:
         alt=f"Parts {parts.SIDES[side]}",
     )
     cautions.complaint(state.complaint(f"route.{side}"))
+
+
+def text_table(columns: dict[str, list[str]]) -> Any:
+    """Return columns of text as a table that is one of text even without a row."""
+    import pandas as pd
+
+    return pd.DataFrame(columns, dtype="string")
 
 
 def _put(side: str, before: tuple[dict[str, Any], ...], edits: Any) -> None:

@@ -13,6 +13,8 @@ from rheo.errors import CaseError
 from rheo.hydraulics.fittings import fitting_tables
 from rheo.line.catalogue import PipeSize, catalogue
 from rheo.line.parts import Pipe
+from rheo.report.display import QUANTITIES
+from rheo.units import parse_quantity
 from ui.fields import COUNT, NUMBER, TEXT, Field
 
 SIDES = {"suction": "before the pump", "discharge": "after the pump"}
@@ -172,6 +174,9 @@ def _changed(
             continue
         if text:
             new[field.key] = field.written(text)
+            if field.kind in QUANTITIES:
+                unit = QUANTITIES[field.kind].unit
+                parse_quantity(new[field.key], unit, f"{place}, {field.label}")
         else:
             new.pop(field.key, None)
     _one_diameter(new, cells)

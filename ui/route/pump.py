@@ -9,6 +9,7 @@ import streamlit as st
 from rheo.report import display
 from ui import cautions, fields, state
 from ui.fields import COUNT, NUMBER, SHARE, TEXT, Field
+from ui.route import editor
 
 KINDS = {
     "duty": "Only the duty is known",
@@ -137,7 +138,7 @@ def _show_points(new: bool) -> None:
         state.attempt("pump.points", state.change_document, _put(points_of(found), new))
 
     st.data_editor(
-        shown,
+        editor.text_table(shown),
         key=widget,
         on_change=take,
         num_rows="dynamic",

@@ -104,7 +104,7 @@ def line_drawing(
         anchor = "start" if share < 0.05 else "end" if share > 0.95 else "middle"
         words = text(pressure, "pressure", system)
         marks.append(Label(x, y, words, anchor, shift=13.0 if above else -13.0))
-    marks += _names(parts, farthest, [place for place, *_ in pressures], system)
+    marks += _names(parts, farthest, [at for at, _, _, above in pressures if not above], system)
     heights = [end[1] for part in parts for end in (part.start, part.end)] or [0.0]
     low, high = (
         float(shown(min(heights), "length", system)),
@@ -130,8 +130,7 @@ def _names(
 ) -> list[Mark]:
     """Name vessels and equipment below the line, where there is room beside what is there."""
     found: list[Mark] = []
-    # The pressures at both ends stand above the line, and leave the room below it free.
-    places = [at for at in taken if 0 < at < farthest]
+    places = list(taken)
     for part in parts:
         if part.kind not in ("vessel", "equipment"):
             continue
