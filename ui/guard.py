@@ -6,26 +6,17 @@
 
 from __future__ import annotations
 
-import sys
-import traceback
 from collections.abc import Callable
 from types import TracebackType
 
 import streamlit as st
 
-from rheo.errors import InputError
 from ui import state, style
+from ui.catch import Catch
 
 
-class Guard:
-    """A part of the page; what breaks in it becomes a sentence in its place.
-
-    The last line of defence: whatever it is, the rest of the page stays. What ends a run of the
-    script by intent (a rerun, a stop) is no `Exception` and passes through.
-    """
-
-    def __enter__(self) -> Guard:
-        return self
+class Guard(Catch):
+    """A part of the page; what breaks in it becomes a sentence in its place."""
 
     def __exit__(
         self,
@@ -33,15 +24,11 @@ class Guard:
         error: BaseException | None,
         where: TracebackType | None,
     ) -> bool:
-        """Say what went wrong; the details go to the terminal."""
-        if isinstance(error, InputError):
-            st.error(style.plain(state.sentence(error)), icon=":material/error:")
-            return True
-        if isinstance(error, Exception):
-            traceback.print_exception(kind, error, where, file=sys.stderr)
-            st.error(state.UNEXPECTED, icon=":material/error:")
-            return True
-        return False
+        """Show the problem where the part would stand."""
+        dealt_with = super().__exit__(kind, error, where)
+        if self.problem is not None:
+            st.error(style.plain(state.sentence(self.problem)), icon=":material/error:")
+        return dealt_with
 
 
 def run(draw: Callable[[], object]) -> None:

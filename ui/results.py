@@ -27,6 +27,7 @@ from rheo.case.schema import AUTO
 from rheo.errors import InputError
 from rheo.fitting import Fits
 from rheo.readings import Readings
+from ui.catch import Catch
 
 
 @dataclass(frozen=True)
@@ -70,11 +71,10 @@ class Outcome:
 
 
 def outcome_of(calculate: Callable[[], Any]) -> Outcome:
-    """Run a calculation; what the user can put right becomes the problem of the outcome."""
-    try:
+    """Run a calculation; what goes wrong in it becomes the problem of the outcome."""
+    with Catch() as caught:
         return Outcome(calculate())
-    except InputError as error:
-        return Outcome(None, error)
+    return Outcome(None, caught.problem)
 
 
 def digest(*parts: Any) -> str:

@@ -26,11 +26,8 @@ the page is drawn, so that the walk and the answer strip show the new values at 
 
 from __future__ import annotations
 
-import sys
-import traceback
 from collections.abc import Callable, Mapping
 from itertools import pairwise
-from types import TracebackType
 from typing import Any
 
 import streamlit as st
@@ -41,12 +38,8 @@ from rheo.errors import InputError
 from rheo.readings import Readings
 from rheo.report.text import one_line
 from ui import results
+from ui.catch import Catch
 from ui.results import Files, StoredFile
-
-UNEXPECTED = (
-    "Something went wrong here that you did not cause. Your case is kept: undo your last change, "
-    "or save the case and reload the page. The terminal that runs the page shows the details."
-)
 
 _CASE = "rheo.case"
 _FILES = "rheo.files"
@@ -216,34 +209,10 @@ def attempt(name: str, act: Callable[..., Any], *arguments: Any) -> None:
     """
     complaints: dict[str, str] = st.session_state.setdefault(_COMPLAINTS, {})
     complaints.pop(name, None)
-    with _Complaint(name, complaints):
+    with Catch() as caught:
         act(*arguments)
-
-
-class _Complaint:
-    """Turns what goes wrong in an action into a complaint; the unexpected too, for the same end."""
-
-    def __init__(self, name: str, complaints: dict[str, str]) -> None:
-        self.name = name
-        self.complaints = complaints
-
-    def __enter__(self) -> None:
-        return None
-
-    def __exit__(
-        self,
-        kind: type[BaseException] | None,
-        error: BaseException | None,
-        where: TracebackType | None,
-    ) -> bool:
-        if isinstance(error, InputError):
-            self.complaints[self.name] = sentence(error)
-            return True
-        if isinstance(error, Exception):
-            traceback.print_exception(kind, error, where, file=sys.stderr)
-            self.complaints[self.name] = UNEXPECTED
-            return True
-        return False
+    if caught.problem is not None:
+        complaints[name] = sentence(caught.problem)
 
 
 def complaint(name: str) -> str:

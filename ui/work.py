@@ -7,18 +7,15 @@ ends it, and returns None. The page is drawn anew when it is done.
 
 from __future__ import annotations
 
-import sys
 import threading
-import traceback
 from collections.abc import Callable
 from dataclasses import dataclass, field
 from typing import Any
 
 import streamlit as st
 
-from rheo.errors import InputError
-from ui import guard, state
-from ui.results import Outcome
+from ui import guard
+from ui.results import Outcome, outcome_of
 
 Progress = Callable[[float], None]
 # What is done sooner than this [s] shows no progress.
@@ -26,8 +23,8 @@ SOON = 0.35
 _LOOK_EVERY = 0.4
 
 
-class CancelledError(Exception):
-    """The user has ended the work."""
+class CancelledError(BaseException):
+    """The user has ended the work; no `Exception`, for nothing went wrong."""
 
 
 @dataclass
@@ -61,14 +58,9 @@ class Job:
     def run(self, calculate: Callable[[Progress], Any]) -> None:
         """Do the work; called in a thread of its own."""
         try:
-            self.outcome = Outcome(calculate(self.tell))
-        except InputError as error:
-            self.outcome = Outcome(None, error)
+            self.outcome = outcome_of(lambda: calculate(self.tell))
         except CancelledError:
             self.cancelled = True
-        except Exception:  # nobody else could say it: the thread ends here
-            traceback.print_exc(file=sys.stderr)
-            self.outcome = Outcome(None, InputError(state.UNEXPECTED))
         finally:
             self.done.set()
 
