@@ -45,7 +45,8 @@ def bootstrap_parameters(fit: Fit, count: int, seed: int = 1, kind: str = "resid
         ``residual``: the weighted residuals of the fit are drawn with replacement, enlarged by
         sqrt(n/(n - p)) for the parameters that were fitted; ``parametric``: normal residuals of
         the fit's own scatter, or of the instrument's where the weighting states it and it is
-        larger.
+        larger. The scatter is itself known from n - p residuals only: each replicate has one of
+        its own, so that percentiles are as wide as intervals by Student's t.
 
     Returns
     -------
@@ -95,6 +96,9 @@ def drawn_readings(fit: Fit, count: int, seed: int, kind: str) -> FloatArray:
     sigma = fit.problem.weighting.sigma(predicted)
     known = fit.problem.weighting.known
     scatter = max(fit.scatter, 1.0) if known else fit.scatter
+    spread = np.ones((count, 1))
+    if scatter == fit.scatter:
+        spread = np.sqrt(fit.freedom / random.chisquare(fit.freedom, size=(count, 1)))
     own = (predicted - fit.observed) / fit.problem.weighting.sigma(fit.observed)
     own = own - own.mean()
     size = np.sqrt(np.mean(own**2))
@@ -105,10 +109,11 @@ def drawn_readings(fit: Fit, count: int, seed: int, kind: str) -> FloatArray:
             return random.standard_normal(shape) * scatter
         return random.choice(own, size=shape)
 
-    readings = predicted + sigma * residuals((count, predicted.size))
+    readings = predicted + sigma * spread * residuals((count, predicted.size))
     wrong = readings <= 0
     while wrong.any():
-        column = np.nonzero(wrong)[1]
-        readings[wrong] = predicted[column] + np.abs(sigma[column] * residuals(column.shape))
+        row, column = np.nonzero(wrong)
+        moved = sigma[column] * spread[row, 0] * residuals(column.shape)
+        readings[wrong] = predicted[column] + np.abs(moved)
         wrong = readings <= 0
     return readings

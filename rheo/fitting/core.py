@@ -187,8 +187,8 @@ def _step(state: _Searches, low: FloatArray, high: FloatArray) -> FloatArray:
         np.einsum("bii->bi", matrix)[...] = 1.0 + state.strength[:, np.newaxis]
         wanted = gradient + (curvature @ moved[..., np.newaxis])[..., 0]
         wanted = np.where(free, wanted * scale, 0.0)
-        step = np.linalg.solve(matrix, wanted[..., np.newaxis])[..., 0]
-        step = np.where(free, -step * scale, moved)
+        solved = np.linalg.solve(matrix, wanted[..., np.newaxis])[..., 0]
+        step: FloatArray = np.where(free, -solved * scale, moved)
         inside = np.minimum(np.maximum(step, low - inner), high - inner)
         beyond = free & (inside != step)
         if not beyond.any():

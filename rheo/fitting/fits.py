@@ -6,8 +6,11 @@ from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import cached_property
 
+from numpy.typing import ArrayLike
+
 from rheo.errors import Caution, InputError, merge_cautions
 from rheo.fitting.draws import mixed_draws
+from rheo.fitting.prediction import Prediction, predict_stress
 from rheo.fitting.ranking import TIE
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Weighting
@@ -119,6 +122,17 @@ class Fits:
             With arrays whose lengths add up to `count`.
         """
         return mixed_draws(self, count, seed, key)
+
+    def predict(
+        self,
+        rate: ArrayLike,
+        count: int = 2000,
+        seed: int = 1,
+        level: float = 0.95,
+        state: float | None = None,
+    ) -> Prediction:
+        """Return the shear stress at shear rates with a band: see `prediction.predict_stress`."""
+        return predict_stress(self, rate, count, seed, level, state)
 
     def __repr__(self) -> str:
         rows = ", ".join(f"{fit.key} ({fit.weight:.2f})" for fit in self.ranking)

@@ -16,6 +16,7 @@ from rheo.fitting.identify import identification_cautions
 from rheo.fitting.intervals import FittedParameter, fitted_parameters
 from rheo.fitting.judge import misfit_cautions
 from rheo.fitting.problem import Problem, parameter_keys
+from rheo.fitting.profile import Profile, profile
 from rheo.fitting.runs import runs_test
 from rheo.fitting.scaling import ScaledProblem
 from rheo.models import Model, ModelRecord
@@ -201,6 +202,18 @@ class Fit:
             temperatures or solids fractions were fitted.
         """
         return self.source_of(bootstrap_parameters(self, count, seed, kind))
+
+    def profile(self, key: str, level: float = 0.95) -> Profile:
+        """Return the profile-likelihood interval of a parameter, with its trace.
+
+        Parameters
+        ----------
+        key : str
+            One of `parameters`.
+        level : float
+            Confidence level, between 0 and 1.
+        """
+        return profile(self, key, level)
 
     def source_of(self, parameters: FloatArray) -> Model | ScaledCurve:
         """Return the flow curve at all parameters of the fit, shape (..., p), as a line takes it.
