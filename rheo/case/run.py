@@ -251,15 +251,27 @@ def _thickness_cautions(case: Case) -> tuple[Caution, ...]:
     factor = case.product.stress_factor
     if factor is None or factor == 1.0:
         return ()
-    return (
+    found = [
         Caution(
             "product-not-as-measured",
             f"The product is taken to have {float(factor):.3g} times the measured stress at every "
             "shear rate.",
             "Take readings of the product as it will be pumped.",
             case.product.name,
-        ),
-    )
+        )
+    ]
+    line = case.line
+    found += [
+        Caution(
+            "equipment-loss-as-given",
+            "Its loss stays as given, though the product is taken to be thicker or thinner.",
+            "Ask its supplier, or measure the loss with that product.",
+            part.name,
+        )
+        for part in (*line.suction, *line.discharge)
+        if part.part == "equipment"
+    ]
+    return tuple(found)
 
 
 def _solids_cautions(case: Case, line: LineResult) -> tuple[Caution, ...]:
