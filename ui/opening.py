@@ -29,6 +29,13 @@ def sample(name: str) -> Case:
     return case_from_text(path.read_text(encoding="utf-8"), path.name)
 
 
+@cache
+def sample_files(name: str) -> dict[str, StoredFile]:
+    """Return the readings files of a sample, by name."""
+    named = [block.file for block in sample(name).readings if block.file]
+    return {one: StoredFile((SAMPLES / one).read_bytes(), one) for one in named}
+
+
 def is_sample_title(title: str) -> bool:
     """Return whether a title is that of a sample."""
     return any(sample(name).title == title for name in sample_names())
@@ -44,7 +51,8 @@ def borrowed() -> tuple[str, ...]:
     """
     case = state.case()
     samples = [sample(name) for name in sample_names()]
-    if any(case.readings == one.readings for one in samples):
+    given = {file.data for file in state.files().values()}
+    if any(given == {file.data for file in sample_files(name).values()} for name in sample_names()):
         return ()
     parts = []
     if any(case.product.density == one.product.density for one in samples):
@@ -58,10 +66,7 @@ def borrowed() -> tuple[str, ...]:
 
 def open_sample(name: str) -> None:
     """Open a sample case with its files."""
-    found = sample(name)
-    named = [block.file for block in found.readings if block.file]
-    files = {one: StoredFile((SAMPLES / one).read_bytes(), one) for one in named}
-    state.put(found, files, opened=True)
+    state.put(sample(name), sample_files(name), opened=True)
 
 
 def open_case(uploads: Mapping[str, bytes]) -> None:

@@ -148,7 +148,7 @@ def test_a_thicker_batch_and_a_colder_one(page: Page) -> None:
     page.type("Warmer or colder", "-10")
     assert page.errors == []
     page.type("Warmer or colder", "-500")
-    assert "Product.temperature" in page.html
+    assert "product.temperature" in page.html
     page.type("Warmer or colder", "")
     page.type("Solids in the readings", "20")
     page.type("What if there were", "80")

@@ -196,6 +196,7 @@ def test_flagged_readings_are_ringed_and_left_out_by_one_button(page: Page) -> N
     ]
     assert hollow
     assert "2 left out" in page.html
+    assert "still the sample" not in page.html
     page.press("Take all in again")
     assert page.kept("case").readings[0].exclude == ()
 
