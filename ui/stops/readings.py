@@ -45,7 +45,10 @@ def _show_readings() -> None:
                 label_visibility="collapsed",
             )
         points.show_picture(readings)
-        st.caption("Click a point to leave it out of the fit, or to take it in again.")
+        st.caption(
+            "Click a point to leave it out of the fit, or to take it in again. In the table, pick "
+            "its box and press Enter, or click twice."
+        )
     with right:
         st.markdown(f"**{style.plain(words.readings_state((readings,)))}**")
         doubts = points.doubts(readings)
