@@ -98,6 +98,8 @@ _SAME_SIGNS = str.maketrans({"−": "-", "’": "'", "\u00a0": " ", "\u2009": " 
 # A power of a number could take for ever to work out and is never part of a unit.
 _POWER_OF_A_NUMBER = re.compile(r"\d\s*\)*\s*\*\*|\d{4}")
 _PLAUSIBLE_UNIT = re.compile(r"^[\w\s*/^().·⋅%°µμΩ℃℉\"+-]{1,60}$")
+# A slip such as "m3/hh" would be cubic metres in a hundred hours.
+_MULTIPLE_OF_TIME = re.compile(r"\w+(hour|minute|day|week|month|year)")
 
 
 @cache
@@ -166,7 +168,7 @@ def _factor_and_offset(unit: str, target: str, place: str) -> tuple[float, float
             ValueError,
         ):
             parsed = None
-    if parsed is None:
+    if parsed is None or any(map(_MULTIPLE_OF_TIME.fullmatch, parsed._units)):
         raise UnitError(
             f"unknown unit '{_shown(unit)}'; use one such as {_examples(target)}", place
         )

@@ -197,3 +197,9 @@ def test_a_unit_that_starts_with_a_digit_stays_out_of_the_number(number: int, un
     assert parse_quantity(f"{number} {unit}", target) == pytest.approx(expected, rel=1e-15)
     grouped = f"{number:,}".replace(",", " ")
     assert parse_quantity(f"{grouped} {unit}", target) == pytest.approx(expected, rel=1e-15)
+
+
+@pytest.mark.parametrize("text", ["4 m3/hh", "4 m3/mh", "4 L/mmin", "4 m3/kh", "4 m3/md"])
+def test_a_slip_in_a_time_is_no_multiple_of_it(text: str) -> None:
+    with pytest.raises(UnitError, match="unknown unit"):
+        parse_quantity(text, "m^3/s")
