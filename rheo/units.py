@@ -99,7 +99,7 @@ _SAME_SIGNS = str.maketrans({"−": "-", "’": "'", "\u00a0": " ", "\u2009": " 
 _POWER_OF_A_NUMBER = re.compile(r"\d\s*\)*\s*\*\*|\d{4}")
 _PLAUSIBLE_UNIT = re.compile(r"^[\w\s*/^().·⋅%°µμΩ℃℉\"+-]{1,60}$")
 # A slip such as "m3/hh" would be cubic metres in a hundred hours.
-_MULTIPLE_OF_TIME = re.compile(r"\w+(hour|minute|day|week|month|year)")
+_MULTIPLE_OF_TIME = re.compile(r"(?<![a-z_])[a-z]+(hour|minute|day|week|month|year)(?![a-z_])")
 
 
 @cache
@@ -168,7 +168,7 @@ def _factor_and_offset(unit: str, target: str, place: str) -> tuple[float, float
             ValueError,
         ):
             parsed = None
-    if parsed is None or any(map(_MULTIPLE_OF_TIME.fullmatch, parsed._units)):
+    if parsed is None or _MULTIPLE_OF_TIME.search(str(parsed)):
         raise UnitError(
             f"unknown unit '{_shown(unit)}'; use one such as {_examples(target)}", place
         )

@@ -203,3 +203,8 @@ def test_a_unit_that_starts_with_a_digit_stays_out_of_the_number(number: int, un
 def test_a_slip_in_a_time_is_no_multiple_of_it(text: str) -> None:
     with pytest.raises(UnitError, match="unknown unit"):
         parse_quantity(text, "m^3/s")
+
+
+def test_units_with_a_time_in_their_name_are_no_slip() -> None:
+    assert parse_quantity("10 mph", "m/s") == pytest.approx(4.4704, rel=1e-12)
+    assert parse_quantity("36 km/h", "m/s") == pytest.approx(10.0, rel=1e-12)
