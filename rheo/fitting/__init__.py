@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from rheo.fitting.core import least_squares
 from rheo.fitting.entry import fit
 from rheo.fitting.fits import Fits
+from rheo.fitting.general import Solution, least_squares
 from rheo.fitting.intervals import FittedParameter
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Instrument, Weighting
@@ -14,6 +14,7 @@ __all__ = [
     "Fits",
     "FittedParameter",
     "Instrument",
+    "Solution",
     "Weighting",
     "fit",
     "least_squares",

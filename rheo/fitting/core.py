@@ -11,7 +11,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import NDArray
 
 from rheo.fitting.coordinates import Coordinates
 
@@ -199,72 +199,3 @@ def _step(state: _Searches, low: FloatArray, high: FloatArray) -> FloatArray:
         moved = np.where(first, inside, moved)
         held |= first
     return inside
-
-
-def least_squares(
-    residuals: Callable[[FloatArray], ArrayLike],
-    start: ArrayLike,
-    lower: ArrayLike | None = None,
-    upper: ArrayLike | None = None,
-) -> Minimum:
-    """Minimise the sum of squares of any residual function from one start.
-
-    Parameters
-    ----------
-    residuals : callable
-        ``residuals(parameters)`` for parameters of shape (p, b, 1) returns shape (b, n): each
-        parameter has a trailing axis, so that a formula written for scalars broadcasts.
-    start : array_like, shape (p,)
-        Starting parameters.
-    lower, upper : array_like, shape (p,), optional
-        Bounds; none when absent.
-
-    Returns
-    -------
-    Minimum
-        With one row.
-    """
-    first = np.asarray(start, dtype=float)
-    none = np.full(first.size, np.inf)
-    coordinates = Coordinates.plain(
-        -none if lower is None else np.asarray(lower, float),
-        none if upper is None else np.asarray(upper, float),
-    )
-
-    def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:  # noqa: ARG001
-        value = np.asarray(residuals(parameters.T[..., np.newaxis]), dtype=float)
-        return value, central_differences(residuals, parameters)
-
-    return minimise(evaluate, first[np.newaxis], coordinates, steps=2000)
-
-
-def central_differences(
-    function: Callable[[FloatArray], ArrayLike], parameters: FloatArray
-) -> FloatArray:
-    """Return d function/d parameter by central differences of fourth order.
-
-    Parameters
-    ----------
-    function : callable
-        As `residuals` in `least_squares`; called once, with all shifted parameters.
-    parameters : array, shape (b, p)
-        Where the derivatives are taken.
-
-    Returns
-    -------
-    array, shape (b, p, n)
-    """
-    rows, count = parameters.shape
-    step = 1e-3 * np.where(parameters == 0.0, 1.0, np.abs(parameters))
-    shifts = np.array([-2.0, -1.0, 1.0, 2.0])[:, np.newaxis, np.newaxis]
-    along = np.eye(count)[:, np.newaxis, np.newaxis, :]
-    # Axes: parameter that is shifted, shift, row, parameter.
-    moved = parameters + along * (shifts * step)
-    flat = moved.reshape(-1, count)
-    values = np.asarray(function(flat.T[..., np.newaxis]), dtype=float)
-    values = values.reshape(count, 4, rows, -1)
-    slopes: FloatArray = (
-        8.0 * (values[:, 2] - values[:, 1]) - (values[:, 3] - values[:, 0])
-    ) / 12.0
-    found: FloatArray = np.moveaxis(slopes / step.T[..., np.newaxis], 0, 1)
-    return found

@@ -170,7 +170,7 @@ def line_minima(left: FloatArray) -> IntArray:
     """Return flat indices of the lowest cell at every value of every axis, the lowest first."""
     values = left.reshape(-1)
     indices = np.arange(values.size).reshape(left.shape)
-    cells = [np.zeros(1, dtype=np.intp)]
+    cells = [np.zeros(1 if left.ndim == 0 else 0, dtype=np.intp)]
     for axis in range(left.ndim):
         lines = np.moveaxis(indices, axis, 0).reshape(left.shape[axis], -1)
         cells.append(lines[np.arange(lines.shape[0]), np.argmin(values[lines], axis=-1)])

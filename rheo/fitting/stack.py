@@ -58,6 +58,7 @@ def lowest(values: FloatArray, count: int, apart: float = 1e-7) -> IntArray:
     """Return indices of the lowest values, none alike to a relative difference of `apart`."""
     order = np.argsort(values, kind="stable")
     ranked = values[order]
-    rise = np.diff(ranked)
+    with np.errstate(invalid="ignore"):
+        rise = np.diff(ranked)
     new = np.concatenate([[True], rise > apart * np.abs(ranked[1:])])
     return order[new][:count]
