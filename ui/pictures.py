@@ -18,6 +18,10 @@ _CONFIG = {
 }
 
 
+# Beyond so many decades every second one is named: on a telephone there is room for no more.
+_MANY_DECADES = 7
+
+
 def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = True) -> Any:
     """Draw a picture, with its title above and its description as alternative text.
 
@@ -44,6 +48,10 @@ def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = Tr
     if key_to_it:
         st.html(key_to_it)
     figure.update_layout(showlegend=False, margin={"l": 58, "r": 10, "t": 14, "b": 48})
+    figure.update_xaxes(tickangle=0)
+    along = figure.layout.xaxis
+    if along.type == "log" and along.range[1] - along.range[0] > _MANY_DECADES:
+        figure.update_xaxes(dtick=2)
     chosen: dict[str, Any] = {} if select == "ignore" else {"selection_mode": "points"}
     return st.plotly_chart(
         figure,

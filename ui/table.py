@@ -60,10 +60,11 @@ def html(
         )
         hover = f' title="{style.escape(kept.hover)}"' if kept.hover else ""
         body.append(f'<tr class="{kept.mark}"{hover}>{cells}</tr>')
-    below = f"<caption>{style.scripted(caption)}</caption>" if caption else ""
+    # Beside the table and not in it, so that it does not scroll sideways with it.
+    below = f'<div class="rheo-caption">{style.scripted(caption)}</div>' if caption else ""
     return (
-        f'<div class="rheo-scroll"><table class="rheo">{below}<thead><tr>{head}</tr></thead>'
-        f"<tbody>{''.join(body)}</tbody></table></div>"
+        f'<div class="rheo-scroll"><table class="rheo"><thead><tr>{head}</tr></thead>'
+        f"<tbody>{''.join(body)}</tbody></table></div>{below}"
     )
 
 
