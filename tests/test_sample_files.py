@@ -84,3 +84,14 @@ def test_fit_finds_the_true_gum() -> None:
     assert (
         _worst_error(fits.best.model, rheo.model("carreau", **make_samples.GUM), 0.02, 800.0) < 0.02
     )
+
+
+def test_one_fit_over_the_temperatures_finds_the_true_sauce() -> None:
+    readings = rheo.read_readings(FOLDER / "sauce_readings.csv")
+    best = rheo.fit_temperatures(readings.select(readings.branch == "down")).best
+    for key, value in (
+        ("flow_index", make_samples.SAUCE_FLOW_INDEX),
+        ("activation_energy", make_samples.SAUCE_CONSISTENCY_ACTIVATION),
+        ("yield_activation_energy", make_samples.SAUCE_YIELD_ACTIVATION),
+    ):
+        assert best.parameters[key].low < value < best.parameters[key].high
