@@ -35,7 +35,8 @@ def _danwood(x: Any, b1: Any, b2: Any) -> Any:
     return b1 * x**b2
 
 
-Case = tuple[
+Rows = list[list[float]]
+Case = tuple[Callable[..., Any], list[float], list[float], Rows, Rows, float]
     Callable[..., Any], list[float], list[float], list[list[float]], list[list[float]], float
 ]
 
