@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import streamlit as st
 
-from ui import case_menu, guard, opening, state, style, units_switch, walk
+from ui import case_menu, guard, reload, state, style, units_switch, walk
 
 # Drawn here: a named icon would be fetched from the network.
 _ICON = (
@@ -21,8 +21,7 @@ st.set_page_config(page_title="rheo", page_icon=_ICON, layout="wide")
 
 def main() -> None:
     """Draw the page."""
-    if state.is_empty():
-        opening.open_sample(opening.FIRST_SAMPLE)
+    reload.begin()
     style.apply()
     pages = walk.pages()
     page = st.navigation(list(pages.values()), position="hidden")
@@ -37,7 +36,11 @@ def main() -> None:
         guard.run(lambda: walk.show(pages))
         units_switch.show()
         case_menu.show()
-    guard.run(page.run)
+    try:
+        guard.run(page.run)
+    finally:
+        # Also where a stop ends the run of the script early.
+        reload.keep()
 
 
 main()

@@ -41,6 +41,11 @@ def is_sample_title(title: str) -> bool:
     return any(sample(name).title == title for name in sample_names())
 
 
+def is_untouched_sample() -> bool:
+    """Return whether the case is the first sample as it comes."""
+    return state.case() is sample(FIRST_SAMPLE)
+
+
 def borrowed() -> tuple[str, ...]:
     """Return which parts of the case are still those of a sample though its readings are not.
 

@@ -23,6 +23,16 @@ class Number:
 
 
 @dataclass(frozen=True)
+class Words:
+    """Heading of a column of words that need their room on a narrow page too."""
+
+    heading: str
+
+
+Heading = str | Number | Words
+
+
+@dataclass(frozen=True)
 class Row:
     """A row with a mark.
 
@@ -41,12 +51,15 @@ class Row:
     hover: str = ""
 
 
+_CLASSES: dict[type, str] = {str: "", Number: ' class="n"', Words: ' class="w"'}
+
+
 def html(
-    headings: Sequence[str | Number], rows: Iterable[Sequence[str] | Row], caption: str = ""
+    headings: Sequence[Heading], rows: Iterable[Sequence[str] | Row], caption: str = ""
 ) -> str:
     """Return the table as HTML; every text stands for itself."""
-    classes = [' class="n"' if isinstance(one, Number) else "" for one in headings]
-    names = [one.heading if isinstance(one, Number) else one for one in headings]
+    classes = [_CLASSES[type(one)] for one in headings]
+    names = [one if isinstance(one, str) else one.heading for one in headings]
     head = "".join(
         f'<th scope="col"{cls}>{style.scripted(name)}</th>'
         for cls, name in zip(classes, names, strict=True)
@@ -69,7 +82,7 @@ def html(
 
 
 def show(
-    headings: Sequence[str | Number], rows: Iterable[Sequence[str] | Row], caption: str = ""
+    headings: Sequence[Heading], rows: Iterable[Sequence[str] | Row], caption: str = ""
 ) -> None:
     """Draw the table."""
     st.html(html(headings, rows, caption))

@@ -7,7 +7,7 @@ from typing import Any
 
 import streamlit as st
 
-from ui import state, style, words
+from ui import reload, state, style, words
 
 
 @dataclass(frozen=True)
@@ -47,7 +47,9 @@ def show(found: dict[str, Any]) -> None:
     states = words.walk_states(state.readings(), state.result(), state.system())
     with st.container(gap=None, key="walk"):
         for number, stop in enumerate(STOPS, 1):
-            st.page_link(found[stop.key], label=f"{number}  {stop.title}")
+            st.page_link(
+                found[stop.key], label=f"{number}  {stop.title}", query_params=reload.query()
+            )
             st.html(f'<div class="rheo-state">{style.escape(states.get(stop.key, "–"))}</div>')
 
 
@@ -64,4 +66,5 @@ def onward(key: str) -> None:
                     label=stop.title,
                     icon=f":material/{icon}:",
                     icon_position="left" if other < at else "right",
+                    query_params=reload.query(),
                 )

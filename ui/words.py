@@ -124,8 +124,9 @@ def fluid_words(result: CaseResult, system: str) -> str:
     seen = ""
     if viscosities:
         low, high = (
-            display.text(value, "viscosity", system, digits=2)
+            number(float(display.shown(value, "viscosity", system)), 2)
             for value in (min(viscosities), max(viscosities))
         )
-        seen = f"; its viscosity at the wall is {low if low == high else f'{low} to {high}'}"
+        span = low if low == high else f"{low} to {high}"
+        seen = f"; its viscosity at the wall is {span} {display.unit_label('viscosity', system)}"
     return f"The product {f'{at_rest} and ' if at_rest else ''}{shear}{seen}."

@@ -240,6 +240,14 @@ def test_the_case_survives_going_away_and_back(visit: Callable[..., Browser]) ->
     assert browser.strip() == before
     page.get_by_text("Product, sweep and temperature").click()
     assert page.get_by_role("textbox", name="Density").input_value() == "1300 kg/m³"
+    page.reload()
+    browser.settle()
+    assert browser.strip() == before
+    browser.onward("Flow curve")
+    page.reload()
+    page.get_by_role("heading", name="Flow curve", exact=True).wait_for()
+    browser.settle()
+    assert browser.strip() == before
 
 
 def test_a_file_that_is_too_large_is_refused_and_the_server_stays(

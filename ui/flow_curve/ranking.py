@@ -30,9 +30,9 @@ def show(fits: Fits, chosen: Fit, pressures: Mapping[str, ModelPressure] | None 
     pressures : mapping of str to ModelPressure, optional
         What the line takes by each model, by its key.
     """
-    headings: list[str | table.Number] = [
+    headings: list[table.Heading] = [
         "Model",
-        "In words",
+        table.Words("In words"),
         table.Number("Parameters"),
         table.Number("RMS error"),
         table.Number("Worst error"),
