@@ -118,6 +118,7 @@ def group(
     *,
     columns: int | Sequence[float] = 4,
     draft: dict[str, Any] | None = None,
+    needs: Sequence[str] = (),
     then: Callable[[], None] | None = None,
 ) -> None:
     """Draw the fields of one table of the case.
@@ -134,6 +135,8 @@ def group(
         How many stand side by side, or the shares of the width that they take.
     draft : dict, optional
         A new table to take the place of what is there, with what it has besides the fields.
+    needs : sequence of str
+        Keys without which a new table is not put there yet.
     then : callable, optional
         Called after the case was changed.
     """
@@ -152,6 +155,8 @@ def group(
         typed = {key: str(st.session_state.get(widgets[key], before[key])) for key in widgets}
         changed = {one: typed[one.key].strip() for one in fields}
         changed = {one: text for one, text in changed.items() if text != before[one.key]}
+        if draft is not None and any(not typed[key].strip() for key in needs):
+            return
 
         def edit(document: dict[str, Any]) -> None:
             table = place(document, path, draft)

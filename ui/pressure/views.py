@@ -29,6 +29,9 @@ from ui import blocks, cautions, guard, pictures, state, style, table
 from ui.pressure import holding
 from ui.shear_rates import line_rates
 
+# How many models of the ranking stand with their pressures.
+_MODELS = 5
+
 
 @dataclass(frozen=True)
 class View:
@@ -183,7 +186,7 @@ def _show_doubt(result: CaseResult) -> None:
                 table.Number("Change"),
             ],
             by_model(result, state.system()),
-            "Models with a weight of 0.1 % or more.",
+            "The first of the ranking, and the model in use.",
         )
     cautions.show(budget.cautions)
     following = result.next_readings
@@ -195,15 +198,17 @@ def _show_doubt(result: CaseResult) -> None:
 def by_model(result: CaseResult, system: str) -> list[table.Row]:
     """Return name, weight, friction pressure and change for every likely model."""
     rows = []
-    for one in pressure_by_model(result):
+    for place, one in enumerate(pressure_by_model(result, least_weight=0.0)):
         used = one.fit.key == result.chosen.key
+        if place >= _MODELS and not used:
+            continue
         sign = "+" if one.share > 0 else "−"
         small = abs(one.share) < 5e-4
         rows.append(
             table.Row(
                 (
                     capital(one.fit.record.name),
-                    percent(one.fit.weight),
+                    "< 0.1 %" if one.fit.weight < 1e-3 else percent(one.fit.weight),
                     number(float(display.shown(one.friction_pressure, "pressure", system))),
                     "in use" if used else "0 %" if small else f"{sign}{percent(abs(one.share))}",
                 ),

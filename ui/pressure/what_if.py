@@ -89,7 +89,8 @@ def show(result: CaseResult) -> None:
         st.rerun()
     with guard.Guard(), st.container(border=True, key="what_if"):
         st.markdown("**What if** the flow, the batch or the temperature were otherwise?")
-        _controls(result)
+        with st.container(key="pairs_what_if"):
+            _controls(result)
         wanted = asked(state.what_if(), state.system())
         if wanted.change is None:
             cautions.complaint(wanted.complaint)

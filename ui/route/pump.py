@@ -51,6 +51,7 @@ _FIELDS = {
         Field("npsh_required", "NPSH required", "length"),
     ),
 }
+_NEEDS = {"positive-displacement": ("displacement", "speed", "rated_pressure")}
 POINTS = (
     Field("flow", "Flow", "flow"),
     Field("head", "Head", "length"),
@@ -89,7 +90,8 @@ def show() -> None:
         st.caption(
             "Give its rating or its efficiency; then this pump takes the place of the other."
         )
-    fields.group(f"pump.{kind}", ("pump",), _FIELDS[kind], columns=3, draft=draft)
+    needs = _NEEDS.get(kind, ()) if draft is not None else ()
+    fields.group(f"pump.{kind}", ("pump",), _FIELDS[kind], columns=3, draft=draft, needs=needs)
     if kind == "centrifugal":
         fields.switch("The curve was taken with water", ("pump", "for_water"))
 

@@ -72,7 +72,7 @@ def show_cost() -> None:
     if case.pump is None or not case.pump.has_efficiency:
         st.caption("Costs need the pump's efficiency: give it under Route, Pump.")
     draft: dict[str, Any] | None = None if case.cost is not None else {}
-    fields.group("cost", ("cost",), _COST, columns=3, draft=draft)
+    fields.group("cost", ("cost",), _COST, columns=3, draft=draft, needs=("energy_price",))
 
 
 def show_sizes(result: CaseResult) -> None:

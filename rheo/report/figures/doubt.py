@@ -33,12 +33,12 @@ def doubt_budget(names: Sequence[str], shares: ArrayLike) -> Picture:
     hover = tuple(f"{names[i]}\n{label}" for i, label in zip(order, labels, strict=True))
     bars = Bars(at, np.zeros(at.size), percent[order], "", 0, True, None, hover, labels, 0.62)
     ticks = tuple((float(n), one_line(names[i], 32)) for n, i in enumerate(order))
-    top = max(float(percent.max(initial=0.0)) * 1.15, 10.0)
+    top = max(float(percent.max(initial=0.0)) * 1.3, 10.0)
     return Picture(
         key="doubt-budget",
         title="Where the doubt comes from",
         description="Share of the variance of the pressure drop by source, largest first.",
-        x=Axis("Share of the variance", "%", low=0.0, high=top),
+        x=Axis("Variance share", "%", low=0.0, high=top),
         panels=(
             Panel(
                 Axis("", "", low=-0.6, high=at.size - 0.4, ticks=ticks, descending=True), (bars,)

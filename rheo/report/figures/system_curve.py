@@ -94,9 +94,9 @@ def system_curve(
                 dash=3,
             )
         )
-    for name, point, other, marker, up_by in (
-        ("asked for", duty, operating, 3, -12.0),
-        ("operating point", operating, duty, 0, 12.0),
+    for name, point, other, marker in (
+        ("asked for", duty, operating, 3),
+        ("operating point", operating, duty, 0),
     ):
         if point is not None:
             x, y = (
@@ -109,7 +109,9 @@ def system_curve(
             marks.append(
                 Points(array(x), array(y), name, style=style, marker=marker, hover=hover, size=12.0)
             )
-            marks.append(Label(x, y, where, _side(point, other, float(np.max(array(flow)))), up_by))
+            side = _side(point, other, float(np.max(array(flow))))
+            # The curve rises: above it there is room on the left, below it on the right.
+            marks.append(Label(x, y, where, side, 12.0 if side == "end" else -12.0))
     far = ""
     if rating is not None:
         at_rating = float(shown(rating, "pressure", system))
