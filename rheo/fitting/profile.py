@@ -25,8 +25,10 @@ if TYPE_CHECKING:
 FloatArray = NDArray[np.float64]
 
 # Distances from the value, in standard errors, at which the sum of squares is worked out first.
-_REACHES = np.array([0.5, 1.0, 1.5, 2.0, 2.5, 3.0, 4.0, 6.0, 10.0, 20.0, 50.0, 200.0])
-_REFINEMENTS = 3
+# The last is the bound.
+_REACHES = np.array([0.5, 1.0, 1.5, 2.0, 2.5, 3.0, 4.0, 6.0, 10.0, 30.0, 200.0, np.inf])
+_REFINEMENTS = 60
+_CLOSE = 1e-6
 
 
 @dataclass(frozen=True, eq=False)
@@ -104,9 +106,8 @@ def _one_side(
 ) -> tuple[float, bool, tuple[FloatArray, FloatArray]]:
     """Return the end of the interval on one side, whether it is a bound, and the trace."""
     scale = coordinates(fit.problem)
-    lowest, highest = (bound[index] for bound in scale.inner_bounds)
     middle = scale.inner(fit.final.parameters)
-    end = lowest if sign < 0 else highest
+    end = scale.inner_bounds[0 if sign < 0 else 1][index]
     unit = _inner_error(fit, index, scale)
     reaches = np.minimum(_REACHES * unit, abs(end - middle[index]))
     at = np.unique(middle[index] + sign * reaches)[:: int(sign)]
@@ -114,34 +115,42 @@ def _one_side(
     if at.size == 0:
         return float(fit.final.parameters[index]), True, (at, at)
     roots = _roots(fit, index, at, scale)
-    for _ in range(_REFINEMENTS):
+    bound = (fit.problem.record.parameters + fit.problem.extra)[index]
+    for step in range(_REFINEMENTS):
         known = np.concatenate([[0.0], np.maximum.accumulate(roots)])
         places = np.concatenate([[middle[index]], at])
         beyond = int(np.searchsorted(known, limit))
         if beyond == known.size:
-            outer = _outer(scale, middle, index, at)
-            return float(outer[-1]), True, (outer, roots)
-        share = (limit - known[beyond - 1]) / (known[beyond] - known[beyond - 1])
+            end = bound.lower if sign < 0 else bound.upper
+            return float(end), True, (_outer(scale, middle, index, at), roots)
+        # Straight interpolation, and halves in between, for a rise that is all but a step.
+        rise = known[beyond] - known[beyond - 1]
+        share = 0.5 if step % 3 == 2 else (limit - known[beyond - 1]) / rise
         new = places[beyond - 1] + share * (places[beyond] - places[beyond - 1])
-        if np.any(at == new):
+        if np.min(np.abs(roots - limit)) <= _CLOSE * limit or np.any(places == new):
             break
         at = np.insert(at, beyond - 1, new)
         roots = np.insert(roots, beyond - 1, _roots(fit, index, np.array([new]), scale))
-    nearest = int(np.argmin(np.abs(roots - limit)))
     outer = _outer(scale, middle, index, at)
-    return float(outer[nearest]), False, (outer, roots)
+    return float(outer[int(np.argmin(np.abs(roots - limit)))]), False, (outer, roots)
 
 
 def _inner_error(fit: Fit, index: int, scale: Coordinates) -> float:
-    """Return the standard error in the coordinate of the search, or a tenth of the value."""
+    """Return the standard error in the coordinate of the search, or what stands for it.
+
+    At a bound that is half the way to the one-sided limit, and a tenth of the value for a
+    parameter that is not identified.
+    """
     inner = scale.inner(fit.final.parameters)
     outer = scale.outer(inner)
-    key = parameter_keys(fit.problem)[index]
-    error = fit.parameters[key].stderr
+    one = fit.parameters[parameter_keys(fit.problem)[index]]
+    error = one.stderr
+    if one.bound:
+        error = 0.5 * max(one.high - one.value, one.value - one.low)
+        limit = scale.inner(np.where(np.arange(inner.size) == index, one.value + error, outer))
+        return float(abs(limit[index] - inner[index]))
     if not (np.isfinite(error) and error > 0):
-        error = (
-            max(abs(float(outer[index])), 1e-3 * (fit.parameters[key].high - outer[index])) * 0.1
-        )
+        error = 0.1 * abs(one.value)
     return float(error / scale.slope(inner, outer)[index])
 
 
@@ -156,16 +165,18 @@ def _roots(fit: Fit, index: int, at: FloatArray, scale: Coordinates) -> FloatArr
 
     Each is searched from the fit and from where its covariance points, all at once.
     """
-    values = _outer(scale, scale.inner(fit.final.parameters), index, at)
-    still = np.repeat(fit.final.parameters[np.newaxis], at.size, axis=0)
+    middle = scale.inner(fit.final.parameters)
+    values = _outer(scale, middle, index, at)
+    still = np.repeat(middle[np.newaxis], at.size, axis=0)
     along = still.copy()
     free = np.flatnonzero(fit.final.free)
-    covariance = fit.final.covariance
-    if index in free and np.isfinite(covariance).all():
+    if index in free and np.isfinite(fit.final.covariance).all():
+        slope = scale.slope(middle, scale.outer(middle))[free]
+        covariance = fit.final.covariance / np.outer(slope, slope)
         place = int(np.flatnonzero(free == index)[0])
         direction = covariance[place] / covariance[place, place]
-        along[:, free] += (values - still[:, index])[:, np.newaxis] * direction
-    start = np.concatenate([still, along])
+        along[:, free] += (at - middle[index])[:, np.newaxis] * direction
+    start = scale.outer(np.clip(np.concatenate([still, along]), *scale.inner_bounds))
     held = np.tile(values, 2)
     whole = Coordinates.stacked([scale], [held.size])
     whole.lower[:, index] = whole.upper[:, index] = held

@@ -266,7 +266,7 @@ def test_words_that_are_not_known():
     curve = noisy("power-law", 1.0, 100.0)
     with pytest.raises(InputError, match="unknown weighting 'log'; use relative, absolute or"):
         rheo.fit(curve, weighting="log")
-    with pytest.raises(InputError, match="unknown model 'casso'.*did you mean 'casson'"):
+    with pytest.raises(InputError, match=r"unknown model 'casso'.*did you mean 'casson'"):
         rheo.fit(curve, "casso")
     with pytest.raises(FitError, match="no model was named"):
         rheo.fit(curve, [])

@@ -37,8 +37,6 @@ def _danwood(x: Any, b1: Any, b2: Any) -> Any:
 
 Rows = list[list[float]]
 Case = tuple[Callable[..., Any], list[float], list[float], Rows, Rows, float]
-    Callable[..., Any], list[float], list[float], list[list[float]], list[list[float]], float
-]
 
 
 def _row(name: str, curve: Callable[..., Any]) -> Case:
