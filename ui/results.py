@@ -22,8 +22,7 @@ import streamlit as st
 from rheo.case import Case, case_text, run_case
 from rheo.case.embed import embedded
 from rheo.case.load_readings import all_readings
-from rheo.case.run import FittedCase, fit_case
-from rheo.case.schema import AUTO
+from rheo.case.run import FittedCase, fit_case, fit_models
 from rheo.errors import InputError
 from rheo.fitting import Fits
 from rheo.readings import Readings
@@ -131,8 +130,9 @@ def fitted_of(case: Case, files: Files) -> Outcome:
         return sets
     document = case.document()
     fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
-    # Density and particles are for screening; they do not change a fit.
-    fits_key = digest(document["readings"], _file_digests(files), fit)
+    # All that `fit_models` depends on; density and particles are for screening only.
+    warm = document["product"].get("temperature")
+    fits_key = digest(document["readings"], _file_digests(files), fit, warm)
     fits: Outcome = _fits(fits_key, case, sets.value)
     if fits.value is None:
         return fits
@@ -172,8 +172,7 @@ def _read(key: str, _case: Case, _files: Files) -> Outcome:  # noqa: ARG001
 
 @st.cache_resource(max_entries=24, show_spinner=False)
 def _fits(key: str, _case: Case, _readings: tuple[Readings, ...]) -> Outcome:  # noqa: ARG001
-    any_model = _case.model_copy(update={"fit": _case.fit.model_copy(update={"model": AUTO})})
-    return outcome_of(lambda: fit_case(any_model, _readings).fits)
+    return outcome_of(lambda: fit_models(_case, _readings))
 
 
 @st.cache_resource(max_entries=48, show_spinner=False)

@@ -56,6 +56,33 @@ class FittedCase:
     product: Product
 
 
+def fit_models(case: Case, readings: Sequence[Readings] | None = None) -> Fits:
+    """Fit the models of a case and rank them.
+
+    What comes of it depends on the readings, on the case's `fit` but for its `model`, and on the
+    temperature of the product, at which readings of several temperatures are centred.
+
+    Parameters
+    ----------
+    case : Case
+        The case.
+    readings : sequence of Readings, optional
+        One a set of the case, where they have been read already; they are read when absent.
+
+    Returns
+    -------
+    Fits
+        The ranked models.
+
+    Raises
+    ------
+    InputError
+        If readings cannot be read or fitted.
+    """
+    sets = all_readings(case) if readings is None else tuple(readings)
+    return _fits(case, _to_fit(case, sets))
+
+
 def fit_case(
     case: Case, readings: Sequence[Readings] | None = None, fits: Fits | None = None
 ) -> FittedCase:
@@ -81,15 +108,7 @@ def fit_case(
         If readings cannot be read or fitted.
     """
     sets = all_readings(case) if readings is None else tuple(readings)
-    if len(sets) != len(case.readings):
-        raise CaseError(
-            f"{len(sets)} sets of readings are given and the case has {len(case.readings)}; "
-            "give one for each",
-            "readings",
-        )
-    fitted = joined(
-        [branch_of(one, block.sweep) for one, block in zip(sets, case.readings, strict=True)]
-    )
+    fitted = _to_fit(case, sets)
     fits = _fits(case, fitted) if fits is None else fits
     chosen = fits.best if case.fit.model == AUTO else fits[case.fit.model]
     return FittedCase(sets, fitted, fits, chosen, _product(case, fitted, fits, chosen))
@@ -145,6 +164,19 @@ def run_case(
     )
     return CaseResult(
         case, sets, found.fitted, fits, chosen, product, line, pump, efficiency, cautions
+    )
+
+
+def _to_fit(case: Case, sets: tuple[Readings, ...]) -> Readings:
+    """Return the sets joined, each with the branch that is to be fitted."""
+    if len(sets) != len(case.readings):
+        raise CaseError(
+            f"{len(sets)} sets of readings are given and the case has {len(case.readings)}; "
+            "give one for each",
+            "readings",
+        )
+    return joined(
+        [branch_of(one, block.sweep) for one, block in zip(sets, case.readings, strict=True)]
     )
 
 

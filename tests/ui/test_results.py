@@ -1,0 +1,70 @@
+"""What the page keeps of earlier runs never stands in for what the case says now."""
+
+from __future__ import annotations
+
+from typing import Any
+
+import pytest
+
+from rheo.case import Case, CaseResult, run_case
+from ui import opening, results
+from ui.state import changed
+
+CHANGES: tuple[tuple[tuple[str | int, ...], Any], ...] = (
+    (("product", "density"), "1180 kg/m3"),
+    (("product", "temperature"), "35 °C"),
+    (("product", "static_yield_stress"), "60 Pa"),
+    (("readings", 0, "sweep"), "up"),
+    (("readings", 0, "exclude"), [9, 17]),
+    (("readings", 0, "full_scale_torque"), "20 mN.m"),
+    (("fit", "weighting"), "absolute"),
+    (("fit", "models"), ["bingham", "casson"]),
+    (("fit", "model"), "bingham"),
+    (("doubt", "draws"), 150),
+    (("doubt", "seed"), 7),
+    (("duty", "flow"), "6 m3/h"),
+    (("line", "discharge", 0, "length"), "20 m"),
+    (("pump", "rated_pressure"), "4 bar"),
+)
+
+
+def _said(result: CaseResult) -> dict[str, Any]:
+    found = result.as_dict()
+    return {key: found[key] for key in ("line", "fits", "chosen", "cautions", "readings", "pipes")}
+
+
+@pytest.mark.parametrize(("path", "value"), CHANGES)
+def test_each_change_gives_what_a_fresh_run_gives(path: tuple[str | int, ...], value: Any) -> None:
+    name = opening.FIRST_SAMPLE
+    files = opening.sample_files(name)
+    few: Case = changed(opening.sample(name), ("doubt", "draws"), 120)
+    # Fill the caches with the case before the change.
+    assert results.result_of(few, files).value is not None
+    after = changed(few, path, value)
+    kept: CaseResult = results.result_of(after, files).value
+    fresh = run_case(after.in_folder(opening.SAMPLES))
+    assert _said(kept) == _said(fresh)
+
+
+def test_the_same_input_is_worked_out_once() -> None:
+    files = opening.sample_files("gum")
+    case = opening.sample("gum")
+    assert results.result_of(case, files).value is results.result_of(case, files).value
+
+
+def test_another_flow_does_not_fit_again() -> None:
+    files = opening.sample_files("gum")
+    case = opening.sample("gum")
+    other = changed(case, ("duty", "flow"), "2 m3/h")
+    first, second = (results.result_of(one, files).value for one in (case, other))
+    assert first.fits is second.fits
+    assert first.line is not second.line
+
+
+def test_files_are_there_for_the_call_only() -> None:
+    case, files = opening.sample("sauce"), opening.sample_files("sauce")
+    with results.in_folder(case, files) as placed:
+        folder = placed.folder
+        assert folder is not None
+        assert sorted(one.name for one in folder.iterdir()) == ["sauce_readings.csv"]
+    assert not folder.exists()
