@@ -34,7 +34,7 @@ _PARTS = {"product": "product", "duty": "duty", "line": "route"}
 
 def show() -> list[str]:
     """Draw the duty, the sizes offered and the way to a new route; return the names of sizes."""
-    left, middle, right = st.columns([5, 2, 1.6], vertical_alignment="bottom")
+    left, middle, right = st.columns([4.6, 2.6, 1.5], vertical_alignment="bottom")
     with left:
         fields.group("duty", ("duty",), _DUTY, columns=3)
     with middle:

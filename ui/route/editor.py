@@ -23,11 +23,14 @@ def choose_standard() -> tuple[str, str | None]:
     first = parts.first_size(state.case())
     keys = list(STANDARDS)
     default = first.standard if first is not None and first.standard in keys else "ISO 2037"
-    chosen = st.selectbox(
+    widget = state.key(f"route.standard.{default}")
+    steel = st.session_state.get(widget, default) in STEEL
+    left, right = st.columns([3, 2]) if steel else (st.container(), st.container())
+    chosen = left.selectbox(
         "Sizes offered",
         keys,
         index=keys.index(default),
-        key=state.key(f"route.standard.{default}"),
+        key=widget,
         help="The sizes among which the table lets you choose. Another inside diameter can be "
         "typed under Inside.",
     )
@@ -36,7 +39,7 @@ def choose_standard() -> tuple[str, str | None]:
     own = first.label.partition(" schedule ")[2] if first is not None else ""
     schedules = STEEL[chosen]
     usual = "40S" if chosen == "ASME B36.19M" else "40"
-    schedule = st.selectbox(
+    schedule = right.selectbox(
         "Schedule",
         schedules,
         index=schedules.index(own if own in schedules else usual),

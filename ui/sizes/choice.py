@@ -13,7 +13,7 @@ from rheo.report import display
 from rheo.report.case_pictures import currency
 from rheo.report.numbers import number
 from rheo.report.restate import restated
-from rheo.report.words import percent
+from rheo.report.words import percent, without_shared_words
 from ui import cautions, state, style, table
 
 
@@ -66,11 +66,12 @@ def show_steps(result: CaseResult, sizing: Sizing) -> None:
     if at is None:
         return
     smaller, larger = sizes_beside(sizing, at)
+    shared, short = short_names(sizing)
     system = state.system()
     money = currency(result)
     headings: list[str | table.Number] = [
         "",
-        "Size",
+        f"Size of {shared}" if shared else "Size",
         table.Number(f"Pressure [{display.unit_label('pressure', system)}]"),
         table.Number(f"Velocity [{display.unit_label('velocity', system)}]"),
     ]
@@ -83,7 +84,7 @@ def show_steps(result: CaseResult, sizing: Sizing) -> None:
     headings.append("Verdict")
     now = "In the route" if candidate_in_line(sizing, result.line.line) else "Recommended"
     rows = [
-        _row(words, step, at, system)
+        _row(words, step, at, short, system)
         for words, step in (("One size down", smaller), (now, at), ("One size up", larger))
         if step is not None
     ]
@@ -94,12 +95,21 @@ def show_steps(result: CaseResult, sizing: Sizing) -> None:
         table.show(headings, rows, caption)
 
 
-def _row(words: str, step: SizeStep | Candidate, at: Candidate, system: str) -> table.Row:
+def short_names(sizing: Sizing) -> tuple[str, dict[str, str]]:
+    """Return the words that the names of all sizes share, and the short name of each."""
+    names = [one.size.name for one in sizing.candidates]
+    shared, short = without_shared_words(names)
+    return shared, dict(zip(names, short, strict=True))
+
+
+def _row(
+    words: str, step: SizeStep | Candidate, at: Candidate, short: dict[str, str], system: str
+) -> table.Row:
     one = step.candidate if isinstance(step, SizeStep) else step
     pressure = display.shown(one.pressure, "pressure", system)
     cells = [
         words,
-        one.size.name,
+        short[one.size.name],
         number(float(pressure)),
         number(float(display.shown(one.velocity, "velocity", system))),
     ]
@@ -124,11 +134,12 @@ def _more(value: float | None) -> str:
 def show_moves(sizing: Sizing, system: str) -> None:
     """Draw how the choice moves with the doubt in the product and with the flow."""
     left, right = st.columns(2, gap="large")
+    _, short = short_names(sizing)
     with left:
         if sizing.choice_by_draw:
             table.show(
                 ["Size chosen", table.Number("By so many of the likely flow curves")],
-                [(name, percent(share)) for name, share in sizing.choice_by_draw],
+                [(short.get(name, name), percent(share)) for name, share in sizing.choice_by_draw],
             )
         else:
             st.caption("There are no draws of the flow curve, so no doubt to follow.")
@@ -136,7 +147,7 @@ def show_moves(sizing: Sizing, system: str) -> None:
         table.show(
             [table.Number(f"Flow [{display.unit_label('flow', system)}]"), "Size chosen"],
             [
-                (number(float(display.shown(flow, "flow", system))), name)
+                (number(float(display.shown(flow, "flow", system))), short.get(name, name))
                 for flow, name in sizing.choice_by_flow
             ],
         )
@@ -155,6 +166,7 @@ def more_rows(sizing: Sizing, system: str) -> tuple[list[str | table.Number], li
         ("Cleaning flow", "cleaning_flow", "flow"),
         ("Pressure with water", "cleaning_pressure", "pressure"),
     )
+    _, short = short_names(sizing)
     headings: list[str | table.Number] = ["Size", "Regime", table.Number("Sure to pass [%]")]
     headings += [
         table.Number(f"{name} [{display.unit_label(quantity, system)}]")
@@ -163,7 +175,7 @@ def more_rows(sizing: Sizing, system: str) -> tuple[list[str | table.Number], li
     rows = []
     for one in sizing.candidates:
         sure = "" if one.share_passing is None else number(100 * one.share_passing, 2)
-        cells = [one.size.name, one.regime, sure]
+        cells = [short[one.size.name], one.regime, sure]
         cells += [cell(getattr(one, key), quantity) for _, key, quantity in columns]
         mark = "chosen" if one is sizing.recommended else "" if one.passes else "failed"
         rows.append(table.Row(cells, mark))

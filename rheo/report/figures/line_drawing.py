@@ -104,13 +104,14 @@ def line_drawing(
         anchor = "start" if share < 0.05 else "end" if share > 0.95 else "middle"
         words = text(pressure, "pressure", system)
         marks.append(Label(x, y, words, anchor, shift=13.0 if above else -13.0))
-    marks += _names(parts, farthest, [at for at, _, _, above in pressures if not above], system)
     heights = [end[1] for part in parts for end in (part.start, part.end)] or [0.0]
     low, high = (
         float(shown(min(heights), "length", system)),
         float(shown(max(heights), "length", system)),
     )
-    room = max(0.25 * (high - low), 0.5)
+    room = max(0.3 * (high - low), 0.5)
+    below = [at for at, _, _, above in pressures if not above]
+    marks += _names(parts, farthest, below, 0.13 * (high - low + 2 * room), system)
     unit = unit_label("length", system)
     return Picture(
         key="line-drawing",
@@ -126,20 +127,28 @@ def line_drawing(
 
 
 def _names(
-    parts: Sequence[DrawnPart], farthest: float, taken: Sequence[float], system: str
+    parts: Sequence[DrawnPart],
+    farthest: float,
+    taken: Sequence[float],
+    lift: float,
+    system: str,
 ) -> list[Mark]:
-    """Name vessels and equipment below the line, where there is room beside what is there."""
+    """Name vessels and equipment below the line where there is room, and its end above it.
+
+    `taken` are the places below the line that have a text already; `lift` is how far the name at
+    the end stands above the pressure there, in the units shown.
+    """
     found: list[Mark] = []
     places = list(taken)
     for part in parts:
-        if part.kind not in ("vessel", "equipment"):
-            continue
         distance, elevation = part.start
-        if any(abs(distance - other) < _APART * farthest for other in places):
-            continue
-        places.append(distance)
         x, y = (float(v) for v in shown(array([distance, elevation]), "length", system))
-        share = distance / farthest if farthest > 0 else 0.5
-        anchor = "end" if share > 0.9 else "start"
-        found.append(Label(x, y, one_line(part.name, 26), anchor, shift=-13.0, colour="muted"))
+        name = one_line(part.name, 26)
+        if part.kind == "vessel" and distance == farthest > 0:
+            found.append(Label(x, y + lift, name, "end", shift=13.0, colour="muted"))
+        elif part.kind in ("vessel", "equipment") and all(
+            abs(distance - other) >= _APART * farthest for other in places
+        ):
+            places.append(distance)
+            found.append(Label(x, y, name, "start", shift=-13.0, colour="muted"))
     return found
