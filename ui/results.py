@@ -26,6 +26,7 @@ from rheo.case.run import FittedCase, fit_case, fit_models
 from rheo.errors import InputError
 from rheo.fitting import Fits
 from rheo.readings import Readings
+from rheo.report.text import one_line
 from ui.catch import Catch
 
 
@@ -167,7 +168,18 @@ def _read(key: str, _case: Case, _files: Files) -> Outcome:  # noqa: ARG001
         with in_folder(_case, _files) as placed:
             return all_readings(placed)
 
-    return outcome_of(calculate)
+    found = outcome_of(calculate)
+    return Outcome(found.value, _in_the_users_words(found.problem, _files))
+
+
+def _in_the_users_words(problem: InputError | None, files: Files) -> InputError | None:
+    """Name files in a problem as the user's machine names them."""
+    if problem is None:
+        return None
+    place = problem.place
+    for name, file in files.items():
+        place = place.replace(name, one_line(file.label, 60) or name)
+    return type(problem)(problem.sentence, place)
 
 
 @st.cache_resource(max_entries=24, show_spinner=False)

@@ -224,4 +224,7 @@ def complaint(name: str) -> str:
 def sentence(error: InputError) -> str:
     """Return an error as one sentence for the page."""
     words = one_line(str(error), 400)
-    return words[:1].upper() + words[1:] + ("" if words.endswith((".", "?")) else ".")
+    # The name of a file is written as it is.
+    if "." not in error.place:
+        words = words[:1].upper() + words[1:]
+    return words + ("" if words.endswith((".", "?")) else ".")

@@ -7,10 +7,10 @@ from dataclasses import dataclass
 import streamlit as st
 
 from rheo.errors import InputError
-from rheo.readings.blocks import find_tables, found_headings
+from rheo.readings.blocks import find_tables
 from rheo.readings.columns import UserChoice
 from rheo.readings.file_bytes import file_bytes
-from rheo.readings.grid import Grid
+from rheo.readings.grid import Grid, Row
 from rheo.readings.text_grid import text_grid
 from rheo.readings.workbook_grid import is_workbook, workbook_grids
 from ui.results import StoredFile
@@ -58,9 +58,23 @@ def _look(digest: str, _file: StoredFile) -> tuple[Sheet, ...]:  # noqa: ARG001
 def _sheet(grid: Grid) -> Sheet:
     tables = find_tables(grid, UserChoice({}, {}))
     if not tables:
-        return Sheet(grid.sheet, found_headings(grid), ())
+        return _unread(grid)
     table = tables[0]
     headings = tuple(table.headings[i] if i < len(table.headings) else "" for i in table.columns)
     first = tuple(str(table.rows[0].cell(i)) for i in table.columns) if table.rows else ()
     labels = tuple(one.label for one in tables) if len(tables) > 1 else ()
     return Sheet(grid.sheet, headings, first, labels)
+
+
+def _unread(grid: Grid) -> Sheet:
+    """Return a sheet of which no heading was understood: the row above its first numbers."""
+    above: Row | None = None
+    for row in grid.rows:
+        if row.comment or row.blank:
+            continue
+        if row.numbers and above is not None:
+            width = max(len(above.cells), len(row.cells))
+            headings = tuple(str(above.cell(i)).strip() for i in range(width))
+            return Sheet(grid.sheet, headings, tuple(str(row.cell(i)) for i in range(width)))
+        above = row
+    return Sheet(grid.sheet, (), ())

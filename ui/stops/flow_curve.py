@@ -5,7 +5,6 @@ from __future__ import annotations
 import streamlit as st
 
 from rheo.case import CaseResult
-from rheo.fitting import Fit
 from rheo.report.case_pictures import flow_curve_picture, residuals_picture
 from rheo.report.sections.fitted import parameter_table
 from rheo.report.words import capital
@@ -28,18 +27,29 @@ def show() -> None:
 def _show_result(result: CaseResult) -> None:
     said = f"{words.fluid_words(result, state.system())} {_reason(result)}"
     st.html(f'<p class="rheo-text lead">{style.scripted(said)}</p>')
-    left, right = st.columns([3, 2], gap="medium")
+    left, right = st.columns([3, 2], gap="medium", vertical_alignment="bottom")
+    with left:
+        viscosity, log = _choose_axes()
     with right:
         looked_at, other = compare.choose(result)
+    if other is not result:
+        compare.show(result, other)
+    left, right = st.columns([3, 2], gap="medium")
+    with left:
+        picture = flow_curve_picture(
+            other,
+            viscosity=viscosity,
+            log=log,
+            fit=other.fits[looked_at.key],
+            system=state.system(),
+        )
+        pictures.show(picture, "flow_curve", title=False)
+    with right:
         if other is result:
             compare.show_return(result)
-        else:
-            compare.show(result, other)
         cautions.show(looked_at.cautions)
         cautions.show(result.fits.data_cautions)
         cautions.show(cautions.of(result.cautions, codes=("temperature-of-readings",)))
-    with left:
-        _show_picture(result if looked_at.key == result.chosen.key else other, looked_at)
     ranking.show(result.fits, result.chosen, ranking.pressures_of(result))
     with st.expander("Parameters, with their intervals", expanded=True):
         blocks.show(parameter_table(looked_at), "parameters")
@@ -62,7 +72,8 @@ def _reason(result: CaseResult) -> str:
     return f"{chosen} is your choice. By the ranking: {result.fits.reason}"
 
 
-def _show_picture(result: CaseResult, looked_at: Fit) -> None:
+def _choose_axes() -> tuple[bool, bool]:
+    """Draw the choice of what is drawn; return whether viscosity, and whether logarithmic."""
     with st.container(horizontal=True, horizontal_alignment="left"):
         viscosity = st.segmented_control(
             "Draw",
@@ -82,14 +93,7 @@ def _show_picture(result: CaseResult, looked_at: Fit) -> None:
             key=state.key("flow_curve.log"),
             label_visibility="collapsed",
         )
-    picture = flow_curve_picture(
-        result,
-        viscosity=bool(viscosity),
-        log=bool(log),
-        fit=result.fits[looked_at.key],
-        system=state.system(),
-    )
-    pictures.show(picture, "flow_curve", title=False)
+    return bool(viscosity), bool(log)
 
 
 def _show_fit_alone() -> None:

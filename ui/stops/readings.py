@@ -18,6 +18,7 @@ def show() -> None:
     readings = sets.readings()
     if readings is None:
         st.markdown("**Say which column is which**")
+        st.caption("Double-click a cell under Is and choose what the column holds.")
         mapping.show()
         with st.expander("Instrument: geometry and full scale", expanded=True):
             geometry.show()
