@@ -13,7 +13,8 @@ from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.fitting.core import minimise
-from rheo.fitting.problem import coordinates, weighted
+from rheo.fitting.problem import coordinates
+from rheo.fitting.residuals import weighted
 
 if TYPE_CHECKING:
     from rheo.fitting.result import Fit

@@ -10,7 +10,8 @@ from numpy.typing import NDArray
 
 from rheo.fitting.coordinates import Coordinates
 from rheo.fitting.core import Minimum, minimise
-from rheo.fitting.problem import Problem, bounds, coordinates, is_allowed, weighted
+from rheo.fitting.problem import Problem, bounds, coordinates, is_allowed
+from rheo.fitting.residuals import weighted
 from rheo.fitting.stack import lowest, padded
 
 FloatArray = NDArray[np.float64]

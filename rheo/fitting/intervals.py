@@ -8,7 +8,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.final import Final
-from rheo.fitting.problem import Problem, coordinates, parameter_keys, weighted
+from rheo.fitting.problem import Problem, coordinates, parameter_keys
+from rheo.fitting.residuals import weighted
 
 FloatArray = NDArray[np.float64]
 LEVEL = 0.95

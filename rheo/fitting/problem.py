@@ -11,8 +11,6 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.coordinates import Coordinates
-from rheo.fitting.core import Evaluate, IntArray
-from rheo.fitting.stack import Stack
 from rheo.fitting.weighting import Weighting
 from rheo.models import Model, ModelRecord, Parameter
 
@@ -160,44 +158,3 @@ def is_allowed(problem: Problem, parameters: FloatArray) -> BoolArray:
     if rule is None:
         return np.ones(len(parameters), dtype=bool)
     return rule(*parameters.T[: len(problem.record.parameters)])
-
-
-def weighted(
-    problems: Sequence[Problem], counts: Sequence[int], observed: FloatArray | None = None
-) -> Evaluate:
-    """Return the function that `core.minimise` asks for, for problems of the same readings.
-
-    Parameters
-    ----------
-    problems : sequence of Problem
-        Predictions of the same readings with the same weights.
-    counts : sequence of int
-        Number of searches of each.
-    observed : array, shape (b, n), optional
-        Readings for each search, in place of the problems' own; weights are found from them.
-
-    Returns
-    -------
-    callable
-        ``evaluate(parameters, rows) -> (residuals, sensitivities)``, both over sigma.
-    """
-    stack = Stack(problems, counts)
-    measured = problems[0].observed if observed is None else observed
-    precision = 1.0 / problems[0].weighting.sigma(measured)
-    target = measured * precision
-
-    def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
-        predicted = np.empty((rows.size, measured.shape[-1]))
-        slopes = np.zeros((*parameters.shape, measured.shape[-1]))
-        for problem, part in stack.split(rows):
-            width = len(problem.record.parameters) + len(problem.extra)
-            values = parameters[part, :width]
-            predicted[part], slopes[part, :width] = problem.sensitivity(values)
-            if problem.record.allowed is not None:
-                predicted[part][~is_allowed(problem, values)] = np.inf
-        if observed is None:
-            return predicted * precision - target, slopes * precision
-        weight = precision[rows]
-        return predicted * weight - target[rows], slopes * weight[:, np.newaxis, :]
-
-    return evaluate

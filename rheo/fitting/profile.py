@@ -17,7 +17,8 @@ from rheo.errors import InputError
 from rheo.fitting.coordinates import Coordinates
 from rheo.fitting.core import minimise
 from rheo.fitting.intervals import t_quantile
-from rheo.fitting.problem import coordinates, parameter_keys, weighted
+from rheo.fitting.problem import coordinates, parameter_keys
+from rheo.fitting.residuals import weighted
 
 if TYPE_CHECKING:
     from rheo.fitting.result import Fit

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
@@ -48,8 +48,6 @@ class ReadingProblem:
     weighting: Weighting
     rough_rates: FloatArray
     extra: tuple[Parameter, ...] = ()
-    # Rates of the last solution, from which the next one starts; no result depends on them.
-    _solved: dict[str, FloatArray] = field(default_factory=dict, init=False, repr=False)
 
     @cached_property
     def order(self) -> NDArray[np.intp]:
@@ -69,11 +67,9 @@ class ReadingProblem:
         if relation is None:
             return self._by_differences(parameters)
         model, dimensions = self._parts(parameters)
-        start = self._solved.get("rate", self.rough_rates)
-        reading, slopes, others, rate = relation(model, self.setting, dimensions, start)
+        reading, slopes, others, _ = relation(model, self.setting, dimensions, self.rough_rates)
         if np.isnan(reading).any():
             return self._by_differences(parameters)
-        self._solved["rate"] = np.broadcast_to(rate, reading.shape)[0]
         if not self.extra:
             return reading, slopes
         more = [np.broadcast_to(others[one.key], reading.shape) for one in self.extra]

@@ -15,6 +15,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.gap_readings import bob_stress
+from rheo.fitting.several import SeveralCurves
 from rheo.geometry import GeometryRecord, geometry_record
 from rheo.models import Model
 
@@ -55,19 +56,31 @@ def _scaled(record: GeometryRecord, dimensions: Dimensions, stress: FloatArray) 
     return record.reading_at(None, 0.0, stress, *dimensions.values())
 
 
+def in_gap(
+    key: str, curves: SeveralCurves, setting: FloatArray, dimensions: Dimensions, start: FloatArray
+) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Return torques (b, n), derivatives (b, p, n) and rates at the bob (b, n) of several curves.
+
+    Parameters as for `bob_stress`, with the key of one of `GAPS` and its dimensions.
+    """
+    ratio = np.asarray(np.inf)
+    if "outer_radius" in dimensions:
+        ratio = dimensions["outer_radius"] / dimensions["inner_radius"]
+    log_ratio = np.broadcast_to(np.log(ratio), setting.shape)
+    stress, slopes, rate = bob_stress(curves, setting, log_ratio, start)
+    unit = _scaled(geometry_record(key), dimensions, np.asarray(1.0))
+    factor = np.broadcast_to(unit, setting.shape)
+    return stress * factor, slopes * factor, rate
+
+
 def _cylinders(key: str) -> Relation:
     def relation(
         model: Model, setting: FloatArray, dimensions: Dimensions, start: FloatArray
     ) -> Slopes:
-        ratio = np.asarray(np.inf)
-        if "outer_radius" in dimensions:
-            ratio = dimensions["outer_radius"] / dimensions["inner_radius"]
-        log_ratio = np.broadcast_to(np.log(ratio), setting.shape)
-        stress, slopes, rate = bob_stress(model, setting, log_ratio, start)
-        factor = np.broadcast_to(
-            _scaled(geometry_record(key), dimensions, np.asarray(1.0)), setting.shape
-        )
-        return stress * factor, slopes * factor, {}, rate
+        rows = model.shape[0]
+        curves = SeveralCurves([(model.record, list(model), slice(0, rows))], rows)
+        torque, slopes, rate = in_gap(key, curves, setting, dimensions, start)
+        return torque, slopes, {}, rate
 
     return relation
 
@@ -128,10 +141,9 @@ def _tube(model: Model, setting: FloatArray, dimensions: Dimensions, _: FloatArr
     return stress * aspect, (share * aspect)[:, np.newaxis] * means, extra, rate
 
 
+GAPS = ("concentric-cylinders", "six-speed", "vane")
 RELATIONS: Mapping[str, Relation] = {
-    "concentric-cylinders": _cylinders("concentric-cylinders"),
-    "six-speed": _cylinders("six-speed"),
-    "vane": _cylinders("vane"),
+    **{key: _cylinders(key) for key in GAPS},
     "cone-plate": _cone,
     "parallel-plate": _plates,
     "slot": _slot,

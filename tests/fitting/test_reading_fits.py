@@ -14,10 +14,10 @@ from flow_curves import KEYS, example
 import rheo
 from rheo.errors import FitError, InputError
 from rheo.fitting.gap_readings import bob_stress
-from rheo.fitting.problem import bare_model
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import RELATIONS
 from rheo.fitting.reading_task import ENTRANCE, SLIP
+from rheo.fitting.several import SeveralCurves
 from rheo.fitting.weighting import WEIGHTINGS
 from rheo.geometry import geometry_records, make_geometry
 
@@ -112,9 +112,9 @@ def test_the_quick_gap_is_the_exact_one(key, ratio):
     cup = make_geometry("concentric-cylinders", inner_radius=0.01, outer_radius=1.0, length=0.06)
     geometry = vane if np.isinf(ratio) else cup.replaced(outer_radius=0.01 * ratio)
     rate, stress = geometry.sheared(truth, SPEEDS)
-    model = bare_model(truth.record, [np.full((1, 1), float(value)) for value in truth])
-    log_ratio = np.full(30, np.log(ratio))
-    found, _, near = bob_stress(model, SPEEDS, log_ratio, rate * 1.5)
+    columns = [np.full((1, 1), float(value)) for value in truth]
+    curves = SeveralCurves([(truth.record, columns, slice(0, 1))], 1)
+    found, _, near = bob_stress(curves, SPEEDS, np.full(30, np.log(ratio)), rate * 1.5)
     np.testing.assert_allclose(found[0], stress, rtol=1e-8)
     np.testing.assert_allclose(near[0], rate, rtol=1e-2)
 
