@@ -89,7 +89,7 @@ def _searched(
     """Search from all starts of all problems at once; return the minima of each."""
     counts = [len(start) for start in starts]
     scales = Coordinates.stacked([coordinates(problem) for problem in problems], counts)
-    evaluate = weighted(problems, counts)
+    evaluate = weighted(problems, counts, rough=tolerance > _ROUNDING)
     found = minimise(evaluate, padded(starts), scales, steps, damping, tolerance)
     edges = np.cumsum([0, *counts])
     return [

@@ -12,6 +12,7 @@ last step is taken in the result.
 
 from __future__ import annotations
 
+from dataclasses import dataclass
 from functools import cache
 
 import numpy as np
@@ -23,11 +24,11 @@ FloatArray = NDArray[np.float64]
 
 # γ̇ = γ̇_o + (γ̇_i - γ̇_o)t³ crowds the nodes where a power of the rate would be steep.
 _POWER = 3
-_NODES, _WIDE_NODES = 24, 72
+_NODES, _ROUGH_NODES, _WIDE_NODES = 24, 16, 72
 _WIDE_GAP = 1.2
 _PASSES = 12
-# The last step is exact to the square of this.
-_NEAR = 1e-4
+# The last step is exact to the square of this: a rough one for the way to a minimum.
+_NEAR, _ROUGH = 1e-4, 1e-3
 _LARGEST_STEP = 3.0
 # Deeper in ln(rate) nothing is left of the flow.
 _DEEPEST = -40.0
@@ -42,10 +43,29 @@ def _rule(count: int) -> tuple[FloatArray, FloatArray]:
     return t**_POWER, 0.5 * weights * _POWER * t ** (_POWER - 1)
 
 
+@dataclass(frozen=True, eq=False)
+class GapRates:
+    """Where a solution stands, and the next may start.
+
+    Parameters
+    ----------
+    bob : array, shape (b, n)
+        Shear rate at the bob [1/s].
+    drop : array, shape (b, n), optional
+        ln of the shear rate at the cup over that at the bob [-].
+    rough : bool
+        Whether stresses need to be right to 1e-6 only, instead of 1e-8.
+    """
+
+    bob: FloatArray
+    drop: FloatArray | None = None
+    rough: bool = False
+
+
 def bob_stress(
-    curves: SeveralCurves, speed: FloatArray, log_ratio: FloatArray, start: FloatArray
-) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Return stress (b, n) at the bob, its derivatives (b, p, n) and the rate (b, n) there.
+    curves: SeveralCurves, speed: FloatArray, log_ratio: FloatArray, start: GapRates
+) -> tuple[FloatArray, FloatArray, GapRates]:
+    """Return stress (b, n) at the bob, its derivatives (b, p, n) and the rates.
 
     Parameters
     ----------
@@ -53,21 +73,23 @@ def bob_stress(
         Of b rows.
     speed, log_ratio : array, shape (n,)
         Angular speed [rad/s], ln(outer over inner radius).
-    start : array, shape (n,) or (b, n)
-        Shear rates at the bob [1/s] from which to start.
+    start : GapRates
+        From which to start.
 
     Returns
     -------
-    tuple of array
-        NaN where Newton's method did not settle. The rate is that before the last step.
+    tuple
+        Stress [Pa] and derivatives, NaN where Newton's method did not settle; and the rates
+        before the last step.
     """
-    position, weight = _rule(_WIDE_NODES if np.max(log_ratio) > _WIDE_GAP else _NODES)
+    narrow = _ROUGH_NODES if start.rough else _NODES
+    position, weight = _rule(_WIDE_NODES if np.max(log_ratio) > _WIDE_GAP else narrow)
     wanted = np.log(speed)
-    at = np.broadcast_to(np.log(start), (curves.rows, speed.size))
+    at = np.log(start.bob)
     width = np.where(np.isfinite(log_ratio), log_ratio, 0.0)
     fall = np.exp(-2.0 * log_ratio)
-    # d ln(cup rate) below the bob's, from which the next pass starts; none before the first.
-    drop: FloatArray | None = None
+    near = _ROUGH if start.rough else _NEAR
+    drop = start.drop
     for last in range(_PASSES):
         rate = np.exp(at)
         stress = curves.stress(rate)
@@ -82,10 +104,14 @@ def bob_stress(
         found = cup * width + 0.5 * span**2 * (bent @ weight)
         rise = 0.5 * span * slope / found
         gap = wanted - np.log(found)
-        if not np.any(np.abs(gap) > _NEAR) or last == _PASSES - 1:
+        if not np.any(np.abs(gap) > near) or last == _PASSES - 1:
             break
         at = at + np.clip(gap / rise, -_LARGEST_STEP, _LARGEST_STEP)
     means = (curves.slopes(inside) / curves.stress(inside)) @ weight
     # From the rate where Newton's method stands to the speed asked for, along the flow curve.
-    onward = np.where(np.abs(gap) <= _NEAR, np.exp(gap * slope / rise), np.nan)
-    return stress * onward, np.moveaxis(means * (stress * onward), 0, 1), rate
+    onward = np.where(np.abs(gap) <= near, np.exp(gap * slope / rise), np.nan)
+    return (
+        stress * onward,
+        np.moveaxis(means * (stress * onward), 0, 1),
+        GapRates(rate, drop, start.rough),
+    )

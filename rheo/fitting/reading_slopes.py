@@ -14,7 +14,7 @@ from functools import cache
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.fitting.gap_readings import bob_stress
+from rheo.fitting.gap_readings import GapRates, bob_stress
 from rheo.fitting.several import SeveralCurves
 from rheo.geometry import GeometryRecord, geometry_record
 from rheo.models import Model
@@ -57,9 +57,9 @@ def _scaled(record: GeometryRecord, dimensions: Dimensions, stress: FloatArray) 
 
 
 def in_gap(
-    key: str, curves: SeveralCurves, setting: FloatArray, dimensions: Dimensions, start: FloatArray
-) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Return torques (b, n), derivatives (b, p, n) and rates at the bob (b, n) of several curves.
+    key: str, curves: SeveralCurves, setting: FloatArray, dimensions: Dimensions, start: GapRates
+) -> tuple[FloatArray, FloatArray, GapRates]:
+    """Return torques (b, n), derivatives (b, p, n) and the rates in the gap of several curves.
 
     Parameters as for `bob_stress`, with the key of one of `GAPS` and its dimensions.
     """
@@ -79,8 +79,9 @@ def _cylinders(key: str) -> Relation:
     ) -> Slopes:
         rows = model.shape[0]
         curves = SeveralCurves([(model.record, list(model), slice(0, rows))], rows)
-        torque, slopes, rate = in_gap(key, curves, setting, dimensions, start)
-        return torque, slopes, {}, rate
+        begin = GapRates(np.broadcast_to(start, (rows, setting.size)))
+        torque, slopes, rates = in_gap(key, curves, setting, dimensions, begin)
+        return torque, slopes, {}, rates.bob
 
     return relation
 

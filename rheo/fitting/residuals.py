@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.core import Evaluate, IntArray
+from rheo.fitting.gap_readings import GapRates
 from rheo.fitting.problem import Problem, columns_of, is_allowed
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import GAPS, in_gap
@@ -19,7 +20,10 @@ Sensitivities = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
 
 
 def weighted(
-    problems: Sequence[Problem], counts: Sequence[int], observed: FloatArray | None = None
+    problems: Sequence[Problem],
+    counts: Sequence[int],
+    observed: FloatArray | None = None,
+    rough: bool = False,
 ) -> Evaluate:
     """Return the function that `core.minimise` asks for, for problems of the same readings.
 
@@ -32,6 +36,9 @@ def weighted(
     observed : array, shape (b, n), optional
         Readings for each search, in place of the problems' own; weights are found from them.
 
+    rough : bool
+        Whether predictions right to 1e-6 will do, on the way to a minimum.
+
     Returns
     -------
     callable
@@ -41,7 +48,7 @@ def weighted(
     measured = problems[0].observed if observed is None else observed
     precision = 1.0 / problems[0].weighting.sigma(measured)
     target = measured * precision
-    sensitivities = _in_one_gap(problems, counts) or _one_by_one(stack)
+    sensitivities = _in_one_gap(problems, counts, rough) or _one_by_one(stack)
 
     def evaluate(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
         predicted, slopes = sensitivities(parameters, rows)
@@ -69,7 +76,9 @@ def _one_by_one(stack: Stack[Problem]) -> Sensitivities:
     return sensitivities
 
 
-def _in_one_gap(problems: Sequence[Problem], counts: Sequence[int]) -> Sensitivities | None:
+def _in_one_gap(
+    problems: Sequence[Problem], counts: Sequence[int], rough: bool
+) -> Sensitivities | None:
     """Return the sensitivities of readings in one gap, all models in one call; None for others.
 
     Each search starts its solutions from the rates of its last one.
@@ -79,7 +88,8 @@ def _in_one_gap(problems: Sequence[Problem], counts: Sequence[int]) -> Sensitivi
         return None
     stack = Stack(gaps, counts)
     first = gaps[0]
-    last = np.repeat(first.rough_rates[np.newaxis], sum(counts), axis=0)
+    bob = np.repeat(first.rough_rates[np.newaxis], sum(counts), axis=0)
+    drop = np.full_like(bob, np.nan)
 
     def sensitivities(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
         parts = []
@@ -87,12 +97,16 @@ def _in_one_gap(problems: Sequence[Problem], counts: Sequence[int]) -> Sensitivi
             width = len(problem.record.parameters)
             parts.append((problem.record, columns_of(parameters[part, :width]), part))
         curves = SeveralCurves(parts, rows.size)
-        predicted, found, rate = in_gap(
-            first.geometry.key, curves, first.setting, first.geometry.dimensions, last[rows]
+        known = None if np.isnan(drop[rows]).any() else drop[rows]
+        begin = GapRates(bob[rows], known, rough)
+        predicted, found, rates = in_gap(
+            first.geometry.key, curves, first.setting, first.geometry.dimensions, begin
         )
         slopes = np.zeros((*parameters.shape, first.setting.size))
         slopes[:, : found.shape[1]] = found
-        last[rows] = np.where(np.isfinite(predicted), rate, first.rough_rates)
+        settled = np.isfinite(predicted)
+        bob[rows] = np.where(settled, rates.bob, first.rough_rates)
+        drop[rows] = np.where(settled, np.asarray(rates.drop, dtype=float), np.nan)
         for problem, part in stack.split(rows):
             missed = np.isnan(predicted[part]).any(axis=-1)
             if missed.any():

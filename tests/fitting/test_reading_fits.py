@@ -13,7 +13,7 @@ from flow_curves import KEYS, example
 
 import rheo
 from rheo.errors import FitError, InputError
-from rheo.fitting.gap_readings import bob_stress
+from rheo.fitting.gap_readings import GapRates, bob_stress
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import RELATIONS
 from rheo.fitting.reading_task import ENTRANCE, SLIP
@@ -114,9 +114,10 @@ def test_the_quick_gap_is_the_exact_one(key, ratio):
     rate, stress = geometry.sheared(truth, SPEEDS)
     columns = [np.full((1, 1), float(value)) for value in truth]
     curves = SeveralCurves([(truth.record, columns, slice(0, 1))], 1)
-    found, _, near = bob_stress(curves, SPEEDS, np.full(30, np.log(ratio)), rate * 1.5)
+    start = GapRates(1.5 * rate[np.newaxis])
+    found, _, near = bob_stress(curves, SPEEDS, np.full(30, np.log(ratio)), start)
     np.testing.assert_allclose(found[0], stress, rtol=1e-8)
-    np.testing.assert_allclose(near[0], rate, rtol=1e-2)
+    np.testing.assert_allclose(near.bob[0], rate, rtol=1e-2)
 
 
 def test_noisy_torques_end_at_the_minimum():
