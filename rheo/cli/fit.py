@@ -61,6 +61,9 @@ def fit(
         list[int] | None,
         typer.Option("--exclude", "-x", min=1, help="Leave out a reading, counted from 1."),
     ] = None,
+    compare: Annotated[
+        bool, typer.Option("--compare", help="Say what weighting and branch do to the fit.")
+    ] = False,
     units: UnitsOption = Units.metric,
     as_json: Json = False,
 ) -> None:
@@ -71,8 +74,12 @@ def fit(
     """
     from rheo.case.as_data import cautions_data, fits_data, readings_data
     from rheo.case.load_readings import branch_of, weighting_of
+    from rheo.cli.show_choices import choices_data, show_sweeps, show_weightings
+    from rheo.fitting import Instrument
     from rheo.fitting import fit as fitted
     from rheo.fitting.any_state import fit_readings
+    from rheo.fitting.compare_weightings import compare_weightings
+    from rheo.fitting.sweeps import compare_sweeps
     from rheo.readings import read_readings, screen
 
     found = read_readings(
@@ -97,11 +104,23 @@ def fit(
     else:
         fits = fit_readings(chosen, models or None, weights, at)
     cautions = merge_cautions(found.cautions, screen(found), fits.cautions)
+    weightings = sweeps = None
+    if compare:
+        instrument = weights if isinstance(weights, Instrument) else None
+        weightings = compare_weightings(chosen, models or None, instrument, at)
+        if found.branch is not None and {"up", "down"} <= set(found.branch.tolist()):
+            sweeps = compare_sweeps(found, models or None, weights, at)
     if as_json:
         printed = {"readings": readings_data(found), **fits_data(fits)}
+        if weightings is not None:
+            printed |= choices_data(weightings, sweeps)
         terminal.print_json({**printed, "cautions": cautions_data(cautions)})
         return
     out = terminal.console()
     show_readings(out, found, units.value)
     show_fits(out, fits, fits.best)
+    if weightings is not None:
+        show_weightings(out, weightings)
+    if sweeps is not None:
+        show_sweeps(out, sweeps)
     terminal.cautions(out, cautions)
