@@ -1,6 +1,6 @@
 """Long work beside the page: it tells how far it is, and can be cancelled.
 
-``work.outcome("sizes", result, lambda progress: result.compare_sizes(progress))`` returns what
+``work.outcome("sizes", "Comparing sizes", result, result.compare_sizes)`` returns what
 comes of it, as `ui.results.Outcome`; while it is at work it draws its progress with a button that
 ends it, and returns None. The page is drawn anew when it is done.
 """
@@ -19,8 +19,8 @@ from ui.results import Outcome, outcome_of
 
 Progress = Callable[[float], None]
 # What is done sooner than this [s] shows no progress.
-SOON = 0.35
-_LOOK_EVERY = 0.4
+SOON = 0.8
+_LOOK_EVERY = 0.3
 
 
 class CancelledError(BaseException):
@@ -65,13 +65,17 @@ class Job:
             self.done.set()
 
 
-def outcome(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> Outcome | None:
+def outcome(
+    name: str, words: str, subject: Any, calculate: Callable[[Progress], Any]
+) -> Outcome | None:
     """Return what comes of a piece of work, or draw how far it is and return None.
 
     Parameters
     ----------
     name : str
         Of the work; one piece of each name is at hand in a session.
+    words : str
+        What it is, for the eye, such as ``Comparing sizes``.
     subject : object
         What it is about, compared by identity.
     calculate : callable
@@ -85,11 +89,11 @@ def outcome(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> Ou
         job = _start(place, subject, calculate)
     if job.done.wait(SOON):
         if job.cancelled:
-            st.write("You have ended this.")
+            st.write(f"You ended it: {words[:1].lower()}{words[1:]}.")
             st.button("Start again", key=f"{place}.again", on_click=_forget, args=(place,))
             return None
         return job.outcome
-    _watch(place)
+    _watch(place, words)
     return None
 
 
@@ -109,11 +113,11 @@ def _cancel(place: str) -> None:
 
 
 @st.fragment(run_every=_LOOK_EVERY)
-def _watch(place: str) -> None:
+def _watch(place: str, words: str) -> None:
     with guard.Guard():
         job = st.session_state.get(place)
         if job is None or job.done.is_set():
             st.rerun()
         left, right = st.columns([5, 1], vertical_alignment="center")
-        left.progress(min(job.share, 1.0), text=f"{100 * job.share:.0f} % of the work is done")
+        left.progress(min(job.share, 1.0), text=f"{words}: {100 * job.share:.0f} % done")
         right.button("Cancel", key=f"{place}.cancel", on_click=_cancel, args=(place,))

@@ -76,18 +76,18 @@ def test_neighbours_say_what_they_cost(page: Page) -> None:
 
 def test_limits_are_fields_and_move_the_verdict(page: Page, sauce: CaseResult) -> None:
     sizes_page(page)
-    assert page.widget("text_input", "Pressure, at most").placeholder == "10.0 bar, the pump's"
-    page.type("Velocity, at most", "0.3")
+    assert page.widget("text_input", "Pressure ≤").placeholder == "10.0 bar, the pump's"
+    page.type("Velocity ≤", "0.3")
     sizes_page(page)
     assert float(page.kept("case").limits.max_velocity) == 0.3
     best = sauce.sizing.recommended
     assert best is not None
     assert f"Take {best.size.name}" not in page.html
-    page.type("Velocity, at most", "fast")
+    page.type("Velocity ≤", "fast")
     assert "is not a number with a unit" in page.html
-    page.type("Velocity, at most", "")
+    page.type("Velocity ≤", "")
     assert page.kept("case").limits.max_velocity is None
-    page.widget("toggle", "Keep to the measured range").set_value(False)
+    page.widget("toggle", "Measured range only").set_value(False)
     page.run()
     assert page.kept("case").limits.keep_to_measured_rates is False
     page.choose("Regime", "turbulent")
@@ -194,9 +194,9 @@ def test_long_work_shows_its_progress_and_can_be_cancelled(
 
     monkeypatch.setattr("rheo.case.result.CaseResult.compare_sizes", slow)
     page.go("sizes")
-    assert "40 % of the work is done" in str(page.app.get("progress")[0].proto.text)
+    assert "Comparing sizes: 40 % done" in str(page.app.get("progress")[0].proto.text)
     page.widget("button", "Cancel").click()
     hold.set()
     page.run().run()
-    assert "You have ended this." in page.words
+    assert "You ended it: comparing sizes." in page.words
     page.press("Start again")

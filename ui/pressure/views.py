@@ -29,6 +29,15 @@ from ui import blocks, cautions, guard, pictures, state, style, table
 from ui.pressure import holding
 from ui.shear_rates import line_rates
 
+# What makes the pressure itself doubtful stands right under it; the rest stands in its own view.
+_UNDER_THE_PRESSURE = (
+    *("outside-measured-range", "measured-range-unknown"),
+    *("temperature-not-in-model", "outside-temperature-range", "temperature-of-readings"),
+    *("product-not-as-measured", "equipment-loss-as-given", "viscous-heating"),
+    *("transition-flow", "no-turbulent-solution", "outside-method-range", "friction-method"),
+    *("roughness-rule", "very-rough", "forced-regime"),
+    *("settles-at-rest", "below-deposition-velocity", "laminar-settling"),
+)
 # How many models of the ranking stand with their pressures.
 _MODELS = 5
 
@@ -59,6 +68,11 @@ def show(result: CaseResult) -> None:
         view.draw(result)
     # The answer strip shows both pressures above every view.
     cautions.safety("pressure", "start-up", *view.safety)
+
+
+def show_cautions(result: CaseResult) -> None:
+    """Draw what makes the pressure itself doubtful."""
+    cautions.show(result.cautions, codes=_UNDER_THE_PRESSURE)
 
 
 def text(words: str, kind: str = "lead") -> None:
@@ -99,7 +113,6 @@ def _show_line(result: CaseResult) -> None:
         codes=("below-vapour-pressure", "npsh-negative", "npsh-unknown", "runs-by-itself"),
     )
     _show_facts(result)
-    cautions.show(result.cautions, codes=("viscous-heating", "product-not-as-measured"))
 
 
 def _show_facts(result: CaseResult) -> None:
@@ -162,7 +175,6 @@ def _show_regime(result: CaseResult) -> None:
 def _show_rates(result: CaseResult) -> None:
     pictures.show(shear_rates_picture(result, state.system()), "pressure.rates", title=False)
     line_rates.show(result)
-    cautions.show(result.cautions, codes=("outside-measured-range",))
 
 
 def _show_start_up(result: CaseResult) -> None:

@@ -15,7 +15,7 @@ STEEL = {
     "ASME B36.10M": ("5", "10", "20", "30", "40", "60", "80", "100", "120", "140", "160", "STD"),
     "ASME B36.19M": ("5S", "10S", "40S", "80S"),
 }
-_WIDTHS = {"name": 138, "size": 124, "loss_coefficient": 62}
+_WIDTHS = {"name": 124, "size": 138, "loss_coefficient": 62}
 
 
 def choose_standard() -> tuple[str, str | None]:

@@ -146,7 +146,7 @@ def _show_points(new: bool) -> None:
         num_rows="dynamic",
         hide_index=True,
         column_config={
-            heading: st.column_config.TextColumn(alignment="right", width=150)
+            heading: st.column_config.TextColumn(alignment="right", width=166)
             for heading in columns
         },
         width="content",

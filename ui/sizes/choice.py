@@ -25,9 +25,9 @@ def show(result: CaseResult, sizing: Sizing) -> None:
     best = sizing.recommended
     with st.container(horizontal=True, vertical_alignment="bottom"):
         if best is not None:
-            taken = now is not None and now.size == best.size
+            taken, name = now is not None and now.size == best.size, style.plain(best.size.name)
             st.button(
-                f"{best.size.name} is in the route" if taken else f"Take {best.size.name}",
+                f"{name} is in the route" if taken else f"Take {name}",
                 type="primary",
                 disabled=taken,
                 icon=":material/check:",

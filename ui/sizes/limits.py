@@ -16,14 +16,14 @@ from ui.fields import NUMBER, SHARE, TEXT, Field
 from ui.route.editor import STEEL
 
 _LIMITS = (
-    Field("pressure", "Pressure, at most", "pressure", "Of the pump's pressure rise."),
-    Field("start_up_pressure", "Start-up pressure, at most", "pressure"),
-    Field("max_velocity", "Velocity, at most", "velocity"),
-    Field("min_velocity", "Velocity, at least", "velocity", "So that nothing settles."),
-    Field("max_wall_rate", "Wall shear rate, at most", "rate", "What the product bears."),
-    Field("min_hold_time", "Hold time, at least", "time", "Of the fastest particle."),
-    Field("max_residence_time", "Time in the line, at most", "time"),
-    Field("min_npsh", "NPSH available, at least", "length"),
+    Field("pressure", "Pressure ≤", "pressure", "Of the pump's pressure rise."),
+    Field("start_up_pressure", "Start-up pressure ≤", "pressure"),
+    Field("max_velocity", "Velocity ≤", "velocity"),
+    Field("min_velocity", "Velocity ≥", "velocity", "So that nothing settles."),
+    Field("max_wall_rate", "Wall shear rate ≤", "rate", "What the product bears."),
+    Field("min_hold_time", "Hold time ≥", "time", "Of the fastest particle."),
+    Field("max_residence_time", "Time in the line ≤", "time"),
+    Field("min_npsh", "NPSH available ≥", "length"),
 )
 _COST = (
     Field("energy_price", "Energy price a kWh", NUMBER),
@@ -58,7 +58,7 @@ def show(result: CaseResult) -> None:
             {None: "any", "laminar": "laminar", "turbulent": "turbulent"},
         )
         fields.switch(
-            "Keep to the measured range",
+            "Measured range only",
             ("limits", "keep_to_measured_rates"),
             help="Only sizes whose wall shear rates the viscometer has seen pass.",
         )

@@ -23,7 +23,7 @@ def show() -> None:
     fields.group("note", (), _NAMES, columns=(2, 1, 1))
     _show_purpose()
     # The note compares sizes too: done here, where it tells how far it is.
-    if work.outcome("sizes", result, result.compare_sizes) is not None:
+    if work.outcome("sizes", "Comparing sizes", result, result.compare_sizes) is not None:
         files.show()
         _show_cautions(result)
         _show_preview(result)

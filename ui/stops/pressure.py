@@ -13,6 +13,7 @@ def show() -> None:
     st.header("Pressure")
     result = answer_strip.need_result()
     st.html(f'<p class="rheo-text lead">{style.escape(what_if.lead(result, state.system()))}</p>')
+    views.show_cautions(result)
     what_if.show(result)
     views.show(result)
     walk.onward("pressure")

@@ -16,7 +16,7 @@ def show() -> None:
     """Draw the stop."""
     st.header("Sizes")
     result = answer_strip.need_result()
-    found = work.outcome("sizes", result, result.compare_sizes)
+    found = work.outcome("sizes", "Comparing sizes", result, result.compare_sizes)
     if found is not None and found.value is not None:
         _show_sizing(result, found.value)
     elif found is not None and found.problem is not None:
