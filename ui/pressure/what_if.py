@@ -52,6 +52,8 @@ def asked(values: dict[str, Any], system: str) -> Asked:
     def text(name: str) -> str:
         return str(values.get(name) or "").strip()
 
+    if bool(text("before")) != bool(text("after")):
+        return Asked(None, "Solids: give both, what the readings had and what there might be.")
     try:
         flow = with_unit(text("flow"), "flow", system) if text("flow") else None
         warmer = 0.0
@@ -62,7 +64,7 @@ def asked(values: dict[str, Any], system: str) -> Asked:
                 "warmer or colder",
             )
         solids = None
-        if text("before") or text("after"):
+        if text("before"):
             share = [
                 parse_quantity(
                     text(name) if "%" in text(name) else f"{text(name)} %",
