@@ -69,6 +69,10 @@ _PUBLIC = {
     "note_html": "rheo.report",
     "note_pdf": "rheo.report",
     "workbook": "rheo.report",
+    "BatchResult": "rheo.batches",
+    "BatchSettings": "rheo.batches",
+    "batch": "rheo.batches",
+    "write_table": "rheo.batches",
     "write_note": "rheo.report",
 }
 

@@ -28,6 +28,7 @@ ORDER = (
     ("line",),
     ("case",),
     ("report",),
+    ("batches",),
     ("cli", "ui"),
 )
 RANK = {name: rank for rank, names in enumerate(ORDER) for name in names}

@@ -8,6 +8,7 @@ from typing import Annotated
 
 import typer
 
+from rheo.cli.batch import batch
 from rheo.cli.convert import convert
 from rheo.cli.fit import fit
 from rheo.cli.models import models
@@ -32,6 +33,7 @@ app.command("fit")(fit)
 app.command("pipe")(pipe)
 app.command("convert")(convert)
 app.command("size")(size)
+app.command("batch")(batch)
 app.command("models")(models)
 app.command("open")(open_page)
 

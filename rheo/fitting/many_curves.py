@@ -1,7 +1,7 @@
 """Models fitted to many flow curves at once, for batches of files.
 
-The model that `rheo.fit` chooses, at the same minimum, by searches that all curves take together. What
-a curve is fitted with moves its numbers by rounding only.
+The model that `rheo.fit` chooses, at the same minimum, by searches that all curves take together.
+What a curve is fitted with moves its numbers by rounding only.
 """
 
 from __future__ import annotations

@@ -126,7 +126,9 @@ def _grid(key: str, window: tuple[float, float]) -> _Grid:
     return _Grid(shapes, sizes, columns, tuple(one * one for one in columns), cross)
 
 
-def grid_starts(record: ModelRecord, nodes: Nodes, count: int) -> tuple[FloatArray, FloatArray]:
+def grid_starts(
+    record: ModelRecord, nodes: Nodes, count: int
+) -> tuple[FloatArray, NDArray[np.bool_]]:
     """Return the lowest local minima of a model's grid for each of the curves.
 
     Parameters

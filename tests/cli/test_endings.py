@@ -18,12 +18,12 @@ HEAVY = {"numpy", "scipy", "pandas", "lmfit", "pint", "pydantic", "fluids", "plo
 def test_help_names_every_command(command):
     ended = command("--help")
     assert ended.status == 0
-    for name in ("run", "fit", "pipe", "convert", "size", "models", "open"):
+    for name in ("run", "fit", "pipe", "convert", "size", "batch", "models", "open"):
         assert f" {name} " in ended.out
     assert ended.err == ""
 
 
-@pytest.mark.parametrize("name", ["run", "fit", "pipe", "convert", "size", "models", "open"])
+@pytest.mark.parametrize("name", ["run", "fit", "pipe", "convert", "size", "batch", "models", "open"])
 def test_every_command_explains_itself(command, name):
     ended = command(name, "--help")
     assert ended.status == 0
