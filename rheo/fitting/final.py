@@ -20,9 +20,8 @@ FloatArray = NDArray[np.float64]
 _NO_EFFECT = 1e-9
 _SAME = 1e-12
 # Steps from every start, and then from the lowest of those that have not ended.
-_FIRST_STEPS = 40
+_STEPS, _FEW_STEPS = (40, 300), (15, 15)
 _FOLLOWED = 6
-_LAST_STEPS = 300
 _FAR, _NEAR = 1e-3, 1e-6
 _ROUNDING = 1e-14
 # lmfit starts at the minimum; where it wanders on, along a valley that the readings do not close,
@@ -67,16 +66,23 @@ def global_minima(
         Relative fall of the sum of squares below which a search ends. Above rounding it says
         that the starts are near the minimum.
     """
-    near = tolerance > _ROUNDING
-    found = _searched(problems, starts, _FIRST_STEPS, _NEAR if near else _FAR, tolerance)
-    if not all(one.converged.all() for one in found):
-        kept = [one.parameters[lowest(one.sum_of_squares, _FOLLOWED)] for one in found]
-        found = _searched(problems, kept, _LAST_STEPS, _NEAR, tolerance)
+    first, last = _FEW_STEPS if tolerance > _ROUNDING else _STEPS
+    found = _searched(problems, starts, first, _FAR, tolerance)
+    unfinished = [i for i, one in enumerate(found) if not one.converged[_best(one)]]
+    if unfinished:
+        kept = [found[i].parameters[lowest(found[i].sum_of_squares, _FOLLOWED)] for i in unfinished]
+        some = [problems[i] for i in unfinished]
+        for i, one in zip(unfinished, _searched(some, kept, last, _NEAR, tolerance), strict=True):
+            found[i] = one
     minima = []
     for problem, one in zip(problems, found, strict=True):
-        best = int(np.argmin(one.sum_of_squares))
+        best = _best(one)
         minima.append(_snapped(problem, one.parameters[best], float(one.sum_of_squares[best])))
     return minima
+
+
+def _best(found: Minimum) -> int:
+    return int(np.argmin(found.sum_of_squares))
 
 
 def _searched(

@@ -1,7 +1,8 @@
 """Torque in a gap of any width with its derivatives, quick enough for a search.
 
-At a given torque the speed is ω = ½∫γ̇ d(ln τ), so that a change of the flow curve changes the bob
-stress at a given speed by
+At a given torque the speed is ω = ½∫γ̇ d(ln τ) or, by parts, γ̇_o ln(R_o/R_i) + ½∫ln(τ_i/τ) dγ̇ from
+the rate at the cup γ̇_o to that at the bob γ̇_i. A change of the flow curve changes the bob stress at
+a given speed by
 
     dτ_i = τ_i/(γ̇_i - γ̇_o) ∫(dτ/τ) dγ̇,
 
@@ -24,7 +25,7 @@ FloatArray = NDArray[np.float64]
 
 # γ̇ = γ̇_o + (γ̇_i - γ̇_o)t³ crowds the nodes where a power of the rate would be steep.
 _POWER = 3
-_NODES, _ROUGH_NODES, _WIDE_NODES = 24, 16, 72
+_NODES, _ROUGH_NODES, _WIDE_NODES = 24, 14, 72
 _WIDE_GAP = 1.2
 _PASSES = 12
 # The last step is exact to the square of this: a rough one for the way to a minimum.
@@ -100,14 +101,14 @@ def bob_stress(
         cup = np.where(drop > _DEEPEST, rate * np.exp(drop), 0.0)
         span = rate - cup
         inside = cup[..., np.newaxis] + span[..., np.newaxis] * position
-        bent = curves.log_slope(inside) * position / inside
-        found = cup * width + 0.5 * span**2 * (bent @ weight)
+        total = curves.stress(inside)
+        found = cup * width + 0.5 * span * (np.log(stress[..., np.newaxis] / total) @ weight)
         rise = 0.5 * span * slope / found
         gap = wanted - np.log(found)
         if not np.any(np.abs(gap) > near) or last == _PASSES - 1:
             break
         at = at + np.clip(gap / rise, -_LARGEST_STEP, _LARGEST_STEP)
-    means = (curves.slopes(inside) / curves.stress(inside)) @ weight
+    means = (curves.slopes(inside) / total) @ weight
     # From the rate where Newton's method stands to the speed asked for, along the flow curve.
     onward = np.where(np.abs(gap) <= near, np.exp(gap * slope / rise), np.nan)
     return (

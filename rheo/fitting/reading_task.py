@@ -22,7 +22,7 @@ from rheo.readings import Readings
 FloatArray = NDArray[np.float64]
 
 # Far below what AICc or an interval could show; lmfit's last pass goes on from there.
-_TOLERANCE = 1e-5
+_TOLERANCE = 3e-5
 
 ENTRANCE = Parameter("entrance_diameters", "e", "-", "entrance loss in diameters", 0.0, 1e4)
 SLIP = Parameter("slip_coefficient", "β", "m/(Pa.s)", "slip velocity over wall stress", 0.0, 1.0)

@@ -16,6 +16,9 @@ from rheo.fitting.several import SeveralCurves
 from rheo.fitting.stack import Stack
 
 FloatArray = NDArray[np.float64]
+# Where no drop of the rate across the gap is known: any start will do.
+_LITTLE = -0.1
+
 Sensitivities = Callable[[FloatArray, IntArray], tuple[FloatArray, FloatArray]]
 
 
@@ -106,13 +109,24 @@ def _in_one_gap(
         slopes[:, : found.shape[1]] = found
         settled = np.isfinite(predicted)
         bob[rows] = np.where(settled, rates.bob, first.rough_rates)
-        drop[rows] = np.where(settled, np.asarray(rates.drop, dtype=float), np.nan)
-        for problem, part in stack.split(rows):
-            missed = np.isnan(predicted[part]).any(axis=-1)
-            if missed.any():
-                width = len(problem.record.parameters)
-                again = problem.sensitivity(parameters[part][missed, :width])
-                predicted[part][missed], slopes[part, :width][missed] = again
+        drop[rows] = np.where(settled, np.asarray(rates.drop, dtype=float), _LITTLE)
+        if known is None:
+            for problem, part in stack.split(rows):
+                _made_good(problem, parameters[part], predicted[part], slopes[part])
         return predicted, slopes
 
     return sensitivities
+
+
+def _made_good(
+    problem: ReadingProblem, parameters: FloatArray, predicted: FloatArray, slopes: FloatArray
+) -> None:
+    """Work out in full, in place, the rows whose quick solution did not settle.
+
+    This is for the rows that a search starts from; later ones it need not visit.
+    """
+    missed = np.isnan(predicted).any(axis=-1)
+    if missed.any():
+        width = len(problem.record.parameters)
+        again = problem.sensitivity(parameters[missed, :width])
+        predicted[missed], slopes[missed, :width] = again

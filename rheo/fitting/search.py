@@ -96,10 +96,15 @@ def search(
         else:
             cells = [cell[: effort.kept] for cell in cells]
         shapes, left = _refined(records, cells, rate, stress, sigma, effort.steps, effort.tolerance)
-        cells = [
-            np.concatenate([cell, grid]) if cell.shape[-1] >= effort.direct else cell
-            for cell, grid in zip(_kept(shapes, left, effort.kept), grids, strict=True)
-        ]
+        kept = _kept(shapes, left, effort.kept)
+        cells = []
+        for index, (record, grid) in enumerate(zip(records, grids, strict=True)):
+            wider = _from_narrower(record, records, kept, left, (rate, stress, sigma))
+            found = kept[index]
+            if wider.size and effort.direct > found.shape[-1]:
+                found = found[: effort.kept - 1]
+            more = grid if found.shape[-1] >= effort.direct else grid[:0]
+            cells.append(np.concatenate([wider, found, more]))
         stack = Stack(records, [len(cell) for cell in cells])
         projection = Projection(stack, rate, stress, sigma)
         return projection.parameters(padded(cells), np.arange(stack.edges[-1]))
@@ -123,6 +128,41 @@ def _refined(
         [found.parameters[part, :width] for part, width in zip(parts, widths, strict=True)],
         [found.sum_of_squares[part] for part in parts],
     )
+
+
+def _from_narrower(
+    record: ModelRecord,
+    records: Sequence[ModelRecord],
+    kept: Sequence[FloatArray],
+    left: Sequence[FloatArray],
+    curve: tuple[FloatArray, FloatArray, FloatArray],
+) -> FloatArray:
+    """Return the best shape (1, q) that a model with one shape coordinate fewer leads to.
+
+    Only where that model has two coordinates or more and all of them are this model's too, as
+    Carreau's are those of Carreau and Yasuda. Empty for the others, and where nothing is gained.
+    """
+    names = record.separable.shape
+    found = np.empty((0, len(names)))
+    lowest_yet = float(np.min(left[list(records).index(record)]))
+    for narrower, shapes in zip(records, kept, strict=True):
+        shared = narrower.separable.shape
+        missing = [name for name in names if name not in shared]
+        if len(shared) < 2 or len(missing) != 1 or len(names) != len(shared) + 1:
+            continue
+        axis = record.separable.grid(curve[0])[names.index(missing[0])]
+        tries = np.empty((axis.size, len(names)))
+        tries[:, names.index(missing[0])] = axis
+        for place, name in enumerate(shared):
+            tries[:, names.index(name)] = shapes[0, place]
+        residual, _ = Projection(Stack([record], [axis.size]), *curve).evaluate(
+            tries, np.arange(axis.size)
+        )
+        totals = np.einsum("rn,rn->r", residual, residual)
+        best = int(np.nanargmin(totals))
+        if totals[best] < lowest_yet:
+            found, lowest_yet = tries[[best]], float(totals[best])
+    return found
 
 
 def _kept(shapes: Sequence[FloatArray], left: Sequence[FloatArray], count: int) -> list[FloatArray]:
