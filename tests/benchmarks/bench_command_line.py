@@ -13,6 +13,8 @@ import sys
 import time
 from pathlib import Path
 
+from ratios import report
+
 SAMPLES = Path(__file__).parents[2] / "sample_data"
 MOST_FOR_HELP = 2.0
 REPEATS = 7
@@ -39,7 +41,13 @@ def main() -> int:
         rows[f"rheo run {name}.toml"] = _seconds("-m", "rheo", "run", str(SAMPLES / f"{name}.toml"))
     for name, seconds in rows.items():
         print(f"{name:24}{1e3 * seconds:8.0f} ms{seconds / numpy:8.2f} times numpy")
-    return int(rows["rheo --help"] > MOST_FOR_HELP * numpy)
+    for name in ("sauce", "thickener", "gum"):
+        imports = rows["import pandas, lmfit"]
+        report(
+            f"rheo run {name}.toml; import pandas, lmfit", imports / rows[f"rheo run {name}.toml"]
+        )
+    what = "rheo --help; import numpy"
+    return int(not report(what, numpy / rows["rheo --help"], 1.0 / MOST_FOR_HELP))
 
 
 if __name__ == "__main__":

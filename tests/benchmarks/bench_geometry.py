@@ -19,6 +19,7 @@ from scipy.optimize import brentq
 sys.path.insert(0, str(Path(__file__).parents[1]))
 
 from flow_curves import EXAMPLES, KEYS, example
+from ratios import report
 
 import rheo
 from rheo import Model
@@ -54,7 +55,7 @@ def _ordinary_torque(model: Model, speed: float) -> float:
 
 def main() -> None:
     """Print one line a model, then vectorised draws."""
-    total = 0.0
+    total = loop = 0.0
     for key in KEYS:
         model = example(key)
         fast = _seconds(lambda model=model: CUP.predict(model, SPEEDS))
@@ -63,12 +64,14 @@ def main() -> None:
         few = SPEEDS[::10]
         ordinary = np.array([_ordinary_torque(model, float(speed)) for speed in few])
         slow = (time.perf_counter() - start) * SPEEDS.size / few.size
+        loop += slow
         error = float(np.max(np.abs(CUP.predict(model, few) / ordinary - 1.0)))
         print(
             f"{key:18s} 30 torques {1e3 * fast:7.2f} ms; loop of quad and brentq "
             f"{1e3 * slow:8.0f} ms, {slow / fast:7.0f} times as long; differ by {error:.0e}"
         )
     print(f"eleven models x 30 torques: {1e3 * total:.1f} ms")
+    report("30 torques of cup and bob, 11 models; quad and brentq one by one", loop / total)
     rng = np.random.default_rng(1)
     for key in ("herschel-bulkley", "carreau"):
         draws = rheo.model(

@@ -11,6 +11,7 @@ from __future__ import annotations
 import time
 
 import numpy as np
+from ratios import report
 
 import rheo
 from rheo.line import (
@@ -83,6 +84,8 @@ def main() -> None:
             worst = max(worst, abs(alone / table[row, column] - 1.0))
         apart = (time.perf_counter() - start) * SIZES * DRAWS / SAMPLE
         print(f"{key:18}{together:14.3f}{apart:12.1f}{apart / together:8.0f}{worst:14.1e}")
+        what = f"{SIZES} sizes x {DRAWS} draws, {key}; one size and draw at a time"
+        report(what, apart / together)
 
 
 if __name__ == "__main__":
