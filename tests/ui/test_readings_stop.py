@@ -123,13 +123,24 @@ def test_columns_that_are_not_understood_can_be_named(page: Page) -> None:
     assert "Say which column is which" in page.words
     assert page.kept("case").readings[0].file == "odd.csv"
     assert len(page.errors) == 1
-    named = changed(
-        page.kept("case"), ("readings", 0, "columns"), {"rate": "Alpha", "stress": "Beta"}
-    )
-    page.app.session_state["rheo.case"] = named
-    page.run()
+    page.choose("Alpha, first 0", "shear rate")
+    page.choose("Beta, first 14", "shear stress")
     assert page.errors == []
     assert "13 readings" in page.words
+    assert page.kept("case").readings[0].columns == {"rate": "Alpha", "stress": "Beta"}
+    stress = float(_points(page)[0]["y"][0])
+    fields = [one for one in page.app.text_input if one.label == "Unit"]
+    fields[1].set_value("kPa")
+    page.run()
+    assert _points(page)[0]["y"][0] == pytest.approx(1000.0 * stress)
+    fields = [one for one in page.app.text_input if one.label == "Unit"]
+    fields[1].set_value("rpm")
+    page.run()
+    assert 'role="alert"' in page.html
+    assert page.kept("case").readings[0].units == {"stress": "kPa"}
+    page.choose("Beta, first 14", "not used")
+    assert 'role="alert"' in page.html
+    assert page.kept("case").readings[0].columns == {"rate": "Alpha", "stress": "Beta"}
 
 
 def test_the_columns_of_a_file_are_shown_as_understood() -> None:

@@ -4,19 +4,19 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Any
 
 import streamlit as st
 
-from rheo.errors import InputError, UnitError
+from rheo.errors import UnitError
 from rheo.readings import ColumnRecord, Readings
-from rheo.readings.quantities import QUANTITIES
-from rheo.report.text import one_line
-from ui import cautions, results, state
+from rheo.readings.quantities import BY_KEY, QUANTITIES
+from ui import cautions, results, state, style
 from ui.readings import sets
 from ui.readings.look import Sheet, look
 
 NOT_USED = "not used"
+# More columns than this scroll in a box of their own, so many px high.
+_MANY, _TALL = 16, 620
 _NAMES = {quantity.key: quantity.name for quantity in QUANTITIES}
 _KEYS = {name: key for key, name in _NAMES.items()}
 
@@ -33,38 +33,64 @@ class FileColumn:
 
 
 def show() -> None:
-    """Draw the choice of the sheet and the table of columns, and what is wrong with them."""
+    """Draw the choice of the sheet, what each column holds, and what is wrong with it."""
     sheets = _sheets()
     _show_sheets(sheets)
     found = file_columns(sets.readings(), sheets)
     if not found:
         st.caption("No heading was found in this file.")
         return
-    widget = state.key(f"mapping.{sets.number()}.{results.digest(found)}")
+    with st.container(height=_TALL if len(found) > _MANY else "content", border=False):
+        for start in range(0, len(found), 2):
+            places = st.columns([3, 1.3, 3, 1.3], vertical_alignment="bottom")
+            for index, column in enumerate(found[start : start + 2]):
+                with places[2 * index]:
+                    _choose_meaning(start + index, column)
+                with places[2 * index + 1]:
+                    _enter_unit(start + index, column)
+    cautions.complaint(state.complaint("mapping"))
+
+
+def _choose_meaning(row: int, column: FileColumn) -> None:
+    current = _NAMES.get(column.quantity, NOT_USED)
+    widget = state.key(f"column.{sets.number()}.{row}.{column.heading}.{current}")
+    names = [NOT_USED, *_KEYS]
 
     def take() -> None:
-        edits = st.session_state[widget]["edited_rows"]
-        state.attempt("mapping", take_edits, found, edits)
+        state.attempt("mapping", say_meaning, column, _KEYS.get(st.session_state[widget], ""))
         state.touch()
 
-    st.data_editor(
-        {
-            "Column": [one_line(column.heading, 60) for column in found],
-            "First value": [one_line(column.first, 24) for column in found],
-            "Is": [_NAMES.get(column.quantity, NOT_USED) for column in found],
-            "Unit": [column.unit for column in found],
-        },
+    st.selectbox(
+        f"{style.plain(column.heading, 40) or 'without heading'}, first {_first(column)}",
+        names,
+        index=names.index(current),
         key=widget,
         on_change=take,
-        hide_index=True,
-        disabled=["Column", "First value"],
-        column_config={
-            "Is": st.column_config.SelectboxColumn(options=[NOT_USED, *_KEYS], required=True),
-            "Unit": st.column_config.TextColumn(help="Such as rpm, mN.m, 1/s, Pa, kPa, L/min"),
-        },
-        height=38 + 35 * min(len(found), 9),
+        disabled=not column.heading,
     )
-    cautions.complaint(state.complaint("mapping"))
+
+
+def _enter_unit(row: int, column: FileColumn) -> None:
+    widget = state.key(f"unit.{sets.number()}.{row}.{column.heading}.{column.unit}")
+
+    def take() -> None:
+        typed = str(st.session_state[widget]).strip()
+        if typed and typed != column.unit:
+            state.attempt("mapping", say_unit, column, typed)
+            state.touch()
+
+    st.text_input(
+        "Unit",
+        value=column.unit,
+        key=widget,
+        on_change=take,
+        disabled=not column.quantity or BY_KEY[column.quantity].text,
+        placeholder="such as Pa" if column.quantity else "",
+    )
+
+
+def _first(column: FileColumn) -> str:
+    return style.plain(column.first, 16) or "empty"
 
 
 def file_columns(readings: Readings | None, sheets: Sequence[Sheet]) -> tuple[FileColumn, ...]:
@@ -97,35 +123,40 @@ def _read_column(column: ColumnRecord, first: Sequence[str | float]) -> FileColu
     return FileColumn(column.heading, value, column.quantity, column.unit, column.mapped)
 
 
-def take_edits(found: Sequence[FileColumn], edits: dict[int, dict[str, Any]]) -> None:
-    """Put the user's word on columns and units into the case.
+def say_meaning(column: FileColumn, quantity: str) -> None:
+    """Put the user's word on what a column holds into the case; an empty text for nothing.
 
     Raises
     ------
     InputError
-        If readings that could be read could be read no longer, or a unit does not fit.
+        If readings that could be read could be read no longer.
     """
-    number, before = sets.number(), state.case()
-    block = before.readings[number]
-    columns, units = dict(block.columns), dict(block.units)
-    for row, edit in edits.items():
-        column = found[int(row)]
-        if not column.heading:
-            raise InputError("a column without a heading cannot be chosen; give it one in the file")
-        quantity = column.quantity
-        if "Is" in edit:
-            quantity = _KEYS.get(str(edit["Is"]), "")
-            columns = {
-                key: heading for key, heading in columns.items() if heading != column.heading
-            }
-            if column.quantity and not quantity:
-                columns[column.quantity] = ""
-            if quantity:
-                columns[quantity] = column.heading
-                units.pop(quantity, None)
-        if edit.get("Unit") and quantity:
-            units[quantity] = str(edit["Unit"]).strip()
-    new = state.changed(before, ("readings", number, "columns"), columns or None)
+    block = sets.block()
+    columns = {key: name for key, name in block.columns.items() if name != column.heading}
+    units = dict(block.units)
+    if column.quantity and not quantity:
+        columns[column.quantity] = ""
+    if quantity:
+        columns[quantity] = column.heading
+        units.pop(quantity, None)
+    _put(columns, units)
+
+
+def say_unit(column: FileColumn, unit: str) -> None:
+    """Put the user's word on the unit of a column into the case.
+
+    Raises
+    ------
+    InputError
+        If it is no unit of what the column holds.
+    """
+    block = sets.block()
+    _put(dict(block.columns), {**block.units, column.quantity: unit})
+
+
+def _put(columns: dict[str, str], units: dict[str, str]) -> None:
+    number = sets.number()
+    new = state.changed(state.case(), ("readings", number, "columns"), columns or None)
     new = state.changed(new, ("readings", number, "units"), units or None)
     problem = results.readings_of(new, state.files()).problem
     if problem is not None and (state.readings() is not None or isinstance(problem, UnitError)):

@@ -18,7 +18,7 @@ def show() -> None:
     readings = sets.readings()
     if readings is None:
         st.markdown("**Say which column is which**")
-        st.caption("Double-click a cell under Is and choose what the column holds.")
+        st.caption("Choose for each column of the file what it holds.")
         mapping.show()
         with st.expander("Instrument: geometry and full scale", expanded=True):
             geometry.show()
