@@ -24,7 +24,7 @@ from rheo.geometry import make_geometry
 
 sys.path.insert(0, str(Path(__file__).parent.parent))
 
-from random_starts import lowest_of_random_starts  # noqa: E402
+from random_starts import lowest_of_random_starts
 
 TRUTH = {"yield_stress": 12.0, "consistency": 4.2, "flow_index": 0.45}
 

@@ -14,7 +14,7 @@ import rheo
 
 sys.path.insert(0, str(Path(__file__).parent.parent))
 
-from flow_curves import example  # noqa: E402
+from flow_curves import example
 
 
 def simulated(truth: rheo.Model, rate: np.ndarray, seed: int) -> rheo.FlowCurve:
