@@ -23,7 +23,9 @@ def test_help_names_every_command(command):
     assert ended.err == ""
 
 
-@pytest.mark.parametrize("name", ["run", "fit", "pipe", "convert", "size", "batch", "models", "open"])
+@pytest.mark.parametrize(
+    "name", ["run", "fit", "pipe", "convert", "size", "batch", "models", "open"]
+)
 def test_every_command_explains_itself(command, name):
     ended = command(name, "--help")
     assert ended.status == 0
