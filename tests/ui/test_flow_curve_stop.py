@@ -105,3 +105,30 @@ def test_a_line_that_cannot_be_worked_out_leaves_the_ranking(page: Page) -> None
     page.app.session_state["rheo.case"] = case_from_document(document)
     page.go("flow_curve")
     assert "Herschel-Bulkley" in page.html
+
+
+def test_weights_can_be_chosen(page: Page) -> None:
+    page.go("flow_curve")
+    page.choose("A reading is taken", "instrument")
+    fit = page.kept("case").fit
+    assert (fit.weighting, fit.percent_of_reading, fit.percent_of_full_scale) == (
+        "instrument",
+        1.0,
+        1.0,
+    )
+    assert page.errors == []
+    page.choose("A reading is taken", "absolute")
+    assert page.kept("case").fit.percent_of_reading is None
+    page.choose("A reading is taken", "relative")
+    assert page.errors == []
+
+
+def test_the_fits_of_tubes_can_take_in_slip(page: Page) -> None:
+    page.press("Thickener")
+    page.go("flow_curve")
+    toggles = {one.label: one for one in page.app.toggle}
+    now = page.kept("case").fit.slip
+    toggles["Fit slip at the wall"].set_value(not now)
+    page.run()
+    assert page.kept("case").fit.slip is (not now)
+    assert page.errors == []

@@ -123,8 +123,8 @@ def test_columns_that_are_not_understood_can_be_named(page: Page) -> None:
     assert "Say which column is which" in page.words
     assert page.kept("case").readings[0].file == "odd.csv"
     assert len(page.errors) == 1
-    page.choose("Alpha, first 0", "shear rate")
-    page.choose("Beta, first 14", "shear stress")
+    page.choose("Alpha, first value 0", "shear rate")
+    page.choose("Beta, first value 14", "shear stress")
     assert page.errors == []
     assert "13 readings" in page.words
     assert page.kept("case").readings[0].columns == {"rate": "Alpha", "stress": "Beta"}
@@ -138,7 +138,7 @@ def test_columns_that_are_not_understood_can_be_named(page: Page) -> None:
     page.run()
     assert 'role="alert"' in page.html
     assert page.kept("case").readings[0].units == {"stress": "kPa"}
-    page.choose("Beta, first 14", "not used")
+    page.choose("Beta, first value 14", "not used")
     assert 'role="alert"' in page.html
     assert page.kept("case").readings[0].columns == {"rate": "Alpha", "stress": "Beta"}
 
@@ -255,6 +255,26 @@ def test_a_sheet_can_be_chosen(page: Page) -> None:
     page.choose("Sheet", "Friday")
     assert page.kept("case").readings[0].sheet == "Friday"
     assert min(min(trace["y"]) for trace in _points(page)) == pytest.approx(lowest + 10.0)
+
+
+def test_tables_of_a_file_can_be_chosen(page: Page) -> None:
+    text = "Monday\n" + CURVE + "\nFriday\n" + CURVE.replace(",14.", ",15.")
+    page.upload("week.csv", text.encode())
+    assert "26 readings" in page.words
+    page.widget("multiselect", "Tables of the file").set_value(["Friday"])
+    page.run()
+    assert page.kept("case").readings[0].block == ("Friday",)
+    assert "13 readings" in page.words
+
+
+def test_the_dial_of_a_six_speed_instrument(page: Page) -> None:
+    dial = "Speed [rpm],Dial [deg]\n3,8\n6,9\n100,24\n200,33\n300,41\n600,60\n"
+    page.upload("mud.csv", dial.encode())
+    page.choose("Measured in", "six-speed")
+    assert page.errors == []
+    before = _points(page)[0]["y"][0]
+    page.type("Stress per degree", "1.022 Pa")
+    assert _points(page)[0]["y"][0] == pytest.approx(2.0 * before, rel=1e-3)
 
 
 def test_what_cannot_be_converted_says_why() -> None:

@@ -131,12 +131,11 @@ def _value(number: int, key: str) -> Any:
 
 
 def _show_instrument(number: int, record: GeometryRecord) -> None:
-    readings = sets.readings()
+    readings, system = sets.readings(), state.system()
     columns = st.columns(3, vertical_alignment="bottom")
     with columns[0]:
         if record.reading == "torque":
             stated = None if readings is None else readings.full_scale_torque
-            system = state.system()
             units_switch.entry(
                 "Torque at full scale",
                 ("readings", number, "full_scale_torque"),
@@ -147,6 +146,14 @@ def _show_instrument(number: int, record: GeometryRecord) -> None:
                 else f"{display.text(stated, 'torque', system)} (from the file)",
                 help="Readings under 10 % of it are flagged.",
             )
+        if readings is not None and readings.dial is not None:
+            units_switch.entry(
+                "Stress per degree of the dial",
+                ("readings", number, "stress_per_degree"),
+                "stress",
+                optional=True,
+                placeholder=f"{display.text(readings.stress_per_degree, 'stress', system)}",
+            )
     with columns[1]:
         particle = None if readings is None else readings.particle_diameter
         units_switch.entry(
@@ -156,7 +163,7 @@ def _show_instrument(number: int, record: GeometryRecord) -> None:
             optional=True,
             placeholder="none given"
             if particle is None
-            else f"{display.text(particle, 'diameter', state.system())} (from the file)",
+            else f"{display.text(particle, 'diameter', system)} (from the file)",
             help="A gap under ten particles is flagged.",
         )
     with columns[2]:

@@ -36,6 +36,7 @@ def show() -> None:
     """Draw the choice of the sheet, what each column holds, and what is wrong with it."""
     sheets = _sheets()
     _show_sheets(sheets)
+    _show_tables(sheets)
     found = file_columns(sets.readings(), sheets)
     if not found:
         st.caption("No heading was found in this file.")
@@ -61,7 +62,7 @@ def _choose_meaning(row: int, column: FileColumn) -> None:
         state.touch()
 
     st.selectbox(
-        f"{style.plain(column.heading, 40) or 'without heading'}, first {_first(column)}",
+        f"{style.plain(column.heading, 40) or 'without heading'}, first value {_first(column)}",
         names,
         index=names.index(current),
         key=widget,
@@ -85,7 +86,6 @@ def _enter_unit(row: int, column: FileColumn) -> None:
         key=widget,
         on_change=take,
         disabled=not column.quantity or BY_KEY[column.quantity].text,
-        placeholder="such as Pa" if column.quantity else "",
     )
 
 
@@ -162,6 +162,37 @@ def _put(columns: dict[str, str], units: dict[str, str]) -> None:
     if problem is not None and (state.readings() is not None or isinstance(problem, UnitError)):
         raise problem
     state.put(new)
+
+
+def _show_tables(sheets: Sequence[Sheet]) -> None:
+    """Draw the choice between several tables of one sheet."""
+    number, block = sets.number(), sets.block()
+    sheet = next((one for one in sheets if one.name == block.sheet), None)
+    sheet = sheet or next((one for one in sheets if one.first), None)
+    if sheet is None or len(sheet.labels) < 2:
+        return
+    chosen = (block.block,) if isinstance(block.block, str) else block.block
+    widget = state.key(f"tables.{number}.{sheet.name}.{chosen}")
+
+    def take() -> None:
+        picked = list(st.session_state[widget])
+        wanted = picked if 0 < len(picked) < len(sheet.labels) else None
+
+        def act() -> None:
+            new = state.changed(state.case(), ("readings", number, "block"), wanted)
+            state.put(state.changed(new, ("readings", number, "exclude"), None))
+
+        state.attempt("mapping", act)
+        state.touch()
+
+    st.multiselect(
+        "Tables of the file",
+        sheet.labels,
+        default=[label for label in chosen or sheet.labels if label in sheet.labels],
+        key=widget,
+        on_change=take,
+        help="All are read together. Readings left out by hand are taken in again.",
+    )
 
 
 def _sheets() -> tuple[Sheet, ...]:

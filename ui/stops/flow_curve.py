@@ -9,7 +9,7 @@ from rheo.report.case_pictures import flow_curve_picture, residuals_picture
 from rheo.report.sections.fitted import parameter_table
 from rheo.report.words import capital
 from ui import answer_strip, blocks, cautions, pictures, state, style, walk, words
-from ui.flow_curve import compare, measure, ranking
+from ui.flow_curve import compare, how, measure, ranking
 
 
 def show() -> None:
@@ -63,6 +63,8 @@ def _show_result(result: CaseResult) -> None:
         )
     with st.expander("What to measure next", expanded=True):
         measure.show(result)
+    with st.expander("How it is fitted"):
+        how.show(result)
 
 
 def _reason(result: CaseResult) -> str:
