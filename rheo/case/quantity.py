@@ -14,6 +14,9 @@ from rheo.units import parse_quantity
 
 _LEADING_NUMBER = re.compile(r"^\s*[-+]?[\d. ']*(?:[eE][-+]?\d+)?")
 
+# No quantity of a plant is larger, or smaller and not 0; products of those within stay numbers.
+FARTHEST = 1e30
+
 
 class Quantity(float):
     """An SI number that keeps the text from which it was read, so that a file comes back as it was.
@@ -73,6 +76,11 @@ class Unit:
             raise CaseError(f"found {describe(value)}; write a number with its unit{self._like()}")
         if not math.isfinite(quantity):
             raise CaseError(f"found {float(quantity)}; it must be a finite number{self._like()}")
+        if quantity != 0.0 and not 1.0 / FARTHEST <= abs(quantity) <= FARTHEST:
+            raise CaseError(
+                f"found {self.show(quantity)}; its size in SI must lie between "
+                f"{1.0 / FARTHEST:g} and {FARTHEST:g}{self._like()}"
+            )
         if not self._holds(quantity):
             raise CaseError(
                 f"found {self.show(quantity)}; it must be {self.allowed()}{self._like()}"

@@ -183,16 +183,20 @@ def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
     start = lmfit.Parameters()
     for index, value in enumerate(whole[free]):
         start.add(f"p{index}", value=float(value))
-    result = lmfit.minimize(
-        residuals,
-        start,
-        Dfun=slopes,
-        col_deriv=1,
-        ftol=1e-15,
-        xtol=1e-15,
-        gtol=0.0,
-        max_nfev=_LAST_EVALUATIONS,
-    )
+    try:
+        result = lmfit.minimize(
+            residuals,
+            start,
+            Dfun=slopes,
+            col_deriv=1,
+            ftol=1e-15,
+            xtol=1e-15,
+            gtol=0.0,
+            max_nfev=_LAST_EVALUATIONS,
+        )
+    except ValueError:
+        # Readings over tens of decades: lmfit refuses what overflows on its way.
+        return Final(parameters, total, free, covariance(problem, parameters, total, free))
     ended = at(result.params)[0]
     inside = bool(np.all((ended >= lower) & (ended <= upper)))
     if (

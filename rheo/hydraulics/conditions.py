@@ -12,6 +12,9 @@ from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
 
+# Sizes, velocities and densities beyond this, in SI, are slips of the pen.
+FARTHEST = 1e30
+
 
 @dataclass(frozen=True)
 class Pipe:
@@ -61,6 +64,7 @@ def positive(values: ArrayLike, name: str, unit: str) -> FloatArray:
     if not np.all(np.isfinite(array) & (array > 0)):
         worst = array[~(np.isfinite(array) & (array > 0))].flat[0]
         raise InputError(f"it is {float(worst):g} {unit}; it must be a finite number above 0", name)
+    _within_reach(array, name, unit)
     return array
 
 
@@ -79,6 +83,17 @@ def not_negative(values: ArrayLike, name: str, unit: str) -> FloatArray:
             f"it is {float(worst):g} {unit}; it must be a finite number, 0 or more", name
         )
     return array
+
+
+def _within_reach(array: FloatArray, name: str, unit: str) -> None:
+    """Refuse sizes whose squares and products would leave the range of numbers."""
+    beyond = (array < 1.0 / FARTHEST) | (array > FARTHEST)
+    if np.any(beyond):
+        raise InputError(
+            f"it is {float(array[beyond].flat[0]):g} {unit}; it must lie between "
+            f"{1.0 / FARTHEST:g} and {FARTHEST:g}",
+            name,
+        )
 
 
 def _numbers(values: ArrayLike, name: str) -> FloatArray:

@@ -246,6 +246,9 @@ def drift(readings: Readings) -> tuple[Caution, ...]:
     starts = np.r_[0, np.flatnonzero(apart | (group[1:] != group[:-1])) + 1]
     counts = np.diff(np.r_[starts, setting.size])
     when = np.arange(setting.size, dtype=float) if readings.time is None else readings.time
+    # Only its proportions matter, and as a share of the last no square of it can overflow.
+    last = float(np.max(np.abs(when)))
+    when = when / last if last > 0 else when
     slope, scatter, span = _lines_through(when, answer, starts, counts)
     mean = np.add.reduceat(answer, starts) / counts
     change = slope * span / mean
