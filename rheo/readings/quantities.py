@@ -236,7 +236,7 @@ QUANTITIES: tuple[Quantity, ...] = (
         "degree",
         words=(
             *("dial", "dial reading", "dial degrees", "dial deflection", "deflection"),
-            *("skalenteile", "ablesung", "zeigerausschlag", "lecture du cadran", "lecture"),
+            *("skalenteile", "ablesung", "zeigerausschlag", "cadran", "valeur du cadran"),
             *("lectura", "lectura del dial", "lectura del cuadrante", "reading"),
         ),
         symbols=("θ", "Θ"),
