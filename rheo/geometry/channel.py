@@ -36,7 +36,9 @@ def solve_channel(model: Model, nominal_rate: FloatArray, k: int) -> FloatArray:
     def relation(rough: bool, local: Model, rate: FloatArray) -> tuple[FloatArray, FloatArray]:
         value = (k + 2) * rate * moment_ratio(local, rate, k, rough)
         slope = local.record.log_slope(rate, *local)
-        return value, slope * ((k + 2) * rate / value - (k + 1))
+        # Where the stress has levelled off to the last digit, nothing is left of the value.
+        share = rate / np.where(value > 0, value, np.inf)
+        return value, slope * ((k + 2) * share - (k + 1))
 
     start = solve_log(lambda local, rate: relation(True, local, rate), model, nominal_rate)
     if model.record.moment_ratio is not None:
