@@ -8,7 +8,9 @@ from __future__ import annotations
 
 import math
 import numbers
+import pickle
 import re
+import threading
 import tokenize
 from functools import cache
 from typing import Any
@@ -102,13 +104,28 @@ _PLAUSIBLE_UNIT = re.compile(r"^[\w\s*/^().·⋅%°µμΩ℃℉\"+-]{1,60}$")
 _MULTIPLE_OF_TIME = re.compile(r"(?<![a-z_])[a-z]+(hour|minute|day|week|month|year)(?![a-z_])")
 
 
-@cache
+# Pint's cache on disk is not written in one go: another process, or one that was killed, can leave
+# half a file. Then the units are parsed anew, which takes half a second.
+_HALF_A_CACHE = (
+    *(OSError, ImportError, EOFError, ValueError, TypeError, AttributeError, LookupError),
+    pickle.UnpicklingError,
+)
+_one_at_a_time = threading.Lock()
+
+
 def _registry() -> Any:
+    # Sessions of the page begin at the same moment in threads of one process.
+    with _one_at_a_time:
+        return _made_registry()
+
+
+@cache
+def _made_registry() -> Any:
     import pint
 
     try:
         registry: Any = pint.UnitRegistry(cache_folder=":auto:")
-    except (OSError, ImportError):
+    except _HALF_A_CACHE:
         registry = pint.UnitRegistry()
     registry.define("meter_H2O = 9806.65 * pascal")
     registry.define("pound_per_100_square_feet = lbf / (100 * ft**2)")
