@@ -24,7 +24,6 @@ from rheo.line import (
     doubt_budget,
     holding_tube,
     measure_next,
-    operating_point,
     size_line,
     system_curve,
 )
@@ -71,9 +70,11 @@ class CaseResult:
     pump : CentrifugalPump, DisplacementPump or None
         The pump, where its curve is known.
     efficiency : float or None
-        Of the pump at the duty [-].
+        Of the pump at the duty [-], as corrected for viscosity where that was due.
+    operating : OperatingPoint or None
+        Where pump and line meet; None when the pump's curve is not known.
     cautions : tuple of Caution
-        Of readings, fit and line, in that order.
+        Of readings, fit, line and pump, in that order.
     """
 
     case: Case
@@ -85,6 +86,7 @@ class CaseResult:
     line: LineResult
     pump: CentrifugalPump | DisplacementPump | None
     efficiency: float | None
+    operating: OperatingPoint | None
     cautions: tuple[Caution, ...]
 
     @property
@@ -129,14 +131,6 @@ class CaseResult:
         if measured is None or rates is None:
             return None
         return measured[0] <= rates[0] and rates[1] <= measured[1]
-
-    @cached_property
-    def operating(self) -> OperatingPoint | None:
-        """Where pump and line meet; None when the pump's curve is not known."""
-        if self.pump is None:
-            return None
-        method = self.case.line.friction_method
-        return operating_point(self.line.line, self.product, self.pump, method)
 
     @cached_property
     def system_curve(self) -> SystemCurve:

@@ -9,6 +9,7 @@ import numpy as np
 
 from rheo.case.join import joined
 from rheo.case.load_readings import all_readings, branch_of, weighting_of
+from rheo.case.pump_cautions import pump_cautions
 from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
 from rheo.errors import CaseError, Caution, merge_cautions
@@ -21,6 +22,7 @@ from rheo.line import (
     LineResult,
     Product,
     Solids,
+    operating_point,
     settling_cautions,
     solve_line,
 )
@@ -143,14 +145,16 @@ def run_case(
     found = fit_case(case, readings) if fitted is None else fitted
     sets, fits, chosen, product = found.readings, found.fits, found.chosen, found.product
     pump = None if case.pump is None else case.pump.build()
-    efficiency = _efficiency(case, pump)
+    route, method = case.line.build(), case.line.friction_method
+    operating = None if pump is None else operating_point(route, product, pump, method)
+    efficiency = _efficiency(case, None if operating is None else operating.pump)
     line = solve_line(
-        case.line.build(),
+        route,
         product,
         float(case.duty.flow),
         efficiency=efficiency,
         rating=_rating(case, pump, product),
-        method=case.line.friction_method,
+        method=method,
     )
     cautions = merge_cautions(
         *(one.cautions for one in sets),
@@ -160,10 +164,11 @@ def run_case(
         _temperature_cautions(found.fitted, product),
         _thickness_cautions(case),
         line.cautions,
+        pump_cautions(case, line, operating),
         _solids_cautions(case, line),
     )
     return CaseResult(
-        case, sets, found.fitted, fits, chosen, product, line, pump, efficiency, cautions
+        case, sets, found.fitted, fits, chosen, product, line, pump, efficiency, operating, cautions
     )
 
 
@@ -235,7 +240,10 @@ def _temperature(case: Case, readings: Readings) -> float:
 
 
 def _efficiency(case: Case, pump: CentrifugalPump | DisplacementPump | None) -> float | None:
-    """Efficiency at the duty: of the pump's points where there are any, else the one given."""
+    """Efficiency at the duty: of the pump's points where there are any, else the one given.
+
+    The points are those of the pump as it is used, corrected for viscosity where that was due.
+    """
     if isinstance(pump, CentrifugalPump):
         at_duty = pump.efficiency(float(case.duty.flow))
         if at_duty is not None and np.isfinite(at_duty) and at_duty > 0:

@@ -218,7 +218,10 @@ def _solve(
             found = flow - pump.flow(need)
         return np.array(np.broadcast_to(found, flow.shape))
 
-    high = np.log(pump.flow_range[1] if isinstance(pump, CentrifugalPump) else pump.swept_flow)
+    # A displacement pump without slip delivers all that it sweeps: the end must lie beyond that,
+    # not at it, where the last digit would decide.
+    most = pump.flow_range[1] if isinstance(pump, CentrifugalPump) else 1.001 * pump.swept_flow
+    high = np.log(most)
     low = high + np.log(1e-4)
     if isinstance(pump, CentrifugalPump) and pump.flow_range[0] > 0:
         low = max(low, np.log(pump.flow_range[0]))

@@ -255,3 +255,12 @@ def test_water_needs_no_correction() -> None:
 def test_pumps_that_cannot_be(make: object, sentence: str) -> None:
     with pytest.raises(rheo.InputError, match=sentence):
         make()  # type: ignore[operator]
+
+
+@pytest.mark.parametrize("speed", range(100, 400, 7))
+def test_a_pump_without_slip_delivers_what_it_sweeps(speed: int) -> None:
+    pump = DisplacementPump(displacement=5e-5, speed=speed * RPM, rated_pressure=2e6)
+    found = rheo.operating_point(LINE, replace(OIL, draws=_draws(20)), pump)
+    assert found.found, found.sentence
+    assert found.flow == pytest.approx(pump.swept_flow, rel=1e-9)
+    assert found.share_found == 1.0
