@@ -51,7 +51,7 @@ def pair(readings: Readings) -> tuple[FloatArray, FloatArray] | None:
 
 
 def groups(readings: Readings, by_block: bool = True) -> IntArray:
-    """Return a number for each reading that changes with the tube and the gap, and the block.
+    """Return a number for each reading that changes with the tube, gap, temperature and block.
 
     Parameters
     ----------
@@ -71,6 +71,9 @@ def groups(readings: Readings, by_block: bool = True) -> IntArray:
         ]
     for column in columns:
         change[1:] |= column[1:] != column[:-1]
+    if readings.temperature is not None:
+        # A bath that drifts stays within a sweep; one that is set anew begins another.
+        change[1:] |= np.abs(np.diff(readings.temperature)) > SAME_TEMPERATURE
     return np.cumsum(change)
 
 
@@ -83,7 +86,7 @@ class Run:
     branch : str
         ``up``, ``down``, ``hold`` or empty.
     group : int
-        Which block, tube and gap.
+        Which block, tube, gap and temperature.
     start, end : int
         First reading, and the one after the last.
     """
@@ -114,35 +117,45 @@ def not_rising(readings: Readings) -> tuple[Caution, ...]:
     if both is None:
         return ()
     rate, stress = both
-    falls = np.zeros(rate.size, dtype=bool)
+    too_low = np.zeros(rate.size, dtype=bool)
+    too_high = np.zeros(rate.size, dtype=bool)
     goes_back = np.zeros(rate.size, dtype=bool)
     for run in runs(readings, rate):
         if run.branch not in {"up", "down"}:
             continue
         span = slice(run.start, run.end)
-        order = np.argsort(rate[span], kind="stable") + run.start
-        highest = np.maximum.accumulate(stress[order])
-        low = stress[order] < (1.0 - FALL) * highest
-        # Readings at one rate scatter; only a higher rate must have a higher stress.
-        where = np.searchsorted(rate[order], rate[order] * (1.0 - SAME_SETTING)) - 1
-        low &= (where >= 0) & (stress[order] < (1.0 - FALL) * highest[np.maximum(where, 0)])
-        falls[order[low]] = True
+        low, high = _out_of_order(rate[span], stress[span])
+        # One reading too high leaves many after it lower: the fewer are the ones to look at.
+        blamed = high if high.sum() < low.sum() else low
+        (too_high if blamed is high else too_low)[span] |= blamed
         step = np.diff(rate[span]) if run.branch == "up" else -np.diff(rate[span])
         back = step < -SAME_SETTING * rate[span][1:]
         if readings.branch is not None and back.size > 1 and back.mean() < 0.5:
             goes_back[run.start + 1 : run.end] |= back
     cautions = []
-    if falls.any():
-        cautions.append(
-            Caution(
-                "stress-not-rising",
-                f"At {int(falls.sum())} of {rate.size} readings the stress is lower than at a "
-                "lower shear rate of the same sweep.",
-                "Look for slip, a sample that leaves the gap, or breakdown under shear.",
-                "stress",
-                tuple(int(index) for index in np.flatnonzero(falls)),
+    for mask, words, advice in (
+        (
+            too_low,
+            "lower than at a lower shear rate",
+            "Look for slip, a sample that leaves the gap, or breakdown under shear.",
+        ),
+        (
+            too_high,
+            "higher than at a higher shear rate",
+            "Look for a value misread or mistyped, a reading taken too early, slip or breakdown.",
+        ),
+    ):
+        if mask.any():
+            cautions.append(
+                Caution(
+                    "stress-not-rising",
+                    f"At {int(mask.sum())} of {rate.size} readings the stress is {words} of the "
+                    "same sweep.",
+                    advice,
+                    "stress",
+                    tuple(int(index) for index in np.flatnonzero(mask)),
+                )
             )
-        )
     if goes_back.any():
         cautions.append(
             Caution(
@@ -155,6 +168,25 @@ def not_rising(readings: Readings) -> tuple[Caution, ...]:
             )
         )
     return tuple(cautions)
+
+
+def _out_of_order(
+    rate: FloatArray, stress: FloatArray
+) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+    """Which stresses lie below one at a lower rate, and which above one at a higher rate.
+
+    Readings at one rate scatter; only a higher rate must have a higher stress.
+    """
+    order = np.argsort(rate, kind="stable")
+    ordered, sorted_rate = stress[order], rate[order]
+    before = np.searchsorted(sorted_rate, sorted_rate * (1.0 - SAME_SETTING)) - 1
+    after = np.searchsorted(sorted_rate, sorted_rate / (1.0 - SAME_SETTING), side="right")
+    highest = np.maximum.accumulate(ordered)[np.maximum(before, 0)]
+    least = np.minimum.accumulate(ordered[::-1])[::-1][np.minimum(after, rate.size - 1)]
+    low, high = np.zeros(rate.size, dtype=bool), np.zeros(rate.size, dtype=bool)
+    low[order] = (before >= 0) & (ordered < (1.0 - FALL) * highest)
+    high[order] = (after < rate.size) & (least < (1.0 - FALL) * ordered)
+    return low, high
 
 
 def loop_area(

@@ -300,3 +300,23 @@ def test_what_the_file_states_is_used() -> None:
     )
     codes = [caution.code for caution in screen(read_readings(text.encode()))]
     assert codes == ["gap-narrow", "turbulent-flow"]
+
+
+def test_a_sweep_at_another_temperature_is_another_sweep() -> None:
+    """Readings at rising temperatures, one below the other, say nothing of slip or disorder."""
+    temperature = np.repeat([293.15, 313.15, 333.15], RATE.size)
+    thinner = np.repeat([1.0, 0.6, 0.4], RATE.size)
+    readings = curve(
+        np.tile(RATE, 3), thinner, temperature=temperature, branch=np.repeat("up", 3 * RATE.size)
+    )
+    assert screen(readings) == ()
+    drifting = curve(RATE, np.r_[np.ones(4), 0.5 * np.ones(4)], temperature=293.15 + 0.01 * RATE)
+    assert only(screen(drifting), "stress-not-rising").points == (4, 5, 6)
+
+
+def test_one_stress_too_high_is_named_and_not_all_after_it() -> None:
+    factor = np.ones(RATE.size)
+    factor[1] = 5.0
+    found = only(screen(curve(RATE, factor)), "stress-not-rising")
+    assert found.points == (1,)
+    assert "At 1 of 8 readings the stress is higher than at a higher shear rate" in found.sentence
