@@ -96,8 +96,9 @@ def _show(result: Conversion, words: str, units: str) -> None:
         (_row(name, point, units) for name, point in points.items()),
         least_wanted=(5, 4),
     )
-    terminal.sentence(out, words)
-    terminal.cautions(out, [one for point in points.values() for one in point.cautions])
+    terminal.sentence(out, words, units=units)
+    found = [one for point in points.values() for one in point.cautions]
+    terminal.cautions(out, found, units)
 
 
 def _row(name: str, point: ShearPoint, units: str) -> tuple[str, ...]:

@@ -123,4 +123,4 @@ def fit(
         show_weightings(out, weightings)
     if sweeps is not None:
         show_sweeps(out, sweeps)
-    terminal.cautions(out, cautions)
+    terminal.cautions(out, cautions, units.value)

@@ -145,11 +145,11 @@ def _show(result: PipeFlow, flow: float, length: float | None, units: str) -> No
             ("kinetic-energy factor α", number(float(result.kinetic_energy_factor))),
             (
                 "plug radius over pipe radius",
-                number(float(result.plug_fraction)) if result.plug_fraction > 0 else None,
+                number(float(result.plug_fraction)) if result.plug_radius > 0 else None,
             ),
         ],
     )
-    terminal.cautions(out, result.cautions)
+    terminal.cautions(out, result.cautions, units)
     terminal.safety(out, (PRESSURE, GENERAL))
 
 

@@ -63,22 +63,22 @@ def _show(result: CaseResult, units: str) -> None:
     show_fits(out, result.fits, result.chosen)
     show_duty(out, result.line, units, result.efficiency)
     show_rates(out, result.line)
-    _show_pump(out, result)
+    _show_pump(out, result, units)
     show_parts(out, result.line, units)
     terminal.heading(out, "Start-up")
-    terminal.sentence(out, result.line.start_up.sentence)
+    terminal.sentence(out, result.line.start_up.sentence, units=units)
     _show_asked_for(out, result, units)
     show_doubt(out, result.doubt, units)
-    terminal.cautions(out, result.cautions)
+    terminal.cautions(out, result.cautions, units)
     terminal.safety(out, (*result.line.safety, result.line.start_up.safety))
 
 
-def _show_pump(out: Console, result: CaseResult) -> None:
+def _show_pump(out: Console, result: CaseResult, units: str) -> None:
     point = result.operating
     if point is None:
         return
     terminal.heading(out, "Pump and line")
-    terminal.sentence(out, point.sentence, "" if point.found else "bold yellow")
+    terminal.sentence(out, point.sentence, "" if point.found else "bold yellow", units=units)
 
 
 def _show_asked_for(out: Console, result: CaseResult, units: str) -> None:
@@ -86,7 +86,7 @@ def _show_asked_for(out: Console, result: CaseResult, units: str) -> None:
 
     if result.holding is not None:
         terminal.heading(out, "Holding tube")
-        terminal.sentence(out, result.holding.sentence)
+        terminal.sentence(out, result.holding.sentence, units=units)
         terminal.sentence(out, result.holding.safety, "dim")
     if result.cleaning is not None:
         terminal.heading(out, "Cleaning in place")

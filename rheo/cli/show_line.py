@@ -186,7 +186,7 @@ def show_doubt(out: Console, budget: DoubtBudget, units: str) -> None:
 
     terminal.heading(out, "What makes the pressure uncertain")
     whole = text(budget.pressure, "pressure", units, *_interval(budget))
-    terminal.sentence(out, f"{budget.sentence} With all of it: {whole} (95 %).")
+    terminal.sentence(out, f"{budget.sentence} With all of it: {whole} (95 %).", units=units)
     rows = []
     for one in budget.shares:
         if one.share < 0.005:

@@ -55,10 +55,10 @@ def _show(out: Console, sizing: Sizing, units: str) -> None:
         for label, one in zip(labels, sizing.candidates, strict=True)
     ]
     terminal.table(out, headings, rows, left=2, bold_rows=best, least_wanted=(5, 4, 3))
-    terminal.sentence(out, sizing.sentence, "bold")
+    terminal.sentence(out, sizing.sentence, "bold", units=units)
     _show_moves(out, sizing, units)
-    _show_reasons(out, sizing)
-    terminal.cautions(out, sizing.cautions)
+    _show_reasons(out, sizing, units)
+    terminal.cautions(out, sizing.cautions, units)
     terminal.safety(out, sizing.safety)
 
 
@@ -114,9 +114,12 @@ def _percent(share: float) -> str:
     return f"{100 * share:.0f} %" if share >= 0.005 else "under 1 %"
 
 
-def _show_reasons(out: Console, sizing: Sizing) -> None:
+def _show_reasons(out: Console, sizing: Sizing, units: str) -> None:
+    from rheo.report.restate import restated
+
     failing = [one for one in sizing.candidates if not one.passes]
     if not failing:
         return
     terminal.heading(out, "Why sizes fail")
-    terminal.values(out, [(one.size.name, "; ".join(one.reasons)) for one in failing])
+    rows = [(one.size.name, restated("; ".join(one.reasons), units)) for one in failing]
+    terminal.values(out, rows)

@@ -114,11 +114,15 @@ def heading(out: Console, words: str, beside: str = "") -> None:
     out.print(line)
 
 
-def sentence(out: Console, words: str, style: str = "", indent: int = 2) -> None:
-    """Write a sentence, broken at the width of the terminal."""
+def sentence(
+    out: Console, words: str, style: str = "", indent: int = 2, units: str = "metric"
+) -> None:
+    """Write a sentence, its numbers in the units shown, broken at the width of the terminal."""
     from rich.padding import Padding
 
-    out.print(Padding(text(words, style), (0, 0, 0, indent)))
+    from rheo.report.restate import restated
+
+    out.print(Padding(text(restated(words, units), style), (0, 0, 0, indent)))
 
 
 def values(out: Console, rows: Iterable[tuple[str, object]]) -> None:
@@ -208,9 +212,11 @@ def _columns_that_fit(
     return kept
 
 
-def cautions(out: Console, found: Iterable[Caution]) -> None:
-    """Write Cautions: what was found, and what to do about it."""
+def cautions(out: Console, found: Iterable[Caution], units: str = "metric") -> None:
+    """Write Cautions: what was found, in the units shown, and what to do about it."""
     from rich.table import Table
+
+    from rheo.report.restate import restated
 
     listed = list(found)
     if not listed:
@@ -222,8 +228,8 @@ def cautions(out: Console, found: Iterable[Caution]) -> None:
     for caution in listed:
         words = line(caution.place, "bold") if caution.place else text("")
         words.append(": " if caution.place else "")
-        words.append_text(line(caution.sentence)).append(" ")
-        words.append_text(line(caution.advice, "italic"))
+        words.append_text(line(restated(caution.sentence, units))).append(" ")
+        words.append_text(line(restated(caution.advice, units), "italic"))
         made.add_row(text(" !", "bold yellow"), words)
     out.print(made)
 

@@ -17,6 +17,8 @@ FloatArray = NDArray[np.float64]
 _POORLY_KNOWN = 0.25
 _NOT_KNOWN = 1.0
 _MOVE_TOGETHER = 0.995
+# Beyond this the figure itself says nothing more.
+_MANY_TIMES = 10.0
 
 
 def _below_plateau(model: Model, rates: FloatArray) -> tuple[bool, str]:
@@ -117,8 +119,7 @@ def _cautions(
         if not np.isfinite(one.stderr) or one.relative_error > _NOT_KNOWN:
             yield Caution(
                 "parameter-not-identified",
-                f"{key} cannot be told from these readings"
-                + (f" (standard error {one.relative_error:.0%})." if one.stderr > 0 else "."),
+                f"{key} cannot be told from these readings" + _error(one.relative_error),
                 "Do not quote it; use a simpler model, or measure where it matters.",
                 place,
             )
@@ -149,6 +150,14 @@ def _cautions(
                 "Use the pair as it stands; do not compare one of them alone between products.",
                 f"{name}, {first}",
             )
+
+
+def _error(relative: float) -> str:
+    if not 0 < relative < np.inf:
+        return "."
+    if relative > _MANY_TIMES:
+        return f" (its standard error is more than {_MANY_TIMES:.0f} times its value)."
+    return f" (standard error {relative:.0%})."
 
 
 def _unit(one: FittedParameter) -> str:

@@ -100,11 +100,16 @@ def _temperatures(found: Walk, product: Product) -> Iterator[Caution]:
             if low < least - 1e-9 or high > most + 1e-9:
                 yield Caution(
                     "outside-temperature-range",
-                    f"The product is at {low - 273.15:.1f} to {high - 273.15:.1f} °C there, "
-                    f"outside the {least - 273.15:.1f} to {most - 273.15:.1f} °C of the readings.",
+                    f"The product is at {_span(low - 273.15, high - 273.15)} °C there, outside "
+                    f"the {least - 273.15:.1f} to {most - 273.15:.1f} °C of the readings.",
                     "Take readings at that temperature too.",
                     step.name,
                 )
+
+
+def _span(low: float, high: float) -> str:
+    words = [f"{low:.1f}", f"{high:.1f}"]
+    return " to ".join(dict.fromkeys(words))
 
 
 def _heating(product: Product, parts: tuple[PartResult, ...]) -> Iterator[Caution]:

@@ -1,6 +1,7 @@
 """`rheo run`, `rheo fit` and `rheo size`: results, files, and plain complaints."""
 
 import json
+import re
 
 import pytest
 
@@ -275,3 +276,20 @@ def test_size_needs_sizes(command, folder):
     ended = command("size", folder / "case.toml")
     assert ended.status == 1
     assert "sizes: no sizes are given to compare" in ended.err
+
+
+@pytest.mark.parametrize("name", ["run", "size"])
+def test_sentences_too_are_in_the_units_asked_for(command, folder, name):
+    edited(folder, 'length = "30 m"', 'length = "12000 m"')
+    ended = command(name, folder / "case.toml", "--units", "us")
+    assert ended.status == 0
+    assert not re.search(r"\d (bar|m3/h|m)\b", ended.out)
+    assert "psi" in ended.out
+    # No number of a sentence is left in the notation of programs.
+    assert not re.search(r"\de[+-]\d", ended.out)
+
+
+def test_an_error_beyond_all_sense_is_not_given_as_a_figure(command, folder):
+    ended = command("run", edited(folder, "[doubt]", '[fit]\nmodel = "carreau"\n[doubt]'))
+    assert ended.status == 0
+    assert not re.search(r"\d{5,} ?%", ended.out)
