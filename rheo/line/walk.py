@@ -16,6 +16,7 @@ from numpy.typing import ArrayLike
 
 from rheo.errors import InputError
 from rheo.hydraulics import PipeFlow, pipe_flow
+from rheo.hydraulics.registry import turbulent_method
 from rheo.line.checks import require_positive
 from rheo.line.constants import GRAVITY
 from rheo.line.kinetic_energy import kinetic_pressure
@@ -185,7 +186,9 @@ def walk(
     source : Model or callable, optional
         One of the product's draws.
     method : str, optional
-        Of the turbulent friction factor; the default for the model when absent.
+        Of the turbulent friction factor; the default for the product's flow curve when absent. A
+        draw of another model keeps it where it is made for that model, so that what parts the
+        models is the flow curve and not the method.
 
     Returns
     -------
@@ -201,6 +204,8 @@ def walk(
     require_positive(flow, "flow [m3/s]", line.name)
     rate = np.asarray(flow, dtype=float)
     density = np.asarray(product.density, dtype=float)
+    if source is not None:
+        method = _method_of_draws(product, source, method)
     walker = _Walker(product, rate, density, source, method)
     results = []
     temperature: FloatArray = np.asarray(product.temperature, dtype=float)
@@ -209,6 +214,12 @@ def walk(
         temperature = result.outlet_temperature
         results.append(result)
     return Walk(line, rate, density, tuple(results))
+
+
+def _method_of_draws(product: Product, source: FlowCurveSource, method: str | None) -> str | None:
+    """Method of the product's own flow curve, where it is made for that of the draws too."""
+    own = turbulent_method(method, product.model_at(product.temperature))
+    return own.key if own.applies(product.model_at(product.temperature, source)) else None
 
 
 class _Walker:
