@@ -67,15 +67,20 @@ def _statics(result: LineResult, units: str) -> str:
     return text(float(result.static_pressure + result.kinetic_pressure), "pressure", units)
 
 
-def show_answer(out: Console, result: LineResult, units: str, cautions: int) -> None:
-    """Write the answer in a sentence, before all that it rests on."""
+def show_answer(
+    out: Console, result: LineResult, budget: DoubtBudget, units: str, cautions: int
+) -> None:
+    """Write the answer in a sentence, with all its doubt, before all that it rests on."""
     from rheo.report.display import text
 
-    whole = with_interval(
-        result.differential_pressure, result.differential_pressure_interval, "pressure", units
-    )
+    low, high = _interval(budget)
     flow = terminal.given(float(result.flow), "flow", units)
-    words = f"The line needs {whole} at {flow}"
+    if budget.pressure < 0:
+        whole = text(-budget.pressure, "pressure", units, -high, -low)
+        words = f"Heights and vessels drive the line by {whole} (95 %) more than {flow} takes"
+    else:
+        whole = text(budget.pressure, "pressure", units, low, high)
+        words = f"The line needs {whole} (95 %) at {flow}"
     pipes = [part for part in result.parts if part.kind == "pipe"]
     if pipes:
         words += f"; flow is {', '.join(dict.fromkeys(part.regime for part in pipes))}"
@@ -83,7 +88,9 @@ def show_answer(out: Console, result: LineResult, units: str, cautions: int) -> 
             words += " and inside the measured shear rates"
         elif any(part.inside_measured_range is False for part in pipes):
             words += " and outside the measured shear rates"
-    words += f"; start-up takes up to {text(result.start_up.pressure, 'pressure', units)}"
+    start = float(result.start_up.pressure)
+    if start > 0:
+        words += f"; start-up takes up to {text(start, 'pressure', units)}"
     if cautions:
         words += f"; {cautions} Caution{'s' if cautions > 1 else ''} below"
     terminal.sentence(out, f"{words}.", "bold")

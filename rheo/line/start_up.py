@@ -14,6 +14,9 @@ from rheo.line.route import route
 from rheo.line.safety import START_UP
 from rheo.line.walk import total as total_of
 
+# A static yield stress lower than the flowing one by less than this share is within their doubt.
+_CLOSE = 0.2
+
 METHOD = (
     "Sum of 4 τ_y,static L/D over the line, all of it full, at rest and yielding at once: an upper "
     "estimate, since a line usually yields piece by piece."
@@ -255,6 +258,12 @@ def _sentence(
     if np.ndim(total + static) > 0:
         return "Start-up pressures for several lines at once."
     need = float(total + static)
+    if need < 0:
+        return (
+            "A full line at rest should start by itself: heights and vessels push with "
+            f"{-float(static) / 1e5:.3g} bar, and it needs up to {float(total) / 1e5:.3g} bar to "
+            "yield."
+        )
     text = f"A full line at rest needs up to {need / 1e5:.3g} bar to start"
     if rating is None:
         return f"{text}; no rating is given to compare it with."
@@ -270,6 +279,10 @@ def _sentence(
     return f"{text}."
 
 
+def _push(available: float) -> str:
+    return f"no more than {available / 1e5:.3g} bar" if available > 0 else "nothing"
+
+
 def _cautions(
     line: Line, product: Product, sections: tuple[Section, ...], total: FloatArray
 ) -> tuple[Caution, ...]:
@@ -281,6 +294,19 @@ def _cautions(
                 "The yield stress of the flow curve, taken while flowing, stands in for the "
                 "static one, which can be several times larger.",
                 "Measure the static yield stress with a vane after the longest stop expected.",
+                product.name,
+            )
+        )
+    static = product.static_yield_stress
+    flowing = product.model_at(product.temperature).yield_stress
+    if static is not None and np.any(np.asarray(static) < (1.0 - _CLOSE) * flowing):
+        found.append(
+            Caution(
+                "static-below-flowing-yield-stress",
+                f"The static yield stress of {float(np.min(static)):.3g} Pa is below the "
+                f"{float(np.max(flowing)):.3g} Pa of the flow curve, taken while flowing; at rest "
+                "it cannot be lower.",
+                "Measure it again with a vane; until then count on the flow curve's.",
                 product.name,
             )
         )
@@ -313,8 +339,7 @@ def _cautions(
             Caution(
                 "suction-will-not-start",
                 f"The suction side needs up to {float(np.max(suction)) / 1e5:.3g} bar to yield, "
-                f"and no more than {float(np.min(available)) / 1e5:.3g} bar can push from the "
-                "vessel.",
+                f"and {_push(float(np.min(available)))} can push from the vessel.",
                 "Shorten or widen the suction pipe, pressurise the vessel, or keep it moving.",
                 "suction",
             )

@@ -293,3 +293,20 @@ def test_an_error_beyond_all_sense_is_not_given_as_a_figure(command, folder):
     ended = command("run", edited(folder, "[doubt]", '[fit]\nmodel = "carreau"\n[doubt]'))
     assert ended.status == 0
     assert not re.search(r"\d{5,} ?%", ended.out)
+
+
+def test_the_answer_carries_the_whole_doubt(command, folder):
+    """Not only that of readings and models, which is the smaller part of it."""
+    ended = command("run", folder / "case.toml")
+    budget = rheo.run_case(rheo.load_case(folder / "case.toml")).doubt
+    found = re.search(r"The line needs ([\d.]+) ± ([\d.]+) bar \(95 %\)", ended.out)
+    assert float(found[1]) == pytest.approx(budget.pressure / 1e5, rel=0.01)
+    # Written with one digit, or two where the first is 1.
+    assert float(found[2]) == pytest.approx(1.96 * budget.standard_deviation / 1e5, rel=0.2)
+
+
+def test_a_line_that_runs_by_itself_is_said_to_do_so(command, folder):
+    edited(folder, 'level = "1 m"', 'level = "60 m"')
+    ended = command("run", folder / "case.toml")
+    assert "Heights and vessels drive the line by" in ended.out
+    assert "should start by itself" in ended.out

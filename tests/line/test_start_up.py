@@ -134,3 +134,22 @@ def test_sizes_at_once() -> None:
     found = rheo.start_up(Line(discharge=(Pipe(10.0, sizes),)), PASTE, rating=1e5)
     np.testing.assert_allclose(found.pressure, 4 * 60.0 * 10.0 / sizes, rtol=1e-12)
     assert np.array_equal(found.restarts, [[True], [True]])
+
+
+def test_a_line_that_runs_downhill_needs_no_pressure_to_start() -> None:
+    line = Line(suction=(Vessel(2.0),), discharge=(Pipe(10.0, 0.1, rise=-8.0), Vessel(0.0)))
+    found = rheo.start_up(line, PASTE)
+    push, need = 1200.0 * 9.80665 * 10.0, 4 * 60.0 * 10.0 / 0.1
+    assert float(found.pressure) == pytest.approx(need - push, rel=1e-12)
+    assert found.sentence.startswith("A full line at rest should start by itself")
+    assert "push with 1.18 bar, and it needs up to 0.24 bar to yield" in found.sentence
+
+
+def test_a_static_yield_stress_below_the_flowing_one_is_doubted() -> None:
+    code = "static-below-flowing-yield-stress"
+    low = rheo.start_up(LINE, replace(PASTE, static_yield_stress=8.0)).cautions
+    (one,) = [one for one in low if one.code == code]
+    assert "8 Pa is below the 20 Pa" in one.sentence
+    for static in (17.0, 60.0, None):
+        near = rheo.start_up(LINE, replace(PASTE, static_yield_stress=static)).cautions
+        assert code not in {one.code for one in near}
