@@ -57,7 +57,7 @@ def _show(result: CaseResult, units: str) -> None:
     out = terminal.console()
     title = result.case.title or result.case.product.name
     out.print(terminal.line(title, "bold reverse"))
-    show_answer(out, result.line, result.doubt, units, len(result.cautions))
+    show_answer(out, result.line, result.doubt, units, result.cautions)
     for one in result.readings:
         show_readings(out, one, units)
     show_fits(out, result.fits, result.chosen)

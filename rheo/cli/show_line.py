@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import TYPE_CHECKING, Any
 
 from rheo.cli import terminal
@@ -10,11 +11,14 @@ if TYPE_CHECKING:
     from rich.console import Console
     from rich.text import Text
 
+    from rheo.errors import Caution
     from rheo.line import LineResult
     from rheo.line.doubt import DoubtBudget
     from rheo.line.result import PartResult
 
 _BAR = 24
+# Cautions of a flow curve used where it was not measured.
+_TEMPERATURES = {"outside-temperature-range", "temperature-of-readings", "temperature-not-in-model"}
 _DOUBT = "± is the 95 % interval by readings and model choice"
 
 
@@ -68,7 +72,11 @@ def _statics(result: LineResult, units: str) -> str:
 
 
 def show_answer(
-    out: Console, result: LineResult, budget: DoubtBudget, units: str, cautions: int
+    out: Console,
+    result: LineResult,
+    budget: DoubtBudget,
+    units: str,
+    cautions: Sequence[Caution],
 ) -> None:
     """Write the answer in a sentence, with all its doubt, before all that it rests on."""
     from rheo.report.display import text
@@ -88,11 +96,13 @@ def show_answer(
             words += " and inside the measured shear rates"
         elif any(part.inside_measured_range is False for part in pipes):
             words += " and outside the measured shear rates"
+    if any(one.code in _TEMPERATURES for one in cautions):
+        words += "; the temperature is outside that of the readings"
     start = float(result.start_up.pressure)
     if start > 0:
         words += f"; start-up takes up to {text(start, 'pressure', units)}"
     if cautions:
-        words += f"; {cautions} Caution{'s' if cautions > 1 else ''} below"
+        words += f"; {len(cautions)} Caution{'s' if len(cautions) > 1 else ''} below"
     terminal.sentence(out, f"{words}.", "bold")
 
 

@@ -310,3 +310,12 @@ def test_a_line_that_runs_by_itself_is_said_to_do_so(command, folder):
     ended = command("run", folder / "case.toml")
     assert "Heights and vessels drive the line by" in ended.out
     assert "should start by itself" in ended.out
+
+
+def test_a_temperature_without_readings_is_said_beside_the_answer(command, folder):
+    path = folder / "readings.csv"
+    path.write_text("# temperature: 20 °C\n" + path.read_text("utf-8"), "utf-8")
+    words = "the temperature is outside that of the readings"
+    assert words not in " ".join(command("run", folder / "case.toml").out.split())
+    edited(folder, 'temperature = "20 °C"', 'temperature = "60 °C"')
+    assert words in " ".join(command("run", folder / "case.toml").out.split())
