@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from rheo.case.join import joined
+from rheo.case.limit_cautions import limit_cautions
 from rheo.case.load_readings import all_readings, branch_of, weighting_of
 from rheo.case.pump_cautions import pump_cautions
 from rheo.case.result import CaseResult
@@ -164,6 +165,7 @@ def run_case(
         _temperature_cautions(found.fitted, product),
         _thickness_cautions(case),
         line.cautions,
+        limit_cautions(case, line),
         pump_cautions(case, line, operating),
         _solids_cautions(case, line),
     )

@@ -25,7 +25,7 @@ REGIMES = np.array(["laminar", "transition", "turbulent"])
 _NUMERIC = (
     ("pressure", "pressure", True, "pressure", "bar", 1e-5),
     ("start_up_pressure", "start_up_pressure", True, "start-up pressure", "bar", 1e-5),
-    ("min_velocity", "velocity", False, "velocity", "m/s", 1.0),
+    ("min_velocity", "lowest_velocity", False, "velocity", "m/s", 1.0),
     ("max_velocity", "velocity", True, "velocity", "m/s", 1.0),
     ("max_wall_rate", "wall_rate", True, "wall shear rate", "1/s", 1.0),
     ("min_hold_time", "hold_time", False, "shortest hold time", "s", 1.0),
@@ -103,8 +103,13 @@ class SizeValues:
 
     @cached_property
     def velocity(self) -> FloatArray:
-        """Mean velocity in the pipes that are sized [m/s]."""
-        return self._table(self._flows[0].velocity)
+        """Largest mean velocity in the pipes that are sized [m/s]."""
+        return self._table(reduce(np.maximum, (flow.velocity for flow in self._flows)))
+
+    @cached_property
+    def lowest_velocity(self) -> FloatArray:
+        """Smallest mean velocity in the pipes that are sized [m/s]."""
+        return self._table(reduce(np.minimum, (flow.velocity for flow in self._flows)))
 
     @cached_property
     def wall_rate(self) -> FloatArray:
@@ -183,6 +188,36 @@ def size_values(
     diameters = np.array([[size.inside_diameter] for size in sizes])
     found = walk(with_diameters(line, diameters), product, flow, source=source, method=method)
     return SizeValues(found, product, len(sizes))
+
+
+def limits_missed(
+    line: Line, product: Product, flow: float, limits: Limits, method: str | None = None
+) -> tuple[str, ...]:
+    """Return which limits a line does not keep with the sizes that it has.
+
+    Parameters
+    ----------
+    line : Line
+        The line as it is.
+    product : Product
+        What is pumped.
+    flow : float
+        [m3/s].
+    limits : Limits
+        What it should keep to.
+    method : str, optional
+        Turbulent friction method.
+
+    Returns
+    -------
+    tuple of str
+        For each limit that is not kept, what was found and what is allowed. As when sizes are
+        compared, velocities, rates and regimes count in the pipes whose size is not fixed.
+    """
+    if all(pipe.fixed_size for pipe in line.pipes()):
+        return ()
+    values = SizeValues(walk(line, product, flow, method=method), product, 1)
+    return tuple(one.sentences[0] for one in checks(values, limits) if not one.passes[0, 0])
 
 
 def checks(values: SizeValues, limits: Limits) -> tuple[Check, ...]:
