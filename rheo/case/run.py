@@ -161,6 +161,7 @@ def run_case(
         *(one.cautions for one in sets),
         *(_screened(one, case) for one in sets),
         fits.data_cautions,
+        fits.ranking_cautions if chosen is fits.best else (),
         chosen.cautions,
         _temperature_cautions(found.fitted, product),
         _thickness_cautions(case),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -11,7 +12,7 @@ from numpy.typing import ArrayLike
 from rheo.errors import Caution, InputError, merge_cautions
 from rheo.fitting.draws import mixed_draws
 from rheo.fitting.prediction import Prediction, predict_stress
-from rheo.fitting.ranking import TIE
+from rheo.fitting.ranking import CLEAR, TIE, small_sample_term
 from rheo.fitting.result import Fit
 from rheo.fitting.weighting import Weighting
 from rheo.models import Model
@@ -92,7 +93,35 @@ class Fits:
     @cached_property
     def cautions(self) -> tuple[Caution, ...]:
         """What to know of the readings, of the best fit and of the models left out."""
-        return merge_cautions(self.data_cautions, self.best.cautions)
+        return merge_cautions(self.data_cautions, self.ranking_cautions, self.best.cautions)
+
+    @property
+    def ranking_cautions(self) -> tuple[Caution, ...]:
+        """Say where a model fits far better and loses only by the number of readings."""
+        best, count = self.best, self.best.relative_errors.size
+        plain = {
+            fit.key: fit.aicc - small_sample_term(count, fit.parameter_count)
+            for fit in self.ranking
+            if math.isfinite(fit.aicc)
+        }
+        closer = [
+            fit for fit in self.ranking if plain.get(fit.key, math.inf) < plain.get(best.key, 0.0)
+        ]
+        closest = min(closer, key=lambda fit: plain[fit.key], default=best)
+        if best.key not in plain or not plain[closest.key] < plain[best.key] - CLEAR:
+            return ()
+        return (
+            Caution(
+                "too-few-readings-to-rank",
+                f"{closest.record.name} comes closer, with an RMS error of "
+                f"{closest.rms_relative_error:.1%} instead of {best.rms_relative_error:.1%}, and "
+                f"loses to {best.record.name} only because {count} readings are few for "
+                f"{closest.parameter_count} parameters.",
+                f"Take more readings, or choose {closest.record.name} where such products are "
+                "known to follow it.",
+                best.record.name,
+            ),
+        )
 
     def source(self, key: str | None = None) -> FlowCurveSource:
         """Return the flow curve of the best model, or of one named, as a line takes it.

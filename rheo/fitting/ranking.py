@@ -16,6 +16,8 @@ FloatArray = NDArray[np.float64]
 
 # Models whose AICc lies this near the lowest are held to be as good (Burnham & Anderson, 2.6).
 TIE = 2.0
+# So far above the lowest, a model has considerably less support (Burnham & Anderson, 2.6).
+CLEAR = 4.0
 # Relative residuals below this are rounding of the input and no reason to prefer a model.
 ROUNDING = 1e-9
 
@@ -41,6 +43,21 @@ def aicc(sum_of_squares: ArrayLike, readings: int, parameters: ArrayLike) -> Flo
         fit = readings * np.log(np.asarray(sum_of_squares, float) / readings)
     penalty = 2.0 * k + 2.0 * k * (k + 1) / np.where(spare > 0, spare, 1)
     return np.where(spare > 0, fit + penalty, np.inf)
+
+
+def small_sample_term(readings: int, parameters: int) -> float:
+    """Return what AICc adds to AIC [-]: 2k(k+1)/(n-k-1), infinite where n - k - 1 is not above 0.
+
+    Parameters
+    ----------
+    readings : int
+        Number of readings n.
+    parameters : int
+        Number of parameters of the model; k is one more.
+    """
+    k = parameters + 1
+    spare = readings - k - 1
+    return 2.0 * k * (k + 1) / spare if spare > 0 else math.inf
 
 
 def akaike_weights(criteria: ArrayLike) -> FloatArray:
