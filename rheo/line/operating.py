@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -105,32 +105,35 @@ def operating_point(
         "pressure_interval": pressure_interval,
         "share_found": share,
     }
-    if share is not None and share < 1.0:
-        cautions.append(
-            Caution(
-                "operating-point-in-doubt",
-                f"Of the likely flow curves {100 * (1 - share):.0f} % have no operating point.",
-                "Narrow the doubt in the product, or choose a pump with more in hand.",
-                pump.name,
-            )
-        )
     if np.isfinite(flow) and flow > 0:
-        return _at(line, product, used, flow, spread, cautions, method)
-    return OperatingPoint(
-        found=False,
-        flow=None,
-        pressure=None,
-        flow_interval=flow_interval,
-        pressure_interval=pressure_interval,
-        share_found=share,
-        efficiency=None,
-        shaft_power=None,
-        npsh_required=None,
-        npsh_available=None,
-        pump=used,
-        sentence=_none(used, flow, product),
-        cautions=tuple(cautions),
+        point = _at(line, product, used, flow, spread, cautions, method)
+    else:
+        point = OperatingPoint(
+            found=False,
+            flow=None,
+            pressure=None,
+            flow_interval=flow_interval,
+            pressure_interval=pressure_interval,
+            share_found=share,
+            efficiency=None,
+            shaft_power=None,
+            npsh_required=None,
+            npsh_available=None,
+            pump=used,
+            sentence=_none(used, flow, product),
+            cautions=tuple(cautions),
+        )
+    # Where no flow curve at all has one the sentence says it already.
+    if share is None or share == 1.0 or (share == 0.0 and not point.found):
+        return point
+    doubt = Caution(
+        "operating-point-in-doubt",
+        f"Of the likely flow curves {100 * (1 - share):.0f} % have no operating point within the "
+        "pump's curve and rating.",
+        "Narrow the doubt in the product, or choose a pump with more in hand.",
+        pump.name,
     )
+    return replace(point, cautions=(*point.cautions, doubt))
 
 
 def _pair(limits: tuple[FloatArray, FloatArray]) -> tuple[float, float]:

@@ -339,6 +339,16 @@ class Line:
                         "a vessel may only be the first suction part or the last discharge part",
                         self.name,
                     )
+        for part in parts:
+            if isinstance(part, Vessel) and np.any(
+                np.asarray(part.gauge_pressure) < -self.atmospheric_pressure
+            ):
+                lowest = float(np.min(part.gauge_pressure))
+                raise InputError(
+                    f"gauge_pressure is {lowest / 1e5:.4g} bar; a full vacuum is "
+                    f"{-self.atmospheric_pressure / 1e5:.4g} bar, and less cannot be",
+                    part.name,
+                )
         moving = [part for part in parts if not isinstance(part, Vessel)]
         inner: list[Entrance | Exit] = [p for p in moving[1:] if isinstance(p, Entrance)]
         inner += [part for part in moving[:-1] if isinstance(part, Exit)]

@@ -78,7 +78,8 @@ def test_a_pump_that_moves_less_than_the_duty() -> None:
 
 
 def test_a_pump_without_an_operating_point() -> None:
-    assert "no-operating-point" in codes(oil_case(LOBE.format(speed=340, rated=0.5, npsh=2)))
+    # That no likely flow curve has one either adds nothing.
+    assert codes(oil_case(LOBE.format(speed=340, rated=0.5, npsh=2))) == ["no-operating-point"]
 
 
 def test_what_is_said_of_the_operating_point_is_said_of_the_case() -> None:

@@ -239,3 +239,12 @@ def test_a_reducer_without_coefficient_takes_the_published_loss() -> None:
     k = (0.6 + 0.48 * 4 * float(wide.friction_factor)) * area * (area - 1)
     by_hand = k * 0.5 * 1000.0 * float(wide.velocity) ** 2
     assert float(found[1].pressure_loss) == pytest.approx(by_hand, rel=1e-9)
+
+
+def test_no_vessel_is_below_a_full_vacuum() -> None:
+    with pytest.raises(
+        rheo.InputError, match=r"gauge_pressure is -2 bar; a full vacuum is -1\.013 bar"
+    ):
+        Line(suction=(Vessel(1.0, -2e5, name="still"),), discharge=(Pipe(3.0, 0.05),))
+    Line(suction=(Vessel(1.0, -101_325.0),), discharge=(Pipe(3.0, 0.05),))
+    Line(discharge=(Pipe(3.0, 0.05), Vessel(0.0, -1.5e5)), atmospheric_pressure=2e5)
