@@ -12,9 +12,12 @@ def _virtual_memory() -> int:
         return int(file.read().split()[0]) * 4096
 
 
-@pytest.fixture(autouse=True, scope="package")
+@pytest.fixture(autouse=True, scope="module")
 def no_more_than_one_gb():
-    """Let this process have 1 GB more than it has: what wants more fails with a MemoryError."""
+    """Let this process have 1 GB more than it has: what wants more fails with a MemoryError.
+
+    A browser that a later file starts would inherit the bound, so it ends with each file.
+    """
     try:
         import resource
 
