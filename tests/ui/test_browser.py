@@ -43,6 +43,8 @@ class Browser:
 
     def open(self, path: str = "/") -> None:
         self.page.goto(self.address + path)
+        # Before its script has begun a page rests too: the answer stands at the top of every stop.
+        self.page.wait_for_selector(".rheo-strip .value", timeout=60_000)
         self.settle()
 
     def settle(self) -> None:
