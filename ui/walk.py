@@ -44,7 +44,7 @@ def pages() -> dict[str, Any]:
 
 def show(found: dict[str, Any]) -> None:
     """Draw the walk with the state of each stop."""
-    states = words.walk_states(state.readings(), state.result(), state.system())
+    states = words.walk_states(state.case(), state.readings(), state.result(), state.system())
     with st.container(gap=None, key="walk"):
         for number, stop in enumerate(STOPS, 1):
             st.page_link(

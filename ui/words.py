@@ -4,10 +4,11 @@ from __future__ import annotations
 
 from typing import Any
 
-from rheo.case import CaseResult
+from rheo.case import Case, CaseResult
+from rheo.case.load_readings import screened
 from rheo.line.catalogue import PipeSize
 from rheo.line.parts import Pipe
-from rheo.readings import Readings, screen
+from rheo.readings import Readings
 from rheo.report import display
 from rheo.report.numbers import exact, number
 
@@ -56,17 +57,18 @@ def velocity_note(result: CaseResult, system: str) -> str:
     return f"{display.text(max(speeds), 'velocity', system, digits=2)}" if speeds else ""
 
 
-def flagged_points(readings: Readings) -> tuple[int, ...]:
-    """Return the readings that screening doubts, counted from 0."""
-    return tuple(sorted({point for caution in screen(readings) for point in caution.points}))
+def flagged_points(case: Case, readings: Readings) -> tuple[int, ...]:
+    """Return the readings of a case that screening doubts, counted from 0."""
+    found = screened(case, readings)
+    return tuple(sorted({point for caution in found for point in caution.points}))
 
 
-def readings_state(sets: tuple[Readings, ...] | None) -> str:
+def readings_state(case: Case, sets: tuple[Readings, ...] | None) -> str:
     """Return such as ``24 readings, 2 flagged``."""
     if sets is None:
         return "need your attention"
     total = sum(len(one) for one in sets)
-    flagged = sum(len(flagged_points(one)) for one in sets)
+    flagged = sum(len(flagged_points(case, one)) for one in sets)
     left_out = sum(int(one.excluded.sum()) for one in sets if one.excluded is not None)
     more = f", {flagged} flagged" if flagged else ""
     more += f", {left_out} left out" if left_out else ""
@@ -74,10 +76,10 @@ def readings_state(sets: tuple[Readings, ...] | None) -> str:
 
 
 def walk_states(
-    sets: tuple[Readings, ...] | None, result: CaseResult | None, system: str
+    case: Case, sets: tuple[Readings, ...] | None, result: CaseResult | None, system: str
 ) -> dict[str, str]:
     """Return a few words for each stop, by its key."""
-    states = {"readings": readings_state(sets)}
+    states = {"readings": readings_state(case, sets)}
     if result is None:
         return states
     line = result.line

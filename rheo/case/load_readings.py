@@ -12,9 +12,9 @@ from rheo.case.complaints import words_of
 from rheo.case.paths import inside_folder
 from rheo.case.readings_blocks import ReadingsBlock, Sweep
 from rheo.case.schema import INSTRUMENT, Case
-from rheo.errors import CaseError
+from rheo.errors import CaseError, Caution
 from rheo.fitting import Instrument
-from rheo.readings import Readings, read_readings
+from rheo.readings import Readings, read_readings, screen
 
 SWEEPS = get_args(Sweep)
 
@@ -169,3 +169,23 @@ def all_readings(case: Case) -> tuple[Readings, ...]:
         For the first that cannot be read.
     """
     return tuple(readings_of(case, number) for number in range(len(case.readings)))
+
+
+def screened(case: Case, readings: Readings) -> tuple[Caution, ...]:
+    """Return what is doubtful in readings, but for what the fit of the case takes into account.
+
+    Parameters
+    ----------
+    case : Case
+        Where it fits slip or the entrance loss, readings that show it are as they should be.
+    readings : Readings
+        One of its sets.
+
+    Returns
+    -------
+    tuple of Caution
+        From `rheo.screen`.
+    """
+    fitted = {"slip"} if case.fit.slip else set()
+    fitted |= {"entrance-loss"} if case.fit.entrance else set()
+    return tuple(one for one in screen(readings) if one.code not in fitted)

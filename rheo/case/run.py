@@ -9,7 +9,7 @@ import numpy as np
 
 from rheo.case.join import joined
 from rheo.case.limit_cautions import limit_cautions
-from rheo.case.load_readings import all_readings, branch_of, weighting_of
+from rheo.case.load_readings import all_readings, branch_of, screened, weighting_of
 from rheo.case.pump_cautions import pump_cautions
 from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
@@ -29,7 +29,7 @@ from rheo.line import (
 )
 from rheo.line.constants import GRAVITY
 from rheo.line.thickness import thicker
-from rheo.readings import Readings, screen
+from rheo.readings import Readings
 
 ROOM_TEMPERATURE = 293.15
 
@@ -159,7 +159,7 @@ def run_case(
     )
     cautions = merge_cautions(
         *(one.cautions for one in sets),
-        *(_screened(one, case) for one in sets),
+        *(screened(case, one) for one in sets),
         fits.data_cautions,
         fits.ranking_cautions if chosen is fits.best else (),
         chosen.cautions,
@@ -263,13 +263,6 @@ def _rating(
         return rated
     at_hand = max(pump.heads) * float(np.asarray(product.density)) * GRAVITY
     return at_hand if rated is None else min(rated, at_hand)
-
-
-def _screened(readings: Readings, case: Case) -> tuple[Caution, ...]:
-    """What is doubtful in readings, but for what the fit takes into account."""
-    fitted = {"slip"} if case.fit.slip else set()
-    fitted |= {"entrance-loss"} if case.fit.entrance else set()
-    return tuple(one for one in screen(readings) if one.code not in fitted)
 
 
 def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution, ...]:

@@ -8,13 +8,14 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.case.load_readings import screened
 from rheo.case.result import CaseResult
 from rheo.errors import Caution
 from rheo.fitting import Fit
 from rheo.fitting.scaled_fits import ScaledFits
 from rheo.models import Model
 from rheo.models.state_curve import ScalingLaw
-from rheo.readings import FlowCurve, Readings, screen
+from rheo.readings import FlowCurve, Readings
 from rheo.report.picture import FloatArray
 
 
@@ -41,7 +42,10 @@ class CasePoints:
     @cached_property
     def cautions(self) -> tuple[tuple[Caution, ...], ...]:
         """Cautions of each set, from reading it and from screening it."""
-        return tuple(tuple(dict.fromkeys((*one.cautions, *screen(one)))) for one in self._sets)
+        return tuple(
+            tuple(dict.fromkeys((*one.cautions, *screened(self.result.case, one))))
+            for one in self._sets
+        )
 
     @property
     def _sets(self) -> tuple[Readings, ...]:

@@ -32,6 +32,7 @@ def test_verdicts_are_of_the_fits() -> None:
     said = {fit.key: verdict(fit, fits, fits.best) for fit in fits}
     assert said[fits.best.key] == "in use: first of the ranking"
     assert said["newtonian"] == "misses the shape"
+    assert said["robertson-stiff"] == "fits worse"
     other = fits["newtonian"]
     assert verdict(other, fits, other) == "in use by your choice: misses the shape"
     assert verdict(fits.best, fits, other) == "first of the ranking"

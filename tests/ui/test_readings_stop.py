@@ -334,3 +334,13 @@ def test_mapping_refuses_what_would_break_readings(page: Page) -> None:
     problem = results.readings_of(case, page.kept("files")).problem
     assert isinstance(problem, InputError)
     assert "bananas" in str(problem)
+
+
+def test_slip_that_the_fit_takes_in_flags_nothing(page: Page) -> None:
+    page.press("Thickener")
+    page.go("readings")
+    assert page.kept("case").fit.slip is True
+    assert "slips at the wall" not in page.html
+    page.app.session_state["rheo.case"] = changed(page.kept("case"), ("fit", "slip"), False)
+    page.run()
+    assert "slips at the wall" in page.html

@@ -16,8 +16,9 @@ from rheo.report.words import capital, percent
 from ui import results, state, table, words
 from ui.flow_curve.compare import change
 
-# A model with less than this chance of being the best of them is called one that misses the shape.
-_LEAST_WEIGHT = 0.01
+# A model with less than this chance of being the best of them fits worse; with an error so many
+# times that of the first it is said to miss the shape.
+_LEAST_WEIGHT, _SAME_SHAPE = 0.01, 3.0
 
 
 def show(fits: Fits, chosen: Fit, pressures: Mapping[str, ModelPressure] | None = None) -> None:
@@ -119,6 +120,8 @@ def verdict(fit: Fit, fits: Fits, chosen: Fit) -> str:
         said = f"no better fit for {words.count(more, 'parameter')} more"
     elif fit.weight >= _LEAST_WEIGHT:
         said = "less likely"
+    elif fit.rms_relative_error <= _SAME_SHAPE * best.rms_relative_error:
+        said = "fits worse"
     else:
         said = "misses the shape"
     return f"in use by your choice: {said}" if fit.key == chosen.key != best.key else said

@@ -12,8 +12,9 @@ from typing import Any
 import numpy as np
 import streamlit as st
 
+from rheo.case.load_readings import screened
 from rheo.errors import Caution, InputError
-from rheo.readings import FlowCurve, Readings, screen
+from rheo.readings import FlowCurve, Readings
 from rheo.report import display
 from rheo.report.figures import flow_curve
 from ui import cautions, pictures, results, state, words
@@ -49,7 +50,7 @@ def show_picture(readings: Readings) -> None:
         return
     excluded = _excluded(readings)
     flagged = np.zeros(len(readings), dtype=bool)
-    flagged[list(words.flagged_points(readings))] = True
+    flagged[list(words.flagged_points(state.case(), readings))] = True
     result = state.result()
     picture = flow_curve(
         curve.rate,
@@ -111,7 +112,9 @@ def show_table(readings: Readings) -> None:
 
 def show_actions(readings: Readings) -> None:
     """Draw what can be done with all flagged points at once."""
-    flagged = [i for i in words.flagged_points(readings) if not _excluded(readings)[i]]
+    flagged = [
+        i for i in words.flagged_points(state.case(), readings) if not _excluded(readings)[i]
+    ]
     left_out = np.flatnonzero(_excluded(readings)).tolist()
     with st.container(horizontal=True):
         if flagged:
@@ -127,7 +130,7 @@ def show_actions(readings: Readings) -> None:
 
 def doubts(readings: Readings) -> tuple[Caution, ...]:
     """Return what is doubtful in the readings, with what the reader noted first."""
-    return (*readings.cautions, *screen(readings))
+    return (*readings.cautions, *screened(state.case(), readings))
 
 
 def exclude(points: Iterable[int]) -> None:
@@ -170,7 +173,7 @@ def _rows(readings: Readings) -> dict[str, list[Any]]:
         "Use": (~_excluded(readings)).tolist(),
     }
     reasons: list[list[str]] = [[] for _ in range(len(readings))]
-    for caution in screen(readings):
+    for caution in screened(state.case(), readings):
         for point in caution.points:
             reasons[point].append(caution.code.replace("-", " "))
     rows["Flag"] = [", ".join(found) for found in reasons]

@@ -51,7 +51,7 @@ def _show_readings() -> None:
             "its box and press Enter, or click twice."
         )
     with right:
-        st.markdown(f"**{style.plain(words.readings_state((readings,)))}**")
+        st.markdown(f"**{style.plain(words.readings_state(state.case(), (readings,)))}**")
         doubts = points.doubts(readings)
         cautions.show(doubts)
         if not doubts:
