@@ -13,7 +13,7 @@ from rheo.batches.row import Row
 from rheo.case.load_readings import branch_of
 from rheo.errors import Caution, InputError, merge_cautions
 from rheo.fitting import Fits, Instrument
-from rheo.fitting.any_state import at_several_temperatures, fit_readings
+from rheo.fitting.any_state import at_several_solids, at_several_temperatures, fit_readings
 from rheo.fitting.many_curves import fit_curves
 from rheo.readings import Readings, read_readings, screen
 
@@ -131,7 +131,8 @@ def _fitted(read: Mapping[str, Readings], settings: Settings) -> dict[str, Fits 
     plain = [
         file
         for file, readings in read.items()
-        if readings.geometry is None and not at_several_temperatures(readings)
+        if readings.geometry is None
+        and not (at_several_temperatures(readings) or at_several_solids(readings))
     ]
     found: dict[str, Fits | InputError | str] = {}
     try:

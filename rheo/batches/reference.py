@@ -131,12 +131,13 @@ def compared(
     what a second filling of the instrument would change is not in it.
     """
     if isinstance(fits, ScaledFits):
+        state = "temperature" if fits.law is None else fits.law.state
         return (), (
             Caution(
                 "drift-not-compared",
-                "The readings are at several temperatures, so the lot was not compared with the "
+                f"The readings are at several {state}s, so the lot was not compared with the "
                 "reference.",
-                "Put the readings at the reference's temperature in a file of their own.",
+                f"Put the readings at the reference's {state} in a file of their own.",
                 "reference",
             ),
         )

@@ -22,7 +22,7 @@ from rheo.batches.row import Row
 from rheo.batches.workers import run_jobs
 from rheo.errors import InputError
 from rheo.fitting import fit
-from rheo.fitting.any_state import at_several_temperatures
+from rheo.fitting.any_state import at_several_solids, at_several_temperatures
 from rheo.fitting.entry import records_of
 from rheo.fitting.weighting import resolve_weighting
 
@@ -151,10 +151,14 @@ def _reference(path: Path, rates: Sequence[float] | None, settings: Settings) ->
     except OSError as error:
         raise InputError(error.strerror or "it cannot be read", str(path)) from None
     readings = read_one(data, str(path), settings)
-    if at_several_temperatures(readings):
-        raise InputError(
-            "the reference lot has readings at several temperatures; it must have one", str(path)
-        )
+    for several, what in (
+        (at_several_temperatures, "temperatures"),
+        (at_several_solids, "solids fractions"),
+    ):
+        if several(readings):
+            raise InputError(
+                f"the reference lot has readings at several {what}; it must have one", str(path)
+            )
     fits = fit(readings, settings.models, settings.weighting)
     chosen = rates_to_compare(fits, rates, path)
     curve = curve_with_doubt(fits, chosen, mean_temperature(readings))

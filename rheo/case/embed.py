@@ -65,12 +65,15 @@ def _stated(readings: Readings) -> Iterator[str]:
         yield f"# full_scale_torque: {float(readings.full_scale_torque)!r} N.m\n"
     if readings.nominal_form is not None:
         yield f"# nominal_form: {readings.nominal_form}\n"
-    if readings.temperature is not None and not _has_temperature(readings):
+    if readings.temperature is not None and not _has_column(readings, "temperature"):
         yield f"# temperature: {float(readings.temperature[0])!r} K\n"
+    if readings.solids_fraction is not None and not _has_column(readings, "solids_fraction"):
+        by = f" by {readings.solids_basis}" if readings.solids_basis else ""
+        yield f"# solids_fraction: {100.0 * float(readings.solids_fraction[0])!r} %{by}\n"
 
 
-def _has_temperature(readings: Readings) -> bool:
-    return any(column.quantity == "temperature" for column in readings.columns)
+def _has_column(readings: Readings, key: str) -> bool:
+    return any(column.quantity == key for column in readings.columns)
 
 
 def _table_text(block: RawBlock) -> str:

@@ -7,7 +7,7 @@ from typing import Annotated, Any
 
 from pydantic import BeforeValidator, Field
 
-from rheo.case.quantity import Quantity, StepUnit, Unit
+from rheo.case.quantity import Quantity, SolidsUnit, StepUnit, Unit
 
 
 def _plain_lines(text: Any) -> Any:
@@ -45,6 +45,9 @@ PositiveShare = Annotated[Quantity, Unit("dimensionless", above=0.0, at_most=1.0
 NotNegative = Annotated[Quantity, Unit("dimensionless", at_least=0.0, example="0.9")]
 VolumeFraction = Annotated[
     Quantity, Unit("dimensionless", above=0.0, at_most=0.69, example="'12 %'")
+]
+SolidsShare = Annotated[
+    Quantity, SolidsUnit("dimensionless", above=0.0, at_most=0.99, example="'25 %' or '46 wt%'")
 ]
 Percent = Annotated[Quantity, Unit("percent", at_least=0.0, at_most=100.0, example="'1 %'")]
 Hours = Annotated[Quantity, Unit("dimensionless", above=0.0, at_most=8784.0, example="6000")]

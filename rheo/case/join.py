@@ -7,9 +7,10 @@ from typing import Any
 
 import numpy as np
 
-from rheo.errors import CaseError, merge_cautions
+from rheo.errors import CaseError, Caution, merge_cautions
 from rheo.geometry import Geometry, make_geometry
 from rheo.readings import Readings
+from rheo.readings.quantities import BY_KEY
 
 
 def joined(sets: Sequence[Readings]) -> Readings:
@@ -48,13 +49,40 @@ def joined(sets: Sequence[Readings]) -> Readings:
         columns["geometry"] = _geometry([one.geometry for one in sets if one.geometry], sets)
     for key in ("full_scale_torque", "stress_per_degree", "nominal_form", "particle_diameter"):
         columns[key] = _same(key, sets)
+    if "solids_fraction" in shared:
+        columns["solids_basis"] = _basis(sets)
     return Readings(
         **columns,
         density=sets[0].density,
         source=", ".join(dict.fromkeys(one.source for one in sets)),
         columns=sets[0].columns,
-        cautions=merge_cautions(*(one.cautions for one in sets)),
+        cautions=merge_cautions(*(one.cautions for one in sets), _said_of_some(shared, sets)),
     )
+
+
+def _said_of_some(shared: Sequence[str], sets: Sequence[Readings]) -> tuple[Caution, ...]:
+    """Return a Caution for what decides the state of the product and only some sets say."""
+    return tuple(
+        Caution(
+            f"{key.partition('_')[0]}-of-some-sets",
+            f"The {BY_KEY[key].name} is known of some sets of readings only, so the fit takes no "
+            "account of it.",
+            f"Give the {BY_KEY[key].name} of every set.",
+            "readings",
+        )
+        for key in ("temperature", "solids_fraction")
+        if key not in shared and any(key in one.present for one in sets)
+    )
+
+
+def _basis(sets: Sequence[Readings]) -> str:
+    said = sorted({one.solids_basis for one in sets} - {""})
+    if len(said) > 1:
+        raise CaseError(
+            "solids fractions are by mass in one set and by volume in another; give them by one",
+            "readings",
+        )
+    return said[0] if said else ""
 
 
 def _geometry(geometries: Sequence[Geometry], sets: Sequence[Readings]) -> Geometry:

@@ -12,6 +12,7 @@ from rheo.case.complaints import words_of
 from rheo.case.paths import inside_folder
 from rheo.case.readings_blocks import ReadingsBlock, Sweep
 from rheo.case.schema import INSTRUMENT, Case
+from rheo.case.solids_state import basis_of
 from rheo.errors import CaseError, Caution
 from rheo.fitting import Instrument
 from rheo.readings import Readings, read_readings, screen
@@ -141,6 +142,9 @@ def _said(case: Case, block: ReadingsBlock, readings: Readings) -> dict[str, Any
         said["nominal_form"] = block.nominal_form
     if block.temperature is not None:
         said["temperature"] = np.full(len(readings), float(block.temperature))
+    if block.solids_fraction is not None:
+        said["solids_fraction"] = np.full(len(readings), float(block.solids_fraction))
+        said["solids_basis"] = basis_of(block.solids_fraction)
     return said
 
 

@@ -10,6 +10,7 @@ from typing import Any
 from pydantic_core import core_schema
 
 from rheo.errors import CaseError
+from rheo.readings.solids import read_share
 from rheo.units import parse_quantity
 
 _LEADING_NUMBER = re.compile(r"^\s*[-+]?[\d. ']*(?:[eE][-+]?\d+)?")
@@ -162,4 +163,15 @@ class StepUnit(Unit):
             step = parse_quantity(value, "K") - parse_quantity(_LEADING_NUMBER.sub("0", value), "K")
             quantity = super().read(Quantity(round(step, 9), value))
             return Quantity(quantity, value)
+        return super().read(value)
+
+
+@dataclass(frozen=True)
+class SolidsUnit(Unit):
+    """A share of solids [-], by volume or by mass as its unit says: ``25 %``, ``46 wt%``."""
+
+    def read(self, value: Any) -> Quantity:
+        """Return the quantity of a text or number."""
+        if isinstance(value, str) and not isinstance(value, Quantity):
+            return super().read(Quantity(read_share(value)[0], value))
         return super().read(value)

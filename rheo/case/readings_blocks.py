@@ -10,7 +10,7 @@ from pydantic import Field, StrictInt, field_validator, model_validator
 from pydantic_core import core_schema
 
 from rheo.case.block import Block, KeyedError, refuse_unknown_keys
-from rheo.case.fields import Length, PositiveStress, Temperature, Text, Torque
+from rheo.case.fields import Length, PositiveStress, SolidsShare, Temperature, Text, Torque
 from rheo.case.quantity import Quantity, Unit, describe
 from rheo.errors import CaseError, InputError
 from rheo.geometry import GeometryRecord, geometry_record
@@ -124,6 +124,7 @@ class ReadingsBlock(Block):
     stress_per_degree: PositiveStress | None = None
     particle_diameter: Length | None = None
     temperature: Temperature | None = None
+    solids_fraction: SolidsShare | None = None
     exclude: tuple[Annotated[StrictInt, Field(ge=1)], ...] = ()
     sweep: Sweep = "both"
 

@@ -258,6 +258,7 @@ class CaseResult:
                 self.product,
                 self.flow,
                 geometry=geometry,
+                state=self.product.solids_fraction,
                 method=self.case.line.friction_method,
             )
         except InputError:
@@ -270,6 +271,7 @@ class CaseResult:
             "title": self.case.title,
             "product": self.case.product.name,
             "model": as_data.model_data(self.model),
+            "solids_fraction": self.product.solids_fraction,
             "flow": self.flow,
             "pressure_drop": plain(line.friction_pressure),
             "pressure_drop_interval": plain(line.friction_pressure_interval),

@@ -13,9 +13,23 @@ from rheo.case.load_readings import all_readings, branch_of, screened, weighting
 from rheo.case.pump_cautions import pump_cautions
 from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
+from rheo.case.solids_state import (
+    at_solids,
+    follows_solids,
+    product_solids,
+    refuse_tube_effects,
+    solids_basis,
+    solids_state_cautions,
+)
 from rheo.errors import CaseError, Caution, merge_cautions
 from rheo.fitting import Fit, Fits, fit
-from rheo.fitting.any_state import ONE_TEMPERATURE, at_several_temperatures, fit_readings
+from rheo.fitting.any_state import (
+    ONE_TEMPERATURE,
+    at_several_solids,
+    at_several_temperatures,
+    fit_readings,
+    used_states,
+)
 from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line import (
     CentrifugalPump,
@@ -159,11 +173,13 @@ def run_case(
     )
     cautions = merge_cautions(
         *(one.cautions for one in sets),
+        found.fitted.cautions,
         *(screened(case, one) for one in sets),
         fits.data_cautions,
         fits.ranking_cautions if chosen is fits.best else (),
         chosen.cautions,
         _temperature_cautions(found.fitted, product),
+        solids_state_cautions(case, found.fitted, fits, product.solids_fraction),
         _thickness_cautions(case),
         line.cautions,
         limit_cautions(case, line),
@@ -196,14 +212,18 @@ def _fits(case: Case, readings: Readings) -> Fits:
         float(wanted.percent_of_full_scale or 0.0),
         readings,
     )
-    if at_several_temperatures(readings):
-        if wanted.entrance or wanted.slip:
-            raise CaseError(
-                "entrance loss and slip are fitted at one temperature only; exclude the readings "
-                "at the others, or leave entrance and slip out",
-                "fit",
-            )
-        return fit_readings(readings, wanted.models, weighting, _temperature(case, readings))
+    solids_basis(case, readings)
+    several = at_several_temperatures(readings) or at_several_solids(readings)
+    refuse_tube_effects(case, readings, several)
+    if several:
+        return fit_readings(
+            readings,
+            wanted.models,
+            weighting,
+            _temperature(case, readings),
+            product_solids(case, readings),
+            wanted.solids_form,
+        )
     return fit(
         readings,
         models=wanted.models,
@@ -218,16 +238,21 @@ def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product
     doubt = case.doubt
     named = None if case.fit.model == AUTO else chosen.key
     rates = chosen.rates[chosen.rates > 0]
+    solids = product_solids(case, readings)
+    warm = fits.range if isinstance(fits, ScaledFits) and not follows_solids(fits) else None
     product = Product(
-        model=fits.source(chosen.key),
+        model=at_solids(fits.source(chosen.key), fits, solids),
         density=float(given.density),
         temperature=_temperature(case, readings),
         heat_capacity=_plain(given.heat_capacity),
         vapour_pressure=_plain(given.vapour_pressure),
         static_yield_stress=_plain(given.static_yield_stress),
         measured_rates=(float(rates.min()), float(rates.max())) if rates.size else None,
-        temperature_range=fits.range if isinstance(fits, ScaledFits) else None,
-        draws=fits.draws(doubt.draws, doubt.seed, named),
+        temperature_range=warm,
+        solids_fraction=solids,
+        draws=tuple(
+            at_solids(one, fits, solids) for one in fits.draws(doubt.draws, doubt.seed, named)
+        ),
         name=given.name,
     )
     factor = given.stress_factor
@@ -238,7 +263,7 @@ def _temperature(case: Case, readings: Readings) -> float:
     """Temperature of the product [K]: as given, else that of the readings."""
     if case.product.temperature is not None:
         return float(case.product.temperature)
-    taken = readings.temperature
+    taken = used_states(readings, "temperature")
     return ROOM_TEMPERATURE if taken is None else float(np.mean(taken))
 
 
@@ -266,7 +291,7 @@ def _rating(
 
 
 def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution, ...]:
-    taken = readings.temperature
+    taken = used_states(readings, "temperature")
     if taken is None or product.knows_temperature:
         return ()
     apart = abs(float(np.mean(taken)) - product.temperature)

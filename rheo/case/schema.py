@@ -31,6 +31,7 @@ from rheo.case.fields import (
     Percent,
     Positive,
     Share,
+    SolidsShare,
     Stress,
     Temperature,
     Text,
@@ -39,9 +40,11 @@ from rheo.case.fields import (
 )
 from rheo.case.line_blocks import LineBlock
 from rheo.case.pump_blocks import PumpChoice
+from rheo.case.quantity import describe
 from rheo.case.readings_blocks import ReadingsBlock
 from rheo.case.upgrade import SCHEMA_VERSION
 from rheo.errors import CaseError, InputError
+from rheo.fitting.concentration import EXPONENTIAL, FORMS
 from rheo.fitting.weighting import WEIGHTINGS
 from rheo.models import model_record
 
@@ -63,6 +66,8 @@ class ProductBlock(Block):
     """What is pumped.
 
     `stress_factor` makes it thicker or thinner than its readings, alike at every shear rate.
+    `solids_fraction` says at which of several shares of solids the flow curve is taken, by volume
+    or by mass as those of the readings are.
     """
 
     name: Text = "product"
@@ -72,7 +77,19 @@ class ProductBlock(Block):
     vapour_pressure: NotNegativePressure | None = None
     static_yield_stress: Stress | None = None
     stress_factor: Positive | None = None
+    solids_fraction: SolidsShare | None = None
     solids: SolidsBlock | None = None
+
+    @field_validator("solids", mode="before")
+    @classmethod
+    def _coarse_particles(cls, solids: Any) -> Any:
+        if isinstance(solids, str | int | float) and not isinstance(solids, bool):
+            raise CaseError(
+                f"found {describe(solids)}; it is the table of coarse particles, with diameter, "
+                "density and volume_fraction; for how much solids the product holds write "
+                "solids_fraction, such as '25 %'"
+            )
+        return solids
 
 
 class FitBlock(Block):
@@ -85,6 +102,7 @@ class FitBlock(Block):
     percent_of_full_scale: Percent | None = None
     entrance: StrictBool = False
     slip: StrictBool = False
+    solids_form: Text = EXPONENTIAL
 
     @field_validator("models")
     @classmethod
@@ -112,6 +130,13 @@ class FitBlock(Block):
         if weighting not in allowed:
             raise CaseError(f"unknown weighting '{weighting[:60]}'; there are {', '.join(allowed)}")
         return weighting
+
+    @field_validator("solids_form")
+    @classmethod
+    def _known_form(cls, form: str) -> str:
+        if form not in FORMS:
+            raise CaseError(f"unknown form '{form[:60]}'; there are {', '.join(FORMS)}")
+        return form
 
     @model_validator(mode="after")
     def _fits_together(self) -> Self:

@@ -7,7 +7,13 @@ from typing import Annotated
 import typer
 
 from rheo.cli import terminal
-from rheo.cli.options import Json, UnitsOption, named_values, optional_quantity
+from rheo.cli.options import (
+    Json,
+    UnitsOption,
+    named_values,
+    optional_quantity,
+    solids_option,
+)
 from rheo.cli.readings_options import (
     Columns,
     Dimensions,
@@ -51,6 +57,18 @@ def fit(
             "--temperature", help="Where readings have several: give the values at '40 °C'."
         ),
     ] = None,
+    solids: Annotated[
+        str | None,
+        typer.Option(
+            "--solids", help="Where readings have several solids fractions: values at '25 %'."
+        ),
+    ] = None,
+    solids_form: Annotated[
+        str,
+        typer.Option(
+            "--solids-form", help="How the curve follows the solids: exponential or power."
+        ),
+    ] = "exponential",
     entrance: Annotated[
         bool, typer.Option("--entrance", help="Fit the entrance loss of the tubes too.")
     ] = False,
@@ -99,17 +117,18 @@ def fit(
     chosen = branch_of(found, sweep)
     weights = weighting_of(weighting, percent_of_reading, percent_of_full_scale, chosen)
     at = optional_quantity(temperature, "K", "--temperature")
+    share = solids_option(solids, found.solids_basis)
     if entrance or slip:
         fits = fitted(chosen, models or None, weights, entrance=entrance, slip=slip)
     else:
-        fits = fit_readings(chosen, models or None, weights, at)
+        fits = fit_readings(chosen, models or None, weights, at, share, solids_form)
     cautions = merge_cautions(found.cautions, screen(found), fits.cautions)
     weightings = sweeps = None
     if compare:
         instrument = weights if isinstance(weights, Instrument) else None
-        weightings = compare_weightings(chosen, models or None, instrument, at)
+        weightings = compare_weightings(chosen, models or None, instrument, at, share, solids_form)
         if found.branch is not None and {"up", "down"} <= set(found.branch.tolist()):
-            sweeps = compare_sweeps(found, models or None, weights, at)
+            sweeps = compare_sweeps(found, models or None, weights, at, share, solids_form)
     if as_json:
         printed = {"readings": readings_data(found), **fits_data(fits)}
         if weightings is not None:

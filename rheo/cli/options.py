@@ -37,6 +37,28 @@ def optional_quantity(value: str | None, target: str, option: str) -> float | No
     return None if value is None else quantity(value, target, option)
 
 
+def solids_option(value: str | None, by: str, option: str = "--solids") -> float | None:
+    """Return a share of solids [-] such as ``25 %``, or None when the option was not given.
+
+    Raises
+    ------
+    InputError
+        If it is not between 0 and 1, or by mass where readings are by volume or the reverse.
+    """
+    if value is None:
+        return None
+    from rheo.readings.solids import read_share
+
+    share, said = read_share(value, option)
+    if not 0.0 < share < 1.0:
+        raise InputError(f"found '{value[:60]}'; it must be above 0 and below 100 %", option)
+    if said and by and said != by:
+        raise InputError(
+            f"'{value[:60]}' is by {said}, and the solids of the readings are by {by}", option
+        )
+    return share
+
+
 def named_values(pairs: list[str], option: str) -> dict[str, str]:
     """Split texts such as ``flow_index=0.5`` into names and values.
 

@@ -38,6 +38,7 @@ def show_readings(out: Console, readings: Readings, units: str) -> None:
             ("shear rate", f"{number(float(rates.min()))} to {number(float(rates.max()))} 1/s"),
             ("stress", f"{number(float(stresses.min()))} to {number(float(stresses.max()))} Pa"),
             ("temperature", span),
+            ("solids", _solids(readings)),
             (
                 "geometry",
                 "none: shear rates and stresses as given"
@@ -46,6 +47,18 @@ def show_readings(out: Console, readings: Readings, units: str) -> None:
             ),
         ],
     )
+
+
+def _solids(readings: Readings) -> str | None:
+    """Return the range of the solids fractions in words."""
+    from rheo.readings.solids import in_words
+
+    share, by = readings.solids_fraction, readings.solids_basis
+    if share is None:
+        return None
+    low, high = (in_words(float(end)) for end in (share.min(), share.max()))
+    ends = low if low == high else f"{low.removesuffix(' %')} to {high}"
+    return f"{ends} by {by}" if by else ends
 
 
 def _fitted(readings: Readings) -> str:
@@ -109,7 +122,7 @@ def _show_state(out: Console, fits: Fits) -> None:
 
     if not isinstance(fits, ScaledFits) or fits.law is None:
         return
-    at = number(fits.law.reference)
+    at = f"{number(100.0 * fits.law.reference)} %"
     if fits.law.unit == "K":
         at = f"{fits.law.reference - 273.15:.1f} °C"
     terminal.sentence(

@@ -19,6 +19,7 @@ if TYPE_CHECKING:
 _BAR = 24
 # Cautions of a flow curve used where it was not measured.
 _TEMPERATURES = {"outside-temperature-range", "temperature-of-readings", "temperature-not-in-model"}
+_SOLIDS = {"outside-measured-fraction", "solids-of-readings", "solids-not-in-model"}
 _DOUBT = "± is the 95 % interval by readings and model choice"
 
 
@@ -98,6 +99,8 @@ def show_answer(
             words += " and outside the measured shear rates"
     if any(one.code in _TEMPERATURES for one in cautions):
         words += "; the temperature is outside that of the readings"
+    if any(one.code in _SOLIDS for one in cautions):
+        words += "; the solids are outside those of the readings"
     start = float(result.start_up.pressure)
     if start > 0:
         words += f"; start-up takes up to {text(start, 'pressure', units)}"

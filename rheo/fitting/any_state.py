@@ -1,25 +1,54 @@
-"""Fit readings of one temperature, or of several, by what the readings say."""
+"""Fit readings of one state, or of several temperatures or solids fractions, by what they say."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
 
 import numpy as np
+from numpy.typing import NDArray
 
+from rheo.errors import InputError
+from rheo.fitting.concentration import EXPONENTIAL, fit_concentrations
 from rheo.fitting.entry import fit
 from rheo.fitting.fits import Fits
 from rheo.fitting.temperature import fit_temperatures
 from rheo.fitting.weighting import Instrument, Weighting
 from rheo.readings import FlowCurve, Readings
+from rheo.readings.solids import in_words
+from rheo.readings.sweeps import SAME_SOLIDS, SAME_TEMPERATURE
+
+FloatArray = NDArray[np.float64]
 
 # Readings this much apart in temperature [K] are no longer taken at one temperature.
-ONE_TEMPERATURE = 2.0
+ONE_TEMPERATURE = SAME_TEMPERATURE
+
+
+def used_states(data: FlowCurve | Readings, key: str) -> FloatArray | None:
+    """Return ``temperature`` [K] or ``solids_fraction`` [-] of the readings that are fitted.
+
+    None where the readings do not have it.
+    """
+    taken = getattr(data, key)
+    if taken is None:
+        return None
+    left_out = data.excluded
+    values = np.asarray(taken, dtype=float)
+    return values if left_out is None or np.all(left_out) else values[~np.asarray(left_out)]
 
 
 def at_several_temperatures(data: FlowCurve | Readings) -> bool:
-    """Return whether the readings are more than `ONE_TEMPERATURE` apart."""
-    taken = data.temperature
-    return taken is not None and bool(np.ptp(np.asarray(taken, dtype=float)) > ONE_TEMPERATURE)
+    """Return whether the readings that are fitted are more than `ONE_TEMPERATURE` apart."""
+    taken = used_states(data, "temperature")
+    return taken is not None and bool(np.ptp(taken) > ONE_TEMPERATURE)
+
+
+def at_several_solids(data: FlowCurve | Readings) -> bool:
+    """Return whether the solids fractions of the readings that are fitted differ.
+
+    That is by more than `SAME_SOLIDS` of the largest of them.
+    """
+    taken = used_states(data, "solids_fraction")
+    return taken is not None and bool(np.ptp(taken) > SAME_SOLIDS * np.max(taken))
 
 
 def fit_readings(
@@ -27,8 +56,10 @@ def fit_readings(
     models: str | Sequence[str] | None = None,
     weighting: str | Instrument | Weighting = "relative",
     temperature: float | None = None,
+    solids: float | None = None,
+    solids_form: str = EXPONENTIAL,
 ) -> Fits:
-    """Fit by `rheo.fit_temperatures` where there are several temperatures, else by `rheo.fit`.
+    """Fit over several temperatures or solids fractions where there are such, else by `rheo.fit`.
 
     Parameters
     ----------
@@ -37,15 +68,48 @@ def fit_readings(
     temperature : float, optional
         Where there are several, the temperature [K] at which parameters are given, moved into the
         range of the readings.
+    solids : float, optional
+        The same for solids fractions [-].
+    solids_form : str
+        How the flow curve follows the solids, as for `rheo.fit_concentrations`.
 
     Returns
     -------
     Fits
+
+    Raises
+    ------
+    InputError
+        If both temperature and solids fraction differ between the readings.
     """
+    if at_several_solids(data):
+        _refuse_both(data)
+        return fit_concentrations(
+            data, None, models, weighting, solids_form, _inside(data, "solids_fraction", solids)
+        )
+    if at_several_temperatures(data):
+        return fit_temperatures(data, models, weighting, _inside(data, "temperature", temperature))
+    return fit(data, models, weighting)
+
+
+def _inside(data: FlowCurve | Readings, key: str, wanted: float | None) -> float | None:
+    taken = used_states(data, key)
+    if wanted is None or taken is None:
+        return None
+    return float(np.clip(wanted, taken.min(), taken.max()))
+
+
+def _refuse_both(data: FlowCurve | Readings) -> None:
     if not at_several_temperatures(data):
-        return fit(data, models, weighting)
-    if temperature is None:
-        return fit_temperatures(data, models, weighting)
-    taken = np.asarray(data.temperature, dtype=float)
-    inside = float(np.clip(temperature, taken.min(), taken.max()))
-    return fit_temperatures(data, models, weighting, inside)
+        return
+    warm, solids = used_states(data, "temperature"), used_states(data, "solids_fraction")
+    assert warm is not None
+    assert solids is not None
+    raise InputError(
+        f"the readings are at several temperatures ({warm.min() - 273.15:.1f} to "
+        f"{warm.max() - 273.15:.1f} °C) and several solids fractions ({in_words(solids.min())} to "
+        f"{in_words(solids.max())}), and one fit follows one of the two; leave readings out so "
+        f"that temperatures are within {ONE_TEMPERATURE:g} K of each other, or all solids "
+        "fractions are the same",
+        getattr(data, "source", "") or "readings",
+    )

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from rheo.fitting.any_state import fit_readings
+from rheo.fitting.concentration import EXPONENTIAL
 from rheo.fitting.fits import Fits
 from rheo.fitting.weighting import WEIGHTINGS, Instrument, Weighting
 from rheo.readings import FlowCurve, Readings
@@ -68,6 +69,8 @@ def compare_weightings(
     models: str | Sequence[str] | None = None,
     instrument: Instrument | None = None,
     temperature: float | None = None,
+    solids: float | None = None,
+    solids_form: str = EXPONENTIAL,
 ) -> WeightingComparison:
     """Fit readings under relative, absolute and, where it is known, instrument weighting.
 
@@ -81,6 +84,8 @@ def compare_weightings(
         Accuracy of the instrument.
     temperature : float, optional
         Where there are several, the temperature [K] at which curves are compared.
+    solids, solids_form : float and str, optional
+        As for `fit_readings`.
 
     Returns
     -------
@@ -95,5 +100,8 @@ def compare_weightings(
     if instrument is not None:
         wanted["instrument"] = instrument
     return WeightingComparison(
-        {name: fit_readings(data, models, one, temperature) for name, one in wanted.items()}
+        {
+            name: fit_readings(data, models, one, temperature, solids, solids_form)
+            for name, one in wanted.items()
+        }
     )

@@ -42,8 +42,9 @@ def _law(form: str, reference: float) -> ScalingLaw:
     )
 
 
+EXPONENTIAL = "exponential"
 _FORMS = {
-    "exponential": (
+    EXPONENTIAL: (
         lambda fraction, at: fraction - at,
         "K(φ) = K(φ_ref) exp[b(φ - φ_ref)]",
         "D. G. Thomas, AIChE J. 7 (1961) 431 and 9 (1963) 310 for flocculated suspensions "
@@ -56,24 +57,29 @@ _FORMS = {
         "fraction (from memory)",
     ),
 }
+FORMS: tuple[str, ...] = tuple(_FORMS)
 
 
 def fit_concentrations(
     data: FlowCurve | Readings,
-    fractions: ArrayLike,
+    fractions: ArrayLike | None = None,
     models: str | Sequence[str] | None = None,
     weighting: str | Instrument | Weighting = "relative",
-    form: str = "exponential",
+    form: str = EXPONENTIAL,
     reference: float | None = None,
 ) -> ScaledFits:
-    """Fit models over readings at several solids volume fractions and rank them.
+    """Fit models over readings at several solids fractions and rank them.
+
+    Indices are shared; viscosities, consistency and time constants follow the solids with one
+    slope, the yield stress with one of its own.
 
     Parameters
     ----------
     data : FlowCurve or Readings
         All readings, one fraction after another.
-    fractions : array_like, shape (n,)
-        Volume fraction of solids of each reading [-], above 0 and below 1.
+    fractions : array_like, shape (n,), optional
+        Solids of each reading [-], above 0 and below 1: all by volume or all by mass, as the
+        laws hold in either within the range of the readings; those of the data when absent.
     models, weighting
         As for `rheo.fit`.
     form : str
@@ -84,16 +90,20 @@ def fit_concentrations(
     Returns
     -------
     ScaledFits
-        ``.at(fraction)`` is the flow curve at a volume fraction.
+        ``.at(fraction)`` is the flow curve at a solids fraction.
 
     Raises
     ------
     InputError
-        If a fraction is not between 0 and 1, all are the same, or the form is unknown.
+        If there are no fractions, one is not between 0 and 1, all are the same, or the form is
+        unknown.
     FitError
         If there are too few readings.
     """
-    solids = np.atleast_1d(np.asarray(fractions, dtype=float))
+    given = data.solids_fraction if fractions is None else fractions
+    if given is None:
+        raise InputError("the readings have no solids fractions; give one for each", "fractions")
+    solids = np.atleast_1d(np.asarray(given, dtype=float))
     if not ((solids > 0) & (solids < 1)).all():
         worst = solids[~((solids > 0) & (solids < 1))][0]
         raise InputError(

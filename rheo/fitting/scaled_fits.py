@@ -104,7 +104,7 @@ class ScaledFits(Fits):
 
 
 def _shown(law: ScalingLaw, value: float) -> str:
-    return f"{value - 273.15:.1f} °C" if law.unit == "K" else f"{value:.3g}"
+    return f"{value - 273.15:.1f} °C" if law.unit == "K" else f"{100.0 * value:.4g} %"
 
 
 def fit_scaled(

@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import InputError
 from rheo.fitting.any_state import fit_readings
+from rheo.fitting.concentration import EXPONENTIAL
 from rheo.fitting.fits import Fits
 from rheo.fitting.intervals import t_quantile
 from rheo.fitting.weighting import Instrument, Weighting
@@ -144,17 +145,22 @@ def compare_sweeps(
     models: str | Sequence[str] | None = None,
     weighting: str | Instrument | Weighting = "relative",
     temperature: float | None = None,
+    solids: float | None = None,
+    solids_form: str = EXPONENTIAL,
 ) -> SweepComparison:
     """Fit the way up, the way down and both, and say how far they lie apart.
 
     Parameters
     ----------
     data : FlowCurve or Readings
-        With a branch for each reading. Several temperatures are fitted together.
+        With a branch for each reading. Several temperatures or solids fractions are fitted
+        together.
     models, weighting
         As for `rheo.fit`.
     temperature : float, optional
         Where there are several, the temperature [K] of the comparison.
+    solids, solids_form : float and str, optional
+        As for `fit_readings`.
 
     Returns
     -------
@@ -169,7 +175,8 @@ def compare_sweeps(
     """
     up, down = (_branch(data, word) for word in ("up", "down"))
     on_way_up, on_way_down, together = (
-        fit_readings(one, models, weighting, temperature) for one in (up, down, data)
+        fit_readings(one, models, weighting, temperature, solids, solids_form)
+        for one in (up, down, data)
     )
     over, under = on_way_up.best, on_way_down.best
     low = max(over.rates.min(), under.rates.min())

@@ -40,6 +40,8 @@ class Product:
         Smallest and largest shear rate [1/s] that the viscometer saw.
     temperature_range : tuple of float, optional
         Temperatures [K] between which the flow curve was measured.
+    solids_fraction : float, optional
+        Solids that it holds, by volume or by mass [-], at which the flow curve was taken.
     draws : tuple of Model or callable
         Equally likely flow curves: models whose parameters are 1-D arrays, one draw an entry;
         their number together is the number of draws.
@@ -55,6 +57,7 @@ class Product:
     static_yield_stress: Number | None = None
     measured_rates: tuple[float, float] | None = None
     temperature_range: tuple[float, float] | None = None
+    solids_fraction: float | None = None
     draws: tuple[FlowCurveSource, ...] = ()
     name: str = "product"
 

@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from rheo.errors import Caution, ReadingsError, merge_cautions
 from rheo.geometry import Geometry
+from rheo.readings import solids
 from rheo.readings.blocks import Table
 from rheo.readings.branches import branches_by_order
 from rheo.readings.columns import Column
@@ -28,8 +29,11 @@ from rheo.readings.stated import (
 from rheo.readings.table_values import TableValues, number_cells, table_values
 
 FEWEST_READINGS = 3
-# Torques of no more than this many percent look like shares of 1.
+# Quantities whose numbers, where none is above so many percent, look like shares of 1.
 SHARE_LIMIT = 1.5
+_SHARES = (("torque_fraction", "torque", SHARE_LIMIT), ("solids_fraction", "solids fraction", 1.0))
+# What a file may state once for all readings of a block.
+_ONE_A_READING = ("temperature", "solids_fraction")
 _UNIT_GOES_WITHOUT_SAYING = frozenset({"rate", "dial", "torque_fraction"})
 
 
@@ -101,9 +105,12 @@ def assembled(
         stated.append(own.over(stated[-1]) if stated else own)
         cautions = merge_cautions(cautions, doubts)
     numbers, dropped = _joined(values, grid)
-    amounts = _amounts(stated, counts, "temperature" in numbers, grid)
-    if "temperature" in amounts:
-        numbers["temperature"] = amounts.pop("temperature")
+    amounts = _amounts(stated, counts, numbers, grid)
+    for key in _ONE_A_READING:
+        if key in amounts:
+            numbers[key] = amounts.pop(key)
+    if "solids_fraction" in numbers:
+        amounts["solids_basis"] = _solids_basis(values, stated, grid)
     if full_scale_torque is not None:
         amounts["full_scale_torque"] = full_scale_torque
     if isinstance(geometry, str):
@@ -174,14 +181,14 @@ def _joined(
 
 
 def _amounts(
-    stated: Sequence[Stated], counts: Sequence[int], has_temperature: bool, grid: Grid
+    stated: Sequence[Stated], counts: Sequence[int], columns: Mapping[str, Any], grid: Grid
 ) -> dict[str, Any]:
-    """Return what is stated besides the geometry: one value each, a temperature a reading."""
+    """Return what is stated besides the geometry: one value each, or one for each reading."""
     result: dict[str, Any] = {}
     for key in dict.fromkeys(key for one in stated for key in one.amounts):
         values = [one.amounts.get(key) for one in stated]
-        if key == "temperature":
-            if not has_temperature and None not in values:
+        if key in _ONE_A_READING:
+            if key not in columns and None not in values:
                 result[key] = np.repeat(np.array(values, dtype=float), counts)
             continue
         given = {value for value in values if value is not None}
@@ -192,6 +199,23 @@ def _amounts(
             )
         result[key] = given.pop()
     return result
+
+
+def _solids_basis(values: Sequence[TableValues], stated: Sequence[Stated], grid: Grid) -> str:
+    """Return by what the shares of solids are, of the columns, else as stated above them."""
+    found = {
+        solids.basis(column.unit, column.heading)
+        for one in values
+        for column in one.used
+        if column.quantity.key == "solids_fraction"
+    }
+    said = sorted((found or {one.solids_basis for one in stated}) - {""})
+    if len(said) > 1:
+        raise ReadingsError(
+            "solids fractions are by mass in one block and by volume in another; give them by one",
+            grid.place,
+        )
+    return said[0] if said else ""
 
 
 def _branch(
@@ -256,10 +280,11 @@ def _raw(table: Table) -> RawBlock:
     )
 
 
-def _may_be_shares(values: TableValues) -> bool:
-    share = values.numbers.get("torque_fraction")
-    unit = next((c.unit for c in values.used if c.quantity.key == "torque_fraction"), "1")
-    return share is not None and unit != "1" and bool(np.all(share <= SHARE_LIMIT / 100.0))
+def _may_be_shares(values: TableValues, key: str, limit: float) -> bool:
+    share = values.numbers.get(key)
+    unit = next((c.unit for c in values.used if c.quantity.key == key), "1")
+    read_in = BY_KEY[key].unit_words.get(unit.lower(), unit).partition(" ")[0]
+    return share is not None and read_in != "1" and bool(np.all(share <= limit / 100.0))
 
 
 def _assumptions(
@@ -282,16 +307,17 @@ def _assumptions(
                 place=grid.place,
             )
         )
-    if any(_may_be_shares(one) for one in values):
-        cautions.append(
-            Caution(
-                code="share-or-percent",
-                sentence=f"No torque is above {SHARE_LIMIT:g} %, although it is read in %: a "
-                "spreadsheet shows the number 0.5 as 50 %.",
-                advice="Say unit 1 for torque_fraction if the numbers are shares of 1.",
-                place=grid.place,
+    for key, what, limit in _SHARES:
+        if any(_may_be_shares(one, key, limit) for one in values):
+            cautions.append(
+                Caution(
+                    code="share-or-percent",
+                    sentence=f"No {what} is above {limit:g} %, although it is read in %: a "
+                    "spreadsheet shows the number 0.5 as 50 %.",
+                    advice=f"Say unit 1 for {key} if the numbers are shares of 1.",
+                    place=grid.place,
+                )
             )
-        )
     if mark.assumed:
         cautions.append(
             Caution(

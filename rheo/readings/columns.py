@@ -259,7 +259,7 @@ def _mapped_column(index: int, key: str, heading: str, below: str) -> Column:
         known = meaning(heading, below)
         if known is not None and known.quantity is quantity:
             written = known.unit
-    if not written or written in {"-", "–"}:
+    if not written or (written in {"-", "–"} and written not in quantity.unit_words):
         return Column(index, quantity, heading, quantity.default_unit, quantity.text, mapped=True)
     problem = "" if quantity.text else unit_problem(quantity, written)
     return Column(index, quantity, heading, written, True, mapped=True, problem=problem)

@@ -31,6 +31,8 @@ class FlowCurve:
         Part of the sweep: ``up``, ``down``, ``hold``, or an empty text where not known.
     excluded : array_like of bool, shape (n,), optional
         Points that the user has taken out; none when absent.
+    solids_fraction : array_like, shape (n,) or scalar, optional
+        Share of solids, by volume or by mass [-].
 
     Raises
     ------
@@ -43,6 +45,7 @@ class FlowCurve:
     temperature: FloatArray | None = None
     branch: NDArray[np.str_] | None = None
     excluded: NDArray[np.bool_] | None = None
+    solids_fraction: FloatArray | None = None
 
     def __post_init__(self) -> None:
         rate = positive_column(self.rate, "shear rate", "1/s")
@@ -56,13 +59,10 @@ class FlowCurve:
             )
         if count == 0:
             raise InputError("there is no point; there must be at least one", "flow curve")
-        temperature = self.temperature
-        if temperature is not None:
-            given = np.asarray(temperature, dtype=float)
-            if given.ndim == 0:
-                given = np.full(count, float(given))
-            temperature = positive_column(given, "temperature", "K")
-            _check_length(temperature.size, count, "temperature")
+        temperature = _column_or_one(self.temperature, count, "temperature", "K")
+        solids = _column_or_one(self.solids_fraction, count, "solids fraction", "")
+        if solids is not None:
+            check_below(solids, 1.0, "solids fraction")
         branch = None if self.branch is None else branch_column(self.branch)
         if branch is not None:
             _check_length(branch.size, count, "branch")
@@ -73,6 +73,7 @@ class FlowCurve:
             ("temperature", temperature),
             ("branch", branch),
             ("excluded", excluded),
+            ("solids_fraction", solids),
         ):
             if value is not None:
                 value.flags.writeable = False
@@ -96,7 +97,7 @@ class FlowCurve:
     def select(self, mask: ArrayLike) -> FlowCurve:
         """Return the points of a boolean mask or of indices counted from 0."""
         chosen = np.asarray(mask)
-        parts = (self.temperature, self.branch, self.excluded)
+        parts = (self.temperature, self.branch, self.excluded, self.solids_fraction)
         return FlowCurve(
             self.rate[chosen],
             self.stress[chosen],
@@ -106,6 +107,27 @@ class FlowCurve:
     def __repr__(self) -> str:
         low, high = float(self.rate.min()), float(self.rate.max())
         return f"FlowCurve({len(self)} points, {low:.4g} to {high:.4g} 1/s)"
+
+
+def _column_or_one(values: ArrayLike | None, count: int, what: str, unit: str) -> FloatArray | None:
+    if values is None:
+        return None
+    given = np.asarray(values)
+    column = positive_column(np.full(count, given) if given.ndim == 0 else given, what, unit)
+    _check_length(column.size, count, what)
+    return column
+
+
+def check_below(values: FloatArray, limit: float, what: str) -> None:
+    """Refuse a value that is not below a limit [-]."""
+    bad = values >= limit
+    if bad.any():
+        index = int(np.argmax(bad))
+        raise InputError(
+            f"point {index + 1} is {float(values[index]):g}; it must be above 0 and below "
+            f"{limit:g}",
+            what,
+        )
 
 
 def positive_column(values: ArrayLike, what: str, unit: str) -> FloatArray:
@@ -134,7 +156,8 @@ def positive_column(values: ArrayLike, what: str, unit: str) -> FloatArray:
         index = int(np.argmax(bad))
         value = float(array[index])
         needed = "a finite number above 0" if not np.isfinite(value) else "above 0"
-        raise InputError(f"point {index + 1} is {value:g} {unit}; it must be {needed}", what)
+        found = f"{value:g} {unit}".strip()
+        raise InputError(f"point {index + 1} is {found}; it must be {needed}", what)
     return array
 
 

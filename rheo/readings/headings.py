@@ -90,7 +90,8 @@ def _splits(text: str) -> Iterator[tuple[str, str, bool]]:
     match = _BRACKETED.fullmatch(text)
     if match:
         inside = next(part for part in match.groups()[1:] if part is not None)
-        if inside.strip() and set(_folded(inside).split()) <= _ALL_SIDE_WORDS:
+        side = set(_folded(inside).split())
+        if side and side <= _ALL_SIDE_WORDS:
             yield f"{match[1]} {inside}", "", True
         else:
             yield match[1], inside, True
@@ -138,7 +139,12 @@ def _named(name: str) -> tuple[_Named, ...]:
 
 
 def _fitting(found: tuple[_Named, ...], unit: str) -> Meaning | None:
-    written = "" if unit.strip().strip("[](){}").strip() in _BARE else unit.strip()
+    bare = unit.strip().strip("[](){}").strip()
+    # A dash says of a share that it is one of 1, and of anything else nothing.
+    dash = next((n for n in found if bare and bare in n.quantity.unit_words), None)
+    if dash is not None and bare in _BARE:
+        return Meaning(dash.quantity, dash.quantity.unit_words[bare], dash.rank)
+    written = "" if bare in _BARE else unit.strip()
     if written:
         for named in found:
             if named.quantity.text:
@@ -150,7 +156,7 @@ def _fitting(found: tuple[_Named, ...], unit: str) -> Meaning | None:
                 return Meaning(named.quantity, used, named.rank)
         return None
     # Without its unit a symbol could be several things, and so could a torque in %.
-    sure = [n for n in found if n.unit or not (n.is_symbol or n.quantity.percent)]
+    sure = [n for n in found if n.unit or not (n.is_symbol or n.quantity.unit_needed)]
     if len({named.quantity.key for named in sure}) != 1:
         return None
     return Meaning(sure[0].quantity, sure[0].unit, sure[0].rank)
@@ -219,11 +225,14 @@ def convert(
         )
     array = np.asarray(values, dtype=float)
     if quantity.percent:
-        if text in {"%", "percent"}:
+        # A share of solids may say by what after it: '% by mass'.
+        kind = text.partition(" ")[0]
+        if kind in {"%", "percent"}:
             return array / 100.0
-        if text == "1":
+        if kind == "1":
             return array
-        raise UnitError(f"unit '{unit.strip()[:60]}' is no share of full scale; write %", place)
+        what = quantity.name.partition(" as a ")[2] or f"{quantity.name} as a share"
+        raise UnitError(f"unit '{unit.strip()[:60]}' is no {what}; write %", place)
     if quantity.unit == "degree":
         if text.lower() in {"degree", "deg", "°"}:
             return array

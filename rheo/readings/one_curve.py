@@ -7,7 +7,7 @@ from numpy.typing import NDArray
 
 from rheo.errors import Caution
 from rheo.readings.readings import Readings
-from rheo.readings.sweeps import SAME_TEMPERATURE, curve_or_none
+from rheo.readings.sweeps import SAME_SOLIDS, SAME_TEMPERATURE, curve_or_none
 
 FloatArray = NDArray[np.float64]
 
@@ -29,6 +29,9 @@ def curves_apart(readings: Readings) -> tuple[Caution, ...]:
     if geometry is None or pair is None or geometry.key not in _WIDTHS:
         return ()
     if readings.temperature is not None and np.ptp(readings.temperature) > SAME_TEMPERATURE:
+        return ()
+    share = readings.solids_fraction
+    if share is not None and np.ptp(share) > SAME_SOLIDS * np.max(share):
         return ()
     rate, stress = pair
     count = len(readings)

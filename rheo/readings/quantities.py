@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass, field
 
+from rheo.readings import solids
+
 
 @dataclass(frozen=True)
 class Quantity:
@@ -32,6 +34,10 @@ class Quantity:
         Spellings that could be taken two ways, with what to write instead.
     percent : bool
         Whether it is a share, written in % as well.
+    unit_needed : bool
+        Whether its words mean it only beside its unit.
+    below : float
+        What every value must be below, in the SI unit.
     text : bool
         Whether the column holds words.
     """
@@ -46,6 +52,8 @@ class Quantity:
     unit_words: dict[str, str] = field(default_factory=dict)
     refused_units: dict[str, str] = field(default_factory=dict)
     percent: bool = False
+    unit_needed: bool = False
+    below: float = float("inf")
     text: bool = False
 
 
@@ -228,6 +236,7 @@ QUANTITIES: tuple[Quantity, ...] = (
             "%",
         ),
         percent=True,
+        unit_needed=True,
     ),
     Quantity(
         "dial",
@@ -325,6 +334,19 @@ QUANTITIES: tuple[Quantity, ...] = (
         words=("temperature", "temp", "temperatur", "temperatura", "probentemperatur"),
         symbols=("T", "ϑ"),
         unit_words=_DEGREES,
+    ),
+    Quantity(
+        "solids_fraction",
+        "solids fraction",
+        "",
+        solids.PERCENT,
+        words=solids.WORDS,
+        symbols=("φ", "Φ", "ϕ", "Cv", "Cw", "TS"),
+        word_units=dict.fromkeys(solids.SHARE_WORDS, solids.SHARE) | solids.PERCENT_WORDS,
+        unit_words=solids.UNITS,
+        refused_units=solids.REFUSED,
+        percent=True,
+        below=1.0,
     ),
     Quantity(
         "time",

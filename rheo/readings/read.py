@@ -53,8 +53,9 @@ def read_readings(
         The user's word on which column is which: by quantity (``rate``, ``stress``,
         ``viscosity``, ``angular_speed``, ``torque``, ``torque_fraction``, ``dial``, ``flow``,
         ``velocity``, ``pressure_drop``, ``tube_diameter``, ``tube_length``, ``gap``,
-        ``temperature``, ``time``, ``branch``) its heading, or its number counted from 1; None for
-        a quantity that is not to be used. Quantities not named are found by what headings mean.
+        ``temperature``, ``solids_fraction``, ``time``, ``branch``) its heading, or its number
+        counted from 1; None for a quantity that is not to be used. Quantities not named are found
+        by what headings mean.
     geometry : Geometry or str, optional
         Where the fluid was sheared; wins over what the file says. As text it is written as in a
         file: ``concentric-cylinders, inner_radius 12.5 mm, outer_radius 13.56 mm, ...``.
@@ -88,7 +89,9 @@ def read_readings(
     -----
     Numbers without a unit are read in: shear rate 1/s, stress Pa, viscosity Pa.s, speed rpm
     (angular speed rad/s), torque N.m, dial degrees, flow m3/h, velocity m/s, pressure drop Pa,
-    diameter and gap mm, length m, temperature °C, time s; a Caution names these columns.
+    diameter and gap mm, length m, temperature °C, solids fraction %, time s; a Caution names these
+    columns. A solids fraction is by mass or by volume as its unit or heading says (``wt%``,
+    ``vol%``, ``w/w``, ``v/v``, ``mass fraction``); a bare ``%`` leaves that open.
     The lines that a file may state its geometry in are described in `rheo.readings.stated`.
     """
     data, place = file_bytes(path, name)

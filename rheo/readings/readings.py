@@ -16,6 +16,7 @@ from rheo.readings.flow_curve import (
     FloatArray,
     FlowCurve,
     branch_column,
+    check_below,
     excluded_mask,
     positive_column,
 )
@@ -109,6 +110,8 @@ class Readings:
         Dimensions that change from reading to reading [m].
     temperature : array_like, shape (n,), optional
         [K]
+    solids_fraction : array_like, shape (n,), optional
+        Share of solids [-], by volume or by mass as `solids_basis` says.
     time : array_like, shape (n,), optional
         [s]; may be 0 or negative.
     branch : sequence of str, shape (n,), optional
@@ -127,6 +130,8 @@ class Readings:
         [kg/m3], for screening.
     particle_diameter : float, optional
         Largest particle [m], for screening.
+    solids_basis : str
+        ``volume`` or ``mass``; empty where the readings do not say.
     source : str
         Where the readings come from.
     lines : array_like of int, shape (n,), optional
@@ -161,6 +166,7 @@ class Readings:
     tube_length: FloatArray | None = None
     gap: FloatArray | None = None
     temperature: FloatArray | None = None
+    solids_fraction: FloatArray | None = None
     time: FloatArray | None = None
     branch: NDArray[np.str_] | None = None
     block: NDArray[np.str_] | None = None
@@ -170,6 +176,7 @@ class Readings:
     nominal_form: str | None = None
     density: float | None = None
     particle_diameter: float | None = None
+    solids_basis: str = ""
     source: str = ""
     lines: NDArray[np.int64] | None = None
     columns: tuple[ColumnRecord, ...] = ()
@@ -230,7 +237,9 @@ class Readings:
         quantity = BY_KEY[key]
         what = f"{self._place}, {quantity.name}" if self.source else quantity.name
         if key != "time":
-            return positive_column(value, what, quantity.unit)
+            column = positive_column(value, what, quantity.unit)
+            check_below(column, quantity.below, what)
+            return column
         time = np.array(value, dtype=float)
         if time.ndim != 1 or not np.isfinite(time).all():
             raise InputError("every time must be a finite number", what)
@@ -273,7 +282,9 @@ class Readings:
             If the columns do not suffice; the sentence says what is missing.
         """
         rate, stress = conversion.converted(self)
-        return FlowCurve(rate, stress, self.temperature, self.branch, self.excluded)
+        return FlowCurve(
+            rate, stress, self.temperature, self.branch, self.excluded, self.solids_fraction
+        )
 
     def with_excluded(self, indices: ArrayLike) -> Readings:
         """Return the readings with just these left out of fits, by the user's word.

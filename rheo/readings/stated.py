@@ -7,6 +7,7 @@ The keys, each with an example::
     # stress_per_degree: 0.511 Pa
     # nominal_form: bob
     # temperature: 40 °C
+    # solids_fraction: 46 wt%
     # density: 1100 kg/m3
     # particle_diameter: 0.3 mm
 
@@ -29,6 +30,7 @@ from rheo.geometry import Geometry, geometry_record, make_geometry
 from rheo.readings.grid import Grid, Row, shown
 from rheo.readings.headings import convert
 from rheo.readings.quantities import BY_KEY
+from rheo.readings.solids import read_share
 from rheo.units import parse_quantity
 
 FloatArray = NDArray[np.float64]
@@ -42,6 +44,7 @@ _AMOUNTS = {
     "full_scale_torque": "N*m",
     "stress_per_degree": "Pa",
     "temperature": "K",
+    "solids_fraction": "",
     "density": "kg/m^3",
     "particle_diameter": "m",
 }
@@ -64,6 +67,8 @@ class Stated:
         Which conversion the instrument uses; empty when not stated.
     amounts : mapping of str to float
         The other values in SI by key.
+    solids_basis : str
+        ``volume`` or ``mass``; empty when not stated.
     place : str
         Line that states the geometry.
     """
@@ -72,6 +77,7 @@ class Stated:
     dimensions: Mapping[str, float] = field(default_factory=dict)
     nominal_form: str = ""
     amounts: Mapping[str, float] = field(default_factory=dict)
+    solids_basis: str = ""
     place: str = ""
 
     def over(self, earlier: Stated) -> Stated:
@@ -82,6 +88,7 @@ class Stated:
             self.dimensions if own else earlier.dimensions,
             self.nominal_form or earlier.nominal_form,
             {**earlier.amounts, **self.amounts},
+            self.solids_basis or earlier.solids_basis,
             self.place if own else earlier.place,
         )
 
@@ -164,6 +171,8 @@ def read_stated(lines: Sequence[Line], decimal: str) -> tuple[Stated, tuple[Caut
                 new = geometry_from_text(value, line.place, decimal)
             elif key == "nominal_form":
                 new = Stated(nominal_form=value.lower())
+            elif key == "solids_fraction":
+                new = _solids(value, f"{line.place}, {key}", decimal)
             else:
                 new = Stated(amounts={key: _amount(key, value, line.place, decimal)})
         except InputError as error:
@@ -180,6 +189,15 @@ def read_stated(lines: Sequence[Line], decimal: str) -> tuple[Stated, tuple[Caut
             continue
         result = new.over(result)
     return result, tuple(cautions)
+
+
+def _solids(value: str, where: str, decimal: str) -> Stated:
+    share, by = read_share(_with_point(value, decimal), where)
+    if not 0.0 < share < 1.0:
+        raise ReadingsError(
+            f"it is {shown(value)}; it must be above 0 and below 1, such as 25 %", where
+        )
+    return Stated(amounts={"solids_fraction": share}, solids_basis=by)
 
 
 def _amount(key: str, value: str, place: str, decimal: str) -> float:

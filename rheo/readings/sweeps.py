@@ -24,6 +24,8 @@ DRIFT, DRIFT_OVER_SCATTER = 0.03, 2.0
 _LEAST_FOR_DRIFT = 3
 # Sweeps further apart than this [K] are not two branches of one.
 SAME_TEMPERATURE = 2.0
+# Nor are those whose shares of solids differ by more than this share of the largest.
+SAME_SOLIDS = 0.02
 
 
 def curve_or_none(readings: Readings) -> tuple[FloatArray, FloatArray] | None:
@@ -74,6 +76,9 @@ def groups(readings: Readings, by_block: bool = True) -> IntArray:
     if readings.temperature is not None:
         # A bath that drifts stays within a sweep; one that is set anew begins another.
         change[1:] |= np.abs(np.diff(readings.temperature)) > SAME_TEMPERATURE
+    if readings.solids_fraction is not None:
+        share = readings.solids_fraction
+        change[1:] |= np.abs(np.diff(share)) > SAME_SOLIDS * np.max(share)
     return np.cumsum(change)
 
 

@@ -216,10 +216,13 @@ def _numbers(rows: Sequence[Row], column: Column, grid: Grid, decimal: str) -> F
         converted = convert(values, column.quantity, column.unit, grid.place)
     if is_time:
         return converted - (converted[0] if converted.size and abs(converted[0]) > 1e9 else 0.0)
-    bad = ~((converted >= SMALLEST) & (converted <= LARGEST))
+    below = column.quantity.below
+    bad = ~((converted >= SMALLEST) & (converted <= LARGEST) & (converted < below))
     if bad.any():
         index = int(np.argmax(bad))
         sign = "above 0" if converted[index] <= 0 else f"between {SMALLEST:g} and {LARGEST:g} in SI"
+        if np.isfinite(below):
+            sign = f"above 0 and below {below:g}, or {100.0 * below:g} %"
         if column.quantity.key == "temperature":
             sign = "above absolute zero"
         raise ReadingsError(

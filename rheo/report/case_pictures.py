@@ -7,15 +7,17 @@ import numpy as np
 from rheo.case.result import CaseResult
 from rheo.errors import InputError
 from rheo.fitting import Fit
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line.product import FlowCurveSource, Product, interval
 from rheo.line.result import PartResult
 from rheo.line.sizing import Sizing
 from rheo.models import Model
+from rheo.readings.solids import in_words
 from rheo.report import line_pictures as line
 from rheo.report.case_readings import case_points, model_at, temperature_law
 from rheo.report.display import shown, text, unit_label
 from rheo.report.figures import Curve, flow_curve, residuals
-from rheo.report.figures.flow_curve import temperature_groups
+from rheo.report.figures.flow_curve import solids_groups, temperature_groups
 from rheo.report.numbers import number
 from rheo.report.picture import FloatArray, Picture
 from rheo.report.text import one_line
@@ -70,10 +72,13 @@ def flow_curve_picture(
         points.rate,
         points.stress,
         temperature=points.temperature,
+        solids=points.solids,
         branch=points.branch,
         excluded=points.left_out,
         flagged=points.flagged,
-        chosen=_chosen_curves(result, looked_at, points.temperature, grid, system),
+        chosen=_chosen_curves(result, looked_at, points.temperature, grid, system)
+        if points.solids is None
+        else _curves_by_solids(result, looked_at, points.solids, grid),
         rivals=rivals[:_MOST_RIVALS],
         in_line=seen,
         viscosity=viscosity,
@@ -100,6 +105,30 @@ def _chosen_curves(
             low, high = _band(product, kelvin, grid)
         stress = _stress(model_at(result, fit, kelvin), grid)
         found.append(Curve(words_, grid, stress, low, high, style))
+    return found
+
+
+def _curves_by_solids(
+    result: CaseResult, fit: Fit, solids: FloatArray, grid: FloatArray
+) -> list[Curve]:
+    """Return the curve at the solids of each group of readings, and at the product's own."""
+    name, product, fits = capital(fit.record.name), result.product, result.fits
+    assert isinstance(fits, ScaledFits)
+    groups, words = solids_groups(solids)
+    own = product.solids_fraction
+    low, high = _band(product, product.temperature, grid) if fit is result.chosen else (None, None)
+    found = []
+    for group, word in enumerate(words):
+        share = float(solids[groups == group].mean())
+        mine = own is not None and abs(own - share) < 1e-6
+        stress = _stress(fits.at(share, fit.key), grid)
+        band = (low, high) if mine else (None, None)
+        found.append(Curve(f"{name}, {word}", grid, stress, *band, group))
+        own = None if mine else own
+    if own is not None:
+        stress = _stress(model_at(result, fit, None), grid)
+        words_ = f"{name}, {in_words(own)} solids, as pumped"
+        found.append(Curve(words_, grid, stress, low, high, len(words)))
     return found
 
 

@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 
 from rheo.case.load_readings import screened
 from rheo.case.result import CaseResult
+from rheo.case.solids_state import follows_solids
 from rheo.errors import Caution
 from rheo.fitting import Fit
 from rheo.fitting.scaled_fits import ScaledFits
@@ -83,17 +84,26 @@ class CasePoints:
         return found
 
     def _model_stress(self, flowing: NDArray[np.bool_]) -> FloatArray:
-        """Stress of the fitted model at the fitted readings, each at its own temperature [Pa]."""
-        warm = None if self.temperature is None else self.temperature[self.fitted[flowing]]
-        model = model_at(self.result, self.fit, warm)
+        """Stress of the fitted model at the fitted readings, each at its own state [Pa]."""
+        fits = self.result.fits
+        model = self.fit.model
+        if isinstance(fits, ScaledFits) and fits.states is not None:
+            model = fits.at(fits.states[flowing], self.fit.key)
         return np.asarray(model.stress(self.fit.rates[flowing]), dtype=float)
 
     @cached_property
     def temperature(self) -> FloatArray | None:
         """Temperatures [K]; None unless every set has them."""
-        columns = [one.temperature for one in self._sets]
-        known = [column for column in columns if column is not None]
-        return np.concatenate(known) if len(known) == len(columns) else None
+        return self._column("temperature")
+
+    @cached_property
+    def solids(self) -> FloatArray | None:
+        """Solids fractions [-] where the flow curve follows them; else None."""
+        return self._column("solids_fraction") if follows_solids(self.result.fits) else None
+
+    def _column(self, key: str) -> FloatArray | None:
+        columns = [getattr(one, key) for one in self._sets]
+        return None if any(one is None for one in columns) else np.concatenate(columns)
 
     @cached_property
     def branch(self) -> NDArray[np.str_]:
@@ -132,10 +142,17 @@ def temperature_law(result: CaseResult) -> ScalingLaw | None:
 
 
 def model_at(result: CaseResult, fit: Fit, kelvin: FloatArray | float | None) -> Model:
-    """Return the flow curve of a fit at temperatures [K], as far as it knows of temperature."""
-    if kelvin is None or temperature_law(result) is None or not isinstance(result.fits, ScaledFits):
+    """Return the flow curve of a fit at temperatures [K], as far as it knows of temperature.
+
+    Where it follows the solids instead, it is taken at those of the product.
+    """
+    fits = result.fits
+    if not isinstance(fits, ScaledFits):
         return fit.model
-    return result.fits.at(kelvin, fit.key)
+    if follows_solids(fits):
+        solids = result.product.solids_fraction
+        return fit.model if solids is None else fits.at(solids, fit.key)
+    return fit.model if kelvin is None else fits.at(kelvin, fit.key)
 
 
 def case_points(result: CaseResult, fit: Fit | None = None) -> CasePoints:

@@ -7,6 +7,8 @@ import datetime
 import numpy as np
 
 from rheo.case.result import CaseResult
+from rheo.case.solids_state import solids_basis
+from rheo.readings.solids import in_words
 from rheo.report.case_pictures import (
     currency,
     flow_curve_picture,
@@ -120,6 +122,9 @@ def _readings(result: CaseResult, system: str) -> Section:
         ("Density", f"{exact(float(product.density))} kg/m³"),
         ("Temperature at the head of the line", f"{result.product.temperature - 273.15:.4g} °C"),
     ]
+    solids = result.product.solids_fraction
+    if solids is not None:
+        facts.append(("Solids", in_words(solids, solids_basis(result.case, result.fitted))))
     blocks: list[Block] = [Facts(tuple(facts))]
     points = case_points(result)
     start = 0

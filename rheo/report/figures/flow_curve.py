@@ -16,6 +16,8 @@ from rheo.report.picture import array as as_array
 BRANCH_WORDS = {"up": "rising", "down": "falling", "hold": "held", "": ""}
 # Temperatures closer than this are drawn as one series [K].
 _TEMPERATURE_STEP = 1.0
+# Likewise the solids fraction [-].
+_SOLIDS_STEP = 0.002
 
 
 @dataclass(frozen=True, eq=False)
@@ -47,6 +49,7 @@ def flow_curve(
     stress: ArrayLike,
     *,
     temperature: ArrayLike | None = None,
+    solids: ArrayLike | None = None,
     branch: Sequence[str] | NDArray[np.str_] | None = None,
     excluded: ArrayLike | None = None,
     flagged: ArrayLike | None = None,
@@ -65,12 +68,14 @@ def flow_curve(
         Readings: shear rate [1/s] and stress [Pa].
     temperature : array_like, shape (n,), optional
         [K]; readings within 1 K share a colour.
+    solids : array_like, shape (n,), optional
+        Solids fraction [-]; tells points apart instead of the temperature.
     branch : sequence of str, shape (n,), optional
         ``up``, ``down``, ``hold`` or an empty text; each has its own marker.
     excluded, flagged : array_like of bool, shape (n,), optional
         Drawn hollow, and drawn with a ring.
     chosen : sequence of Curve
-        The chosen model, one a temperature, with its band.
+        The chosen model, one a temperature or solids fraction, with its band.
     rivals : sequence of Curve
         The others, drawn thin.
     in_line : (float, float), optional
@@ -109,8 +114,13 @@ def flow_curve(
     for curve in chosen:
         line = height(curve.rate, curve.stress)
         marks.append(Line(curve.rate, line, curve.name, curve.style, width=2.6, dash=0))
+    groups = (
+        temperature_groups(temperature, rate.size, system)
+        if solids is None
+        else solids_groups(solids)
+    )
     marks += _reading_marks(
-        rate, height(rate, stress), temperature, branch, excluded, flagged, quantity, system
+        rate, height(rate, stress), groups, branch, excluded, flagged, quantity, system
     )
     name = "Apparent viscosity η" if viscosity else "Shear stress τ"
     return Picture(
@@ -135,7 +145,7 @@ def _not_a_line(ends: tuple[float, float], log: bool) -> tuple[float, float]:
 def _reading_marks(
     rate: FloatArray,
     height: FloatArray,
-    temperature: ArrayLike | None,
+    grouped: tuple[NDArray[np.int_], list[str]],
     branch: Sequence[str] | NDArray[np.str_] | None,
     excluded: ArrayLike | None,
     flagged: ArrayLike | None,
@@ -146,7 +156,7 @@ def _reading_marks(
     out = np.zeros(count, dtype=bool) if excluded is None else np.asarray(excluded, dtype=bool)
     ringed = np.zeros(count, dtype=bool) if flagged is None else np.asarray(flagged, dtype=bool)
     branches = np.array([""] * count if branch is None else branch, dtype=np.str_)
-    groups, group_names = temperature_groups(temperature, count, system)
+    groups, group_names = grouped
     marks: list[Mark] = []
     kinds = list(dict.fromkeys(branches.tolist()))
     for number, group_name in enumerate(group_names):
@@ -193,6 +203,19 @@ def temperature_groups(
     unit = unit_label("temperature", system)
     names = [
         f"{number_text(float(shown(kelvin[groups == n].mean(), 'temperature', system)))} {unit}"
+        for n in range(int(groups.max(initial=0)) + 1)
+    ]
+    return groups, names
+
+
+def solids_groups(solids: ArrayLike) -> tuple[NDArray[np.int_], list[str]]:
+    """Return the group number of each reading by its solids, and the name of each group."""
+    share = as_array(solids)
+    order = np.argsort(share, kind="stable")
+    groups = np.empty(share.size, dtype=int)
+    groups[order] = np.cumsum(np.diff(share[order], prepend=share[order[:1]]) > _SOLIDS_STEP)
+    names = [
+        f"{number_text(100.0 * float(share[groups == n].mean()))} % solids"
         for n in range(int(groups.max(initial=0)) + 1)
     ]
     return groups, names

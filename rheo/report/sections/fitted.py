@@ -48,7 +48,10 @@ def parameter_table(fit: Fit, law: ScalingLaw | None = None) -> Table:
     """Return the parameters of a fit with their intervals, at the reference of a law."""
     at = ""
     if law is not None:
-        at = f"; values at {exact(round(law.reference, 2))} {law.unit}, {law.equation}"
+        where = f"{exact(round(law.reference, 2))} {law.unit}"
+        if law.unit == "-":
+            where = f"{exact(round(100.0 * law.reference, 4))} %"
+        at = f"; values at {where}, {law.equation}"
     words = {one.key: one.description for one in fit.record.parameters}
     rows = tuple(
         (

@@ -31,9 +31,10 @@ def rows_of_case(result: CaseResult, sizing: Sizing | None) -> tuple[Row, ...]:
     rows: list[Row] = []
     law = getattr(result.fits, "law", None)
     if isinstance(law, ScalingLaw) and isinstance(result.fits, ScaledFits):
-        low, high = (exact(round(end, 2)) for end in result.fits.range)
+        low, high = (exact(round(end, 4 if law.unit == "-" else 2)) for end in result.fits.range)
         words = f"{law.equation}; indices are shared"
-        span = f"Between the {low} and {high} {law.unit} of the readings"
+        unit = "" if law.unit == "-" else f" {law.unit}"
+        span = f"Between the {low} and {high}{unit} of the readings"
         rows.append((f"Flow curve over {law.state}", words, law.source, span))
     rows += _fittings(result)
     if result.next_readings is not None:

@@ -131,6 +131,10 @@ def _table(
     columns.append(_column("Shear stress", curve.stress, "stress", system))
     if readings.temperature is not None:
         columns.append(_column("Temperature", readings.temperature, "temperature", system))
+    if readings.solids_fraction is not None:
+        by = f" by {readings.solids_basis}" if readings.solids_basis else ""
+        share = [number(100.0 * value, 4) for value in readings.solids_fraction.tolist()]
+        columns.append((f"Solids [%{by}]", share, True))
     if readings.branch is not None:
         names = [BRANCH_WORDS.get(str(word), str(word)) for word in readings.branch]
         columns.append(("Branch", names, False))

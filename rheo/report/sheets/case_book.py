@@ -5,11 +5,12 @@ from __future__ import annotations
 import datetime
 
 from rheo.case.result import CaseResult
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line.cost import Costs
 from rheo.report.case_pictures import sizing_of
 from rheo.report.case_readings import CasePoints, case_points, temperature_law
 from rheo.report.display import shown
-from rheo.report.figures.flow_curve import temperature_groups
+from rheo.report.figures.flow_curve import solids_groups, temperature_groups
 from rheo.report.sections.inputs import versions
 from rheo.report.sheets.about_sheet import about_sheet
 from rheo.report.sheets.book import Book
@@ -77,10 +78,23 @@ def _costs(result: CaseResult) -> Costs | None:
 
 
 def _fitted_curves(result: CaseResult, points: CasePoints) -> list[FittedCurve]:
-    """Return the chosen flow curve, one for each temperature of the readings that were fitted."""
+    """Return the chosen flow curve, one for each temperature or solids fraction fitted."""
     name = capital(result.chosen.record.name)
     numbers, product = points.fitted, result.product
     rate, stress = points.rate[numbers], points.stress[numbers]
+    if points.solids is not None and isinstance(result.fits, ScaledFits):
+        share = points.solids[numbers]
+        groups, words_ = solids_groups(share)
+        return [
+            FittedCurve(
+                f"{name} at {word}",
+                result.fits.at(float(share[groups == n].mean()), result.chosen.key),
+                numbers[groups == n],
+                rate[groups == n],
+                stress[groups == n],
+            )
+            for n, word in enumerate(words_)
+        ]
     if points.temperature is None or temperature_law(result) is None:
         return [FittedCurve(name, result.model, numbers, rate, stress)]
     kelvin = points.temperature[numbers]

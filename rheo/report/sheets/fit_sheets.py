@@ -31,6 +31,7 @@ _RAW: tuple[tuple[str, str], ...] = (
     ("tube_length", "Tube length [m]"),
     ("gap", "Gap [m]"),
     ("temperature", "Temperature [K]"),
+    ("solids_fraction", "Solids fraction [-]"),
     ("time", "Time [s]"),
 )
 _GRID = 61
