@@ -132,8 +132,8 @@ def fitted_of(case: Case, files: Files) -> Outcome:
     document = case.document()
     fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
     # All that `fit_models` depends on; density and particles are for screening only.
-    warm = document["product"].get("temperature")
-    fits_key = digest(document["readings"], _file_digests(files), fit, warm)
+    state = [document["product"].get(key) for key in ("temperature", "solids_fraction")]
+    fits_key = digest(document["readings"], _file_digests(files), fit, state)
     fits: Outcome = _fits(fits_key, case, sets.value)
     if fits.value is None:
         return fits

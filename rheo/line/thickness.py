@@ -98,7 +98,7 @@ def solids_factor(
 
 
 def density_with_solids(
-    density: float, before: float, after: float, solids_density: float
+    density: float, before: float, after: float, solids_density: float, by: str = "volume"
 ) -> float:
     """Return the density of a suspension with another content of solids [kg/m3].
 
@@ -107,9 +107,11 @@ def density_with_solids(
     density : float
         Of the suspension as it is [kg/m3].
     before, after : float
-        Volume fractions of solids [-].
+        Fractions of solids [-].
     solids_density : float
         Of the solids themselves [kg/m3].
+    by : str
+        ``volume`` or ``mass``: what they are fractions of.
 
     Returns
     -------
@@ -119,8 +121,17 @@ def density_with_solids(
     Raises
     ------
     InputError
-        If the liquid would come out without weight.
+        If the liquid would come out without weight, or without volume.
     """
+    if by == "mass":
+        liquid_volume = (1.0 / density - before / solids_density) / (1.0 - before)
+        if liquid_volume <= 0:
+            raise InputError(
+                f"{before:g} of the mass as solids of {solids_density:g} kg/m3 take more room than "
+                f"the whole product of {density:g} kg/m3",
+                "solids",
+            )
+        return 1.0 / (after / solids_density + (1.0 - after) * liquid_volume)
     liquid = (density - before * solids_density) / (1.0 - before)
     if liquid <= 0:
         raise InputError(

@@ -9,6 +9,7 @@ import rheo
 from rheo.case import case_from_text, case_text
 from rheo.case.embed import embedded
 from rheo.case.solids_state import solids_basis
+from rheo.case.what_if import SolidsChange, WhatIf, what_if
 from rheo.errors import CaseError, InputError
 from rheo.report.case_pictures import flow_curve_picture
 from rheo.report.case_readings import case_points
@@ -251,3 +252,39 @@ def test_note_and_figure_show_each_content_and_the_products():
     assert "('Solids', '45 % by mass')" in note
     assert "Solids [% by mass]" in note
     assert "Flow curve over solids fraction" in note
+
+
+def test_what_if_solids_follow_the_fitted_law():
+    result = rheo.run_case(case())
+    other = what_if(result, WhatIf(solids=SolidsChange(None, 0.49, density=2650.0)))
+    assert other.product.solids_fraction.written == "49 % by mass"
+    assert other.product.stress_factor is None
+    # By hand: 1 kg at 1400 kg/m3 with 45 % of 2650 kg/m3; volumes add up.
+    liquid = (1 / 1400.0 - 0.45 / 2650.0) / 0.55
+    assert float(other.product.density) == pytest.approx(
+        1 / (0.49 / 2650.0 + 0.51 * liquid), rel=1e-5
+    )
+    found = rheo.run_case(other)
+    assert found.model.stress(RATES) == pytest.approx(stress(0.49), rel=1e-6)
+    assert "product-not-as-measured" not in codes(found)
+    thick = rheo.run_case(what_if(result, WhatIf(solids=SolidsChange(None, 0.55))))
+    assert "outside-measured-fraction" in codes(thick)
+    with pytest.raises(InputError, match=r"solids: the solids fraction is 1\.2; it must be above 0"):
+        what_if(result, WhatIf(solids=SolidsChange(None, 1.2)))
+    with pytest.raises(InputError, match="take more room than the whole product"):
+        what_if(result, WhatIf(solids=SolidsChange(None, 0.49, density=500.0)))
+
+
+def test_what_if_moves_a_static_yield_stress_with_the_curve():
+    result = rheo.run_case(case('solids_fraction = "45 wt%", static_yield_stress = "40 Pa"'))
+    other = what_if(result, WhatIf(solids=SolidsChange(None, 0.49)))
+    # A power law yields at nothing: the least measured stress stands for it.
+    assert float(other.product.static_yield_stress) == pytest.approx(
+        40.0 * np.exp(SLOPE * 0.04), rel=1e-5
+    )
+
+
+def test_what_if_without_a_fitted_law_asks_what_the_readings_held():
+    result = rheo.run_case(case(table=rows(0.45)))
+    with pytest.raises(InputError, match="give the solids of the readings too"):
+        what_if(result, WhatIf(solids=SolidsChange(None, 0.3)))

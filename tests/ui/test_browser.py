@@ -226,7 +226,7 @@ def test_the_case_survives_going_away_and_back(visit: Callable[..., Browser]) ->
     browser = visit(1280)
     browser.open()
     page = browser.page
-    page.get_by_text("Product, sweep and temperature").click()
+    page.get_by_text("Product, sweep, temperature and solids").click()
     field = page.get_by_role("textbox", name="Density")
     field.fill("1300 kg/m3")
     field.press("Enter")
@@ -240,7 +240,7 @@ def test_the_case_survives_going_away_and_back(visit: Callable[..., Browser]) ->
     page.get_by_role("heading", name="Readings", exact=True).wait_for()
     browser.settle()
     assert browser.strip() == before
-    page.get_by_text("Product, sweep and temperature").click()
+    page.get_by_text("Product, sweep, temperature and solids").click()
     assert page.get_by_role("textbox", name="Density").input_value() == "1300 kg/m³"
     page.reload()
     browser.settle()

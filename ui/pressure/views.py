@@ -33,6 +33,8 @@ from ui.shear_rates import line_rates
 _UNDER_THE_PRESSURE = (
     *("outside-measured-range", "measured-range-unknown"),
     *("temperature-not-in-model", "outside-temperature-range", "temperature-of-readings"),
+    *("outside-measured-fraction", "solids-of-readings", "solids-not-in-model"),
+    "solids-not-given",
     *("product-not-as-measured", "equipment-loss-as-given", "viscous-heating"),
     *("transition-flow", "no-turbulent-solution", "outside-method-range", "friction-method"),
     *("roughness-rule", "very-rough", "forced-regime"),

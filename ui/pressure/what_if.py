@@ -9,9 +9,12 @@ import streamlit as st
 
 from rheo.case import Case, CaseResult
 from rheo.case.comparisons import central_operating_point
+from rheo.case.solids_state import follows_solids, solids_basis
 from rheo.case.what_if import SolidsChange, WhatIf, what_if
 from rheo.errors import InputError
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line.operating import OperatingPoint
+from rheo.readings.solids import in_words, read_share
 from rheo.report import display
 from rheo.units import parse_quantity
 from ui import cautions, guard, results, state, table, words
@@ -37,7 +40,7 @@ class Asked:
     complaint: str = ""
 
 
-def asked(values: dict[str, Any], system: str) -> Asked:
+def asked(values: dict[str, Any], system: str, fitted_by: str | None = None) -> Asked:
     """Return what the values of the controls ask for.
 
     Parameters
@@ -47,12 +50,15 @@ def asked(values: dict[str, Any], system: str) -> Asked:
         ``thicker`` in percent, ``warmer`` as typed, in degrees of the unit system.
     system : str
         Unit system.
+    fitted_by : str, optional
+        Where the fit follows the solids, so that ``before`` is not asked for: by what their
+        fractions are, ``volume``, ``mass`` or an empty text.
     """
 
     def text(name: str) -> str:
         return str(values.get(name) or "").strip()
 
-    if bool(text("before")) != bool(text("after")):
+    if fitted_by is None and bool(text("before")) != bool(text("after")):
         return Asked(None, "Solids: give both, what the readings had and what there might be.")
     try:
         flow = with_unit(text("flow"), "flow", system) if text("flow") else None
@@ -64,24 +70,29 @@ def asked(values: dict[str, Any], system: str) -> Asked:
                 "warmer or colder",
             )
         solids = None
-        if text("before"):
-            share = [
-                parse_quantity(
-                    text(name) if "%" in text(name) else f"{text(name)} %",
-                    "dimensionless",
-                    "solids",
-                )
-                for name in ("before", "after")
-            ]
+        if text("after"):
+            by = "volume" if fitted_by is None else fitted_by
+            before = _share(text("before"), by) if fitted_by is None else None
             density = None
             if text("density"):
                 density = parse_quantity(
                     with_unit(text("density"), "density", system), "kg/m^3", "density of the solids"
                 )
-            solids = SolidsChange(share[0], share[1], density)
+            solids = SolidsChange(before, _share(text("after"), by), density)
     except InputError as error:
         return Asked(None, state.sentence(error))
     return Asked(WhatIf(flow, 1.0 + float(values.get("thicker") or 0) / 100.0, warmer, solids))
+
+
+def _share(typed: str, by: str) -> float:
+    """Return a share [-] of a number in percent, or of one with its unit such as ``46 wt%``."""
+    try:
+        return float(typed) / 100.0
+    except ValueError:
+        share, said = read_share(typed, "solids")
+    if said and by and said != by:
+        raise InputError(f"'{typed[:60]}' is by {said}; give it by {by}", "solids")
+    return share
 
 
 @st.fragment
@@ -93,7 +104,8 @@ def show(result: CaseResult) -> None:
         st.markdown("**What if** the flow, the batch or the temperature were otherwise?")
         with st.container(key="pairs_what_if"):
             _controls(result)
-        wanted = asked(state.what_if(), state.system())
+        by = solids_basis(result.case, result.fitted) if follows_solids(result.fits) else None
+        wanted = asked(state.what_if(), state.system(), by)
         if wanted.change is None:
             cautions.complaint(wanted.complaint)
         elif not wanted.change.changes_nothing:
@@ -126,8 +138,15 @@ def _controls(result: CaseResult) -> None:
         "Added to every temperature of the product along the line.",
     )
     with columns[3], st.popover("Solids", icon=":material/grain:", width="stretch"):
-        _entry(st, "before", "Solids in the readings [% by volume]", "such as 20")
-        _entry(st, "after", "What if there were [% by volume]", "such as 25")
+        known = follows_solids(result.fits)
+        if known:
+            now = in_words(float(result.product.solids_fraction or 0.0))
+            by = solids_basis(result.case, result.fitted)
+            label = f"Solids [% by {by}]" if by else "Solids [%]"
+            _entry(st, "after", label, f"now {now}")
+        else:
+            _entry(st, "before", "Solids in the readings [% by volume]", "such as 20")
+            _entry(st, "after", "What if there were [% by volume]", "such as 25")
         _entry(
             st,
             "density",
@@ -135,9 +154,20 @@ def _controls(result: CaseResult) -> None:
             display.unit_label("density", system),
         )
         st.caption(
-            "Thickened as spheres without attraction (Krieger and Dougherty 1959). Flocculated "
-            "and fine slurries thicken faster: measure them."
+            _by_the_law(result)
+            if known
+            else "Thickened as spheres without attraction (Krieger and Dougherty 1959). "
+            "Flocculated and fine slurries thicken faster: measure them."
         )
+
+
+def _by_the_law(result: CaseResult) -> str:
+    fits = result.fits
+    low, high = fits.range if isinstance(fits, ScaledFits) else (0.0, 0.0)
+    return (
+        f"By the flow curves fitted to the readings, taken at {in_words(low)} to "
+        f"{in_words(high)} of solids."
+    )
 
 
 def _entry(place: Any, name: str, label: str, placeholder: str, help: str | None = None) -> None:

@@ -14,6 +14,7 @@ import streamlit as st
 
 from rheo.case.load_readings import screened
 from rheo.errors import Caution, InputError
+from rheo.fitting.any_state import at_several_solids
 from rheo.readings import FlowCurve, Readings
 from rheo.report import display
 from rheo.report.figures import flow_curve
@@ -56,6 +57,7 @@ def show_picture(readings: Readings) -> None:
         curve.rate,
         curve.stress,
         temperature=curve.temperature,
+        solids=curve.solids_fraction if at_several_solids(readings) else None,
         branch=curve.branch,
         excluded=excluded,
         flagged=flagged,
@@ -180,6 +182,9 @@ def _rows(readings: Readings) -> dict[str, list[Any]]:
     if readings.temperature is not None:
         unit = display.unit_label("temperature", system)
         rows[f"T [{unit}]"] = display.shown(readings.temperature, "temperature", system).tolist()
+    if readings.solids_fraction is not None:
+        by = f" by {readings.solids_basis}" if readings.solids_basis else ""
+        rows[f"Solids [%{by}]"] = (100.0 * readings.solids_fraction).tolist()
     if readings.branch is not None:
         rows["Branch"] = [str(word) for word in readings.branch]
     for key, name, quantity in _COLUMNS:

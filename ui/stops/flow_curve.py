@@ -11,6 +11,12 @@ from rheo.report.words import capital
 from ui import answer_strip, blocks, cautions, pictures, state, style, walk, words
 from ui.flow_curve import compare, how, measure, ranking
 
+# Cautions of a flow curve used at another temperature or with other solids than it was measured.
+_OTHER_STATE = (
+    *("temperature-of-readings", "solids-of-readings", "solids-not-in-model"),
+    *("solids-not-given", "outside-measured-fraction"),
+)
+
 
 def show() -> None:
     """Draw the stop."""
@@ -49,7 +55,7 @@ def _show_result(result: CaseResult) -> None:
             compare.show_return(result)
         cautions.show(looked_at.cautions)
         cautions.show(result.fits.data_cautions)
-        cautions.show(cautions.of(result.cautions, codes=("temperature-of-readings",)))
+        cautions.show(cautions.of(result.cautions, codes=_OTHER_STATE))
     ranking.show(result.fits, result.chosen, ranking.pressures_of(result))
     with st.expander("Parameters, with their intervals", expanded=True):
         blocks.show(parameter_table(looked_at), "parameters")

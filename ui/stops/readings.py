@@ -5,7 +5,7 @@ from __future__ import annotations
 import streamlit as st
 
 from ui import answer_strip, cautions, opening, state, style, units_switch, walk, words
-from ui.readings import geometry, mapping, points, sets, source
+from ui.readings import geometry, mapping, points, sets, solids, source
 
 
 def show() -> None:
@@ -67,7 +67,7 @@ def _show_readings() -> None:
         geometry.show()
     with st.expander("Columns and units, as understood"):
         mapping.show()
-    with st.expander("Product, sweep and temperature"):
+    with st.expander("Product, sweep, temperature and solids"):
         _show_product()
 
 
@@ -112,6 +112,18 @@ def _show_product() -> None:
                 "temperature",
                 optional=True,
                 placeholder="not known",
+            )
+    columns = st.columns(3)
+    with columns[0]:
+        solids.entry(
+            "Solids of the product", ("product", "solids_fraction"), "that of the readings"
+        )
+    with columns[1]:
+        if readings is None or not any(
+            column.quantity == "solids_fraction" for column in readings.columns
+        ):
+            solids.entry(
+                "Solids of these readings", ("readings", number, "solids_fraction"), "not known"
             )
 
 
