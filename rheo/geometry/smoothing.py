@@ -118,7 +118,8 @@ def smooth_log(x: ArrayLike, y: ArrayLike, largest_degree: int = LARGEST_DEGREE)
     for degree in range(1, max(1, min(largest_degree, different - 4)) + 1):
         curve = _fit(x, y, degree)
         grid = np.linspace(curve.low, curve.high, 257)
-        if not np.all(curve.slope(grid) > 0):
+        # A rise that is rounding is none: the rate found from its slope would be without bound.
+        if not np.all(curve.slope(grid) * (curve.high - curve.low) > _ROUNDING):
             continue
         count, free = x.size, degree + 2
         variance = max(float(np.mean((y - curve.value(x)) ** 2)), _ROUNDING**2)

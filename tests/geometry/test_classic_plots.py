@@ -60,5 +60,11 @@ def test_one_size_is_refused() -> None:
         mooney_lines([0.002, 0.002], [30.0, 30.0])
     with pytest.raises(InputError, match="there is only one length over diameter"):
         bagley_lines([10.0], [1e5])
+    # Two diameters that differ in the fifth digit are one diameter measured twice; a tenth of a
+    # per cent makes them two, whatever the unit they are written in.
+    for size in (2e-3, 2.0, 2e3):
+        with pytest.raises(InputError, match="there is only one diameter"):
+            mooney_lines([size, 1.00001 * size], [30.0, 30.0])
+        assert np.isfinite(mooney_lines([size, 1.001 * size], [30.0, 30.0]).rate)
     with pytest.raises(InputError, match="there is only one gap"):
         gap_lines([[0.001, 0.002], [0.001, 0.001]], [[30.0, 20.0], [30.0, 30.0]])

@@ -63,7 +63,7 @@ def test_the_sentence() -> None:
         f"on your cup and bob that is {rpm:.4g} rpm."
     )
     many = convert(oil, PIPE, [1e-3, 2e-3], {})
-    with pytest.raises(InputError, match="a sentence needs a single setting"):
+    with pytest.raises(InputError, match="^a sentence needs a single setting and a single flow"):
         sentence(many)
 
 
@@ -79,8 +79,15 @@ def test_plain_data_has_si_names() -> None:
     data = convert(example("bingham"), PIPE, 1e-3, [TARGETS["the cone"]]).as_dict()
     assert data["source"]["geometry"] == "tube"
     assert data["source"]["flow"] == 1e-3
-    assert {"pressure_drop", "rate", "stress", "viscosity", "nominal_rate"} < set(data["source"])
-    assert {"angular_speed", "torque"} < set(data["targets"]["cone-plate"])
+    everywhere = {"geometry", "name", "place", "rate", "stress", "viscosity", "cautions"}
+    everywhere |= {"nominal_rate", "nominal_stress"}
+    assert set(data["source"]) == {"flow", "pressure_drop"} | everywhere
+    assert set(data["targets"]["cone-plate"]) == {"angular_speed", "torque"} | everywhere
+    assert (data["source"]["name"], data["source"]["place"]) == ("round tube", "wall")
+    # A Newtonian conversion of a tube: 32Q/(πD³), and the stress that the drop stands for.
+    nominal_rate = 32.0 * 1e-3 / (np.pi * 0.0703**3)
+    assert data["source"]["nominal_rate"] == pytest.approx(nominal_rate, rel=1e-12)
+    assert data["source"]["nominal_stress"] == pytest.approx(data["source"]["stress"], rel=1e-12)
     assert data["source"]["cautions"] == []
 
 
@@ -96,6 +103,12 @@ def test_at_rest() -> None:
     assert float(still.rate) == 0.0
     assert np.isposinf(still.viscosity)
     assert still.as_dict()["viscosity"] is None
+    assert float(still.stress) == pytest.approx(float(paste.yield_stress), rel=1e-14)
+    half = shear_point(paste, PIPE, [0.0, np.nan, 1e-3])
+    np.testing.assert_array_equal(np.isnan(half.viscosity), [False, True, False])
+    assert np.isposinf(half.viscosity[0])
+    assert half.viscosity[2] == pytest.approx(half.stress[2] / half.rate[2], rel=1e-14)
+    assert half.as_dict()["viscosity"][:2] == [None, None]
     with pytest.raises(InputError, match="geometry tube: the fluid is not sheared at this flow Q"):
         convert(paste, PIPE, 0.0, TARGETS)
 

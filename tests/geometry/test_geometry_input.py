@@ -8,6 +8,7 @@ import types
 import numpy as np
 import pytest
 from flow_curves import example
+from plain_words import check_caution, odd_words
 
 import rheo
 from rheo import InputError
@@ -84,6 +85,21 @@ def test_what_is_refused(key: str, dimensions: dict[str, object], sentence: str)
     with pytest.raises(InputError) as caught:
         make_geometry(key, **dimensions)
     assert sentence in str(caught.value)
+    assert odd_words(caught.value.sentence) == []
+
+
+@pytest.mark.parametrize(
+    ("key", "dimensions"),
+    [
+        ("parallel-plate", {"radius": 0.25, "gap": 0.125}),
+        ("slot", {"half_gap": 0.125, "width": 0.5, "length": 1.0}),
+        ("tube", {"diameter": 1e-6, "length": 1.0}),
+        ("tube", {"diameter": 100.0, "length": 1.0}),
+    ],
+)
+def test_the_ends_of_what_is_allowed_are_allowed(key: str, dimensions: dict[str, float]) -> None:
+    geometry = make_geometry(key, **dimensions)
+    assert {name: float(geometry.dimensions[name]) for name in dimensions} == dimensions
 
 
 def test_unknown_geometry() -> None:
@@ -113,8 +129,9 @@ def test_unknown_forms() -> None:
     cylinders = make_geometry("six-speed")
     with pytest.raises(InputError, match="unknown nominal form 'cup'; it has bob, representative"):
         cylinders.nominal(1.0, 1.0, "cup")
-    with pytest.raises(InputError, match="unknown inverse form 'x'; it has exact, power-law"):
+    with pytest.raises(InputError, match="unknown inverse form 'x'; it has exact, power") as caught:
         cylinders.flow_points([1.0, 2.0, 3.0], [1.0, 2.0, 3.0], "x")
+    assert caught.value.place == "geometry six-speed"
 
 
 def test_replaced_dimensions_are_checked_again() -> None:
@@ -132,8 +149,15 @@ def test_records_tell_menus_all_they_need(key: str) -> None:
     assert described["key"] == key
     for name in ("name", "place", "validity", "source", "nominal_note"):
         assert described[name].strip()
-    assert described["setting"]["unit"] in {"rad/s", "m^3/s"}
-    assert described["reading"]["unit"] in {"N*m", "Pa"}
+    assert described["setting"] in (
+        {"key": "angular_speed", "name": "angular speed", "symbol": "ω", "unit": "rad/s"},
+        {"key": "flow", "name": "flow", "symbol": "Q", "unit": "m^3/s"},
+    )
+    assert described["reading"] in (
+        {"key": "torque", "name": "torque", "symbol": "M", "unit": "N*m"},
+        {"key": "pressure_drop", "name": "pressure drop", "symbol": "ΔP", "unit": "Pa"},
+    )
+    assert odd_words(" ".join(str(value) for value in described.values())) == []
     for form in described["nominal_forms"]:
         assert form in described["nominal_note"]
     assert described["inverse_forms"]
@@ -150,15 +174,28 @@ def test_cautions() -> None:
     (caution,) = vane.cautions(oil, 1.0)
     assert caution.code == "vane-not-shear-thinning"
     assert "slope of up to 1 here" in caution.sentence
+    check_caution(caution, "vane")
     assert vane.cautions(paste, 1.0) == ()
     # At rest it is the yield stress that is measured, whatever the curve above it.
     assert vane.cautions(example("bingham"), 0.0) == ()
+    assert vane.cautions(oil, 0.0) == ()
+    # A slow vane in an oil is as wrong as a fast one.
+    (slow,) = vane.cautions(oil, 1e-3)
+    assert slow.sentence == caution.sentence
+    (mixed,) = vane.cautions(oil, [0.0, 1.0])
+    assert mixed.sentence == caution.sentence
     (caution,) = make_geometry("cone-plate", radius=0.02, angle=0.1).cautions(oil, 1.0)
     assert caution.code == "cone-angle"
     assert "5.7°" in caution.sentence
+    check_caution(caution, "cone and plate")
     assert make_geometry("cone-plate", radius=0.02, angle=np.radians(4)).cautions(oil, 1.0) == ()
     (caution,) = make_geometry("slot", half_gap=0.01, width=0.1, length=1.0).cautions(oil, 1e-4)
     assert caution.code == "narrow-slot"
     assert "5 times as wide as its gap; its sides add about 13 %" in caution.sentence
+    check_caution(caution, "slot")
+    assert "Use a slot 10 times as wide as its gap" in caution.advice
+    # At the aspect that is advised there is nothing left to advise.
+    wide = make_geometry("slot", half_gap=0.0625, width=1.25, length=1.0)
+    assert wide.cautions(oil, 1e-4) == ()
     assert make_geometry("slot", half_gap=0.01, width=0.3, length=1.0).cautions(oil, 1e-4) == ()
     assert make_geometry("six-speed").cautions(oil, 1.0) == ()

@@ -45,6 +45,12 @@ def test_dial_with_other_ends_gives_the_same_stress() -> None:
     geometry = make_geometry("six-speed", end_factor=1.064)
     torque = six_speed.torque_from_dial(100.0, end_factor=1.064)
     assert float(geometry.nominal(1.0, torque)[1]) == pytest.approx(51.1, rel=1e-14)
+    dial = six_speed.dial_from_torque(torque, end_factor=1.064)
+    assert float(dial) == pytest.approx(100.0, rel=1e-14)
+    # A bob of other radius and length takes another torque for the same stress.
+    torque = six_speed.torque_from_dial(100.0, 0.01, 0.05)
+    assert float(torque) == pytest.approx(51.1 * 2.0 * np.pi * 0.01**2 * 0.05, rel=1e-14)
+    assert float(six_speed.dial_from_torque(torque, 0.01, 0.05)) == pytest.approx(100.0, rel=1e-14)
 
 
 def test_plastic_viscosity_from_two_dials() -> None:

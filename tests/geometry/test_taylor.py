@@ -7,6 +7,7 @@ import pytest
 from flow_curves import KEYS, example
 from hypothesis import given, settings
 from hypothesis import strategies as st
+from plain_words import check_caution
 
 import rheo
 from rheo.geometry import make_geometry
@@ -71,6 +72,7 @@ def test_cautions_name_the_readings() -> None:
     assert caution.code == "taylor-vortices"
     assert caution.points == (2, 3)
     assert "2 of 4 readings" in caution.sentence
+    check_caution(caution, CUP.record.name)
     assert taylor_cautions(CUP, 1.0, speeds, 998.0) == ()
 
 
@@ -80,3 +82,22 @@ def test_an_outer_cylinder_that_turns_is_stable() -> None:
     assert np.isposinf(critical_speed(mud, water, 998.0))
     assert taylor_cautions(mud, 1e-3, [60.0], 998.0) == ()
     np.testing.assert_array_equal(taylor_ratio(mud, 1e-3, [60.0, 70.0], 998.0), [0.0, 0.0])
+
+
+@pytest.mark.parametrize("place", [CUP, make_geometry("six-speed")])
+def test_arrays_of_fluids_speeds_and_cups_broadcast(place: rheo.Geometry) -> None:
+    draws = rheo.model("power-law", consistency=[[4.0], [5.0]], flow_index=0.5)
+    assert critical_speed(place, draws, 1000.0).shape == (2, 1)
+    assert critical_speed(place, draws, [900.0, 1000.0, 1100.0]).shape == (2, 3)
+    many = place.replaced(length=[0.03, 0.04, 0.05])
+    assert critical_speed(many, example("newtonian"), 1000.0).shape == (3,)
+    assert critical_speed(many, draws, 1000.0).shape == (2, 3)
+    assert taylor_ratio(place, [[1e-3], [2e-3]], [1.0, 2.0, 3.0], 1000.0).shape == (2, 3)
+    assert taylor_ratio(place, 1e-3, [1.0, 2.0, 3.0], 1000.0).shape == (3,)
+    assert taylor_ratio(place, [1e-3, 2e-3], 1.0, 1000.0).shape == (2,)
+    assert np.shape(taylor_ratio(many, 1e-3, [[1.0], [2.0]], 1000.0))[:1] == (2,)
+
+
+def test_outer_rotor_of_many_lengths_has_one_ratio_each() -> None:
+    mud = make_geometry("six-speed", length=[0.03, 0.038])
+    assert taylor_ratio(mud, 1e-3, 60.0, 998.0).shape == (2,)

@@ -1,0 +1,227 @@
+"""Mutation test of the formulas: do the tests notice when the code is changed a little?
+
+    pip install mutmut==3.8.1
+    python tests/mutation/run_mutmut.py FOLDER                         # every mutant, about an hour
+    python tests/mutation/run_mutmut.py FOLDER --sample 400            # 400 a package, drawn by a seed
+    python tests/mutation/run_mutmut.py FOLDER --packages geometry     # one package
+    python tests/mutation/run_mutmut.py FOLDER --again                 # survivors, after new tests
+
+FOLDER is made where it is absent, and holds a copy of the code, the mutants and the results; nothing
+is written elsewhere. Run again with the same FOLDER, it goes on where it stopped: mutants of functions
+that have changed are tried afresh, the others keep their result. Survivors are tried again
+only with `--again`, since it is the tests that change for them.
+
+At the end it prints, for each package, how many mutants there are, how many were killed (a test
+failed), ran out of time, survived, or are run by no test; and the score, killed and out of time over
+all that were tried, with the 95 % interval of Wilson where it is a sample. Then the names of those
+that survived. In FOLDER, `mutmut show NAME` prints one as a difference, `mutmut browse` walks through
+them.
+
+What it does not see: mutmut changes the bodies of plain functions and methods. Tables, constants and
+lambdas of a module, and the bodies of functions with a decorator (properties, cached rules of
+quadrature) stay as they are. The published checks and the sweeps over all models stand for those.
+"""
+
+from __future__ import annotations
+
+import argparse
+import json
+import math
+import random
+import shutil
+import subprocess
+import sys
+from collections import Counter
+from pathlib import Path
+
+ROOT = Path(__file__).resolve().parents[2]
+PACKAGES = ("models", "geometry", "hydraulics")
+TESTS = ("tests/models", "tests/geometry", "tests/hydraulics", "tests/published")
+COPIED = ("rheo", "tests", "sample_data", "pyproject.toml")
+
+KILLED = {1, 3}
+OUT_OF_TIME = {24, -24, 36, 152, 255}
+SURVIVED = 0
+NO_TESTS = {5, 33}
+LEFT_OUT = 34
+
+CONFIGURATION = """[mutmut]
+source_paths=
+    rheo
+only_mutate=
+{mutated}
+also_copy=
+    sample_data
+pytest_add_cli_args=
+    -p
+    no:cacheprovider
+pytest_add_cli_args_test_selection=
+{tests}
+timeout_multiplier=1.0
+timeout_constant=20.0
+use_git_change_detection=false
+on_dependency_change=ignore
+"""
+
+# What the workers inherit from the process that they are forked from must not hide a mutant, and
+# the smallest example of a failure is of no interest here.
+HOOKS = '''"""Hooks of the mutation test."""
+
+import sys
+
+from hypothesis import Phase, settings
+
+settings.register_profile("mutation", phases=[Phase.explicit, Phase.generate], database=None)
+settings.load_profile("mutation")
+
+
+def pytest_sessionstart(session):
+    for name, module in list(sys.modules.items()):
+        if name == "rheo" or name.startswith("rheo."):
+            for value in list(vars(module).values()):
+                clear = getattr(value, "cache_clear", None)
+                if clear is not None:
+                    clear()
+'''
+
+# mutmut has no command of its own that stops once the mutants are made.
+MAKE_MUTANTS = """
+from mutmut import __main__ as mutmut
+mutmut.copy_src_dir()
+mutmut.copy_also_copy_files()
+mutmut.setup_source_paths()
+mutmut.create_mutants({children})
+"""
+
+
+def copy_code(folder: Path, packages: list[str]) -> None:
+    """Bring the copy up to date; files that are as they were keep their time."""
+    wanted: set[Path] = set()
+    for name in COPIED:
+        origin = ROOT / name
+        files = [origin] if origin.is_file() else sorted(origin.rglob("*"))
+        for file in files:
+            inside = file.relative_to(ROOT)
+            if not file.is_file() or "__pycache__" in inside.parts:
+                continue
+            wanted.add(inside)
+            target = folder / inside
+            if not target.exists() or target.read_bytes() != file.read_bytes():
+                target.parent.mkdir(parents=True, exist_ok=True)
+                shutil.copyfile(file, target)
+                mutated = folder / "mutants" / inside
+                if inside.parts[0] == "rheo" and mutated.exists():
+                    # mutmut renews what is older than its source, but only where it mutates.
+                    shutil.copy2(target, mutated)
+    for name in COPIED:
+        for place in (folder, folder / "mutants"):
+            for file in sorted((place / name).rglob("*.py")):
+                if file.relative_to(place) not in wanted:
+                    file.unlink()
+    for place in (folder, folder / "mutants"):
+        hooks = place / "tests" / "conftest.py"
+        hooks.parent.mkdir(parents=True, exist_ok=True)
+        hooks.write_text(HOOKS, encoding="utf-8")
+    mutated_lines = "\n".join(f"    rheo/{package}/*" for package in packages)
+    test_lines = "\n".join(f"    {test}" for test in TESTS)
+    text = CONFIGURATION.format(mutated=mutated_lines, tests=test_lines)
+    (folder / "setup.cfg").write_text(text, encoding="utf-8")
+
+
+def result_files(folder: Path, package: str) -> list[Path]:
+    """Return the files in which mutmut keeps the results of a package."""
+    return sorted((folder / "mutants" / "rheo" / package).rglob("*.meta"))
+
+
+def choose(folder: Path, packages: list[str], sample: int | None, seed: int, again: bool) -> None:
+    """Mark which mutants are to be tried and which are left out."""
+    for package in packages:
+        contents = {file: json.loads(file.read_text()) for file in result_files(folder, package)}
+        names = sorted(key for content in contents.values() for key in content["exit_code_by_key"])
+        chosen = set(names)
+        if sample is not None and sample < len(names):
+            chosen = set(random.Random(seed).sample(names, sample))
+        for file, content in contents.items():
+            codes = content["exit_code_by_key"]
+            for name, code in codes.items():
+                if name not in chosen:
+                    codes[name] = LEFT_OUT if code is None else code
+                elif code == LEFT_OUT or (again and code not in KILLED):
+                    codes[name] = None
+            file.write_text(json.dumps(content, indent=4))
+
+
+def wilson(successes: int, tried: int) -> tuple[float, float]:
+    """Return the 95 % interval of a share."""
+    z = 1.959964
+    share = successes / tried
+    middle = (share + z * z / (2 * tried)) / (1 + z * z / tried)
+    half = z * math.sqrt(share * (1 - share) / tried + z * z / (4 * tried**2)) / (1 + z * z / tried)
+    return middle - half, middle + half
+
+
+def report(folder: Path, packages: list[str]) -> None:
+    """Print the counts and the score of each package, and the survivors."""
+    survivors = []
+    for package in packages:
+        counts: Counter[str] = Counter()
+        for file in result_files(folder, package):
+            for name, code in json.loads(file.read_text())["exit_code_by_key"].items():
+                if code is None or code == LEFT_OUT:
+                    counts["not tried"] += 1
+                elif code in KILLED:
+                    counts["killed"] += 1
+                elif code in OUT_OF_TIME:
+                    counts["out of time"] += 1
+                elif code in NO_TESTS:
+                    counts["no tests"] += 1
+                    survivors.append(f"{name} (no tests)")
+                elif code == SURVIVED:
+                    counts["survived"] += 1
+                    survivors.append(name)
+                else:
+                    counts["crashed"] += 1
+                    survivors.append(f"{name} (ended with {code})")
+        total = sum(counts.values())
+        tried = total - counts["not tried"]
+        noticed = counts["killed"] + counts["out of time"]
+        parts = ", ".join(f"{count} {what}" for what, count in sorted(counts.items()))
+        line = f"{package}: {total} mutants; {parts}"
+        if tried:
+            line += f"; score {noticed / tried:.1%}"
+        if tried and counts["not tried"]:
+            low, high = wilson(noticed, tried)
+            line += f" (95 % interval {low:.1%} to {high:.1%})"
+        print(line)
+    print("\n".join(survivors))
+
+
+def main() -> None:
+    """Run it."""
+    parser = argparse.ArgumentParser(description="Mutation test of the formulas.")
+    parser.add_argument("folder", type=Path)
+    parser.add_argument("--packages", nargs="+", choices=PACKAGES, default=list(PACKAGES))
+    parser.add_argument("--sample", type=int, help="mutants a package; all when absent")
+    parser.add_argument("--seed", type=int, default=1)
+    parser.add_argument("--children", type=int, default=2, help="processes at a time")
+    parser.add_argument("--again", action="store_true", help="try the survivors again")
+    parser.add_argument("--report", action="store_true", help="print what is known, run nothing")
+    wish = parser.parse_args()
+    folder = wish.folder.resolve()
+    if not wish.report:
+        folder.mkdir(parents=True, exist_ok=True)
+        copy_code(folder, wish.packages)
+        make = MAKE_MUTANTS.format(children=wish.children)
+        subprocess.run(
+            [sys.executable, "-c", make], cwd=folder, check=True, stdout=subprocess.DEVNULL
+        )
+        choose(folder, wish.packages, wish.sample, wish.seed, wish.again)
+        # Through its entry point: run as a module it would be loaded twice.
+        start = "from mutmut.__main__ import cli; cli()"
+        command = [sys.executable, "-c", start, "run", "--max-children", str(wish.children)]
+        subprocess.run(command, cwd=folder, check=True)
+    report(folder, wish.packages)
+
+
+if __name__ == "__main__":
+    main()
