@@ -63,7 +63,7 @@ def test_the_sentence() -> None:
         f"on your cup and bob that is {rpm:.4g} rpm."
     )
     many = convert(oil, PIPE, [1e-3, 2e-3], {})
-    with pytest.raises(InputError, match="^a sentence needs a single setting and a single flow"):
+    with pytest.raises(InputError, match=r"^a sentence needs a single setting and a single flow"):
         sentence(many)
 
 

@@ -1,24 +1,24 @@
 """Mutation test of the formulas: do the tests notice when the code is changed a little?
 
     pip install mutmut==3.8.1
-    python tests/mutation/run_mutmut.py FOLDER                         # every mutant, about an hour
-    python tests/mutation/run_mutmut.py FOLDER --sample 400            # 400 a package, drawn by a seed
-    python tests/mutation/run_mutmut.py FOLDER --packages geometry     # one package
-    python tests/mutation/run_mutmut.py FOLDER --again                 # survivors, after new tests
+    python tests/mutation/run_mutmut.py FOLDER                       # every mutant
+    python tests/mutation/run_mutmut.py FOLDER --sample 400          # 400 a package, by a seed
+    python tests/mutation/run_mutmut.py FOLDER --packages geometry   # one package
+    python tests/mutation/run_mutmut.py FOLDER --again               # survivors, after new tests
 
-FOLDER is made where it is absent, and holds a copy of the code, the mutants and the results; nothing
-is written elsewhere. Run again with the same FOLDER, it goes on where it stopped: mutants of functions
-that have changed are tried afresh, the others keep their result. Survivors are tried again
-only with `--again`, since it is the tests that change for them.
+FOLDER is made where it is absent, and holds a copy of the code, the mutants and the results;
+nothing is written elsewhere. Run again with the same FOLDER, it goes on where it stopped: mutants
+of functions that have changed are tried afresh, the others keep their result. Survivors are tried
+again only with `--again`, since it is the tests that change for them.
 
 At the end it prints, for each package, how many mutants there are, how many were killed (a test
-failed), ran out of time, survived, or are run by no test; and the score, killed and out of time over
-all that were tried, with the 95 % interval of Wilson where it is a sample. Then the names of those
-that survived. In FOLDER, `mutmut show NAME` prints one as a difference, `mutmut browse` walks through
-them.
+failed), ran out of time, survived, or are run by no test; and the score, killed and out of time
+over all that were tried, with the 95 % interval of Wilson where it is a sample. Then the names of
+those that survived. In FOLDER, `mutmut show NAME` prints one as a difference, and `mutmut browse`
+walks through them.
 
-What it does not see: mutmut changes the bodies of plain functions and methods. Tables, constants and
-lambdas of a module, and the bodies of functions with a decorator (properties, cached rules of
+What it does not see: mutmut changes the bodies of plain functions and methods. Tables, constants
+and lambdas of a module, and the bodies of functions with a decorator (properties, cached rules of
 quadrature) stay as they are. The published checks and the sweeps over all models stand for those.
 """
 
