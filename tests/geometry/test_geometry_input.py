@@ -57,6 +57,11 @@ REFUSED = [
         "geometry tube: entrance_diameters takes away more than the length of the tube",
     ),
     (
+        "tube",
+        {"diameter": 0.25, "length": 0.5, "entrance_diameters": -2.0},
+        "length/diameter + entrance_diameters must be above 0",
+    ),
+    (
         "concentric-cylinders",
         {"inner_radius": 0.02, "outer_radius": [0.03, 0.02], "length": 0.06},
         "concentric-cylinders: outer_radius is 0.02 m; it must be larger than inner_radius, 0.02 m",
@@ -95,6 +100,7 @@ def test_what_is_refused(key: str, dimensions: dict[str, object], sentence: str)
         ("slot", {"half_gap": 0.125, "width": 0.5, "length": 1.0}),
         ("tube", {"diameter": 1e-6, "length": 1.0}),
         ("tube", {"diameter": 100.0, "length": 1.0}),
+        ("tube", {"diameter": 0.25, "length": 0.5, "entrance_diameters": -1.5}),
     ],
 )
 def test_the_ends_of_what_is_allowed_are_allowed(key: str, dimensions: dict[str, float]) -> None:
@@ -127,8 +133,9 @@ def test_impossible_settings(setting: float, shown: str) -> None:
 
 def test_unknown_forms() -> None:
     cylinders = make_geometry("six-speed")
-    with pytest.raises(InputError, match="unknown nominal form 'cup'; it has bob, representative"):
+    with pytest.raises(InputError, match="unknown nominal form 'cup'; it has bob, repre") as caught:
         cylinders.nominal(1.0, 1.0, "cup")
+    assert caught.value.place == "geometry six-speed"
     with pytest.raises(InputError, match="unknown inverse form 'x'; it has exact, power") as caught:
         cylinders.flow_points([1.0, 2.0, 3.0], [1.0, 2.0, 3.0], "x")
     assert caught.value.place == "geometry six-speed"
@@ -199,3 +206,19 @@ def test_cautions() -> None:
     assert wide.cautions(oil, 1e-4) == ()
     assert make_geometry("slot", half_gap=0.01, width=0.3, length=1.0).cautions(oil, 1e-4) == ()
     assert make_geometry("six-speed").cautions(oil, 1.0) == ()
+
+
+def test_nominal_pairs_have_one_shape() -> None:
+    cone = make_geometry("cone-plate", radius=0.02, angle=0.02)
+    for setting, reading in ((1.0, [1.0, 2.0, 3.0]), ([1.0, 2.0, 3.0], 1.0)):
+        rate, stress = cone.nominal(setting, reading)
+        assert rate.shape == stress.shape == (3,)
+    many = cone.replaced(radius=[0.01, 0.02])
+    rate, stress = many.nominal(1.0, 1.0)
+    assert rate.shape == stress.shape == (2,)
+    tubes = make_geometry("tube", diameter=0.02, length=[1.0, 2.0], entrance_diameters=0.5)
+    rate, stress = tubes.nominal([[1e-4], [2e-4], [3e-4]], 100.0)
+    assert rate.shape == stress.shape == (3, 2)
+    slot = make_geometry("slot", half_gap=0.01, width=0.5, length=[1.0, 2.0])
+    rate, stress = slot.nominal(1e-4, 100.0)
+    assert rate.shape == stress.shape == (2,)
