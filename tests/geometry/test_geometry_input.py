@@ -34,7 +34,7 @@ REFUSED = [
     (
         "tube",
         {"diameter": 0.0, "length": 2},
-        "geometry tube: diameter is 0; it must lie between 1e-06 and 100 m",
+        "geometry tube: diameter is 0; it must lie between 10⁻⁶ and 100 m",
     ),
     (
         "tube",
