@@ -2,9 +2,37 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+from decimal import Decimal
 from typing import Any
+
+# A number as Python's format g writes it; not in a word, and not in quotes, where it is the user's.
+_EXPONENT = re.compile(r"(?<![\w.'])(\d(?:\.\d+)?)e([-+]?\d{1,3})(?!\w|\.\d|')")
+_RAISED = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
+# Beyond these powers of ten digits alone are hard to count.
+_LEAST_POWER, _LARGEST_POWER = -4, 6
+
+
+def without_exponents(sentence: str) -> str:
+    """Return a sentence with numbers such as 1.33e+03 written as one reads them, 1330.
+
+    Parameters
+    ----------
+    sentence : str
+        Very large and very small numbers become such as 1.7 × 10⁻⁵; what stands in quotes stays.
+    """
+    return _EXPONENT.sub(_written_out, sentence)
+
+
+def _written_out(match: re.Match[str]) -> str:
+    power = int(match[2])
+    if not _LEAST_POWER <= power <= _LARGEST_POWER:
+        ten = f"10{str(power).translate(_RAISED)}"
+        return ten if match[1] == "1" else f"{match[1]} × {ten}"
+    digits = f"{Decimal(match[0]):f}"
+    return digits if abs(power) < 4 else f"{Decimal(match[0]):,f}".replace(",", "\u202f")
 
 
 class InputError(ValueError):
@@ -19,9 +47,9 @@ class InputError(ValueError):
     """
 
     def __init__(self, sentence: str, place: str = "") -> None:
-        self.sentence = sentence
+        self.sentence = without_exponents(sentence)
         self.place = place
-        super().__init__(f"{place}: {sentence}" if place else sentence)
+        super().__init__(f"{place}: {self.sentence}" if place else self.sentence)
 
 
 class UnitError(InputError):
@@ -63,6 +91,10 @@ class Caution:
     advice: str
     place: str = ""
     points: tuple[int, ...] = ()
+
+    def __post_init__(self) -> None:
+        for name in ("sentence", "advice"):
+            object.__setattr__(self, name, without_exponents(getattr(self, name)))
 
     def as_dict(self) -> dict[str, Any]:
         """Return the Caution as plain data for JSON."""

@@ -8,7 +8,7 @@ from typing import Any
 
 import numpy as np
 
-from rheo.errors import Caution
+from rheo.errors import Caution, without_exponents
 from rheo.fitting import Fit, Fits
 from rheo.fitting.scaled_fits import ScaledFits
 from rheo.hydraulics import PipeFlow
@@ -85,7 +85,7 @@ def fits_data(fits: Fits) -> dict[str, Any]:
     """Return the ranking with its reason."""
     found: dict[str, Any] = {
         "best": fits.best.key,
-        "reason": fits.reason,
+        "reason": without_exponents(fits.reason),
         "weighting": fits.weighting.name,
         "ranking": [fit_data(fit) for fit in fits.ranking],
         "skipped": dict(fits.skipped),
@@ -119,6 +119,15 @@ def pipe_data(flow: PipeFlow) -> dict[str, Any]:
     }
 
 
+_SENTENCES = {"sentence", "sentences", "reasons"}
+
+
+def _readable(value: Any) -> Any:
+    if isinstance(value, list):
+        return [_readable(one) for one in value]
+    return without_exponents(value) if isinstance(value, str) else value
+
+
 def data(value: Any) -> Any:
     """Return a frozen result of the engine, fields and properties of fields, as plain data.
 
@@ -132,7 +141,8 @@ def data(value: Any) -> Any:
     if isinstance(value, Model):
         return model_data(value)
     if is_dataclass(value) and not isinstance(value, type):
-        return {one.name: data(getattr(value, one.name)) for one in fields(value)}
+        found = {one.name: data(getattr(value, one.name)) for one in fields(value)}
+        return {name: _readable(one) if name in _SENTENCES else one for name, one in found.items()}
     if isinstance(value, Mapping):
         return {str(key): data(one) for key, one in value.items()}
     if isinstance(value, tuple | list):

@@ -12,7 +12,7 @@ from rheo.cli.flow_curve_options import ModelKey, Settings, flow_curve
 from rheo.cli.options import Json, UnitsOption, quantity
 from rheo.cli.readings_options import Dimensions, GeometryKind, geometry_of
 from rheo.cli.terminal import Units
-from rheo.errors import InputError
+from rheo.errors import InputError, without_exponents
 
 if TYPE_CHECKING:
     from rheo.geometry import Geometry
@@ -64,7 +64,7 @@ def convert(
         setting = float(source.setting_for_rate(curve, quantity(rate or "", "1/s", "--rate")))
     result = converted(curve, source, setting, _targets(to or []))
     if as_json:
-        terminal.print_json({**result.as_dict(), "sentence": sentence(result)})
+        terminal.print_json({**result.as_dict(), "sentence": without_exponents(sentence(result))})
     else:
         _show(result, sentence(result), units.value)
 

@@ -9,6 +9,7 @@ import numpy as np
 from rheo.line.constants import GRAVITY
 from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import FloatArray
+from rheo.line.rounding import balance
 from rheo.line.walk import StepResult, Walk
 
 
@@ -49,14 +50,17 @@ def pressure_profile(found: Walk, suction_total: FloatArray) -> Profile:
         From the first nozzle to the last.
     """
     points: list[tuple[str, float, float, float, float]] = []
-    distance = elevation = 0.0
+    distance = elevation = climbed = 0.0
     weight = float(found.density) * GRAVITY
     level = float(found.source_pressure + found.start_kinetic_pressure)
     pumped = False
+    largest = abs(level)
 
     def note(name: str, step: StepResult | None) -> None:
         moving = float(kinetic_pressure(None if step is None else step.flow))
-        points.append((name, distance, elevation, level - moving, level))
+        still = float(balance(level, -moving, size=largest))
+        total = float(balance(level, size=largest))
+        points.append((name, distance, float(balance(elevation, size=climbed)), still, total))
 
     note(found.line.source_vessel.name, None if found.start_at_rest else found.steps[0])
     for step in found.steps:
@@ -66,7 +70,9 @@ def pressure_profile(found: Walk, suction_total: FloatArray) -> Profile:
             pumped = True
         distance += float(step.length)
         elevation += float(step.rise)
+        climbed += abs(float(step.rise))
         level -= float(step.loss) + weight * float(step.rise)
+        largest += float(step.loss) + weight * abs(float(step.rise))
         note(step.name, None if step.kind == "exit" else step)
     if not pumped:
         level = float(suction_total + found.differential_pressure)

@@ -7,7 +7,7 @@ from typing import Any
 
 import numpy as np
 
-from rheo.errors import Caution
+from rheo.errors import Caution, without_exponents
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import Product
 from rheo.line.profile import Profile
@@ -157,7 +157,7 @@ class LineResult:
                 "restarts": plain(self.start_up.restarts),
                 "flush_length": plain(self.start_up.flush_length),
                 "heat_to": plain(self.start_up.heat_to),
-                "sentence": self.start_up.sentence,
+                "sentence": without_exponents(self.start_up.sentence),
             },
             "cautions": [caution.as_dict() for caution in self.cautions],
             "safety": [*self.safety, self.start_up.safety],

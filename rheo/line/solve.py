@@ -15,6 +15,7 @@ from rheo.line.parts import FloatArray, Line, Pipe
 from rheo.line.product import Product, interval
 from rheo.line.profile import Profile, pressure_profile
 from rheo.line.result import LineResult, PartResult
+from rheo.line.rounding import balance
 from rheo.line.start_up import start_up
 from rheo.line.walk import StepResult, Walk, total, walk
 
@@ -65,8 +66,8 @@ def solve_line(
     differential = found.differential_pressure
     inlet, outlet = pump_flows(found)
     before_pump = suction_total_pressure(found)
-    suction = before_pump - kinetic_pressure(inlet)
-    discharge = before_pump + differential - kinetic_pressure(outlet)
+    suction = balance(before_pump, -kinetic_pressure(inlet))
+    discharge = balance(before_pump, differential, -kinetic_pressure(outlet))
     power = differential * found.flow
     volume = total(step.volume for step in found.steps)
     heat = product.heat_capacity
@@ -104,18 +105,27 @@ def solve_line(
 
 
 def pump_flows(found: Walk) -> tuple[PipeFlow | None, PipeFlow | None]:
-    """Return the flow in the pipes on both sides of the pump; None where there is no pipe."""
+    """Return the flow in the pipes on both sides of the pump; None where there is no pipe.
+
+    Where the line begins at a flange and has no suction pipe, the product comes as fast as it
+    goes on in the first pipe.
+    """
     pipes = [step for step in found.steps if isinstance(step.step.part, Pipe)]
     inlet = [step.flow for step in pipes if step.side == "suction"]
     outlet = [step.flow for step in pipes if step.side == "discharge"]
-    return (inlet[-1] if inlet else None), (outlet[0] if outlet else None)
+    first = outlet[0] if outlet else None
+    arriving = None if found.start_at_rest else first
+    return (inlet[-1] if inlet else arriving), first
 
 
 def suction_total_pressure(found: Walk) -> FloatArray:
     """Return the total gauge pressure at the pump's inlet [Pa], with αρV²/2."""
-    start = found.source_pressure + found.start_kinetic_pressure
-    rise = found.density * GRAVITY * found.side_rise("suction")
-    return start - found.side_loss("suction") - rise
+    return balance(
+        found.source_pressure,
+        found.start_kinetic_pressure,
+        -found.side_loss("suction"),
+        -found.density * GRAVITY * found.side_rise("suction"),
+    )
 
 
 def npsh_available(found: Walk, product: Product) -> FloatArray | None:

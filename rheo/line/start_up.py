@@ -10,6 +10,7 @@ from rheo.errors import Caution
 from rheo.line.constants import GRAVITY
 from rheo.line.parts import Equipment, FloatArray, Line, Pipe
 from rheo.line.product import Product
+from rheo.line.rounding import balance
 from rheo.line.route import route
 from rheo.line.safety import START_UP
 from rheo.line.walk import total as total_of
@@ -208,14 +209,14 @@ def start_up(line: Line, product: Product, rating: float | None = None) -> Start
 
 def _static_pressure(line: Line, product: Product) -> FloatArray:
     weight = np.asarray(product.density, dtype=float) * GRAVITY
-    rise = total_of(
-        np.asarray(step.part.rise, dtype=float)
+    rises = [
+        weight * np.asarray(step.part.rise, dtype=float)
         for step in route(line)
         if isinstance(step.part, Pipe | Equipment)
-    )
+    ]
     source, end = line.source_vessel, line.end_vessel
-    height = rise + np.asarray(end.level) - np.asarray(source.level)
-    return np.asarray(end.gauge_pressure) - np.asarray(source.gauge_pressure) + weight * height
+    levels = weight * np.asarray(end.level), -weight * np.asarray(source.level)
+    return balance(end.gauge_pressure, -np.asarray(source.gauge_pressure), *levels, *rises)
 
 
 def _flush(sections: tuple[Section, ...], available: float) -> tuple[float | None, float | None]:

@@ -23,6 +23,7 @@ from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.minor_losses import minor_loss
 from rheo.line.parts import Equipment, FloatArray, Line, Pipe
 from rheo.line.product import FlowCurveSource, Product
+from rheo.line.rounding import balance
 from rheo.line.route import Step, ends_at_rest, route, starts_at_rest
 
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(8)
@@ -121,8 +122,12 @@ class Walk:
     @cached_property
     def static_pressure(self) -> FloatArray:
         """What the pump must overcome with nothing moving: heights and vessels [Pa]."""
+        weight = self.density * GRAVITY
         rise = self.side_rise("suction") + self.side_rise("discharge")
-        return self.end_pressure - self.source_pressure + self.density * GRAVITY * rise
+        climbed = total(abs(step.rise) for step in self.steps)
+        return balance(
+            self.end_pressure, -self.source_pressure, weight * rise, size=weight * climbed
+        )
 
     @property
     def start_at_rest(self) -> bool:
@@ -144,7 +149,7 @@ class Walk:
         end = None if ends_at_rest(self.line) else last
         if (end is None and self.start_at_rest) or (end is first and not self.start_at_rest):
             return np.zeros(())
-        return kinetic_pressure(end) - self.start_kinetic_pressure
+        return balance(kinetic_pressure(end), -self.start_kinetic_pressure)
 
     @property
     def end_flows(self) -> tuple[PipeFlow | None, PipeFlow | None]:
@@ -155,7 +160,7 @@ class Walk:
     @cached_property
     def differential_pressure(self) -> FloatArray:
         """Total pressure that the pump must add [Pa]; negative when the line runs by itself."""
-        return self.friction_pressure + self.static_pressure + self.kinetic_pressure
+        return balance(self.friction_pressure, self.static_pressure, self.kinetic_pressure)
 
 
 def total(values: Iterable[ArrayLike]) -> FloatArray:

@@ -9,7 +9,7 @@ from __future__ import annotations
 import re
 
 from rheo.report.display import QUANTITIES, shown, unit_label
-from rheo.report.numbers import number
+from rheo.report.numbers import GROUP, number
 from rheo.units import to_si
 
 # Units of the sentences, and the quantity as which each is shown.
@@ -26,11 +26,11 @@ _UNITS = {
     "kW": "power",
 }
 _WRITTEN = {"m3/h": "m³/h", "kg/m3": "kg/m³"}
-_NUMBER = r"[-−]?\d+(?:\.\d+)?(?:e[-+]?\d+)?"
+_NUMBER = rf"[-−]?\d+(?:{GROUP}\d{{3}})*(?:\.\d+)?(?:e[-+]?\d+)?"
 _UNIT = "|".join(sorted(map(re.escape, _UNITS), key=len, reverse=True))
 # A unit is not followed by more of a word, nor by what makes another unit of it.
 _VALUE = re.compile(
-    rf"(?<![\w.])(?:(?P<low>{_NUMBER})(?P<word> to | and ))?(?P<value>{_NUMBER}) "
+    rf"(?<![\w.{GROUP}])(?:(?P<low>{_NUMBER})(?P<word> to | and ))?(?P<value>{_NUMBER}) "
     rf"(?P<unit>{_UNIT})(?![\w/·³²^])"
 )
 _EXPONENT = re.compile(r"(?<![\w.])\d(?:\.\d+)?e[-+]?\d+(?![\w.])")
@@ -67,7 +67,9 @@ def _restate(match: re.Match[str], system: str) -> str:
         if same:
             return text
         # A difference of temperatures has no zero to be moved.
-        value = to_si(float(text.replace("−", "-")), unit, QUANTITIES[quantity].unit)
+        value = to_si(
+            float(text.replace("−", "-").replace(GROUP, "")), unit, QUANTITIES[quantity].unit
+        )
         return number(float(shown(value, quantity, system)), _digits(text))
 
     low = f"{one(match['low'])}{match['word']}" if match["low"] else ""
@@ -75,5 +77,5 @@ def _restate(match: re.Match[str], system: str) -> str:
 
 
 def _digits(text: str) -> int:
-    digits = text.lstrip("-−").split("e")[0].replace(".", "").lstrip("0")
+    digits = text.lstrip("-−").split("e")[0].replace(".", "").replace(GROUP, "").lstrip("0")
     return min(max(len(digits), 3), 4)

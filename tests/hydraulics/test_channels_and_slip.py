@@ -55,7 +55,7 @@ def test_a_slot_that_may_not_be_laminar_says_so():
     flow = rheo.slot_flow(model, 0.005, np.array([0.01, 0.5]), density=1000.0)
     assert flow.cautions[0].code == "slot-not-laminar"
     # Re = ρV(4h)/η of the faster one.
-    assert "reaches 1e+04" in flow.cautions[0].sentence
+    assert "reaches 10\u202f000" in flow.cautions[0].sentence
 
 
 @pytest.mark.parametrize("key", list(EXAMPLES))

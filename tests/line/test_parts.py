@@ -33,7 +33,7 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
         (lambda: Pipe(np.nan, 0.05), "pipe: length [m] is nan; it must be above 0"),
         (lambda: Pipe(1.0), "pipe: give inside_diameter [m] or a catalogue size"),
         (lambda: Pipe(1.0, 0.05, rise=2.0), "rise [m] is more than the length"),
-        (lambda: Pipe(1.0, 0.05, roughness=-1e-5), "roughness [m] is -1e-05; it must be 0 or more"),
+        (lambda: Pipe(1.0, 0.05, roughness=-1e-5), "roughness [m] is -10⁻⁵; it must be 0 or more"),
         (lambda: Pipe(1.0, 0.05, roughness=0.02), "less than a quarter of the inside diameter"),
         (lambda: Pipe(1.0, 0.05, temperature=-3.0), "temperature [K] is -3; it must be above 0"),
         (

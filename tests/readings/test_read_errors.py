@@ -67,8 +67,8 @@ SENTENCES = {
     ),
     "a number that is a slip": (
         HEAD + "1;10\n2;1e200\n3;30\n",
-        "bad.csv, line 3, column 'stress [Pa]': the shear stress is 1e+200 Pa; it must be between "
-        "1e-25 and 1e+25 in SI",
+        "bad.csv, line 3, column 'stress [Pa]': the shear stress is 10²⁰⁰ Pa; it must be between "
+        "10⁻²⁵ and 10²⁵ in SI",
     ),
     "two points": (HEAD + "1;10\n2;20\n", "bad.csv: it holds 2 readings; a flow curve needs at "),
     "one point": (HEAD + "1;10\n0;0\n", "bad.csv: it holds 1 reading; a flow curve needs at least"),
