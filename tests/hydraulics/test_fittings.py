@@ -82,10 +82,14 @@ def test_the_users_own_k():
     loss = UserK(2.5, 300.0)
     assert loss.coefficient(np.array(100.0), np.array(0.05)) == pytest.approx(5.5)
     assert UserK(2.5).coefficient(np.ones(3), np.array(0.05)).shape == (3,)
+    assert UserK(2.5).coefficient(np.array(100.0), np.full((2, 1), 0.05)).shape == (2, 1)
     with pytest.raises(
         rheo.InputError, match="own: k is -1; it must be a finite number, 0 or more"
     ):
         UserK(-1.0)
+    for wrong in (-1.0, np.nan, np.inf):
+        with pytest.raises(rheo.InputError, match=f"own: k1 is {wrong:g}; it must be a finite"):
+            UserK(1.0, wrong)
 
 
 def test_ends():
@@ -93,9 +97,12 @@ def test_ends():
     assert end("exit").coefficient(np.array(10.0), np.array(0.1)) == 1.0
     assert set(ENDS) == {"entrance", "entrance-projecting", "entrance-rounded", "exit"}
     with pytest.raises(
-        rheo.InputError, match="unknown end 'door'; there are entrance, entrance-pro"
+        rheo.InputError, match=r"^fittings: unknown end 'door'; there are entrance, entrance-pro"
     ):
         end("door")
+    # A long slip of the paste buffer is cut.
+    with pytest.raises(rheo.InputError, match=f"unknown end '{'x' * 60}'; there are"):
+        end("x" * 500)
 
 
 def test_an_unknown_fitting_names_the_nearest():
@@ -104,9 +111,11 @@ def test_an_unknown_fitting_names_the_nearest():
     ):
         fitting("elbow90")
     with pytest.raises(
-        rheo.InputError, match="unknown table 'crane'; there are darby-3k, hooper-2k"
+        rheo.InputError, match=r"^fittings: unknown table 'crane'; there are darby-3k, hooper-2k"
     ):
         fitting("elbow-90", "crane")
+    with pytest.raises(rheo.InputError, match=f"^fittings: unknown fitting '{'9' * 60}'; hooper"):
+        fitting("9" * 500, "hooper-2k")
 
 
 WATER = rheo.model("newtonian", viscosity=0.001)
@@ -159,7 +168,20 @@ def test_a_loss_curve_goes_through_its_points():
     # Beyond the ends the last slope goes on: a square law here.
     assert curve.pressure_drop(8e-3) == pytest.approx(48e4)
     assert np.all(np.diff(curve.pressure_drop(np.geomspace(1e-4, 1e-1, 99))) > 0)
-    assert curve.covers([5e-4, 2e-3, 5e-3]).tolist() == [False, True, False]
+    assert curve.covers([5e-4, 1e-3, 1.5e-3, 2e-3]).tolist() == [False, True, True, True]
+    assert curve.covers([3e-3, 4e-3, 5e-3]).tolist() == [True, True, False]
+    # Between the points a power law, the same from every place on it.
+    middle = 1e4 * 3.0 ** (np.log(1.5) / np.log(2.0))
+    assert curve.pressure_drop(1.5e-3) == pytest.approx(middle)
+    assert curve.pressure_drop(0.5e-3) == pytest.approx(1e4 / 3.0)
+
+
+def test_small_losses_are_losses():
+    """A loss curve of a thin product: 0.1 and 0.4 Pa."""
+    curve = PointLoss([1e-6, 2e-6], [0.1, 0.4])
+    assert curve.flow.tolist() == [1e-6, 2e-6]
+    assert curve.loss.tolist() == [0.1, 0.4]
+    assert curve.pressure_drop(4e-6) == pytest.approx(1.6)
 
 
 def test_a_power_loss():
@@ -174,6 +196,17 @@ def test_a_power_loss():
         (lambda: PointLoss([0.0, 2.0], [1.0, 2.0]), "equipment: flow: it is 0 m3/s; it must be"),
         (lambda: PowerLoss(-1.0, 1.0), "equipment: loss: it is -1 Pa; it must be a finite"),
         (lambda: PowerLoss(1.0, 1.0, 0.0), "equipment: exponent: it is 0 -; it must be a finite"),
+        (lambda: PowerLoss(1.0, 0.0), "equipment: at_flow: it is 0 m3/s; it must be a finite"),
+        (lambda: PointLoss([1.0, 2.0], [0.0, 2.0]), "equipment: loss: it is 0 Pa; it must be a"),
+        (lambda: PointLoss([1.0, 1.0], [1.0, 2.0]), "equipment: flows and losses must rise from"),
+        (lambda: PointLoss([1.0, 2.0], [2.0, 2.0]), "equipment: flows and losses must rise from"),
+        (lambda: PointLoss([1.0, 2.0, 3.0], [1.0, 2.0]), "equipment: give two or more flows and"),
+        (lambda: PointLoss([[1.0, 2.0]], [[1.0, 2.0]]), "equipment: give two or more flows and"),
+        (lambda: PowerLoss(1.0, 1.0).pressure_drop(-1.0), "^flow: it is -1 m3/s; it must be a"),
+        (
+            lambda: PointLoss([1.0, 2.0], [1.0, 2.0]).pressure_drop(-1.0),
+            "^flow: it is -1 m3/s; it must be a finite number, 0 or more",
+        ),
     ],
 )
 def test_impossible_loss_curves_are_refused(build, sentence):

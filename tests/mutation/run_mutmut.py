@@ -63,8 +63,8 @@ use_git_change_detection=false
 on_dependency_change=ignore
 """
 
-# What the workers inherit from the process that they are forked from must not hide a mutant, and
-# the smallest example of a failure is of no interest here.
+# A value remembered from an earlier test would hide which tests a function is run by, and in a
+# worker hide the mutant. The smallest example of a failure is of no interest here.
 HOOKS = '''"""Hooks of the mutation test."""
 
 import sys
@@ -75,9 +75,9 @@ settings.register_profile("mutation", phases=[Phase.explicit, Phase.generate], d
 settings.load_profile("mutation")
 
 
-def pytest_sessionstart(session):
+def pytest_runtest_setup(item):
     for name, module in list(sys.modules.items()):
-        if name == "rheo" or name.startswith("rheo."):
+        if name.startswith(("rheo.models", "rheo.geometry", "rheo.hydraulics")):
             for value in list(vars(module).values()):
                 clear = getattr(value, "cache_clear", None)
                 if clear is not None:
