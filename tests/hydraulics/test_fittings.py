@@ -116,6 +116,14 @@ def test_an_unknown_fitting_names_the_nearest():
         fitting("elbow-90", "crane")
     with pytest.raises(rheo.InputError, match=f"^fittings: unknown fitting '{'9' * 60}'; hooper"):
         fitting("9" * 500, "hooper-2k")
+    # What is not like any key gets no advice.
+    with pytest.raises(rheo.InputError) as caught:
+        fitting("elbow-19", "hooper-2k")
+    assert "(did you mean 'elbow-" in str(caught.value)
+    every = ", ".join(fitting_tables()["hooper-2k"].fittings)
+    with pytest.raises(rheo.InputError) as caught:
+        fitting("zzz", "hooper-2k")
+    assert str(caught.value) == f"fittings: unknown fitting 'zzz'; hooper-2k has {every}"
 
 
 WATER = rheo.model("newtonian", viscosity=0.001)
