@@ -73,6 +73,7 @@ def fit_data(fit: Fit) -> dict[str, Any]:
             for key, one in fit.parameters.items()
         },
         "aicc": plain(fit.aicc),
+        "readings_for_aicc": fit.readings_for_aicc,
         "weight": plain(fit.weight),
         "rms_relative_error": plain(fit.rms_relative_error),
         "worst_relative_error": plain(fit.worst_relative_error),

@@ -79,7 +79,7 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
             (
                 fit.key,
                 fit.parameter_count,
-                f"{fit.aicc:.1f}",
+                _aicc(fit),
                 f"{fit.weight:.2f}",
                 f"{100 * fit.rms_relative_error:.2g} %",
                 f"{100 * fit.worst_relative_error:.2g} %",
@@ -113,6 +113,11 @@ def show_fits(out: Console, fits: Fits, chosen: Fit) -> None:
         left=2,
         least_wanted=(3, 1),
     )
+
+
+def _aicc(fit: Fit) -> str:
+    needed = fit.readings_for_aicc
+    return f"{fit.aicc:.1f}" if needed is None else f"needs {needed} readings"
 
 
 def _show_state(out: Console, fits: Fits) -> None:

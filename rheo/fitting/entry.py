@@ -11,7 +11,7 @@ from rheo.errors import Caution, FitError, InputError
 from rheo.fitting.final import global_minima
 from rheo.fitting.fits import Fits
 from rheo.fitting.problem import CurveProblem, Problem
-from rheo.fitting.ranking import ROUNDING, aicc, akaike_weights, order
+from rheo.fitting.ranking import ROUNDING, aicc, akaike_weights, fewest_readings, order
 from rheo.fitting.reading_task import reading_task
 from rheo.fitting.result import Fit
 from rheo.fitting.search import search
@@ -108,7 +108,8 @@ def rank(task: Task, records: Iterable[ModelRecord], weights: Weighting) -> Fits
     }
     fitted = [record for record in wanted if record.key not in skipped]
     if not fitted:
-        raise FitError(_nothing_fitted(count, skipped), "fit")
+        fewest = fewest_readings(min(len(one.parameters) for one in wanted) + task.extra)
+        raise FitError(_nothing_fitted(count, skipped, fewest), "fit")
     solved = task.solve(fitted)
     least = ROUNDING**2 * float(np.sum((task.observed / weights.sigma(task.observed)) ** 2))
     sizes = [parameters.size for _, parameters, _ in solved]
@@ -136,7 +137,7 @@ def _reason_to_skip(record: ModelRecord, task: Task, alone: bool) -> str:
     parameters = len(record.parameters) + task.extra
     count = task.observed.size
     # AICc needs n - k - 1 above 0, k counting the variance too; a model named alone is not ranked.
-    needed = parameters + (1 if alone else 3)
+    needed = parameters + 1 if alone else fewest_readings(parameters)
     if count < needed:
         return f"{parameters} parameters need at least {needed} readings; there are {count}"
     if task.distinct < parameters:
@@ -147,13 +148,14 @@ def _reason_to_skip(record: ModelRecord, task: Task, alone: bool) -> str:
     return ""
 
 
-def _nothing_fitted(count: int, skipped: Mapping[str, str]) -> str:
+def _nothing_fitted(count: int, skipped: Mapping[str, str], fewest: int) -> str:
     if len(skipped) == 1:
         (key, reason), *_ = skipped.items()
         return f"{key} cannot be fitted: {reason}"
     return (
         f"there {'is' if count == 1 else 'are'} {count} reading{'' if count == 1 else 's'} to fit; "
-        "at least 4 at different shear rates are needed to compare models"
+        f"at least {fewest} at different shear rates are needed to compare these models; a single "
+        "model that is named needs fewer"
     )
 
 

@@ -60,6 +60,11 @@ def small_sample_term(readings: int, parameters: int) -> float:
     return 2.0 * k * (k + 1) / spare if spare > 0 else math.inf
 
 
+def fewest_readings(parameters: int) -> int:
+    """Return the readings from which AICc is known on, for a model of so many parameters."""
+    return parameters + 3
+
+
 def akaike_weights(criteria: ArrayLike) -> FloatArray:
     """Return exp(-Δ/2), scaled to a sum of 1."""
     values = np.asarray(criteria, dtype=float)

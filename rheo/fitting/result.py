@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cached_property
@@ -17,6 +18,7 @@ from rheo.fitting.intervals import FittedParameter, fitted_parameters
 from rheo.fitting.judge import misfit_cautions
 from rheo.fitting.problem import Problem, parameter_keys
 from rheo.fitting.profile import Profile, profile
+from rheo.fitting.ranking import fewest_readings
 from rheo.fitting.runs import runs_test
 from rheo.fitting.scaling import ScaledProblem
 from rheo.models import Model, ModelRecord
@@ -69,6 +71,11 @@ class Fit:
     def parameter_count(self) -> int:
         """Number of parameters fitted, those at a bound included."""
         return self.minimum.size
+
+    @property
+    def readings_for_aicc(self) -> int | None:
+        """Readings from which AICc is known on; None where it is known."""
+        return None if math.isfinite(self.aicc) else fewest_readings(self.parameter_count)
 
     @cached_property
     def final(self) -> Final:

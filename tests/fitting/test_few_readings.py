@@ -4,7 +4,10 @@ import numpy as np
 import pytest
 
 import rheo
+from rheo.case.as_data import fits_data
+from rheo.errors import FitError
 from rheo.fitting.ranking import aicc, small_sample_term
+from rheo.report.sections.fitted import ranking_table
 
 MUD = rheo.model("herschel-bulkley", yield_stress=4.0, consistency=0.35, flow_index=0.66)
 CODE = "too-few-readings-to-rank"
@@ -38,3 +41,24 @@ def test_enough_readings_and_equals_are_passed_over() -> None:
     rate = np.geomspace(5.0, 1000.0, 6)
     line = rheo.FlowCurve(rate, 0.2 * rate * np.array([1.01, 0.99, 1.0, 1.01, 0.99, 1.0]))
     assert CODE not in {one.code for one in rheo.fit(line).cautions}
+
+
+def test_models_are_compared_from_where_aicc_is_known() -> None:
+    rates = np.array([1.0, 10.0, 100.0, 1000.0])
+    curve = rheo.FlowCurve(rates, 10.0 * rates**0.3)
+    with pytest.raises(FitError, match="there are 4 readings to fit; at least 5 at different"):
+        rheo.fit(curve, models=["power-law", "bingham"])
+    alone = rheo.fit(curve, models="power-law").best
+    assert alone.readings_for_aicc == 5
+    more = rheo.FlowCurve(np.append(rates, 3e3), np.append(curve.stress, 10.0 * 3e3**0.3))
+    found = rheo.fit(more, models=["power-law", "bingham"])
+    assert [fit.readings_for_aicc for fit in found] == [None, None]
+
+
+def test_tables_say_how_many_readings_aicc_needs() -> None:
+    rates = np.array([1.0, 10.0, 100.0])
+    curve = rheo.FlowCurve(rates, 10.0 * rates**0.3 * np.array([1.01, 0.99, 1.01]))
+    fits = rheo.fit(curve, models="power-law")
+    assert ranking_table(fits, fits.best).rows[0][2] == "needs 5 readings"
+    found = fits_data(fits)["ranking"][0]
+    assert (found["aicc"], found["readings_for_aicc"]) == (None, 5)

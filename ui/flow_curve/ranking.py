@@ -87,9 +87,16 @@ def _cells(fit: Fit, fits: Fits, chosen: Fit) -> list[str]:
         str(fit.parameter_count),
         percent(fit.rms_relative_error),
         percent(fit.worst_relative_error),
-        number(fit.aicc - fits.best.aicc, 3) if fit is not fits.best else "0",
+        _criterion(fit, fits.best),
         percent(fit.weight) if fit.weight >= 1e-4 else "< 0.01 %",
     ]
+
+
+def _criterion(fit: Fit, best: Fit) -> str:
+    """Return by how much AICc lies above the best, or from how many readings it would be known."""
+    if fit.readings_for_aicc is not None:
+        return f"needs {fit.readings_for_aicc} readings"
+    return number(fit.aicc - best.aicc, 3) if fit is not best else "0"
 
 
 def _pressure(

@@ -19,7 +19,9 @@ def ranking_table(fits: Fits, chosen: Fit) -> Table:
         (
             capital(fit.record.name),
             str(fit.parameter_count),
-            number(fit.aicc, 4),
+            number(fit.aicc, 4)
+            if fit.readings_for_aicc is None
+            else f"needs {fit.readings_for_aicc} readings",
             percent(fit.weight),
             percent(fit.rms_relative_error),
             percent(fit.worst_relative_error),

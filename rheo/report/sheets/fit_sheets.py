@@ -246,10 +246,15 @@ def fits_sheet(book: Book, fits: Fits, chosen: Fit) -> None:
         count = sheet.number(row, 1, fit.observed.size)
         size = sheet.number(row, 2, fit.parameter_count)
         squares = sheet.number(row, 3, fit.weighted_ss)
-        k = size + 1.0
-        formula = count * ln(squares / count) + 2.0 * k + 2.0 * k * (k + 1.0) / (count - k - 1.0)
-        criteria.append(sheet.formula(row, 4, formula))
-        sheet.number(row, 5, fit.aicc)
+        if fit.readings_for_aicc is None:
+            k = size + 1.0
+            small = 2.0 * k * (k + 1.0) / (count - k - 1.0)
+            criteria.append(sheet.formula(row, 4, count * ln(squares / count) + 2.0 * k + small))
+            sheet.number(row, 5, fit.aicc)
+        else:
+            for column in (4, 5):
+                sheet.text(row, column, f"needs {fit.readings_for_aicc} readings")
+            criteria.append(Term("", np.nan))
         sheet.number(row, 8, fit.rms_relative_error, "percent")
         sheet.number(row, 9, fit.worst_relative_error, "percent")
     known = [cell for cell in criteria if np.isfinite(cell.value)]
