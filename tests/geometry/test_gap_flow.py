@@ -151,3 +151,19 @@ def test_large_arrays_are_taken_in_blocks() -> None:
     assert rate.shape == (300, 40)
     one = gap_flow.bob_rate(model.at((123, 0)), speeds, np.asarray(0.7))
     np.testing.assert_allclose(rate[123], one, rtol=1e-12)
+
+
+def test_gaps_of_every_shape_broadcast() -> None:
+    model = example("casson")
+    ratios = np.array([1e-4, 0.08, 0.7])
+    speed = gap_flow.angular_speed(model, np.asarray(20.0), ratios)
+    assert speed.shape == (3,)
+    table = gap_flow.angular_speed(model, np.array([[20.0], [30.0]]), ratios)
+    assert table.shape == (2, 3)
+    np.testing.assert_allclose(table[0], speed, rtol=1e-14)
+    for index, ratio in enumerate(ratios):
+        alone = gap_flow.angular_speed(model, np.asarray(20.0), np.asarray(ratio))
+        assert float(alone) == pytest.approx(speed[index], rel=1e-14)
+    draws = rheo.model("casson", yield_stress=[[8.0], [9.0]], casson_viscosity=1.0)
+    assert gap_flow.angular_speed(draws, np.asarray(20.0), ratios).shape == (2, 3)
+    assert gap_flow.bob_rate(draws, np.asarray(2.0), ratios).shape == (2, 3)

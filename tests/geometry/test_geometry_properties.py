@@ -268,3 +268,37 @@ def test_a_flow_that_a_levelling_curve_cannot_carry() -> None:
     np.testing.assert_array_equal(np.isinf(rate), [False, True])
     assert stress[1] == pytest.approx(20.0, rel=1e-9)
     assert np.all(np.isfinite(tube.predict(flat, [0.5 * bound, 1.5 * bound])))
+
+
+@pytest.mark.parametrize("geometry", WHOLE_RANGE[:5], ids=lambda geometry: geometry.key)
+def test_no_rate_has_no_setting_and_an_unknown_one_an_unknown(geometry: Geometry) -> None:
+    model = example("herschel-bulkley")
+    setting = geometry.setting_for_rate(model, [0.0, np.nan, 2.0])
+    assert setting.dtype == float
+    assert setting[0] == 0.0
+    assert np.isnan(setting[1])
+    alone = float(geometry.setting_for_rate(model, 2.0))
+    assert setting[2] == pytest.approx(alone, rel=1e-14)
+    assert float(geometry.setting_for_rate(model, 0.0)) == 0.0
+
+
+@pytest.mark.parametrize("key", sorted(PLACES))
+def test_whatever_is_an_array_gives_the_shape(key: str) -> None:
+    """Dimensions alone, the setting alone, the model alone; in every method."""
+    plain = make_geometry(key, **PLACES[key])
+    last = plain.record.dimension_keys[-1]
+    size = float(plain.dimensions[last])
+    varied = plain.replaced(**{last: [size, 1.01 * size + 1e-9, 1.02 * size + 2e-9]})
+    first = plain.record.dimension_keys[0]
+    size = float(plain.dimensions[first])
+    tall = plain.replaced(**{first: [[size], [0.99 * size]]})
+    model = _middle()
+    for geometry, shape in ((plain, ()), (varied, (3,)), (tall, (2, 1))):
+        setting = geometry.setting_for_rate(model, 20.0)
+        assert setting.shape == shape
+        one = float(plain.setting_for_rate(model, 20.0))
+        rate, stress = geometry.sheared(model, one)
+        assert rate.shape == stress.shape == shape
+        assert np.shape(geometry.predict(model, one)) == shape
+        rate, stress = geometry.sheared(model, np.full(3, one))
+        assert rate.shape == stress.shape == np.broadcast_shapes(shape, (3,))

@@ -12,7 +12,12 @@ from hypothesis import strategies as st
 import rheo
 from rheo import Model
 from rheo.geometry import tube_flow
-from rheo.geometry.curve_integrals import cumulative_from_top, integrate_below, moment_ratio
+from rheo.geometry.curve_integrals import (
+    cumulative_from_top,
+    integrate_below,
+    moment_ratio,
+    moment_ratio_by_quadrature,
+)
 
 
 @settings(deadline=None, max_examples=80, derandomize=True)
@@ -111,6 +116,44 @@ def test_a_bend_so_sharp_that_the_finest_panels_are_used(rate: float, k: int) ->
         top = stress(mpmath.mpf(rate)) ** (k + 1) * rate
         expected = float((top - rest) / (top * (k + 1)))
     assert float(moment_ratio(sharp, np.asarray(rate), k)) == pytest.approx(expected, rel=1e-11)
+
+
+def test_quadrature_alone_is_as_good_as_the_closed_forms() -> None:
+    """Also with a yield stress, and where the slope changes within a decade."""
+    for key in ("bingham", "herschel-bulkley", "casson"):
+        rates = np.geomspace(1e-4, 1e4, 17)
+        for k in (0, 1, 2):
+            found = moment_ratio_by_quadrature(example(key), rates, k)
+            np.testing.assert_allclose(found, moment_ratio(example(key), rates, k), rtol=1e-12)
+    sharp = rheo.model(
+        "carreau-yasuda",
+        zero_shear_viscosity=10.0,
+        infinite_shear_viscosity=0.0,
+        time_constant=10.0,
+        flow_index=0.1,
+        yasuda_exponent=10.0,
+    )
+    at = np.asarray(0.1)
+    exact = float(moment_ratio(sharp, at, 2))
+    assert float(moment_ratio_by_quadrature(sharp, at, 2)) == exact
+    assert abs(float(moment_ratio_by_quadrature(sharp, at, 2, rough=True)) / exact - 1) > 1e-13
+
+
+@pytest.mark.parametrize("shape", [(), (2,), (2, 3)])
+def test_cumulative_integrals_of_any_shape(shape: tuple[int, ...]) -> None:
+    """∫e^(2y)dy from each node up to 0 is (1 - e^(2y))/2, along the last axis."""
+    nodes = []
+
+    def integrand(_: Model, node_rate: np.ndarray, level: int) -> np.ndarray:
+        nodes.append((level, node_rate[0]))
+        return node_rate
+
+    integrate_below(example("newtonian"), np.asarray(1.0), integrand)
+    level, rate = nodes[1]
+    factor = np.arange(1.0, 1.0 + np.prod(shape, dtype=int)).reshape(shape)[..., np.newaxis]
+    above = cumulative_from_top(factor * rate**2, level)
+    assert above.shape == (*shape, rate.size)
+    np.testing.assert_allclose(above, factor * (1 - rate**2) / 2, atol=1e-12)
 
 
 # Around the bend at 1/λ, and out to the largest rate.
