@@ -259,6 +259,7 @@ class CaseResult:
                 self.flow,
                 geometry=geometry,
                 state=self.product.solids_fraction,
+                thickness=float(self.case.product.stress_factor or 1.0),
                 method=self.case.line.friction_method,
             )
         except InputError:

@@ -157,7 +157,7 @@ def doubt_budget(
         (
             "friction-method",
             "Friction method",
-            _of_methods(line, product, flow, lambda key: pressure(method_=key)),
+            _of_methods(line, product, flow, method, lambda key: pressure(method_=key)),
         ),
         (
             "density",
@@ -254,12 +254,20 @@ def _of_product(
 
 
 def _of_methods(
-    line: Line, product: Product, flow: float, pressure: Callable[[str], FloatArray]
+    line: Line,
+    product: Product,
+    flow: float,
+    method: str | None,
+    pressure: Callable[[str], FloatArray],
 ) -> float:
-    """Standard deviation [Pa] of the methods that count in every pipe of the line."""
+    """Standard deviation [Pa] of the methods that count in every pipe of the line.
+
+    The one in use always does; another only where it is made for the flow curve and lies in its
+    range at the pipe's flow index and Reynolds number.
+    """
     model = product.model_at(product.temperature)
     keys = {key for key, record in turbulent_methods().items() if record.applies(model)}
-    for step in walk(line, product, flow).steps:
+    for step in walk(line, product, flow, method=method).steps:
         if step.kind == "pipe" and step.flow is not None:
             keys &= {key for key, counts in step.flow.method_counts.items() if np.all(counts)}
     values = np.array([float(pressure(key)) for key in sorted(keys)])

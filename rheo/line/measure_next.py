@@ -105,6 +105,7 @@ def measure_next(
     count: int = 2,
     state: float | None = None,
     method: str | None = None,
+    thickness: float = 1.0,
 ) -> NextReadings:
     """Rank the speeds at which further readings would narrow the pressure drop most.
 
@@ -130,6 +131,8 @@ def measure_next(
         For fits over solids fractions the product's fraction; the reference when absent.
     method : str, optional
         Turbulent friction method.
+    thickness : float
+        Stress of the product in the line over that of the product that is measured [-].
 
     Returns
     -------
@@ -149,7 +152,9 @@ def measure_next(
     likely = [fit for fit in fits if fit.weight >= _LEAST_WEIGHT]
     model = model_at(fits.best, product, state)
     candidates = _candidates(fits.best, model, geometry, settings)
-    found = [rival(fit, line, product, flow, candidates, state, method) for fit in likely]
+    found = [
+        rival(fit, line, product, flow, candidates, state, method, thickness) for fit in likely
+    ]
     rivals = [one for one in found if one is not None]
     if not rivals:
         raise InputError(

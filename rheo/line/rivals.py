@@ -17,6 +17,7 @@ from rheo.errors import InputError
 from rheo.fitting.scaling import ScaledProblem
 from rheo.line.parts import FloatArray, Line
 from rheo.line.product import FlowCurveSource, Product
+from rheo.line.thickness import thicker_curve
 from rheo.line.walk import walk
 from rheo.models import Model
 
@@ -120,6 +121,7 @@ def rival(
     candidates: Candidates,
     state: float | None = None,
     method: str | None = None,
+    thickness: float = 1.0,
 ) -> Rival | None:
     """Return a fitted model as a rival.
 
@@ -136,6 +138,8 @@ def rival(
         For a fit over solids fractions the product's fraction; the reference when absent.
     method : str, optional
         Turbulent friction method.
+    thickness : float
+        Stress of the product in the line over that of the product that is measured [-].
 
     Returns
     -------
@@ -156,7 +160,8 @@ def rival(
     _, singular, directions = np.linalg.svd(scaled, full_matrices=False)
     moved, width = _moved(fit, values, free)
     source = curve_at(fit, moved, state)
-    logs = _log_pressures(line, product, flow, source, moved.shape[0], method)
+    pumped = source if thickness == 1.0 else thicker_curve(source, thickness)
+    logs = _log_pressures(line, product, flow, pumped, moved.shape[0], method)
     pull = directions @ ((logs[1::2] - logs[2::2]) / width / scale)
     seen = singular > _UNSEEN * singular[0]
     if np.any(np.abs(pull[~seen]) > _NO_MATTER * np.abs(pull).max()):

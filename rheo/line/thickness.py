@@ -38,13 +38,14 @@ def thicker(product: Product, factor: float) -> Product:
     static = product.static_yield_stress
     return replace(
         product,
-        model=_scaled(product.model, factor),
-        draws=tuple(_scaled(source, factor) for source in product.draws),
+        model=thicker_curve(product.model, factor),
+        draws=tuple(thicker_curve(source, factor) for source in product.draws),
         static_yield_stress=None if static is None else np.asarray(static) * factor,
     )
 
 
-def _scaled(source: FlowCurveSource, factor: float) -> FlowCurveSource:
+def thicker_curve(source: FlowCurveSource, factor: float) -> FlowCurveSource:
+    """Return a flow curve with `factor` times the stress [-], in the kind that it was given."""
     if isinstance(source, Model):
         return scaled(source, factor)
     if isinstance(source, ScaledCurve):

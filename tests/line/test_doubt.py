@@ -118,3 +118,55 @@ def test_nothing_in_doubt_is_said() -> None:
 def test_doubts_are_not_negative() -> None:
     with pytest.raises(rheo.InputError, match=r"doubts: flow is -0\.1; it must be 0 or more"):
         Doubts(flow=-0.1)
+
+
+@pytest.mark.parametrize(
+    ("model", "density", "flow", "left_out"),
+    [
+        # Below a Hedstrom number of 1e5 Darby and Melson's equation is far off.
+        (
+            ("bingham", {"yield_stress": 0.5, "plastic_viscosity": 4e-3}),
+            1100.0,
+            6e-3,
+            "darby-melson",
+        ),
+        # Dodge and Metzner's range ends at a flow index of 0.36.
+        (
+            ("herschel-bulkley", {"yield_stress": 0.2, "consistency": 0.6, "flow_index": 0.3}),
+            1100.0,
+            1.2e-2,
+            "dodge-metzner",
+        ),
+    ],
+)
+def test_a_method_outside_its_range_does_not_widen_the_doubt(
+    model: tuple[str, dict[str, float]], density: float, flow: float, left_out: str
+) -> None:
+    key, parameters = model
+    product = Product(rheo.model(key, **parameters), density)
+    line = Line(discharge=(Pipe(50.0, 0.05),))
+    velocity = flow / (0.25 * np.pi * 0.05**2)
+    pipe = rheo.pipe_flow(product.model, 0.05, velocity, density)
+    assert pipe.regime == "turbulent"
+    counted = [name for name, counts in pipe.method_counts.items() if counts]
+    assert left_out in pipe.method_counts
+    assert left_out not in counted
+    alone = [
+        float(rheo.solve_line(line, product, flow, method=name).differential_pressure)
+        for name in counted
+    ]
+    assert len(alone) > 1
+    found = _share(rheo.doubt_budget(line, product, flow, NOTHING), "friction-method")
+    by_hand = float(np.std(alone, ddof=1))
+    assert found.standard_deviation == pytest.approx(by_hand, rel=1e-9)  # type: ignore[attr-defined]
+
+
+def test_the_method_in_use_always_counts() -> None:
+    """Named, Dodge and Metzner's equation counts beyond its range, as it makes the pressure."""
+    product = Product(
+        rheo.model("herschel-bulkley", yield_stress=0.2, consistency=0.6, flow_index=0.3), 1100.0
+    )
+    line = Line(discharge=(Pipe(50.0, 0.05),))
+    named = rheo.doubt_budget(line, product, 1.2e-2, NOTHING, "dodge-metzner")
+    usual = rheo.doubt_budget(line, product, 1.2e-2, NOTHING)
+    assert named.standard_deviation > 1.05 * usual.standard_deviation

@@ -11,7 +11,8 @@ import pytest
 import rheo
 from rheo.fitting import fit
 from rheo.fitting.temperature import fit_temperatures
-from rheo.line import Line, Pipe, Product
+from rheo.line import Line, Pipe, Product, Vessel
+from rheo.line.thickness import thicker
 from rheo.line.walk import walk
 
 TRUTH = rheo.model("herschel-bulkley", yield_stress=8.0, consistency=3.0, flow_index=0.45)
@@ -249,3 +250,39 @@ def test_a_line_that_runs_by_itself_has_nothing_to_narrow() -> None:
     falling = Line(discharge=(Pipe(10.0, 0.2, rise=-10.0),))
     with pytest.raises(rheo.InputError, match="the line needs no pressure at this flow"):
         rheo.measure_next(fits, falling, PRODUCT, 1e-4)
+
+
+def test_the_pressure_is_that_of_the_product_as_pumped() -> None:
+    """With a height in it, more stress makes the part of the pressure that is in doubt larger."""
+    rates = np.geomspace(1.0, 100.0, 9)
+    wobble = np.where(np.arange(9) % 2, 1.02, 0.98)
+    fits = rheo.fit(rheo.FlowCurve(rates, 8.0 * rates**0.4 * wobble), "power-law")
+    line = Line(discharge=(Pipe(20.0, 0.05, rise=10.0),))
+    product = Product(fits.best.model, 1100.0)
+    flow = 1e-3
+    halves = []
+    for factor in (1.0, 3.0):
+        found = rheo.measure_next(fits, line, product, flow, thickness=factor)
+        solved = rheo.solve_line(line, thicker(product, factor), flow)
+        share = float(solved.friction_pressure / solved.differential_pressure)
+        halves.append(found.half_width / share)
+    # In laminar flow the doubt of the friction itself does not change with the factor.
+    assert halves[1] == pytest.approx(halves[0], rel=1e-6)
+
+
+def test_the_factors_of_a_spindle_are_counted_in() -> None:
+    """A spindle that twists harder for the same stress tells the same, at the same speeds."""
+    speeds = np.geomspace(0.1, 20.0, 9)
+    wobble = np.where(np.arange(9) % 2, 1.02, 0.98)
+    truth = rheo.model("power-law", consistency=5.0, flow_index=0.5)
+    line = Line(discharge=(Pipe(20.0, 0.05, rise=2.0), Vessel()))
+    found = []
+    for factor in (1e4, 1e6):
+        spindle = rheo.geometry("spindle", rate_factor=2.3, stress_factor=factor)
+        torque = spindle.predict(truth, speeds) * wobble
+        readings = rheo.Readings(geometry=spindle, angular_speed=speeds, torque=torque)
+        fits = rheo.fit(readings, ["power-law", "bingham"], weighting="absolute")
+        found.append(rheo.measure_next(fits, line, Product(fits.best.model, 1100.0), 1e-3))
+    assert found[1].half_width == pytest.approx(found[0].half_width, rel=1e-5)
+    assert found[1].best.setting == pytest.approx(found[0].best.setting)
+    assert found[1].best.half_width == pytest.approx(found[0].best.half_width, rel=1e-5)
