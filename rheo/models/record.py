@@ -233,7 +233,8 @@ class Model:
     def jacobian(self, rate: ArrayLike) -> FloatArray:
         """Return d stress/d parameter at a shear rate; parameters along a new last axis."""
         rate = _not_negative(rate, "shear rate")
-        columns = np.broadcast_arrays(*self.record.jacobian(rate, *self))
+        shape = np.broadcast_shapes(rate.shape, self.shape)
+        columns = [np.broadcast_to(one, shape) for one in self.record.jacobian(rate, *self)]
         return np.stack(columns, axis=-1)
 
     def with_new_axis(self) -> Model:
