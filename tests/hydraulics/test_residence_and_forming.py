@@ -132,3 +132,50 @@ def test_in_transition_the_longer_length_counts():
     expected = 0.05 * 4.4 * 100_000 ** (1 / 6)
     assert developing_length(turbulent).length == pytest.approx(expected, rel=1e-12)
     assert developing_length(turbulent).cautions == ()
+
+
+@pytest.mark.parametrize("diameter", [0.05, 0.4])
+def test_the_turbulent_profile_is_the_logarithm_with_a_straight_line_at_the_wall(diameter):
+    flow = rheo.pipe_flow(WATER, diameter, 2.0, 1000.0)
+    assert flow.regime == "turbulent"
+    core = np.linspace(0.0, 0.95, 20)
+    expected = 2.0 * _log_profile(flow.friction_factor)(1.0 - core)
+    np.testing.assert_allclose(velocity_profile(flow, core), expected, rtol=1e-12)
+    for step in (1e-7, 1e-6):
+        near = velocity_profile(flow, [1.0 - step])[0]
+        assert near / (step * 0.5 * diameter) == pytest.approx(flow.wall_rate, rel=1e-8)
+    # At the wall shear rate the stress of the flow curve is the wall stress.
+    assert flow.wall_rate * 0.001 == pytest.approx(flow.wall_stress, rel=1e-12)
+
+
+def test_profiles_of_all_regimes_in_one_call():
+    velocity = np.array([0.01, 0.06, 2.0])
+    flows = rheo.pipe_flow(WATER, 0.05, velocity, 1000.0)
+    assert flows.regime.tolist() == ["laminar", "transition", "turbulent"]
+    places = np.array([0.0, 0.3, 0.9, 1.0])
+    table = velocity_profile(flows, places)
+    forced = rheo.pipe_flow(WATER, 0.05, velocity, 1000.0, regime="laminar")
+    laminar = 2 * velocity[:, None] * (1 - places**2)
+    np.testing.assert_allclose(velocity_profile(forced, places), laminar, rtol=1e-12)
+    for row, speed in enumerate(velocity):
+        alone = velocity_profile(rheo.pipe_flow(WATER, 0.05, speed, 1000.0), places)
+        np.testing.assert_allclose(table[row], alone, rtol=1e-12)
+    weight = flows.turbulence[1]
+    logarithmic = 0.06 * _log_profile(flows.friction_factor[1])(1 - places[:3])
+    mixed = (1 - weight) * laminar[1, :3] + weight * logarithmic
+    np.testing.assert_allclose(table[1, :2], mixed[:2], rtol=1e-12)
+
+
+def test_times_of_all_regimes_in_one_call():
+    velocity = np.array([0.01, 0.06, 2.0])
+    flows = rheo.pipe_flow(WATER, 0.05, velocity, 1000.0)
+    shares = fraction_faster_than_mean(flows)
+    curves = residence_curve(flows, 30)
+    lengths = developing_length(flows).length
+    for row, speed in enumerate(velocity):
+        alone = rheo.pipe_flow(WATER, 0.05, speed, 1000.0)
+        assert shares[row] == pytest.approx(fraction_faster_than_mean(alone), rel=1e-12)
+        assert lengths[row] == pytest.approx(developing_length(alone).length, rel=1e-12)
+        one = residence_curve(alone, 30)
+        np.testing.assert_allclose(curves.time_ratio[row], one.time_ratio, rtol=1e-10)
+        np.testing.assert_allclose(curves.fraction_left[row], one.fraction_left, atol=1e-13)
