@@ -83,16 +83,11 @@ def html(found: tuple[Cell, ...]) -> str:
 
 
 def _pressure(result: CaseResult, system: str) -> Cell:
-    line = result.line
+    friction = display.text(float(result.line.friction_pressure), "pressure", system)
     return Cell(
-        "Pressure drop (friction)",
-        words.with_interval(
-            line.friction_pressure, line.friction_pressure_interval, "pressure", system
-        ),
-        "pump adds "
-        + words.with_interval(
-            line.differential_pressure, line.differential_pressure_interval, "pressure", system
-        ),
+        "Pressure that the pump adds",
+        words.pressure_in_doubt(result, system),
+        f"friction {friction}; ± by all causes",
     )
 
 

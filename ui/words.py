@@ -20,6 +20,12 @@ def with_interval(value: Any, interval: Any, quantity: str, system: str) -> str:
     return display.text(float(value), quantity, system, float(interval[0]), float(interval[1]))
 
 
+def pressure_in_doubt(result: CaseResult, system: str) -> str:
+    """Return the pressure that the pump adds with its 95 % interval by all causes."""
+    budget = result.doubt
+    return with_interval(budget.pressure, budget.interval, "pressure", system)
+
+
 def count(number: int, one: str, many: str = "") -> str:
     """Return ``1 reading`` or ``3 readings``."""
     return f"{number} {one if number == 1 else many or one + 's'}"
@@ -94,9 +100,7 @@ def walk_states(
         f"{count(len(line.parts), 'part')}, "
         f"{display.text(metres, 'length', system, digits=2)} of pipe"
     )
-    states["pressure"] = with_interval(
-        line.friction_pressure, line.friction_pressure_interval, "pressure", system
-    )
+    states["pressure"] = pressure_in_doubt(result, system)
     states["sizes"] = ", ".join(line_sizes(result))
     cautions = len(result.cautions)
     states["note"] = count(cautions, "caution") if cautions else "no cautions"

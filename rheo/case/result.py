@@ -278,6 +278,7 @@ class CaseResult:
             "pressure_drop_interval": plain(line.friction_pressure_interval),
             "differential_pressure": plain(line.differential_pressure),
             "differential_pressure_interval": plain(line.differential_pressure_interval),
+            "differential_pressure_total_interval": plain(self.doubt.interval),
             "wall_rate": None if self.wall_rates is None else self.wall_rates[1],
             "wall_rates": plain(self.wall_rates),
             "measured_rates": plain(self.product.measured_rates),

@@ -82,7 +82,7 @@ def show_answer(
     """Write the answer in a sentence, with all its doubt, before all that it rests on."""
     from rheo.report.display import text
 
-    low, high = _interval(budget)
+    low, high = budget.interval
     flow = terminal.given(float(result.flow), "flow", units)
     if budget.pressure < 0:
         whole = text(-budget.pressure, "pressure", units, -high, -low)
@@ -195,17 +195,12 @@ def _regime(part: PartResult) -> Text:
     return words
 
 
-def _interval(budget: DoubtBudget) -> tuple[float, float]:
-    half = 1.96 * budget.standard_deviation
-    return budget.pressure - half, budget.pressure + half
-
-
 def show_doubt(out: Console, budget: DoubtBudget, units: str) -> None:
     """Write the doubt budget as bars, the largest first."""
     from rheo.report.display import text
 
     terminal.heading(out, "What makes the pressure uncertain")
-    whole = text(budget.pressure, "pressure", units, *_interval(budget))
+    whole = text(budget.pressure, "pressure", units, *budget.interval)
     terminal.sentence(out, f"{budget.sentence} With all of it: {whole} (95 %).", units=units)
     rows = []
     for one in budget.shares:

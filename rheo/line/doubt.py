@@ -20,6 +20,7 @@ from rheo.models import Model
 _EVEN = 1.0 / np.sqrt(3.0)
 # One wild draw in a thousand would outweigh all others in a variance: the middle 99 % count.
 _KEPT = 0.99
+_TWO_SIDED_95 = 1.96
 
 
 @dataclass(frozen=True)
@@ -96,6 +97,12 @@ class DoubtBudget:
     shares: tuple[DoubtShare, ...]
     sentence: str
     cautions: tuple[Caution, ...]
+
+    @property
+    def interval(self) -> tuple[float, float]:
+        """Ends of the 95 % interval of the pressure by all causes together [Pa]."""
+        half = _TWO_SIDED_95 * self.standard_deviation
+        return self.pressure - half, self.pressure + half
 
     @property
     def chart(self) -> tuple[tuple[str, ...], tuple[float, ...]]:

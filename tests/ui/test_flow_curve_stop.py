@@ -84,8 +84,8 @@ def test_the_comparison_is_of_the_results() -> None:
     result = run_case(case)
     rows = comparison(result, result, "metric")
     assert [row[0] for row in rows] == [
-        "Pressure drop (friction)",
-        "Pump adds",
+        "Pressure that the pump adds",
+        "Friction in it",
         "Wall shear rate",
         "Start-up pressure",
     ]

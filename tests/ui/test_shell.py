@@ -25,14 +25,14 @@ STOPS = [stop.key for stop in walk.STOPS]
 def test_a_first_visit_shows_the_sample_worked_through(page: Page) -> None:
     names = [name for name, _, _ in page.strip()]
     assert names == [
-        "Pressure drop (friction)",
+        "Pressure that the pump adds",
         "Wall shear rate",
         "Regime",
         "Size",
         "Start-up pressure",
     ]
     values = {name: (value, note) for name, value, note in page.strip()}
-    assert re.fullmatch(r"[\d.]+ ± [\d.]+ bar", values["Pressure drop (friction)"][0])
+    assert re.fullmatch(r"[\d.]+ ± [\d.]+ bar", values["Pressure that the pump adds"][0])
     assert values["Wall shear rate"][1] == "✓ inside the measured range"
     assert values["Regime"][0] == "laminar"
     assert values["Size"][0] == "51 mm"

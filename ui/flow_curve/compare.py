@@ -92,18 +92,20 @@ def show_return(result: CaseResult) -> None:
 def comparison(result: CaseResult, other: CaseResult, system: str) -> list[list[str]]:
     """Return what changes with another result: name, before, after, change in percent."""
     both = (result, other)
-    rows = []
-    for name, key in (
-        ("Pressure drop (friction)", "friction_pressure"),
-        ("Pump adds", "differential_pressure"),
-    ):
-        values = [getattr(one.line, key) for one in both]
-        intervals = [getattr(one.line, f"{key}_interval") for one in both]
-        texts = [
-            words.with_interval(value, interval, "pressure", system)
-            for value, interval in zip(values, intervals, strict=True)
-        ]
-        rows.append([name, *texts, change(*map(float, values))])
+    adds = [one.doubt.pressure for one in both]
+    friction = [float(one.line.friction_pressure) for one in both]
+    rows = [
+        [
+            "Pressure that the pump adds",
+            *(words.pressure_in_doubt(one, system) for one in both),
+            change(*adds),
+        ],
+        [
+            "Friction in it",
+            *(display.text(value, "pressure", system) for value in friction),
+            change(*friction),
+        ],
+    ]
     rates = [0.0 if one.wall_rates is None else one.wall_rates[1] for one in both]
     rows.append(
         ["Wall shear rate", *(wall_rate_words(one, system) for one in both), change(*rates)]

@@ -19,37 +19,27 @@ from rheo.report.case_pictures import (
 from rheo.report.document import Facts, Figure, Paragraph, Section
 from rheo.report.numbers import number
 from rheo.report.restate import restated
-from rheo.report.sections.pressure import pressure_section
+from rheo.report.sections.pressure import duty_blocks
 from rheo.report.sections.profile import profile_facts
 from rheo.report.sections.regimes import regime_sentence, regimes_table
 from rheo.report.sections.starting import start_up_section
 from rheo.report.sections.system import system_section
 from rheo.report.words import capital, percent
-from ui import blocks, cautions, guard, pictures, state, style, table
+from ui import blocks, cautions, guard, pictures, places, state, style, table
 from ui.pressure import holding
 from ui.shear_rates import line_rates
 
-# What makes the pressure itself doubtful stands right under it; the rest stands in its own view.
-_UNDER_THE_PRESSURE = (
-    *("outside-measured-range", "measured-range-unknown"),
-    *("temperature-not-in-model", "outside-temperature-range", "temperature-of-readings"),
-    *("outside-measured-fraction", "solids-of-readings", "solids-not-in-model"),
-    "solids-not-given",
-    *("product-not-as-measured", "equipment-loss-as-given", "viscous-heating"),
-    *("transition-flow", "no-turbulent-solution", "outside-method-range", "friction-method"),
-    *("roughness-rule", "very-rough", "forced-regime"),
-    *("settles-at-rest", "below-deposition-velocity", "laminar-settling"),
-)
 # How many models of the ranking stand with their pressures.
 _MODELS = 5
 
 
 @dataclass(frozen=True)
 class View:
-    """One view: its name, what draws it, and the safety sentences that it needs besides."""
+    """One view: name, what draws it, where its Cautions are listed, safety sentences besides."""
 
     name: str
     draw: Callable[[CaseResult], None]
+    place: str = ""
     safety: tuple[str, ...] = ()
 
 
@@ -61,7 +51,7 @@ def show(result: CaseResult) -> None:
         list(VIEWS),
         default="line",
         required=True,
-        format_func=lambda key: VIEWS[key].name,
+        format_func=lambda key: _title(VIEWS[key], result),
         key=state.key("pressure.view"),
         label_visibility="collapsed",
     )
@@ -72,9 +62,15 @@ def show(result: CaseResult) -> None:
     cautions.safety("pressure", "start-up", *view.safety)
 
 
+def _title(view: View, result: CaseResult) -> str:
+    """Return the name of a view, marked where Cautions stand in it."""
+    warns = view.place and places.at(view.place, result)
+    return f"{view.name} :material/warning:" if warns else view.name
+
+
 def show_cautions(result: CaseResult) -> None:
     """Draw what makes the pressure itself doubtful."""
-    cautions.show(result.cautions, codes=_UNDER_THE_PRESSURE)
+    cautions.show(places.at("pressure", result))
 
 
 def text(words: str, kind: str = "lead") -> None:
@@ -110,16 +106,13 @@ def _show_line(result: CaseResult) -> None:
     picture = pressure_picture(result, state.system())
     pictures.show(picture, "pressure.line", title=False)
     st.caption(style.plain(picture.description))
-    cautions.show(
-        result.cautions,
-        codes=("below-vapour-pressure", "npsh-negative", "npsh-unknown", "runs-by-itself"),
-    )
+    cautions.show(places.at("pressure.line", result))
     _show_facts(result)
 
 
 def _show_facts(result: CaseResult) -> None:
     """Draw the facts of the duty in two columns, and what their intervals hold."""
-    found = pressure_section(result.line, None, None, state.system()).blocks
+    found = duty_blocks(result.line, result.doubt, state.system())
     rows = [row for one in found if isinstance(one, Facts) for row in one.rows]
     half = (len(rows) + 1) // 2
     for column, part in zip(st.columns(2, gap="large"), (rows[:half], rows[half:]), strict=True):
@@ -136,6 +129,8 @@ def _show_system(result: CaseResult) -> None:
         result.system_curve, result.line, result.operating, result.line.start_up.rating, system
     )
     show_section(section, "pressure.system")
+    shown = () if result.operating is None else result.operating.cautions
+    cautions.show(one for one in places.at("pressure.system", result) if one not in shown)
 
 
 def _show_regime(result: CaseResult) -> None:
@@ -180,7 +175,11 @@ def _show_rates(result: CaseResult) -> None:
 
 
 def _show_start_up(result: CaseResult) -> None:
-    show_section(start_up_section(result.line.start_up, state.system()), "pressure.start")
+    start_up = result.line.start_up
+    show_section(start_up_section(start_up, state.system()), "pressure.start")
+    cautions.show(
+        one for one in places.at("pressure.start", result) if one not in start_up.cautions
+    )
 
 
 def _show_doubt(result: CaseResult) -> None:
@@ -233,11 +232,11 @@ def by_model(result: CaseResult, system: str) -> list[table.Row]:
 
 
 VIEWS = {
-    "line": View("Along the line", _show_line),
-    "system": View("System and pump", _show_system),
+    "line": View("Along the line", _show_line, "pressure.line"),
+    "system": View("System and pump", _show_system, "pressure.system"),
     "regime": View("Regime and profile", _show_regime),
     "rates": View("Shear rates", _show_rates),
-    "start": View("Start-up", _show_start_up),
+    "start": View("Start-up", _show_start_up, "pressure.start"),
     "doubt": View("Doubt", _show_doubt),
-    "holding": View("Holding and cleaning", holding.show, ("food-safety",)),
+    "holding": View("Holding and cleaning", holding.show, safety=("food-safety",)),
 }

@@ -273,15 +273,11 @@ def _forget() -> None:
 def lead(result: CaseResult, system: str) -> str:
     """Return what the pump must add, and of what it is made, in a sentence."""
     line = result.line
-    adds = words.with_interval(
-        line.differential_pressure, line.differential_pressure_interval, "pressure", system
-    )
-    friction = words.with_interval(
-        line.friction_pressure, line.friction_pressure_interval, "pressure", system
-    )
+    adds = words.pressure_in_doubt(result, system)
+    friction = display.text(float(line.friction_pressure), "pressure", system)
     static = display.text(float(line.static_pressure), "pressure", system)
     flow = display.text(result.flow, "flow", system)
     return (
-        f"At {flow} the pump must add {adds}: {friction} of friction and {static} for heights and "
-        "vessels."
+        f"At {flow} the pump must add {adds} (95 %, by all causes): {friction} of friction and "
+        f"{static} for heights and vessels."
     )

@@ -8,14 +8,8 @@ from rheo.case import CaseResult
 from rheo.report.case_pictures import flow_curve_picture, residuals_picture
 from rheo.report.sections.fitted import parameter_table
 from rheo.report.words import capital
-from ui import answer_strip, blocks, cautions, pictures, state, style, walk, words
+from ui import answer_strip, blocks, cautions, pictures, places, state, style, walk, words
 from ui.flow_curve import compare, how, measure, ranking
-
-# Cautions of a flow curve used at another temperature or with other solids than it was measured.
-_OTHER_STATE = (
-    *("temperature-of-readings", "solids-of-readings", "solids-not-in-model"),
-    *("solids-not-given", "outside-measured-fraction"),
-)
 
 
 def show() -> None:
@@ -53,9 +47,11 @@ def _show_result(result: CaseResult) -> None:
     with right:
         if other is result:
             compare.show_return(result)
-        cautions.show(looked_at.cautions)
-        cautions.show(result.fits.data_cautions)
-        cautions.show(cautions.of(result.cautions, codes=_OTHER_STATE))
+        of_fit = (*looked_at.cautions, *places.of_fit(result), *places.at("flow_curve", result))
+        if looked_at.key != result.chosen.key:
+            of_fit = tuple(one for one in of_fit if one not in result.chosen.cautions)
+        readings = places.of_readings(result)
+        cautions.show(one for one in dict.fromkeys(of_fit) if one not in readings)
     ranking.show(result.fits, result.chosen, ranking.pressures_of(result))
     with st.expander("Parameters, with their intervals", expanded=True):
         blocks.show(parameter_table(looked_at), "parameters")

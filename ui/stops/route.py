@@ -7,21 +7,8 @@ import streamlit as st
 from rheo.case import CaseResult
 from rheo.report.case_pictures import drawing_picture
 from rheo.report.sections.route import breakdown_table, pipes_table
-from ui import answer_strip, blocks, cautions, pictures, state, walk
+from ui import answer_strip, blocks, cautions, pictures, places, state, walk
 from ui.route import detail, duty, editor, ends, parts, pump
-
-_CODES = (
-    "outside-measured-range",
-    "temperature-not-in-model",
-    "outside-temperature-range",
-    "viscous-heating",
-    "runs-by-itself",
-    "npsh-unknown",
-    "npsh-negative",
-    "below-vapour-pressure",
-    "suction-will-not-start",
-    "start-up-equipment",
-)
 
 
 def show() -> None:
@@ -41,7 +28,7 @@ def show() -> None:
             editor.show(side, sizes)
             ends.show(side)
     if result is not None:
-        cautions.show(result.cautions, codes=_CODES)
+        cautions.show(places.at("route", result))
     with st.expander("One part in detail: order, temperature, roughness", expanded=False):
         detail.show()
     with st.expander("Pump", expanded=False):

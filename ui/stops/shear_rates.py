@@ -7,7 +7,7 @@ import streamlit as st
 from rheo.case import CaseResult
 from rheo.report.case_pictures import shear_rates_picture, wall_rate_words
 from rheo.report.numbers import number
-from ui import answer_strip, cautions, pictures, state, style, walk
+from ui import answer_strip, cautions, pictures, places, state, style, walk
 from ui.shear_rates import converter, line_rates
 
 
@@ -18,7 +18,7 @@ def show() -> None:
     st.html(f'<p class="rheo-text lead">{style.escape(_answer(result))}</p>')
     pictures.show(shear_rates_picture(result, state.system()), "shear_rates", title=False)
     line_rates.show(result)
-    cautions.show(result.cautions, codes=("outside-measured-range",))
+    cautions.show(places.at("shear_rates", result))
     st.subheader("Converter")
     converter.show(result)
     cautions.safety("pressure", "start-up")

@@ -8,7 +8,7 @@ from rheo.case import CaseResult
 from rheo.line.sizing import Sizing
 from rheo.report.case_pictures import currency, sizes_picture
 from rheo.report.sections.sizes import sizes_table
-from ui import answer_strip, blocks, cautions, pictures, state, table, walk, work
+from ui import answer_strip, blocks, cautions, pictures, places, state, table, walk, work
 from ui.sizes import choice, limits
 
 
@@ -21,6 +21,7 @@ def show() -> None:
         _show_sizing(result, found.value)
     elif found is not None and found.problem is not None:
         cautions.complaint(state.sentence(found.problem))
+    cautions.show(places.at("sizes", result))
     _show_inputs(result)
     cautions.safety("pressure", "start-up", "food-safety")
     walk.onward("sizes")

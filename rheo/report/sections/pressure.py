@@ -12,16 +12,14 @@ from rheo.report.numbers import number
 from rheo.report.restate import restated
 
 
-def pressure_text(line: LineResult, system: str) -> str:
-    """Return the differential pressure with its interval in words."""
-    ends = line.differential_pressure_interval
-    low, high = (None, None) if ends is None else (float(ends[0]), float(ends[1]))
-    return text(float(line.differential_pressure), "pressure", system, low, high)
+def pressure_text(budget: DoubtBudget, system: str) -> str:
+    """Return the pressure that the pump adds with its 95 % interval by all causes."""
+    return text(budget.pressure, "pressure", system, *budget.interval)
 
 
 def pressure_section(
     line: LineResult,
-    budget: DoubtBudget | None,
+    budget: DoubtBudget,
     following: NextReadings | None,
     system: str,
 ) -> Section:
@@ -31,7 +29,7 @@ def pressure_section(
     ----------
     line : LineResult
         At the duty.
-    budget : DoubtBudget or None
+    budget : DoubtBudget
         What makes it uncertain.
     following : NextReadings or None
         What to measure next.
@@ -43,12 +41,37 @@ def pressure_section(
     Section
         With the doubt budget as a figure and a table.
     """
-    ends = line.friction_pressure_interval
-    low, high = (None, None) if ends is None else (float(ends[0]), float(ends[1]))
+    blocks = duty_blocks(line, budget, system)
+    blocks += _budget(budget, system)
+    if following is not None:
+        blocks.append(Paragraph(restated(following.sentence, system)))
+        if following.cautions:
+            blocks.append(Cautions(following.cautions))
+    return Section("Pressure drop", tuple(blocks))
+
+
+def duty_blocks(line: LineResult, budget: DoubtBudget, system: str) -> list[Block]:
+    """Return the facts of the duty, and what their intervals hold.
+
+    Parameters
+    ----------
+    line : LineResult
+        At the duty.
+    budget : DoubtBudget
+        What makes its pressure uncertain.
+    system : str
+        Unit system.
+
+    Returns
+    -------
+    list of Block
+        Facts, and where there are draws a paragraph.
+    """
     rows = [
         ("Flow", text(float(line.flow), "flow", system)),
-        ("Pressure that the pump adds", pressure_text(line, system)),
-        ("including friction", text(float(line.friction_pressure), "pressure", system, low, high)),
+        ("Pressure that the pump adds", pressure_text(budget, system)),
+        ("the same, by readings and model choice alone", _of_the_product(line, system)),
+        ("including friction", text(float(line.friction_pressure), "pressure", system)),
         ("including heights and vessels", text(float(line.static_pressure), "pressure", system)),
         ("including kinetic energy", text(float(line.kinetic_pressure), "pressure", system)),
         ("Gauge pressure before the pump", text(float(line.suction_pressure), "pressure", system)),
@@ -67,20 +90,20 @@ def pressure_section(
     if line.draws is not None:
         blocks.append(
             Paragraph(
-                f"The intervals hold the middle 95 % of {line.draws.shape[-1]} likely flow curves: "
-                "draws from the fits, the models mixed by their weights, each taken through the "
-                "same calculation. They hold the doubt in the product, not that in the other "
-                "inputs; the budget holds both.",
+                "The first interval is the 95 % interval by all causes of the budget below. The "
+                f"second holds the middle 95 % of {line.draws.shape[-1]} likely flow curves: draws "
+                "from the fits, the models mixed by their weights, each taken through the same "
+                "calculation; it holds the doubt in the product alone.",
                 "small",
             )
         )
-    if budget is not None:
-        blocks += _budget(budget, system)
-    if following is not None:
-        blocks.append(Paragraph(restated(following.sentence, system)))
-        if following.cautions:
-            blocks.append(Cautions(following.cautions))
-    return Section("Pressure drop", tuple(blocks))
+    return blocks
+
+
+def _of_the_product(line: LineResult, system: str) -> str:
+    ends = line.differential_pressure_interval
+    low, high = (None, None) if ends is None else (float(ends[0]), float(ends[1]))
+    return text(float(line.differential_pressure), "pressure", system, low, high)
 
 
 def _optional(value: object, quantity: str, system: str) -> str:

@@ -49,8 +49,8 @@ def answer_cells(
     cells = [
         (
             "Pressure that the pump adds",
-            pressure_text(line, system),
-            f"at {text(result.flow, 'flow', system)}",
+            pressure_text(result.doubt, system),
+            f"at {text(result.flow, 'flow', system)}; ± is the 95 % interval by all causes",
         ),
         (
             "Wall shear rate",
