@@ -57,7 +57,7 @@ pytest_add_cli_args=
     no:cacheprovider
 pytest_add_cli_args_test_selection=
 {tests}
-timeout_multiplier=1.0
+timeout_multiplier=3.0
 timeout_constant=20.0
 use_git_change_detection=false
 on_dependency_change=ignore
