@@ -13,7 +13,8 @@ from rheo.errors import Caution
 _RANGE = ("outside-measured-range", "measured-range-unknown")
 _TEMPERATURES = ("temperature-not-in-model", "outside-temperature-range")
 _OTHER_STATE = (
-    *("temperature-of-readings", "temperature-of-readings-unknown", "outside-measured-fraction"),
+    *("temperature-of-readings", "temperature-of-readings-unknown"),
+    *("outside-measured-temperature", "outside-measured-fraction"),
     *("solids-of-readings", "solids-not-in-model", "solids-not-given"),
 )
 _SUCTION = ("below-vapour-pressure", "npsh-negative", "npsh-too-low", "npsh-unknown")

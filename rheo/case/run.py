@@ -17,7 +17,6 @@ from rheo.case.solids_state import (
     at_solids,
     follows_solids,
     product_solids,
-    refuse_tube_effects,
     solids_basis,
     solids_state_cautions,
 )
@@ -28,6 +27,7 @@ from rheo.fitting.any_state import (
     at_several_solids,
     at_several_temperatures,
     fit_readings,
+    refuse_several,
     used_states,
 )
 from rheo.fitting.scaled_fits import ScaledFits
@@ -178,7 +178,7 @@ def run_case(
         fits.data_cautions,
         fits.ranking_cautions if chosen is fits.best else (),
         chosen.cautions,
-        _temperature_cautions(found.fitted, product),
+        _temperature_cautions(case, found.fitted, product),
         solids_state_cautions(case, found.fitted, fits, product.solids_fraction),
         _thickness_cautions(case),
         line.cautions,
@@ -214,7 +214,8 @@ def _fits(case: Case, readings: Readings) -> Fits:
     )
     solids_basis(case, readings)
     several = at_several_temperatures(readings) or at_several_solids(readings)
-    refuse_tube_effects(case, readings, several)
+    if wanted.entrance or wanted.slip:
+        refuse_several(readings, "fit")
     if several:
         return fit_readings(
             readings,
@@ -290,10 +291,22 @@ def _rating(
     return at_hand if rated is None else min(rated, at_hand)
 
 
-def _temperature_cautions(readings: Readings, product: Product) -> tuple[Caution, ...]:
-    taken = used_states(readings, "temperature")
-    if taken is None or product.knows_temperature:
+def _temperature_cautions(case: Case, readings: Readings, product: Product) -> tuple[Caution, ...]:
+    if product.knows_temperature:
         return ()
+    taken = used_states(readings, "temperature")
+    if taken is None:
+        if case.product.temperature is None:
+            return ()
+        return (
+            Caution(
+                "temperature-of-readings-unknown",
+                "The readings do not say at which temperature they were taken; they are used as if "
+                f"it were the {product.temperature - 273.15:.1f} °C of the product.",
+                "Give their temperature, in the file or beside it in the case.",
+                product.name,
+            ),
+        )
     apart = abs(float(np.mean(taken)) - product.temperature)
     if apart <= ONE_TEMPERATURE:
         return ()

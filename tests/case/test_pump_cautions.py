@@ -37,6 +37,7 @@ duty = {{ flow = "{flow} m3/h" }}
 fit = {{ models = ["newtonian"] }}
 doubt = {{ draws = 100 }}
 [[readings]]
+temperature = "20 °C"
 text = '''
 Shear rate [1/s],Shear stress [Pa]
 {rows}

@@ -129,6 +129,13 @@ def test_another_temperature_than_that_of_the_readings_is_said():
     assert "45.0 °C" in found.sentence
 
 
+def test_readings_that_do_not_say_their_temperature_are_doubted():
+    bare = rheo.run_case(changed(CASE, {"readings.0.text": table()}))
+    found = next(one for one in bare.cautions if one.code == "temperature-of-readings-unknown")
+    assert "20.0 °C of the product" in found.sentence
+    assert found.code not in {one.code for one in rheo.run_case(CASE).cautions}
+
+
 def test_without_a_temperature_that_of_the_readings_is_taken():
     case = changed(CASE, {"product.temperature": None})
     assert rheo.run_case(case).product.temperature == pytest.approx(293.15)

@@ -17,6 +17,8 @@ from typing import Any
 import pytest
 from streamlit.testing.v1 import AppTest
 
+from ui.pressure.views import VIEWS
+
 ROOT = Path(__file__).resolve().parent.parent.parent
 APP = ROOT / "ui" / "app.py"
 SAMPLES = ROOT / "sample_data"
@@ -93,6 +95,15 @@ class Page:
         """Type into a text field and leave it."""
         self.widget("text_input", label).set_value(text)
         return self.run()
+
+    def look_at(self, view: str) -> Page:
+        """Choose a view of the pressure stop; one in which Cautions stand has a mark behind it."""
+        for control in self.app.get("button_group"):
+            names = [str(one).removesuffix(" :material/warning:") for one in control.options]
+            if view in names:
+                control.set_value(list(VIEWS)[names.index(view)])
+                return self.run()
+        raise AssertionError(f"there is no view '{view}'")
 
     def upload(self, name: str, data: bytes, label: str = "Your readings") -> Page:
         """Upload a file."""

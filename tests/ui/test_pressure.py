@@ -10,6 +10,7 @@ import pytest
 from rheo.case import changed, load_case, run_case
 from rheo.case.comparisons import pressure_by_model
 from rheo.case.what_if import SolidsChange, WhatIf, what_if
+from rheo.report import display
 from ui import opening
 from ui.pressure.views import VIEWS, by_model
 from ui.pressure.what_if import asked, compared, lead
@@ -23,17 +24,6 @@ if TYPE_CHECKING:
 @pytest.fixture(scope="module")
 def sauce() -> CaseResult:
     return run_case(load_case(opening.SAMPLES / "sauce.toml"))
-
-
-def look_at(page: Page, view: str) -> Page:
-    """Choose a view."""
-    control = next(one for one in page.app.get("button_group") if view in _names(one))
-    control.set_value(next(key for key, one in VIEWS.items() if one.name == view))
-    return page.run()
-
-
-def _names(control: Any) -> list[str]:
-    return [str(one) for one in control.options]
 
 
 def test_nothing_asked_changes_nothing() -> None:
@@ -104,8 +94,8 @@ def test_old_and_new_stand_side_by_side(sauce: CaseResult) -> None:
 
 def test_the_lead_says_what_the_pump_must_add(sauce: CaseResult) -> None:
     text = lead(sauce, "metric")
-    bars = float(sauce.line.differential_pressure) / 1e5
-    assert text.startswith(f"At 4.00 m³/h the pump must add {bars:.3f}")
+    shown = display.text(sauce.doubt.pressure, "pressure", "metric", *sauce.doubt.interval)
+    assert text.startswith(f"At 4.00 m³/h the pump must add {shown} (95 %, by all causes)")
     assert "heights and vessels" in text
     assert "psi" in lead(sauce, "us")
 
@@ -170,7 +160,7 @@ def test_a_thicker_batch_and_a_colder_one(page: Page) -> None:
 )
 def test_every_view_answers_its_question(page: Page, view: str, said: tuple[str, ...]) -> None:
     page.go("pressure")
-    look_at(page, view)
+    page.look_at(view)
     assert page.errors == []
     for words in said:
         assert words in page.html
@@ -184,16 +174,16 @@ def test_the_other_samples_have_every_view(page: Page, name: str) -> None:
     page.press(name.capitalize())
     page.go("pressure")
     for view in VIEWS.values():
-        look_at(page, view.name)
+        page.look_at(view.name)
         assert page.errors == []
     if name == "thickener":
-        look_at(page, "System and pump")
+        page.look_at("System and pump")
         assert "Slurry pump moves" in page.html
 
 
 def test_a_holding_tube_is_asked_for_on_the_page(page: Page) -> None:
     page.go("pressure")
-    look_at(page, "Holding and cleaning")
+    page.look_at("Holding and cleaning")
     page.type("Hold time", "30 s")
     assert page.kept("case").holding_tube is None
     assert "bad-edge" not in page.html.replace(".bad-edge", "")
@@ -209,10 +199,10 @@ def test_a_holding_tube_is_asked_for_on_the_page(page: Page) -> None:
 def test_units_of_the_sentences_follow_the_switch(page: Page) -> None:
     page.go("pressure")
     page.choose("Units", "us")
-    look_at(page, "System and pump")
+    page.look_at("System and pump")
     assert "psi." in page.html
     assert "gpm at" in page.html
-    look_at(page, "Start-up")
+    page.look_at("Start-up")
     assert " bar" not in page.html
 
 
@@ -221,5 +211,5 @@ def test_regime_near_the_change_is_said(page: Page) -> None:
     assert case.duty.flow == pytest.approx(60 / 3600)
     page.press("Thickener")
     page.go("pressure")
-    look_at(page, "Regime and profile")
+    page.look_at("Regime and profile")
     assert "nearest to the change" in page.html
