@@ -1,7 +1,7 @@
 """Cautions beside the number that they belong to, and the safety wording below pressures.
 
-``cautions.show(result.cautions, codes=..., place=...)`` draws those that fit; call it right under
-the number, picture or table concerned. ``cautions.of(...)`` only picks them.
+``cautions.show(...)`` draws them; call it right under the number, picture or table concerned.
+`ui.places` says which of a result's belong where.
 ``cautions.safety("pressure", "start-up")`` draws the safety sentences; every stop that shows a
 pressure, a hold time or a start-up value ends with it. Keys: `rheo.line.safety.SAFETY_SENTENCES`.
 """
@@ -18,23 +18,11 @@ from rheo.report.restate import restated
 from ui import state, style
 
 
-def of(
-    cautions: Iterable[Caution], *, codes: Iterable[str] = (), place: str = ""
-) -> tuple[Caution, ...]:
-    """Return the Cautions with one of these codes (all where none is given) and of this place."""
-    wanted = set(codes)
-    return tuple(
-        caution
-        for caution in cautions
-        if (not wanted or caution.code in wanted) and (not place or caution.place == place)
-    )
-
-
-def show(cautions: Iterable[Caution], *, codes: Iterable[str] = (), place: str = "") -> None:
+def show(cautions: Iterable[Caution]) -> None:
     """Draw Cautions: what was found, and what to do about it."""
-    found = of(cautions, codes=codes, place=place)
-    if found:
-        st.html("".join(html(caution) for caution in found))
+    drawn = "".join(html(caution) for caution in cautions)
+    if drawn:
+        st.html(drawn)
 
 
 def html(caution: Caution) -> str:
