@@ -39,7 +39,13 @@ CODES: dict[str, tuple[str, ...]] = {
     "pressure": (
         *(*_RANGE, *_TEMPERATURES, *_OTHER_STATE),
         *("product-not-as-measured", "equipment-loss-as-given", "viscous-heating"),
-        *("transition-flow", "no-turbulent-solution", "outside-method-range", "forced-regime"),
+        *(
+            "transition-flow",
+            "turbulent-below-laminar",
+            "no-turbulent-solution",
+            "outside-method-range",
+            "forced-regime",
+        ),
         *("roughness-rule", "very-rough"),
         *("settles-at-rest", "below-deposition-velocity", "laminar-settling"),
         *("limit-not-kept", "above-pump-rating", "pump-below-duty", "no-operating-point"),

@@ -20,7 +20,7 @@ _PLACE = "pipe"
 
 def pipe_cautions(flow: PipeFlow) -> tuple[Caution, ...]:
     """Return what an engineer should know of a pipe result."""
-    checks = (_unsolved, _transition, _forced, _outside_range, _rough, _very_rough)
+    checks = (_unsolved, _transition, _laminar_stands, _forced, _outside_range, _rough, _very_rough)
     return tuple(caution for check in checks for caution in check(flow))
 
 
@@ -46,7 +46,7 @@ def _unsolved(flow: PipeFlow) -> tuple[Caution, ...]:
 
 
 def _transition(flow: PipeFlow) -> tuple[Caution, ...]:
-    where = np.ravel(flow.regime) == "transition"
+    where = (np.ravel(flow.regime) == "transition") & (np.ravel(flow.turbulence) < 1)
     if not where.any():
         return ()
     return (
@@ -55,6 +55,22 @@ def _transition(flow: PipeFlow) -> tuple[Caution, ...]:
             f"{_share(where)} in transition between laminar and turbulent; the pressure gradient "
             "is interpolated and can swing between the two.",
             "Move the flow or the size out of the transition, or design for the larger of the two.",
+            _PLACE,
+        ),
+    )
+
+
+def _laminar_stands(flow: PipeFlow) -> tuple[Caution, ...]:
+    where = (np.ravel(flow.regime) == "transition") & (np.ravel(flow.turbulence) >= 1)
+    if not where.any():
+        return ()
+    return (
+        Caution(
+            "turbulent-below-laminar",
+            f"{_share(where)} beyond the transition by the {flow.criterion} criterion, but "
+            f"{flow.method} finds no stress above the laminar one there; the laminar stress is "
+            "taken.",
+            "Take it as the least that the pipe can need, and compare the other methods.",
             _PLACE,
         ),
     )

@@ -15,9 +15,9 @@ from rheo.models.common import (
 from rheo.models.record import FloatArray, ModelRecord, Separable
 
 
-def shape_factor(rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray) -> FloatArray:
-    """(η - η_∞)/(η_0 - η_∞) [-]."""
-    return np.exp(0.5 * (flow_index - 1.0) * np.log1p((time_constant * rate) ** 2))
+def log_factor(rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray) -> FloatArray:
+    """ln[(η - η_∞)/(η_0 - η_∞)] [-]."""
+    return 0.5 * (flow_index - 1.0) * np.log1p((time_constant * rate) ** 2)
 
 
 def stress(
@@ -28,8 +28,8 @@ def stress(
     flow_index: FloatArray,
 ) -> FloatArray:
     """Shear stress [Pa]."""
-    factor = shape_factor(rate, time_constant, flow_index)
-    return rate * (infinite_shear_viscosity * (1.0 - factor) + zero_shear_viscosity * factor)
+    factor = log_factor(rate, time_constant, flow_index)
+    return rate * carreau_yasuda.between(zero_shear_viscosity, infinite_shear_viscosity, factor)
 
 
 def log_slope(
@@ -39,13 +39,12 @@ def log_slope(
     time_constant: FloatArray,
     flow_index: FloatArray,
 ) -> FloatArray:
-    """d ln(stress)/d ln(rate) [-], in a form that does not cancel at high rates."""
+    """d ln(stress)/d ln(rate) [-]."""
     reduced = (time_constant * rate) ** 2
-    bend = np.log1p(reduced)
-    step = zero_shear_viscosity - infinite_shear_viscosity
-    above = step * np.exp(0.5 * (flow_index - 1.0) * bend)
-    rise = infinite_shear_viscosity + above * (1.0 + flow_index * reduced) / (1.0 + reduced)
-    return rise / (infinite_shear_viscosity + above)
+    factor = 0.5 * (flow_index - 1.0) * np.log1p(reduced)
+    return carreau_yasuda.slope_of_plateaus(
+        zero_shear_viscosity, infinite_shear_viscosity, factor, flow_index, reduced
+    )
 
 
 def jacobian(
@@ -86,7 +85,7 @@ RECORD = ModelRecord(
     separable=Separable(
         shape=("time_constant", "flow_index"),
         grid=lambda rate: (reciprocal_rate_grid(rate), np.linspace(0.0, 1.5, 31)),
-        basis=lambda rate, *shape: carreau_yasuda.plateau_basis(shape_factor(rate, *shape), rate),
+        basis=lambda rate, *shape: carreau_yasuda.plateau_basis(log_factor(rate, *shape), rate),
         to_parameters=carreau_yasuda.plateau_parameters(),
         logarithmic=(True, False),
     ),

@@ -19,12 +19,46 @@ from rheo.models.common import (
 from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
 
 
-def shape_factor(
+def log_factor(
     rate: FloatArray, time_constant: FloatArray, flow_index: FloatArray, exponent: FloatArray
 ) -> FloatArray:
-    """(η - η_∞)/(η_0 - η_∞) [-]."""
-    reduced = (time_constant * rate) ** exponent
-    return np.exp((flow_index - 1.0) / exponent * np.log1p(reduced))
+    """ln[(η - η_∞)/(η_0 - η_∞)] [-]."""
+    return (flow_index - 1.0) / exponent * np.log1p((time_constant * rate) ** exponent)
+
+
+def between(
+    zero_shear_viscosity: FloatArray, infinite_shear_viscosity: FloatArray, log_factor: FloatArray
+) -> FloatArray:
+    """η_∞ + (η_0 - η_∞) exp(log_factor) [Pa.s], as a sum of terms of 0 or more.
+
+    So it does not cancel, whichever of the plateaus is the higher one and however far.
+    """
+    step = zero_shear_viscosity - infinite_shear_viscosity
+    factor = np.exp(log_factor)
+    found = infinite_shear_viscosity + step * factor
+    if np.any(step < 0):
+        rising = zero_shear_viscosity * factor - infinite_shear_viscosity * np.expm1(log_factor)
+        found = np.where(step < 0, rising, found)
+    return found
+
+
+def slope_of_plateaus(
+    zero_shear_viscosity: FloatArray,
+    infinite_shear_viscosity: FloatArray,
+    log_factor: FloatArray,
+    flow_index: FloatArray,
+    reduced: FloatArray,
+) -> FloatArray:
+    """d ln(stress)/d ln(rate) [-] where the bend begins as 1 + reduced; does not cancel."""
+    step = zero_shear_viscosity - infinite_shear_viscosity
+    above = step * np.exp(log_factor)
+    rise = infinite_shear_viscosity + above * (1.0 + flow_index * reduced) / (1.0 + reduced)
+    slope = rise / (infinite_shear_viscosity + above)
+    if np.any(step < 0):
+        both = (zero_shear_viscosity, infinite_shear_viscosity)
+        falls = log_factor + np.log1p(flow_index * reduced) - np.log1p(reduced)
+        slope = np.where(step < 0, between(*both, falls) / between(*both, log_factor), slope)
+    return slope
 
 
 def stress(
@@ -36,8 +70,8 @@ def stress(
     yasuda_exponent: FloatArray,
 ) -> FloatArray:
     """Shear stress [Pa]."""
-    factor = shape_factor(rate, time_constant, flow_index, yasuda_exponent)
-    return rate * (infinite_shear_viscosity * (1.0 - factor) + zero_shear_viscosity * factor)
+    factor = log_factor(rate, time_constant, flow_index, yasuda_exponent)
+    return rate * between(zero_shear_viscosity, infinite_shear_viscosity, factor)
 
 
 def log_slope(
@@ -48,12 +82,12 @@ def log_slope(
     flow_index: FloatArray,
     yasuda_exponent: FloatArray,
 ) -> FloatArray:
-    """d ln(stress)/d ln(rate) [-], in a form that does not cancel at high rates."""
+    """d ln(stress)/d ln(rate) [-]."""
     reduced = (time_constant * rate) ** yasuda_exponent
-    factor = np.exp((flow_index - 1.0) / yasuda_exponent * np.log1p(reduced))
-    step = zero_shear_viscosity - infinite_shear_viscosity
-    rise = infinite_shear_viscosity + step * factor * (1.0 + flow_index * reduced) / (1.0 + reduced)
-    return rise / (infinite_shear_viscosity + step * factor)
+    factor = (flow_index - 1.0) / yasuda_exponent * np.log1p(reduced)
+    return slope_of_plateaus(
+        zero_shear_viscosity, infinite_shear_viscosity, factor, flow_index, reduced
+    )
 
 
 def jacobian(
@@ -68,13 +102,14 @@ def jacobian(
     product = time_constant * rate
     reduced = product**yasuda_exponent
     bend = np.log1p(reduced)
-    factor = np.exp((flow_index - 1.0) / yasuda_exponent * bend)
+    log_of_it = (flow_index - 1.0) / yasuda_exponent * bend
+    factor = np.exp(log_of_it)
     step = rate * (zero_shear_viscosity - infinite_shear_viscosity) * factor
     share = reduced / (1.0 + reduced)
     log_product = np.log(np.where(product > 0, product, 1.0))
     return (
         rate * factor,
-        rate * (1.0 - factor),
+        -rate * np.expm1(log_of_it),
         step * (flow_index - 1.0) * share / time_constant,
         step * bend / yasuda_exponent,
         step
@@ -104,9 +139,9 @@ def check_rising(*parameters: Any) -> None:
         )
 
 
-def plateau_basis(factor: FloatArray, rate: FloatArray) -> tuple[FloatArray, FloatArray]:
+def plateau_basis(log_factor: FloatArray, rate: FloatArray) -> tuple[FloatArray, FloatArray]:
     """Columns whose coefficients are η_0 and η_∞."""
-    return rate * factor, rate * (1.0 - factor)
+    return rate * np.exp(log_factor), -rate * np.expm1(log_factor)
 
 
 def plateau_parameters(
@@ -141,7 +176,7 @@ RECORD = ModelRecord(
             np.linspace(0.0, 1.2, 13),
             np.geomspace(0.1, 10.0, 9),
         ),
-        basis=lambda rate, *shape: plateau_basis(shape_factor(rate, *shape), rate),
+        basis=lambda rate, *shape: plateau_basis(log_factor(rate, *shape), rate),
         to_parameters=plateau_parameters(),
         logarithmic=(True, False, True),
     ),

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from rheo.models.carreau_yasuda import plateau_basis, plateau_parameters
+from rheo.models.carreau_yasuda import plateau_parameters
 from rheo.models.common import (
     INFINITE_SHEAR_VISCOSITY,
     TIME_CONSTANT,
@@ -14,9 +14,13 @@ from rheo.models.common import (
 from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
 
 
-def shape_factor(rate: FloatArray, time_constant: FloatArray, rate_index: FloatArray) -> FloatArray:
-    """(η - η_∞)/(η_0 - η_∞) [-]."""
-    return 1.0 / (1.0 + (time_constant * rate) ** rate_index)
+def basis(
+    rate: FloatArray, time_constant: FloatArray, rate_index: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Columns whose coefficients are η_0 and η_∞."""
+    reduced = (time_constant * rate) ** rate_index
+    share = rate / (1.0 + reduced)
+    return share, share * reduced
 
 
 def stress(
@@ -39,11 +43,12 @@ def log_slope(
     time_constant: FloatArray,
     rate_index: FloatArray,
 ) -> FloatArray:
-    """d ln(stress)/d ln(rate) [-], in a form that does not cancel at high rates."""
+    """d ln(stress)/d ln(rate) [-], of terms of 0 or more where the rate index is at most 1."""
     reduced = (time_constant * rate) ** rate_index
-    above = (zero_shear_viscosity - infinite_shear_viscosity) / (1.0 + reduced)
-    rise = infinite_shear_viscosity + above * (1.0 + (1.0 - rate_index) * reduced) / (1.0 + reduced)
-    return rise / (infinite_shear_viscosity + above)
+    rise = infinite_shear_viscosity * reduced * (reduced + 1.0 + rate_index)
+    rise = rise + zero_shear_viscosity * (1.0 + (1.0 - rate_index) * reduced)
+    whole = (1.0 + reduced) * (infinite_shear_viscosity * reduced + zero_shear_viscosity)
+    return rise / whole
 
 
 def jacobian(
@@ -85,7 +90,7 @@ RECORD = ModelRecord(
     separable=Separable(
         shape=("time_constant", "rate_index"),
         grid=lambda rate: (reciprocal_rate_grid(rate), np.linspace(0.02, 1.0, 35)),
-        basis=lambda rate, *shape: plateau_basis(shape_factor(rate, *shape), rate),
+        basis=basis,
         to_parameters=plateau_parameters(),
         logarithmic=(True, False),
     ),

@@ -57,12 +57,6 @@ def extreme(key: str, count: int, seed: int) -> rheo.Model:
         if one.upper <= 20.0:
             at_bound = random.random(count) < 0.08
             values[one.key] = np.where(at_bound, one.upper, values[one.key])
-    if "infinite_shear_viscosity" in values and "zero_shear_viscosity" in values:
-        # Where the plateau at high rates lies above the one at low rates, or on it, the stress is
-        # a small difference of two terms and keeps nine digits; no product is like that.
-        values["infinite_shear_viscosity"] = np.minimum(
-            values["infinite_shear_viscosity"], 0.5 * values["zero_shear_viscosity"]
-        )
     allowed = rheo.model_record(key).allowed
     if allowed is not None:
         good = np.asarray(allowed(*values.values()))
