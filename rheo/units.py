@@ -95,6 +95,8 @@ _NUMBER = re.compile(
     r"^\s*([-+]?(?:\d{1,3}(?:[ ']\d{3})+(?!\d)(?:\.\d*)?|\d+(?:\.\d*)?|\.\d+)(?:[eE][-+]?\d+)?)"
     r"\s*(.*?)\s*$"
 )
+# A speed has the dimension of a shear rate, and is none.
+_TURNS = re.compile(r"rpm|rps|rev|turn|\bu/|tr/|upm|hz|hertz|rad|deg|°|cycle|cps", re.IGNORECASE)
 _SAME_SIGNS = str.maketrans({"−": "-", "’": "'", "\u00a0": " ", "\u2009": " ", "\u202f": " "})
 # A unit that is longer than this, or holds other signs, is no unit; Pint is not asked.
 # A power of a number could take for ever to work out and is never part of a unit.
@@ -309,6 +311,10 @@ def parse_quantity(
             )
         number = float(match[1].replace(" ", "").replace("'", ""))
         unit = match[2] or text_unit
+    if target == "1/s" and _TURNS.search(unit):
+        raise UnitError(
+            f"unit '{_shown(unit)}' counts turns, which are no shear rate; use 1/s or 1/min", place
+        )
     result = float(to_si(number, unit, target, place))
     if not math.isfinite(result):
         raise UnitError(f"'{_shown(value)}' is not a finite number", place)

@@ -149,7 +149,8 @@ def _reference(path: Path, rates: Sequence[float] | None, settings: Settings) ->
     try:
         data = path.read_bytes()
     except OSError as error:
-        raise InputError(error.strerror or "it cannot be read", str(path)) from None
+        reason = "there is no such file" if not path.exists() else error.strerror
+        raise InputError(reason or "it cannot be read", str(path)) from None
     readings = read_one(data, str(path), settings)
     for several, what in (
         (at_several_temperatures, "temperatures"),

@@ -75,13 +75,17 @@ def _yes(value: bool | None) -> str:
 
 
 def check_table(path: Path) -> None:
-    """Refuse a table of a kind that cannot be written.
+    """Refuse a table that cannot be written, before any work is done for it.
 
     Raises
     ------
     InputError
-        If the name ends in something else than .csv or .xlsx.
+        If the name ends in something else than .csv or .xlsx, or its folder is not there.
     """
+    if path.is_dir():
+        raise InputError("it is a folder; give the name of a table in it", str(path))
+    if not path.parent.is_dir():
+        raise InputError("there is no such folder for the table; make it first", str(path.parent))
     if path.suffix.lower() not in SUFFIXES:
         raise InputError(f"the table must be named {' or '.join(SUFFIXES)}", str(path))
 

@@ -8,8 +8,8 @@ from pydantic import Field, StrictBool, StrictInt, field_validator, model_valida
 
 from rheo.case.block import Block, KeyedError
 from rheo.case.fields import (
+    Diameter,
     Duration,
-    Length,
     NotNegative,
     NotNegativeLength,
     Positive,
@@ -57,7 +57,7 @@ class CostBlock(Block):
     energy_price: NotNegative
     annual_charge: PositiveShare = Quantity(0.2)
     capital_price: Positive | None = None
-    capital_at_diameter: Length | None = None
+    capital_at_diameter: Diameter | None = None
     capital_exponent: Positive | None = None
     capital_by_size: dict[str, Positive] = Field(default_factory=dict)
 
@@ -111,7 +111,7 @@ class OwnSize(Block):
     """A size that no standard lists."""
 
     label: Text
-    inside_diameter: Length
+    inside_diameter: Diameter
 
     def build(self) -> PipeSize:
         """Return the size for the engine."""
@@ -125,8 +125,8 @@ class SizesBlock(Block):
     schedule: Text | None = None
     names: Annotated[tuple[Text, ...], Field(max_length=500)] = ()
     own: Annotated[tuple[OwnSize, ...], Field(max_length=500)] = ()
-    smallest: Length | None = None
-    largest: Length | None = None
+    smallest: Diameter | None = None
+    largest: Diameter | None = None
     confidence: PositiveShare = Quantity(0.9)
     flow_spread: Share = Quantity(0.2)
 
@@ -183,7 +183,7 @@ class HoldingBlock(Block):
 
     hold_time: Duration
     size: Text | None = None
-    inside_diameter: Length | None = None
+    inside_diameter: Diameter | None = None
     temperature: Temperature | None = None
 
     @model_validator(mode="after")

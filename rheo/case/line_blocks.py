@@ -11,6 +11,7 @@ from pydantic import Field, StrictBool, StrictInt, field_validator, model_valida
 from rheo.case.block import Block
 from rheo.case.fields import (
     Angle,
+    Diameter,
     Flow,
     GaugePressure,
     HeatTransfer,
@@ -78,7 +79,7 @@ class PipeBlock(PartBlock):
     name: Text = "pipe"
     length: Length
     size: Text | None = None
-    inside_diameter: Length | None = None
+    inside_diameter: Diameter | None = None
     rise: Height = Quantity(0.0)
     roughness: NotNegativeLength = Quantity(0.0)
     temperature: Temperature | None = None
@@ -106,7 +107,7 @@ class FittingBlock(PartBlock):
     kind: Text = "fitting"
     count: Annotated[StrictInt, Field(ge=1, le=10_000)] = 1
     loss_coefficient: NotNegative | None = None
-    diameter: Length | None = None
+    diameter: Diameter | None = None
     table: Text | None = None
 
     def build(self) -> Fitting:
@@ -164,7 +165,7 @@ class EquipmentBlock(PartBlock):
     volume: Volume = Quantity(0.0)
     outlet_temperature: Temperature | None = None
     passage_length: Length | None = None
-    passage_diameter: Length | None = None
+    passage_diameter: Diameter | None = None
 
     def build(self) -> Equipment:
         """Return the equipment for the engine."""

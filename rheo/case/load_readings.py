@@ -110,13 +110,20 @@ def weighting_of(
     """
     if name != INSTRUMENT:
         return name
-    if readings.full_scale_torque is None or readings.geometry is None:
+    if not can_be_weighted(readings):
         raise CaseError(
             "weighting 'instrument' needs a geometry and the torque at full scale; "
             "give full_scale_torque, such as '10 mN.m'",
             readings.source,
         )
-    return Instrument(percent_of_reading, percent_of_full_scale, readings.full_scale_torque)
+    return Instrument(
+        percent_of_reading, percent_of_full_scale, float(readings.full_scale_torque or 0.0)
+    )
+
+
+def can_be_weighted(readings: Readings) -> bool:
+    """Return whether weights of an instrument are known: by geometry and torque at full scale."""
+    return readings.full_scale_torque is not None and readings.geometry is not None
 
 
 def _source(case: Case, block: ReadingsBlock, place: str) -> tuple[Path | bytes, str]:
@@ -124,9 +131,16 @@ def _source(case: Case, block: ReadingsBlock, place: str) -> tuple[Path | bytes,
         return block.text.encode("utf-8"), f"{place} text"
     name = block.file or ""
     try:
-        return inside_folder(name, case.folder, case.allow_outside), name
+        path = inside_folder(name, case.folder, case.allow_outside)
     except CaseError as error:
         raise CaseError(error.sentence, f"{place} file") from None
+    if not path.exists():
+        raise CaseError(
+            f"there is no file '{name[:200]}' in the folder of the case; put it there, or write "
+            "the name of one that is",
+            f"{place} file",
+        )
+    return path, name
 
 
 def _said(case: Case, block: ReadingsBlock, readings: Readings) -> dict[str, Any]:

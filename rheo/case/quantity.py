@@ -92,12 +92,12 @@ class Unit:
         """Return a quantity as the user wrote it, or in SI."""
         if isinstance(quantity.written, str):
             return f"'{quantity.written[:60]}'"
-        unit = "" if self.si == "dimensionless" else f" {self.si}"
+        unit = "" if self.si == "dimensionless" else f" {_written(self.si)}"
         return f"{float(quantity):g}{unit}"
 
     def allowed(self) -> str:
         """Return the range in words, in the SI unit."""
-        unit = "" if self.si == "dimensionless" else f" {self.si}"
+        unit = "" if self.si == "dimensionless" else f" {_written(self.si)}"
         low = (
             f"above {self.above:g}{unit}"
             if self.above is not None
@@ -131,6 +131,11 @@ class Unit:
             self.read,
             serialization=core_schema.plain_serializer_function_ser_schema(self.write),
         )
+
+
+def _written(unit: str) -> str:
+    """Return a unit as people write it: m3/s for m^3/s."""
+    return unit.replace("^", "").replace("*", ".")
 
 
 def _as_float(value: float) -> float:

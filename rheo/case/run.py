@@ -20,7 +20,7 @@ from rheo.case.solids_state import (
     solids_basis,
     solids_state_cautions,
 )
-from rheo.errors import CaseError, Caution, merge_cautions
+from rheo.errors import CaseError, Caution, InputError, merge_cautions
 from rheo.fitting import Fit, Fits, fit
 from rheo.fitting.any_state import (
     ONE_TEMPERATURE,
@@ -215,7 +215,10 @@ def _fits(case: Case, readings: Readings) -> Fits:
     solids_basis(case, readings)
     several = at_several_temperatures(readings) or at_several_solids(readings)
     if wanted.entrance or wanted.slip:
-        refuse_several(readings, "fit")
+        try:
+            refuse_several(readings, "fit")
+        except InputError as error:
+            raise CaseError(error.sentence, error.place) from None
     if several:
         return fit_readings(
             readings,

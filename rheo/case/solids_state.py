@@ -6,7 +6,7 @@ from rheo.case.quantity import Quantity
 from rheo.case.schema import Case
 from rheo.errors import CaseError, Caution
 from rheo.fitting import Fits
-from rheo.fitting.any_state import at_several_solids, used_states
+from rheo.fitting.any_state import used_states
 from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line.product import FlowCurveSource
 from rheo.models import Model
@@ -125,20 +125,3 @@ def _not_given(low: float, solids: float, by: str, name: str) -> tuple[Caution, 
             name,
         ),
     )
-
-
-def refuse_tube_effects(case: Case, readings: Readings, several: bool) -> None:
-    """Refuse to fit entrance loss or slip where readings are at several states.
-
-    Raises
-    ------
-    CaseError
-        If the case asks for it.
-    """
-    if several and (case.fit.entrance or case.fit.slip):
-        what = SOLIDS if at_several_solids(readings) else "temperature"
-        raise CaseError(
-            f"entrance loss and slip are fitted at one {what} only; exclude the readings at the "
-            "others, or leave entrance and slip out",
-            "fit",
-        )

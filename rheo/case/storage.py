@@ -20,6 +20,9 @@ from rheo.errors import CaseError
 LARGEST_FILE = 20_000_000
 
 _POSITION = re.compile(r" \(at (?:line (\d+), column (\d+)|(end of document))\)$")
+# The parser shows a table as Python does: ('line', 'pipe').
+_PATH = re.compile(r"\((?:'[^']*',? ?)+\)")
+_NAMES = re.compile(r"'([^']*)'")
 # What the parser says where its own words would puzzle a reader.
 _PLAIN_WORDS = {
     "Cannot overwrite a value": "a key is given twice",
@@ -211,6 +214,7 @@ def _not_toml(error: tomllib.TOMLDecodeError, source: str) -> CaseError:
         where = "at its end" if found[3] else f"line {found[1]}, column {found[2]}"
         place = f"{source}, {where}"
     plain = _PLAIN_WORDS.get(plain, plain[:1].lower() + plain[1:])
+    plain = _PATH.sub(lambda match: f"'{'.'.join(_NAMES.findall(match[0]))}'", plain)
     return CaseError(f"it is not valid TOML: {plain}", place)
 
 

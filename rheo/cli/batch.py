@@ -11,8 +11,16 @@ from typing import TYPE_CHECKING, Annotated
 import typer
 
 from rheo.cli import terminal
-from rheo.cli.options import Json, named_values, optional_quantity
-from rheo.cli.readings_options import Columns, Dimensions, GeometryKind, geometry_text
+from rheo.cli.options import Json, one_of, optional_quantity
+from rheo.cli.readings_options import (
+    Columns,
+    Dimensions,
+    GeometryKind,
+    columns_of,
+    full_scale_of,
+    geometry_text,
+    sweep_of,
+)
 from rheo.errors import InputError
 
 if TYPE_CHECKING:
@@ -81,19 +89,24 @@ def batch(
     from rheo.batches.job import Settings
     from rheo.batches.journal import journal_path
     from rheo.batches.table import check_table
+    from rheo.fitting.weighting import WEIGHTINGS
 
     if out is not None:
         check_table(out)
+    if weighting not in WEIGHTINGS:
+        raise InputError(
+            f"found '{weighting[:60]}'; it must be {one_of(WEIGHTINGS)}", "--weighting"
+        )
     if rates and reference is None:
         raise InputError("a shear rate needs --reference", "--rate")
     settings = Settings(
         models=tuple(models) if models else None,
         weighting=weighting,
-        columns=tuple(named_values(columns or [], "--column").items()) or None,
+        columns=tuple((columns_of(columns) or {}).items()) or None,
         geometry=geometry_text(geometry, dimensions),
         sheet=sheet,
-        sweep=sweep,
-        full_scale_torque=optional_quantity(full_scale, "N*m", "--full-scale"),
+        sweep=sweep_of(sweep),
+        full_scale_torque=full_scale_of(full_scale),
     )
     asked = [optional_quantity(rate, "1/s", "--rate") for rate in rates or []]
     files = _files(folder, recursive, out)
@@ -130,8 +143,8 @@ def batch(
 
 def _files(folder: Path, recursive: bool, out: Path | None) -> list[Path]:
     if not folder.is_dir():
-        what = "is no folder" if folder.exists() else "does not exist"
-        raise InputError(f"the folder {what}; give a folder with files of readings", str(folder))
+        what = "it is a file" if folder.exists() else "there is no such folder"
+        raise InputError(f"{what}; give a folder with files of readings", str(folder))
     found = sorted(folder.rglob("*") if recursive else folder.iterdir())
     own = None if out is None else out.resolve()
     files = [

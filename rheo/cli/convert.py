@@ -19,6 +19,10 @@ if TYPE_CHECKING:
     from rheo.geometry.convert import Conversion, ShearPoint
 
 
+# Beyond it nothing is sheared, and products of numbers no longer fit.
+LARGEST_RATE = 1e9
+
+
 def convert(
     model: ModelKey,
     settings: Settings,
@@ -56,12 +60,17 @@ def convert(
         raise InputError("it is missing; name the geometry, such as --geometry tube", "--geometry")
     if (at is None) == (rate is None):
         found = "neither" if at is None else "both"
-        raise InputError(f"found {found} of --at and --rate; give one of them", "rheo convert")
+        raise InputError(f"found {found} of --at and --rate; give one of them", "--at")
     if at is not None:
         name, _, unit = SETTINGS[source.record.setting]
         setting = quantity(at, unit, f"--at ({name})")
     else:
-        setting = float(source.setting_for_rate(curve, quantity(rate or "", "1/s", "--rate")))
+        wanted = quantity(rate or "", "1/s", "--rate")
+        if not 0.0 <= wanted <= LARGEST_RATE:
+            raise InputError(
+                f"found '{rate}'; it must lie between 0 and {LARGEST_RATE:g} 1/s", "--rate"
+            )
+        setting = float(source.setting_for_rate(curve, wanted))
     result = converted(curve, source, setting, _targets(to or []))
     if as_json:
         terminal.print_json({**result.as_dict(), "sentence": without_exponents(sentence(result))})
@@ -80,7 +89,7 @@ def _targets(texts: list[str]) -> list[Geometry]:
             raise InputError(
                 "found nothing; write it like 'cone-plate radius=25mm angle=2°'", "--to"
             )
-        made = geometry_of(words[0], words[1:])
+        made = geometry_of(words[0], words[1:], "--to")
         if made is not None:
             found.append(made)
     return found

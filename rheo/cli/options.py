@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable
 from pathlib import Path
 from typing import Annotated
 
@@ -30,6 +31,48 @@ def quantity(value: str, target: str, option: str) -> float:
     from rheo.units import parse_quantity
 
     return parse_quantity(value, target, option)
+
+
+def one_of(words: Iterable[str]) -> str:
+    """Return words as a choice: ``up, down or both``."""
+    *first, last = words
+    return f"{', '.join(first)} or {last}" if first else last
+
+
+def in_range(
+    value: str, target: str, option: str, most: float, like: str, above: float = 0.0
+) -> float:
+    """Return a text in SI, above `above` and at most `most`.
+
+    Parameters
+    ----------
+    value : str
+        As given.
+    target : str
+        SI unit.
+    option : str
+        Place of an error.
+    most : float
+        Upper end, in that unit.
+    like : str
+        An example for the sentence.
+    above : float
+        Lower end, left out.
+
+    Raises
+    ------
+    InputError
+        If it is outside.
+    """
+    found = quantity(value, target, option)
+    if not above < found <= most:
+        unit = target.replace("^", "").replace("*", ".")
+        raise InputError(
+            f"found '{value[:60]}'; it must be above {above:g} {unit} and at most {most:g} {unit}, "
+            f"{like}",
+            option,
+        )
+    return found
 
 
 def optional_quantity(value: str | None, target: str, option: str) -> float | None:

@@ -8,7 +8,7 @@ import typer
 
 from rheo.cli import terminal
 from rheo.cli.flow_curve_options import ModelKey, Settings, flow_curve
-from rheo.cli.options import Json, UnitsOption, optional_quantity, quantity
+from rheo.cli.options import Json, UnitsOption, in_range, quantity
 from rheo.cli.terminal import Units
 from rheo.errors import InputError
 
@@ -49,31 +49,29 @@ def pipe(
     """
     import numpy as np
 
+    from rheo.case.fields import FASTEST, HEAVIEST, LARGEST_FLOW, LONGEST, NARROWEST, WIDEST
     from rheo.hydraulics import pipe_flow
 
     curve = flow_curve(model, settings)
-    inside = quantity(diameter, "m", "--diameter")
-    if not inside > 0:
-        raise InputError(f"found '{diameter}'; it must be above 0 m, such as 50mm", "--diameter")
+    inside = in_range(diameter, "m", "--diameter", WIDEST, "such as 50mm", NARROWEST)
     if (flow is None) == (velocity is None):
         found = "neither" if flow is None else "both"
-        raise InputError(f"found {found} of --flow and --velocity; give one of them", "rheo pipe")
+        raise InputError(f"found {found} of --flow and --velocity; give one of them", "--flow")
     area = 0.25 * np.pi * inside**2
     if flow is not None:
-        rate = quantity(flow, "m^3/s", "--flow")
-        if not rate > 0:
-            raise InputError(f"found '{flow}'; it must be above 0 m3/s, such as '5 m3/h'", "--flow")
+        rate = in_range(flow, "m^3/s", "--flow", LARGEST_FLOW, "such as '5 m3/h'")
         speed = rate / area
     else:
-        speed = quantity(velocity or "", "m/s", "--velocity")
-    long = optional_quantity(length, "m", "--length")
-    if long is not None and not long > 0:
-        raise InputError(f"found '{length}'; it must be above 0 m, such as 30m", "--length")
+        speed = in_range(velocity or "", "m/s", "--velocity", FASTEST, "such as '1.2 m/s'")
+    long = None
+    if length is not None:
+        long = in_range(length, "m", "--length", LONGEST, "such as 30m")
+    mass = in_range(density, "kg/m^3", "--density", HEAVIEST, "such as '1100 kg/m3'")
     result = pipe_flow(
         curve,
         inside,
         speed,
-        quantity(density, "kg/m^3", "--density"),
+        mass,
         quantity(roughness, "m", "--roughness"),
         regime=regime,
         method=method,

@@ -113,3 +113,30 @@ def _refuse_both(data: FlowCurve | Readings) -> None:
         "fractions are the same",
         getattr(data, "source", "") or "readings",
     )
+
+
+def refuse_several(data: FlowCurve | Readings, place: str) -> None:
+    """Refuse to fit entrance loss or slip where readings are at several states.
+
+    Parameters
+    ----------
+    data : FlowCurve or Readings
+        What is to be fitted.
+    place : str
+        Place of the error.
+
+    Raises
+    ------
+    InputError
+        If they are.
+    """
+    for several, what in (
+        (at_several_solids, "solids fraction"),
+        (at_several_temperatures, "temperature"),
+    ):
+        if several(data):
+            raise InputError(
+                f"entrance loss and slip are fitted at one {what} only; exclude the readings at "
+                "the others, or leave entrance and slip out",
+                place,
+            )

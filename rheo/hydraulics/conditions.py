@@ -151,7 +151,12 @@ def lay_out(
             "model, diameter, density, roughness and the rest",
         ) from None
     if np.any(wall >= 0.5 * size):
-        raise InputError("it must be less than half the diameter", "roughness")
+        worst = int(np.argmax(np.ravel(np.broadcast_to(wall / size, shape))))
+        found, widest = (np.ravel(np.broadcast_to(one, shape))[worst] for one in (wall, size))
+        raise InputError(
+            f"it is {found:g} m; it must be less than half the diameter, {0.5 * widest:g} m",
+            "roughness",
+        )
 
     def flat(array: FloatArray) -> FloatArray:
         return np.broadcast_to(array, shape).reshape(-1)

@@ -209,7 +209,7 @@ def test_wrong_calls_are_refused(lots):
         rheo.batch(paths(lots), workers=0)
     with pytest.raises(rheo.InputError, match="unknown weighting 'heavy'"):
         rheo.batch(paths(lots), rheo.BatchSettings(weighting="heavy"))
-    with pytest.raises(rheo.InputError, match=r"gone\.csv: No such file"):
+    with pytest.raises(rheo.InputError, match=r"gone\.csv: there is no such file"):
         rheo.batch(paths(lots), reference="gone.csv")
 
 

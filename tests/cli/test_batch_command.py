@@ -65,12 +65,17 @@ def test_json_and_nothing_else(command, lots):
 
 def test_what_is_wrong_is_said_in_a_sentence(command, lots, tmp_path):
     wrong = {
-        ("batch", tmp_path / "none"): "none: the folder does not exist",
-        ("batch", lots / "lot0.csv"): "is no folder",
+        ("batch", tmp_path / "none"): "none: there is no such folder",
+        ("batch", lots / "lot0.csv"): "it is a file; give a folder",
         ("batch", lots, "--out", "fits.pdf"): "fits.pdf: the table must be named .csv or .xlsx",
         ("batch", lots, "--rate", "5 1/s"): "--rate: a shear rate needs --reference",
         ("batch", lots, "-m", "syrup"): "syrup",
-        ("batch", lots, "-w", "heavy"): "unknown weighting 'heavy'",
+        (
+            "batch",
+            lots,
+            "-w",
+            "heavy",
+        ): "--weighting: found 'heavy'; it must be relative",
         ("batch", lots, "--reference", lots / "bad.csv"): "no table of numbers",
     }
     for arguments, words in wrong.items():

@@ -101,12 +101,16 @@ def test_text_of_the_user_stays_text(command, folder):
 
 
 CASE_COMPLAINTS = [
-    ("readings.csv", "none.csv", "none.csv: there is no such file"),
+    (
+        "readings.csv",
+        "none.csv",
+        "readings file: there is no file 'none.csv' in the folder",
+    ),
     ("readings.csv", "../readings.csv", "'../readings.csv' lies outside the folder of the case"),
     ("[duty]", "[duty", "case.toml, line 14, column 6: it is not valid TOML: expected ']'"),
     ("[duty]", "[dutty]", "line 14, dutty: unknown key 'dutty' (did you mean 'duty'?)"),
     ('"5 m3/h"', '"5 m3/fortnite"', "line 15, duty.flow: unknown unit 'm3/fortnite'; use one such"),
-    ('"5 m3/h"', '"0 m3/h"', "duty.flow: found '0 m3/h'; it must be above 0 m^3/s"),
+    ('"5 m3/h"', '"0 m3/h"', "duty.flow: found '0 m3/h'; it must be above 0 m3/s"),
     ('"5 m3/h"', "nan", "duty.flow: found nan; it must be a finite number"),
     ('"5 m3/h"', "[5]", "duty.flow: found a list; write a number with its unit, such as '5 m3/h'"),
     (
@@ -172,9 +176,15 @@ def test_missing_and_empty_files(command, folder, name):
 
 FIT_COMPLAINTS = [
     (("--model", "binghm"), "unknown model 'binghm' (did you mean 'bingham'?)"),
-    (("--weighting", "fair"), "unknown weighting 'fair'; use relative, absolute"),
-    (("--weighting", "instrument"), "weighting 'instrument' needs a geometry and the torque"),
-    (("--sweep", "sideways"), "sweep: found 'sideways'; it must be up, down, both"),
+    (
+        ("--weighting", "fair"),
+        "--weighting: found 'fair'; it must be relative, absolute or",
+    ),
+    (
+        ("--weighting", "instrument"),
+        "--weighting: 'instrument' needs --percent-of-reading or",
+    ),
+    (("--sweep", "sideways"), "--sweep: found 'sideways'; it must be up, down or both"),
     (("--geometry", "jar"), "unknown geometry 'jar'; there are"),
     (("--dim", "radius=1mm"), "--dim: dimensions need a --geometry"),
     (("--geometry", "tube", "--dim", "girth=1mm"), "--dim: unknown dimension 'girth'; tube takes"),

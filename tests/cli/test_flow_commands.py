@@ -63,7 +63,10 @@ def replaced(old, new):
 @pytest.mark.parametrize(
     ("arguments", "sentence"),
     [
-        (replaced("50mm", "0 mm"), "--diameter: found '0 mm'; it must be above 0 m, such as 50mm"),
+        (
+            replaced("50mm", "0 mm"),
+            "--diameter: found '0 mm'; it must be above 10⁻⁶ m and at",
+        ),
         (
             replaced("50mm", "50 parsnips"),
             "--diameter: unknown unit 'parsnips'; use one such as mm",
@@ -72,7 +75,7 @@ def replaced(old, new):
         (replaced("50mm", "wide"), "--diameter: 'wide' is not a number with a unit"),
         (replaced("5 m^3/h", "-5 m3/h"), "--flow: found '-5 m3/h'; it must be above 0"),
         (replaced("5 m^3/h", "5 m"), "--flow: unit 'm' does not measure what is wanted here"),
-        (replaced("1100", "0"), "density: it is 0 kg/m3; it must be a finite number above"),
+        (replaced("1100", "0"), "--density: found '0'; it must be above 0 kg/m3 and at most"),
         (
             replaced("herschel-bulkley", "hershel-bulkley"),
             "unknown model 'hershel-bulkley' (did you",
@@ -90,7 +93,7 @@ def replaced(old, new):
         (replaced("consistency=4.2", "flow_index=1"), "--set: 'flow_index' is given twice"),
         ([*PIPE, "--velocity", "1 m/s"], "found both of --flow and --velocity; give one of them"),
         ([*PIPE[:-4], *PIPE[-2:]], "found neither of --flow and --velocity; give one of them"),
-        ([*PIPE, "--length", "-1 m"], "--length: found '-1 m'; it must be above 0 m, such as 30m"),
+        ([*PIPE, "--length", "-1 m"], "--length: found '-1 m'; it must be above 0 m and at most"),
         ([*PIPE, "--regime", "plug"], "'plug'; it takes laminar or turbulent"),
         ([*PIPE, "--method", "guess"], "unknown"),
         ([*CONVERT], "found neither of --at and --rate; give one of them"),
@@ -98,7 +101,10 @@ def replaced(old, new):
         ([*CONVERT, "--at", "4 m3/h", "--to", "jar"], "unknown geometry 'jar'; there are"),
         ([*CONVERT, "--at", "4 m3/h", "--to", "tube 'x"], "--to: found 'tube 'x'; a quote is not"),
         ([*CONVERT, "--at", "4 m3/h", "--to", " "], "--to: found nothing; write it like"),
-        ([*CONVERT, "--rate", "-1 1/s"], "shear rate is -1 1/s; it must be a finite number of 0"),
+        (
+            [*CONVERT, "--rate", "-1 1/s"],
+            "--rate: found '-1 1/s'; it must lie between 0",
+        ),
         (
             [*CONVERT, "--dim", "width=1mm", "--at", "1 m3/h"],
             "unknown dimension 'width'; tube takes",

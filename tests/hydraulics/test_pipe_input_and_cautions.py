@@ -17,7 +17,7 @@ SLURRY = rheo.model("herschel-bulkley", yield_stress=5.0, consistency=0.1, flow_
         ({"velocity": "fast"}, "velocity: it is 'fast'; it must be a number"),
         ({"density": np.inf}, "density: it is inf kg/m3; it must be a finite number above 0"),
         ({"roughness": -1e-3}, "roughness: it is -0.001 m; it must be a finite number, 0 or more"),
-        ({"roughness": 0.05}, "roughness: it must be less than half the diameter"),
+        ({"roughness": 0.05}, "it must be less than half the diameter"),
         ({"regime": "plug"}, "regime: it is 'plug'; it takes laminar or turbulent"),
         (
             {"method": "dodge"},
