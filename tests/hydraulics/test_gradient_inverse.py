@@ -4,6 +4,8 @@ import numpy as np
 import pytest
 
 import rheo
+from rheo.hydraulics.regimes import REGIMES, Law, velocity_at_wall
+from rheo.hydraulics.registry import criterion, turbulent_method
 
 SLURRY = rheo.model("herschel-bulkley", yield_stress=10.0, consistency=0.3, flow_index=0.6)
 
@@ -112,3 +114,39 @@ def test_a_stress_that_no_rate_reaches_flows_without_bound():
 def test_impossible_values_are_refused(call, sentence):
     with pytest.raises(rheo.InputError, match=sentence):
         call()
+
+
+@pytest.mark.parametrize("method", ["dodge-metzner", "wilson-thomas", "torrance"])
+def test_the_regime_comes_back_with_the_velocity(method):
+    velocity = np.geomspace(0.01, 12.0, 200)
+    flow = rheo.pipe_flow(SLURRY, 0.1, velocity, 1200.0, method=method)
+    law = Law(criterion("stability", SLURRY), turbulent_method(method, SLURRY))
+    found, regime = velocity_at_wall(flow.pipe, flow.wall_stress, law)
+    np.testing.assert_allclose(found, velocity, rtol=1e-11)
+    assert REGIMES[regime].tolist() == flow.regime.tolist()
+    assert set(flow.regime) == {"laminar", "transition", "turbulent"}
+    assert regime.dtype == np.intp
+
+
+def test_results_have_the_shape_of_all_arguments():
+    diameter, density = np.array([0.1, 0.2, 0.3]), np.array([[1000.0], [1200.0]])
+    for found in (
+        rheo.velocity_for_gradient(SLURRY, diameter, 2000.0, density),
+        rheo.diameter_for_gradient(SLURRY, 1e-3 * np.ones(3), 2000.0, density),
+        rheo.friction_factor(SLURRY, diameter, 1.0, density),
+        rheo.friction_factor(SLURRY, diameter, 1.0, density, method="torrance"),
+        rheo.critical_velocity(SLURRY, diameter, density),
+        rheo.slip_flow(SLURRY, diameter, np.array([[0.1], [0.2]]), 1e-5).wall_stress,
+    ):
+        assert found.shape == (2, 3)
+    assert np.shape(rheo.velocity_for_gradient(SLURRY, 0.1, 2000.0, 1000.0)) == ()
+    assert np.shape(rheo.velocity_for_gradient(SLURRY, [0.1], 2000.0, 1000.0)) == (1,)
+    assert np.shape(rheo.slip_flow(SLURRY, [0.1], 0.1, 1e-5).wall_stress) == (1,)
+
+
+def test_a_wall_is_smooth_unless_it_is_said_to_be_rough():
+    for flow in (1e-4, 1e-2):
+        smooth = rheo.diameter_for_gradient(SLURRY, flow, 2000.0, 1200.0, 0.0)
+        assert rheo.diameter_for_gradient(SLURRY, flow, 2000.0, 1200.0) == smooth
+    gradient = rheo.velocity_for_gradient(SLURRY, 0.1, 9000.0, 1200.0, 0.0)
+    assert rheo.velocity_for_gradient(SLURRY, 0.1, 9000.0, 1200.0) == gradient

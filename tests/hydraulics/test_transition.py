@@ -1,5 +1,7 @@
 """Transition criteria."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -8,6 +10,8 @@ from pipe_curves import CURVES, DENSITY, DIAMETER
 
 import rheo
 from rheo.geometry.tube_flow import velocity
+from rheo.hydraulics.conditions import lay_out
+from rheo.hydraulics.laminar import critical_wall_rate
 from rheo.hydraulics.registry import criteria
 from rheo.hydraulics.transition.stability import stability_number, surely_stable
 
@@ -117,3 +121,23 @@ def test_an_unknown_criterion_names_those_there_are():
         rheo.critical_velocity(model, 0.1, 1000.0, method="stabillity")
     with pytest.raises(rheo.InputError, match="for casson there are metzner-reed, slatter, stab"):
         rheo.critical_velocity(model, 0.1, 1000.0, method="hanks")
+
+
+@pytest.mark.parametrize("index", [0.1, 0.4, 1.0, 1.7])
+@pytest.mark.parametrize("diameter", [0.01, 2.0])
+def test_for_a_power_law_the_search_starts_at_the_answer(index, diameter):
+    """Z = 808 in closed form: ρR²γ̇_w²/τ_w n/(2 + n)^((2 + n)/(1 + n)); a handful of calls."""
+    model = rheo.model("power-law", consistency=0.3, flow_index=index)
+    _, pipe, _ = lay_out(model, [diameter], 1100.0)
+    calls = []
+
+    def number(part, rate):
+        calls.append(rate)
+        return criteria()["stability"].number(part, rate)
+
+    rate = critical_wall_rate(pipe, replace(criteria()["stability"], number=number))
+    shape = index / (2 + index) ** ((2 + index) / (1 + index))
+    # ρR²γ̇^(2-n)/K shape = 808.
+    size = 1100.0 * (diameter / 2) ** 2 * shape / 0.3
+    assert rate[0] == pytest.approx((808.0 / size) ** (1 / (2 - index)), rel=1e-11)
+    assert len(calls) <= 5

@@ -97,7 +97,13 @@ def test_the_plug_term_keeps_its_digits():
             exact = -2.5 * (mpmath.log(1 - mpmath.mpf(x)) + x * (1 + mpmath.mpf(x) / 2))
         # Above 1e-3 the terms of 1e-3 cancel in double precision, which matters to nobody.
         assert plug_term(np.array(x)) == pytest.approx(float(exact), rel=1e-9, abs=1e-15)
-    assert plug_term(np.array(1e-9)) == pytest.approx(2.5e-27 / 3, rel=1e-8)
+    assert plug_term(np.array(1e-9)) == pytest.approx(2.5e-27 / 3, rel=1e-8, abs=0)
+    for x in (1e-6, 2e-5, 5e-4, 9.99e-4):
+        with mpmath.workdps(50):
+            exact = -2.5 * (mpmath.log(1 - mpmath.mpf(x)) + x * (1 + mpmath.mpf(x) / 2))
+        assert plug_term(np.array(x)) == pytest.approx(float(exact), rel=2e-12, abs=0)
+    # A wall that only just yields: large, but a number.
+    assert 80 < plug_term(np.array(1.0)) < 100
 
 
 def test_darby_melson_survives_where_its_powers_do_not():
@@ -178,3 +184,52 @@ def test_a_forced_turbulent_flow_without_solution_says_so():
     assert np.isnan(flow.wall_stress)
     assert flow.cautions[0].code == "no-turbulent-solution"
     assert np.isnan(rheo.friction_factor(model, 0.01, 0.1, 1000.0, method="dodge-metzner"))
+
+
+def test_folds_are_found_for_each_fluid_by_itself():
+    """Fluids that fold beside such that do not, in one call as one by one."""
+    record = turbulent_methods()["dodge-metzner"]
+    indices = np.array([0.99, 0.2, 0.95, 0.99, 0.6])
+    lowest = np.array([1e-3, 1e-3, 1e-3, 1.0, 0.0])
+
+    def fluids(pick):
+        return rheo.model(
+            "cross",
+            zero_shear_viscosity=10.0,
+            infinite_shear_viscosity=lowest[pick],
+            time_constant=1.0,
+            rate_index=indices[pick],
+        )
+
+    flow = rheo.pipe_flow(fluids(slice(None)), 0.005, 1.0, 1000.0)
+    together = find_bridge(flow.pipe, record)
+    assert np.count_nonzero(np.isfinite(together.log_rate)) >= 1
+    assert np.count_nonzero(np.isneginf(together.log_rate)) >= 2
+    for index in range(5):
+        one = rheo.pipe_flow(fluids(slice(index, index + 1)), 0.005, 1.0, 1000.0)
+        alone = find_bridge(one.pipe, record)
+        assert together.log_rate[index] == pytest.approx(alone.log_rate[0], rel=1e-12)
+        assert together.log_velocity[index] == pytest.approx(alone.log_velocity[0], rel=1e-12)
+
+
+def test_the_bridge_ends_at_the_last_local_minimum():
+    """Against the velocity of the equation on a fine grid of rates."""
+    model = rheo.model(
+        "cross",
+        zero_shear_viscosity=10.0,
+        infinite_shear_viscosity=1e-3,
+        time_constant=1.0,
+        rate_index=0.99,
+    )
+    record = turbulent_methods()["dodge-metzner"]
+    flow = rheo.pipe_flow(model, np.array([0.005, 0.02, 0.1]), 1.0, 1000.0)
+    bridge = find_bridge(flow.pipe, record)
+    log_rate = np.linspace(-5.0, 25.0, 6001)
+    for index in range(3):
+        near = flow.pipe.take(np.full(log_rate.size, index))
+        stress, smooth = record.curve(near, np.exp(log_rate))
+        velocity = np.sqrt(2 * stress / 1000.0) * smooth
+        dips = (velocity[1:-1] < velocity[:-2]) & (velocity[1:-1] <= velocity[2:])
+        last = np.flatnonzero(dips & (velocity[1:-1] > 0))[-1] + 1
+        assert bridge.log_rate[index] == pytest.approx(log_rate[last], abs=0.006)
+        assert np.exp(bridge.log_velocity[index]) == pytest.approx(velocity[last], rel=1e-5)
