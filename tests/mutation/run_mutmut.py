@@ -14,8 +14,8 @@ again only with `--again`, since it is the tests that change for them.
 At the end it prints, for each package, how many mutants there are, how many were killed (a test
 failed), ran out of time, survived, or are run by no test; and the score, killed and out of time
 over all that were tried, with the 95 % interval of Wilson where it is a sample. Then the names of
-those that survived. In FOLDER, `mutmut show NAME` prints one as a difference, and `mutmut browse`
-walks through them.
+those that survived. In FOLDER/PACKAGE, `mutmut show NAME` prints one as a difference, and `mutmut
+browse` walks through them.
 
 What it does not see: mutmut changes the bodies of plain functions and methods. Tables, constants
 and lambdas of a module, and the bodies of functions with a decorator (properties, cached rules of
@@ -35,8 +35,12 @@ from collections import Counter
 from pathlib import Path
 
 ROOT = Path(__file__).resolve().parents[2]
-PACKAGES = ("models", "geometry", "hydraulics")
-TESTS = ("tests/models", "tests/geometry", "tests/hydraulics", "tests/published")
+# Each package is tried by its own tests and by those that lean on it most directly.
+TESTS = {
+    "models": ("tests/models", "tests/geometry", "tests/published"),
+    "geometry": ("tests/geometry", "tests/models", "tests/published"),
+    "hydraulics": ("tests/hydraulics", "tests/published"),
+}
 COPIED = ("rheo", "tests", "sample_data", "pyproject.toml")
 
 KILLED = {1, 3}
@@ -49,7 +53,7 @@ CONFIGURATION = """[mutmut]
 source_paths=
     rheo
 only_mutate=
-{mutated}
+    rheo/{package}/*
 also_copy=
     sample_data
 pytest_add_cli_args=
@@ -94,7 +98,7 @@ mutmut.create_mutants({children})
 """
 
 
-def copy_code(folder: Path, packages: list[str]) -> None:
+def copy_code(folder: Path, package: str) -> None:
     """Bring the copy up to date; files that are as they were keep their time."""
     wanted: set[Path] = set()
     for name in COPIED:
@@ -122,9 +126,8 @@ def copy_code(folder: Path, packages: list[str]) -> None:
         hooks = place / "tests" / "conftest.py"
         hooks.parent.mkdir(parents=True, exist_ok=True)
         hooks.write_text(HOOKS, encoding="utf-8")
-    mutated_lines = "\n".join(f"    rheo/{package}/*" for package in packages)
-    test_lines = "\n".join(f"    {test}" for test in TESTS)
-    text = CONFIGURATION.format(mutated=mutated_lines, tests=test_lines)
+    test_lines = "\n".join(f"    {test}" for test in TESTS[package])
+    text = CONFIGURATION.format(package=package, tests=test_lines)
     (folder / "setup.cfg").write_text(text, encoding="utf-8")
 
 
@@ -133,22 +136,21 @@ def result_files(folder: Path, package: str) -> list[Path]:
     return sorted((folder / "mutants" / "rheo" / package).rglob("*.meta"))
 
 
-def choose(folder: Path, packages: list[str], sample: int | None, seed: int, again: bool) -> None:
+def choose(folder: Path, package: str, sample: int | None, seed: int, again: bool) -> None:
     """Mark which mutants are to be tried and which are left out."""
-    for package in packages:
-        contents = {file: json.loads(file.read_text()) for file in result_files(folder, package)}
-        names = sorted(key for content in contents.values() for key in content["exit_code_by_key"])
-        chosen = set(names)
-        if sample is not None and sample < len(names):
-            chosen = set(random.Random(seed).sample(names, sample))
-        for file, content in contents.items():
-            codes = content["exit_code_by_key"]
-            for name, code in codes.items():
-                if name not in chosen:
-                    codes[name] = LEFT_OUT if code is None else code
-                elif code == LEFT_OUT or (again and code not in KILLED):
-                    codes[name] = None
-            file.write_text(json.dumps(content, indent=4))
+    contents = {file: json.loads(file.read_text()) for file in result_files(folder, package)}
+    names = sorted(key for content in contents.values() for key in content["exit_code_by_key"])
+    chosen = set(names)
+    if sample is not None and sample < len(names):
+        chosen = set(random.Random(seed).sample(names, sample))
+    for file, content in contents.items():
+        codes = content["exit_code_by_key"]
+        for name, code in codes.items():
+            if name not in chosen:
+                codes[name] = LEFT_OUT if code is None else code
+            elif code == LEFT_OUT or (again and code not in KILLED):
+                codes[name] = None
+        file.write_text(json.dumps(content, indent=4))
 
 
 def wilson(successes: int, tried: int) -> tuple[float, float]:
@@ -160,67 +162,67 @@ def wilson(successes: int, tried: int) -> tuple[float, float]:
     return middle - half, middle + half
 
 
-def report(folder: Path, packages: list[str]) -> None:
-    """Print the counts and the score of each package, and the survivors."""
+def report(folder: Path, package: str) -> list[str]:
+    """Print the counts and the score of a package, and return the survivors."""
+    counts: Counter[str] = Counter()
     survivors = []
-    for package in packages:
-        counts: Counter[str] = Counter()
-        for file in result_files(folder, package):
-            for name, code in json.loads(file.read_text())["exit_code_by_key"].items():
-                if code is None or code == LEFT_OUT:
-                    counts["not tried"] += 1
-                elif code in KILLED:
-                    counts["killed"] += 1
-                elif code in OUT_OF_TIME:
-                    counts["out of time"] += 1
-                elif code in NO_TESTS:
-                    counts["no tests"] += 1
-                    survivors.append(f"{name} (no tests)")
-                elif code == SURVIVED:
-                    counts["survived"] += 1
-                    survivors.append(name)
-                else:
-                    counts["crashed"] += 1
-                    survivors.append(f"{name} (ended with {code})")
-        total = sum(counts.values())
-        tried = total - counts["not tried"]
-        noticed = counts["killed"] + counts["out of time"]
-        parts = ", ".join(f"{count} {what}" for what, count in sorted(counts.items()))
-        line = f"{package}: {total} mutants; {parts}"
-        if tried:
-            line += f"; score {noticed / tried:.1%}"
-        if tried and counts["not tried"]:
-            low, high = wilson(noticed, tried)
-            line += f" (95 % interval {low:.1%} to {high:.1%})"
-        print(line)
-    print("\n".join(survivors))
+    for file in result_files(folder, package):
+        for name, code in json.loads(file.read_text())["exit_code_by_key"].items():
+            if code is None or code == LEFT_OUT:
+                counts["not tried"] += 1
+            elif code in KILLED:
+                counts["killed"] += 1
+            elif code in OUT_OF_TIME:
+                counts["out of time"] += 1
+            elif code in NO_TESTS:
+                counts["no tests"] += 1
+                survivors.append(f"{name} (no tests)")
+            elif code == SURVIVED:
+                counts["survived"] += 1
+                survivors.append(name)
+            else:
+                counts["crashed"] += 1
+                survivors.append(f"{name} (ended with {code})")
+    total = sum(counts.values())
+    tried = total - counts["not tried"]
+    noticed = counts["killed"] + counts["out of time"]
+    parts = ", ".join(f"{count} {what}" for what, count in sorted(counts.items()))
+    line = f"{package}: {total} mutants; {parts}"
+    if tried:
+        line += f"; score {noticed / tried:.1%}"
+    if tried and counts["not tried"]:
+        low, high = wilson(noticed, tried)
+        line += f" (95 % interval {low:.1%} to {high:.1%})"
+    print(line)
+    return survivors
 
 
 def main() -> None:
     """Run it."""
     parser = argparse.ArgumentParser(description="Mutation test of the formulas.")
     parser.add_argument("folder", type=Path)
-    parser.add_argument("--packages", nargs="+", choices=PACKAGES, default=list(PACKAGES))
+    parser.add_argument("--packages", nargs="+", choices=tuple(TESTS), default=list(TESTS))
     parser.add_argument("--sample", type=int, help="mutants a package; all when absent")
     parser.add_argument("--seed", type=int, default=1)
     parser.add_argument("--children", type=int, default=2, help="processes at a time")
     parser.add_argument("--again", action="store_true", help="try the survivors again")
     parser.add_argument("--report", action="store_true", help="print what is known, run nothing")
     wish = parser.parse_args()
-    folder = wish.folder.resolve()
-    if not wish.report:
-        folder.mkdir(parents=True, exist_ok=True)
-        copy_code(folder, wish.packages)
-        make = MAKE_MUTANTS.format(children=wish.children)
-        subprocess.run(
-            [sys.executable, "-c", make], cwd=folder, check=True, stdout=subprocess.DEVNULL
-        )
-        choose(folder, wish.packages, wish.sample, wish.seed, wish.again)
-        # Through its entry point: run as a module it would be loaded twice.
-        start = "from mutmut.__main__ import cli; cli()"
-        command = [sys.executable, "-c", start, "run", "--max-children", str(wish.children)]
-        subprocess.run(command, cwd=folder, check=True)
-    report(folder, wish.packages)
+    survivors = []
+    for package in wish.packages:
+        folder = wish.folder.resolve() / package
+        if not wish.report:
+            folder.mkdir(parents=True, exist_ok=True)
+            copy_code(folder, package)
+            make = [sys.executable, "-c", MAKE_MUTANTS.format(children=wish.children)]
+            subprocess.run(make, cwd=folder, check=True, stdout=subprocess.DEVNULL)
+            choose(folder, package, wish.sample, wish.seed, wish.again)
+            # Through its entry point: run as a module it would be loaded twice.
+            start = "from mutmut.__main__ import cli; cli()"
+            command = [sys.executable, "-c", start, "run", "--max-children", str(wish.children)]
+            subprocess.run(command, cwd=folder, check=True)
+        survivors += report(folder, package)
+    print("\n".join(survivors))
 
 
 if __name__ == "__main__":
