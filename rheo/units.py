@@ -97,6 +97,8 @@ _NUMBER = re.compile(
 )
 # A speed has the dimension of a shear rate, and is none.
 _TURNS = re.compile(r"rpm|rps|rev|turn|\bu/|tr/|upm|hz|hertz|rad|deg|°|cycle|cps", re.IGNORECASE)
+# Of a speed these are turns a minute; of a shear rate they are not.
+_PER_MINUTE = {"1/min", "/min", "min-1", "min^-1", "min⁻¹", "1/minute"}
 _SAME_SIGNS = str.maketrans({"−": "-", "’": "'", "\u00a0": " ", "\u2009": " ", "\u202f": " "})
 # A unit that is longer than this, or holds other signs, is no unit; Pint is not asked.
 # A power of a number could take for ever to work out and is never part of a unit.
@@ -315,6 +317,8 @@ def parse_quantity(
         raise UnitError(
             f"unit '{_shown(unit)}' counts turns, which are no shear rate; use 1/s or 1/min", place
         )
+    if target == "1/s" and unit.replace(" ", "").lower() in _PER_MINUTE:
+        unit = "1/minute"
     result = float(to_si(number, unit, target, place))
     if not math.isfinite(result):
         raise UnitError(f"'{_shown(value)}' is not a finite number", place)

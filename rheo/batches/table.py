@@ -114,6 +114,7 @@ def write_table(result: BatchResult, path: str | os.PathLike[str]) -> None:
         part.write_bytes(content)
         os.replace(part, place)
     except OSError as error:
+        part.unlink(missing_ok=True)
         reason = error.strerror or "it is no file"
         raise InputError(f"the table cannot be written: {reason}", str(place)) from None
 

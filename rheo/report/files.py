@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import datetime
+import os
 from pathlib import Path
 
 from rheo.case.result import CaseResult
@@ -90,7 +91,7 @@ def write_note(
     result : CaseResult
         Of `run_case`.
     folder : str or path
-        Made when it is not there; files of these names in it are replaced.
+        Made when it is not there; files of these names in it are replaced, all or none.
     date : datetime.date, optional
         Printed on the note; today when absent.
     system : str
@@ -116,9 +117,21 @@ def write_note(
     place = Path(folder)
     try:
         place.mkdir(parents=True, exist_ok=True)
-        for name, content in contents.items():
-            (place / name).write_bytes(content)
+        _write_all(place, contents)
     except OSError as error:
         reason = error.strerror or "it cannot be written"
         raise InputError(f"the note cannot be written there: {reason}", str(folder)) from None
     return tuple(place / name for name in contents)
+
+
+def _write_all(folder: Path, contents: dict[str, bytes]) -> None:
+    """Write files; none of them takes its name before all are there in full."""
+    parts = {name: folder / f".{name}.{os.getpid()}.part" for name in contents}
+    try:
+        for name, content in contents.items():
+            parts[name].write_bytes(content)
+        for name, part in parts.items():
+            part.replace(folder / name)
+    finally:
+        for part in parts.values():
+            part.unlink(missing_ok=True)
