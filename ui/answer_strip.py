@@ -14,6 +14,7 @@ import streamlit as st
 
 from rheo.case import CaseResult
 from rheo.report import display
+from rheo.report.case_pictures import wall_rate_words
 from rheo.report.numbers import number
 from ui import state, style, words
 
@@ -92,12 +93,9 @@ def _pressure(result: CaseResult, system: str) -> Cell:
 
 
 def _wall_rate(result: CaseResult, system: str) -> Cell:
-    rates = result.wall_rates
-    unit = display.unit_label("rate", system)
-    if rates is None:
+    if result.wall_rates is None:
         return Cell("Wall shear rate", "none", "no pipe")
-    low, high = number(rates[0]), number(rates[1])
-    value = f"{high} {unit}" if low == high else f"{low} to {high} {unit}"
+    value = wall_rate_words(result, system)
     inside = result.inside_measured_range
     if inside is None:
         return Cell("Wall shear rate", value)

@@ -18,6 +18,10 @@ from rheo.fitting import Instrument
 from rheo.readings import Readings, read_readings, screen
 
 SWEEPS = get_args(Sweep)
+_STILL_DEVELOPING = (
+    "Leave them out, or use a longer tube; the entrance loss that is fitted is the same number of "
+    "diameters at every flow."
+)
 
 
 def readings_of(case: Case, number: int = 0) -> Readings:
@@ -206,4 +210,10 @@ def screened(case: Case, readings: Readings) -> tuple[Caution, ...]:
     """
     fitted = {"slip"} if case.fit.slip else set()
     fitted |= {"entrance-loss"} if case.fit.entrance else set()
-    return tuple(one for one in screen(readings) if one.code not in fitted)
+    found = tuple(one for one in screen(readings) if one.code not in fitted)
+    if not case.fit.entrance:
+        return found
+    return tuple(
+        replace(one, advice=_STILL_DEVELOPING) if one.code == "developing-flow" else one
+        for one in found
+    )

@@ -227,6 +227,6 @@ def wall_rate_words(result: CaseResult, system: str = "metric") -> str:
     """Return the wall shear rates of the line in words, such as ``45 to 110 1/s``."""
     if result.wall_rates is None:
         return "not known"
-    low, high = (number(float(v), 2) for v in shown(result.wall_rates, "rate", system))
+    low, high = (number(float(v)) for v in shown(result.wall_rates, "rate", system))
     unit = unit_label("rate", system)
     return f"{low} {unit}" if low == high else f"{low} to {high} {unit}"

@@ -141,8 +141,11 @@ def _axis(axis: Axis, ends: tuple[float, float], colours: Palette) -> dict[str, 
     if axis.log:
         low, high = math.log10(low), math.log10(high)
         minor = {"showgrid": high - low < 4, "dtick": "D1", "gridcolor": _rgba(colours.rule, 0.45)}
-        drawn |= {"type": "log", "dtick": 1, "minexponent": 3, "minor": minor}
-        if high - low < 1.5:
+        # As in the static figures: decades from 0.001 to 10,000 are written out.
+        plain = low > -4 and high < 5
+        powers = {"exponentformat": "none" if plain else "power", "minexponent": 3}
+        drawn |= {"type": "log", "dtick": 1, **powers, "minor": minor}
+        if high - low < 2.0:
             # Plotly would name 20 and 50 as bare 2 and 5.
             named, _ = log_ticks(*ends)
             drawn |= {

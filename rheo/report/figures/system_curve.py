@@ -125,8 +125,9 @@ def system_curve(
         key="system-curve",
         title="System curve",
         description=(
-            "Pressure that the line needs against flow, with its interval. The line is solid where "
-            f"the flow is laminar, dotted in transition and dashed where it is turbulent.{far}"
+            "Pressure that the line needs against flow, with its 95 % interval by readings and "
+            "model choice. The line is solid where the flow is laminar, dotted in transition and "
+            f"dashed where it is turbulent.{far}"
         ),
         x=Axis("Flow", unit_label("flow", system), low=0.0),
         panels=(Panel(Axis("Pressure", unit_label("pressure", system)), tuple(marks)),),

@@ -90,7 +90,7 @@ def duty_blocks(line: LineResult, budget: DoubtBudget, system: str) -> list[Bloc
     if line.draws is not None:
         blocks.append(
             Paragraph(
-                "The first interval is the 95 % interval by all causes of the budget below. The "
+                "The first interval is the 95 % interval by all causes of the doubt budget. The "
                 f"second holds the middle 95 % of {line.draws.shape[-1]} likely flow curves: draws "
                 "from the fits, the models mixed by their weights, each taken through the same "
                 "calculation; it holds the doubt in the product alone.",
