@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from rheo.cli import terminal
 from rheo.cli.options import CaseFile, Json, OutFolder, Outside, UnitsOption
 from rheo.cli.terminal import Units
+from rheo.errors import InputError
 
 if TYPE_CHECKING:
     from pathlib import Path
@@ -30,6 +31,8 @@ def run(
     """
     from rheo.case import load_case, run_case
 
+    if out is not None and out.exists() and not out.is_dir():
+        raise InputError("it is no folder; give one, which is made where it is not there", str(out))
     result = run_case(load_case(case, allow_outside))
     written: tuple[Path, ...] = ()
     if out is not None:

@@ -178,3 +178,8 @@ def test_turns_are_no_shear_rate():
 
 def test_what_is_no_ordinary_file(command):
     assert "it is no ordinary file" in plain(command("fit", "/dev/null"))
+
+
+def test_a_file_is_no_place_for_the_note(command, folder):
+    words = plain(command("run", folder / "case.toml", "--out", folder / "readings.csv"))
+    assert words.endswith("it is no folder; give one, which is made where it is not there")
