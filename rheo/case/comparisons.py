@@ -7,6 +7,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from rheo.case.result import CaseResult
+from rheo.case.solids_state import at_solids
 from rheo.errors import InputError
 from rheo.fitting import Fit
 from rheo.hydraulics.registry import criteria
@@ -63,7 +64,9 @@ def pressure_by_model(
         used = fit.key == result.chosen.key
         if not used and fit.weight < least_weight:
             continue
-        product = replace(result.product, model=result.fits.source(fit.key), draws=())
+        source = result.fits.source(fit.key)
+        model = at_solids(source, result.fits, result.product.solids_fraction)
+        product = replace(result.product, model=model, draws=())
         try:
             at = walk(
                 line.line,

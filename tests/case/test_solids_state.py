@@ -7,6 +7,7 @@ import pytest
 
 import rheo
 from rheo.case import case_from_text, case_text
+from rheo.case.comparisons import pressure_by_model
 from rheo.case.embed import embedded
 from rheo.case.solids_state import solids_basis
 from rheo.case.what_if import SolidsChange, WhatIf, what_if
@@ -288,3 +289,15 @@ def test_what_if_without_a_fitted_law_asks_what_the_readings_held():
     result = rheo.run_case(case(table=rows(0.45)))
     with pytest.raises(InputError, match="give the solids of the readings too"):
         what_if(result, WhatIf(solids=SolidsChange(None, 0.3)))
+
+
+def test_every_model_is_compared_at_the_solids_of_the_product():
+    result = rheo.run_case(case())
+    found = {one.fit.key: one for one in pressure_by_model(result, least_weight=0.0)}
+    used = found[result.chosen.key]
+    assert used.friction_pressure == pytest.approx(float(result.line.friction_pressure), rel=1e-12)
+    assert used.share == 0.0
+    named = rheo.run_case(case(more=', model = "bingham"'))
+    assert found["bingham"].friction_pressure == pytest.approx(
+        float(named.line.friction_pressure), rel=1e-9
+    )
