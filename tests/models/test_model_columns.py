@@ -9,6 +9,7 @@ from plain_words import odd_words
 
 import rheo
 from rheo import InputError, Model
+from rheo.models.common import flow_index_grid, reciprocal_rate_grid
 from rheo.models.inverse import rate_from_stress
 from rheo.models.monotone import LARGEST_RATE, solve_log
 from rheo.models.scaled import scaled
@@ -174,3 +175,60 @@ def test_the_rate_at_a_stress_whatever_the_start(key: str) -> None:
     assert still[0] == 0.0
     assert np.isnan(still[1])
     assert still[2] == pytest.approx(rates[3], rel=1e-11)
+
+
+@pytest.mark.parametrize("key", KEYS)
+@pytest.mark.parametrize("method", METHODS)
+@pytest.mark.parametrize("value", [-1.0, np.inf, [3.0, -2.0]])
+def test_every_method_refuses_by_the_name_of_its_argument(
+    key: str, method: str, value: float
+) -> None:
+    what = "shear stress" if method == "rate" else "shear rate"
+    shown = "inf" if np.isinf(np.max(value)) else f"{np.min(value):g}"
+    with pytest.raises(InputError) as caught:
+        getattr(example(key), method)(value)
+    assert str(caught.value) == f"{what} is {shown}; it must be a finite number of 0 or more"
+
+
+@pytest.mark.parametrize("key", [key for key in KEYS if rheo.model_records()[key].moment_ratio])
+@pytest.mark.parametrize("k", [0, 1, 2])
+def test_closed_moment_ratios_have_the_shape_of_all_arguments(key: str, k: int) -> None:
+    record = rheo.model_records()[key]
+    rates = np.array([0.1, 3.0, 90.0])
+    plain = record.moment_ratio(k, rates, *example(key))
+    assert np.shape(plain) == (3,)
+    for name, value in EXAMPLES[key].items():
+        draws = rheo.model(key, **{**EXAMPLES[key], name: [[value], [0.99 * value]]})
+        table = record.moment_ratio(k, rates, *draws)
+        assert np.shape(table) == (2, 3)
+        np.testing.assert_allclose(table[0], plain, rtol=1e-13)
+        assert np.shape(record.moment_ratio(k, np.asarray(3.0), *draws)) == (2, 1)
+
+
+@pytest.mark.parametrize("key", KEYS)
+def test_what_the_parameters_do_at_rest(key: str) -> None:
+    """Only what makes the yield stress moves it: Casson's and Bingham's as they stand, K γ̇_0^n."""
+    expected = {
+        "bingham": [1.0, 0.0],
+        "herschel-bulkley": [1.0, 0.0, 0.0],
+        "casson": [1.0, 0.0],
+        # K = 3, γ̇_0 = 4, n = 0.5: 2, 3·0.5/2, 3·2·ln 4.
+        "robertson-stiff": [2.0, 0.75, 6.0 * np.log(4.0)],
+    }.get(key, [0.0] * len(EXAMPLES[key]))
+    np.testing.assert_allclose(example(key).jacobian(0.0), expected, atol=1e-13)
+
+
+def test_the_grids_of_the_search_cover_what_data_can_tell_apart() -> None:
+    index = flow_index_grid()
+    assert (index[0], index[-1]) == (pytest.approx(0.01), pytest.approx(2.0))
+    assert flow_index_grid(7, 1.0)[-1] == pytest.approx(1.0)
+    assert flow_index_grid(7).size == 7
+    assert np.all(np.diff(index) > 0)
+    # Denser where indices are small.
+    assert np.all(np.diff(index, 2) > 0)
+    times = reciprocal_rate_grid(np.array([0.0, 0.5, 200.0]))
+    assert times[0] == pytest.approx(1.0 / (200.0 * 1e3))
+    assert times[-1] == pytest.approx(1e3 / 0.5)
+    assert reciprocal_rate_grid(np.array([1.0]), 5, 10.0).tolist() == pytest.approx(
+        [0.1, 0.1**0.5, 1.0, 10.0**0.5, 10.0]
+    )
