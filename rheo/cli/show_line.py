@@ -34,6 +34,7 @@ def with_interval(value: Any, interval: Any, quantity: str, units: str) -> str:
 
 def show_duty(out: Console, result: LineResult, units: str, efficiency: float | None) -> None:
     """Write what the pump must do."""
+    from rheo.readings.solids import in_words
     from rheo.report.display import text
 
     drop = with_interval(
@@ -48,11 +49,13 @@ def show_duty(out: Console, result: LineResult, units: str, efficiency: float | 
     if result.shaft_power is not None and efficiency is not None:
         power += f", {text(result.shaft_power, 'power', units)} shaft at {100 * efficiency:.3g} %"
     npsh = result.npsh_available
+    solids = result.product.solids_fraction
     rise = result.temperature_rise
     terminal.values(
         out,
         [
             ("flow", terminal.given(float(result.flow), "flow", units)),
+            ("solids of the product", None if solids is None else in_words(solids)),
             ("pressure drop, friction", terminal.text(drop, "bold")),
             ("height, vessels, velocity", _statics(result, units)),
             ("differential pressure", terminal.text(whole, "bold")),

@@ -68,4 +68,5 @@ discharge = [{ part = "pipe", length = "80 m", inside_diameter = "100 mm" }, { p
     assert (ended.status, ended.err) == (0, "")
     words = " ".join(ended.out.split())
     assert "the solids are outside those of the readings" in words
+    assert "solids of the product 38 %" in words
     assert "The solids fraction is 38 %; the readings were taken between 25 % and 35 %." in words
