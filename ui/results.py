@@ -22,7 +22,9 @@ import streamlit as st
 from rheo.case import Case, case_text, run_case
 from rheo.case.embed import embedded
 from rheo.case.load_readings import all_readings
+from rheo.case.result import CaseResult
 from rheo.case.run import FittedCase, fit_case, fit_models
+from rheo.case.schema import WORDS
 from rheo.errors import InputError
 from rheo.fitting import Fits
 from rheo.readings import Readings
@@ -147,8 +149,13 @@ def result_of(case: Case, files: Files) -> Outcome:
     fitted = fitted_of(case, files)
     if fitted.value is None:
         return fitted
-    found: Outcome = _result(result_key(case, files), case, fitted.value)
-    return found
+    document = case.document()
+    worked_with = {name: value for name, value in document.items() if name not in WORDS}
+    found: Outcome = _result(digest(worked_with, _file_digests(files)), case, fitted.value)
+    if found.value is None or found.value.case.words == case.words:
+        return found
+    named: Outcome = _in_words_of(result_key(case, files), case, found.value)
+    return named
 
 
 def result_key(case: Case, files: Files) -> str:
@@ -195,6 +202,11 @@ def _fitted(
     _fits: Fits,
 ) -> Outcome:
     return outcome_of(lambda: fit_case(_case, _readings, _fits))
+
+
+@st.cache_resource(max_entries=16, show_spinner=False)
+def _in_words_of(key: str, _case: Case, _result: CaseResult) -> Outcome:  # noqa: ARG001
+    return Outcome(_result.in_words_of(_case))
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from copy import copy
 from dataclasses import dataclass, replace
 from functools import cached_property
 from typing import Any
@@ -180,6 +181,8 @@ class CaseResult:
         InputError
             As for `sizing`.
         """
+        if "sizing" in self.__dict__:
+            return self.sizing
         case = self.case
         sizes = case.sizes
         spread = {} if sizes is None else sizes.spread()
@@ -205,6 +208,20 @@ class CaseResult:
         )
         # As a cached property keeps its value: not worked out again when it is asked for.
         self.__dict__["sizing"] = found
+        return found
+
+    def in_words_of(self, case: Case) -> CaseResult:
+        """Return this result for a case that differs in its words only.
+
+        What has been worked out of it already is not worked out again.
+
+        Parameters
+        ----------
+        case : Case
+            With another title, other names or notes.
+        """
+        found = copy(self)
+        object.__setattr__(found, "case", case)
         return found
 
     @property

@@ -170,6 +170,10 @@ class DutyBlock(Block):
     hours_a_year: Hours | None = None
 
 
+# The keys of a case that no calculation takes up.
+WORDS = ("title", "notes", "prepared_by", "checked_by")
+
+
 class Case(Block):
     """A design case.
 
@@ -215,6 +219,11 @@ class Case(Block):
 
     def __hash__(self) -> int:
         return hash(json.dumps(self.document(), ensure_ascii=True))
+
+    @property
+    def words(self) -> tuple[str, ...]:
+        """What it says of itself: title, notes and names, which no calculation takes up."""
+        return tuple(str(getattr(self, name)) for name in WORDS)
 
     @property
     def folder(self) -> Path | None:

@@ -19,6 +19,8 @@ from rheo.models import Model
 from rheo.models.state_curve import ScaledCurve
 
 FlowCurveSource = Model | ScaledCurve
+# So many sets of draws are kept; each can hold many flow curves.
+_KEPT_DRAWS = 8
 
 
 @dataclass(frozen=True, eq=False)
@@ -148,9 +150,18 @@ class Fits:
         Returns
         -------
         tuple
-            With arrays whose lengths add up to `count`.
+            With arrays whose lengths add up to `count`; the same objects when asked for again.
         """
-        return mixed_draws(self, count, seed, key)
+        asked = (count, seed, key)
+        if asked not in self._drawn:
+            while len(self._drawn) >= _KEPT_DRAWS:
+                del self._drawn[next(iter(self._drawn))]
+            self._drawn[asked] = mixed_draws(self, count, seed, key)
+        return self._drawn[asked]
+
+    @cached_property
+    def _drawn(self) -> dict[tuple[int, int, str | None], tuple[FlowCurveSource, ...]]:
+        return {}
 
     def predict(
         self,

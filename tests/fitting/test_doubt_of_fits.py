@@ -78,6 +78,20 @@ def test_the_seed_decides_the_draws():
     assert one.shape == (50,)
 
 
+def test_draws_asked_for_again_are_kept_and_few_are():
+    fits = sauce_fits()
+    first = fits.draws(20, seed=1)
+    assert fits.draws(20, seed=1) is first
+    assert fits.draws(20, seed=2) is not first
+    for seed in range(3, 12):
+        fits.draws(5, seed=seed)
+    again = fits.draws(20, seed=1)
+    assert again is not first
+    for one, other in zip(again, first, strict=True):
+        for key, value in one.parameters.items():
+            np.testing.assert_array_equal(value, other.parameters[key])
+
+
 @pytest.mark.parametrize("key", KEYS)
 def test_every_model_is_drawn_within_its_bounds(key):
     """Building the model checks the bounds; the curves must lie about the readings."""

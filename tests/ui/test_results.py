@@ -68,3 +68,30 @@ def test_files_are_there_for_the_call_only() -> None:
         assert folder is not None
         assert sorted(one.name for one in folder.iterdir()) == ["sauce_readings.csv"]
     assert not folder.exists()
+
+
+def test_another_title_works_nothing_out_again() -> None:
+    files = opening.sample_files("gum")
+    case = opening.sample("gum")
+    first: CaseResult = results.result_of(case, files).value
+    sizing = first.sizing
+    for name in ("title", "notes", "prepared_by", "checked_by"):
+        other = changed(case, (name,), "Other words")
+        second: CaseResult = results.result_of(other, files).value
+        assert second.case == other
+        assert second.as_dict()["title"] == other.title
+        assert second.line is first.line
+        assert second.compare_sizes() is sizing
+        assert results.result_of(other, files).value is second
+    assert first.case == case
+
+
+def test_a_thicker_batch_draws_no_flow_curves_again() -> None:
+    files = opening.sample_files("gum")
+    case = opening.sample("gum")
+    thicker = changed(case, ("product", "stress_factor"), 1.2)
+    first, second = (results.fitted_of(one, files).value for one in (case, thicker))
+    count, seed = int(case.doubt.draws), int(case.doubt.seed)
+    assert first.fits is second.fits
+    assert first.fits.draws(count, seed) is second.fits.draws(count, seed)
+    assert second.product is not first.product
