@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import re
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, lru_cache
 
 from rheo.readings.numerals import Cell, looks_numeric
 
@@ -103,6 +103,11 @@ def is_rule(text: str) -> bool:
 
 def shown(text: object) -> str:
     """Return a text from a file as a sentence can show it: one line, short, printable."""
-    line = re.sub(r"\s+", " ", str(text)).strip()
+    return _shown(str(text))
+
+
+@lru_cache(maxsize=256)
+def _shown(text: str) -> str:
+    line = re.sub(r"\s+", " ", text).strip()
     line = "".join(sign if sign.isprintable() else "?" for sign in line)
     return line if len(line) <= LONGEST_SHOWN else line[: LONGEST_SHOWN - 3] + "..."

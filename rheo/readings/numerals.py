@@ -5,6 +5,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable
 from dataclasses import dataclass
+from functools import lru_cache
 
 from rheo.errors import ReadingsError
 
@@ -38,8 +39,11 @@ def plain(text: str) -> str:
 
 def looks_numeric(cell: Cell) -> bool:
     """Return whether a cell is a number with either decimal mark, or a number gone wrong."""
-    if not isinstance(cell, str):
-        return True
+    return not isinstance(cell, str) or _numeric_text(cell)
+
+
+@lru_cache(maxsize=4096)
+def _numeric_text(cell: str) -> bool:
     text = plain(cell)
     return bool(
         text

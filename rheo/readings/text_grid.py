@@ -150,7 +150,13 @@ def _splitter(lines: Sequence[str]) -> tuple[Callable[[str], tuple[Cell, ...]], 
     kept = [line for line in lines if not is_comment(line) and re.search(r"[0-9]", line)]
     step = max(1, len(kept) // _SAMPLE)
     sample = kept[::step] or [line for line in lines if not is_rule(line)][:_SAMPLE]
-    scores = {sign: _score([_split(line, sign) for line in sample]) for sign in _SEPARATORS}
+    # Without the sign every row is one cell, which scores nothing.
+    scores = {
+        sign: _score([_split(line, sign) for line in sample])
+        if any(sign in line for line in sample)
+        else 0.0
+        for sign in _SEPARATORS
+    }
     scores[_BLANKS] = _score([tuple(line.split()) for line in sample])
     best = max(scores.values())
     if best == 0:
