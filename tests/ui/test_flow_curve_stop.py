@@ -7,7 +7,9 @@ from typing import TYPE_CHECKING
 import pytest
 
 from rheo.case import case_from_document, load_case, run_case
+from rheo.case.fit_choices import fit_choices
 from ui import opening
+from ui.flow_curve.choices import weighting_rows
 from ui.flow_curve.compare import change, comparison
 from ui.flow_curve.ranking import verdict
 
@@ -133,3 +135,47 @@ def test_the_fits_of_tubes_can_take_in_slip(page: Page) -> None:
     page.run()
     assert page.kept("case").fit.slip is (not now)
     assert page.errors == []
+
+
+def test_weights_and_branches_are_compared_when_asked(page: Page) -> None:
+    page.go("flow_curve")
+    assert "Every weighting leads to" not in page.html
+    compare_them(page)
+    assert "Every weighting leads to the Herschel-Bulkley model" in page.html
+    assert "the same percentage of every reading (in use)" in page.html
+    assert "the same amount at every reading" in page.html
+    assert "way up</td>" in page.html
+    assert "static yield stress of at least" in page.html
+
+
+def test_readings_without_branches_say_so(page: Page) -> None:
+    page.press("Gum")
+    page.go("flow_curve")
+    compare_them(page)
+    assert "there are no branches to compare" in page.words
+
+
+def test_the_comparison_of_weights_is_of_whole_results() -> None:
+    result = run_case(load_case(opening.SAMPLES / "gum.toml"))
+    told: list[float] = []
+    found = fit_choices(result, told.append)
+    assert list(found.weightings) == ["relative", "absolute"]
+    assert found.weightings["relative"] is result
+    other = case_from_document(
+        {**result.case.document(), "fit": {"weighting": "absolute"}}
+    ).in_folder(opening.SAMPLES)
+    by_hand = run_case(other)
+    assert found.weightings["absolute"].doubt.pressure == by_hand.doubt.pressure
+    assert found.sweeps is None
+    assert told == [0.5]
+    first, second = weighting_rows(found, "metric")
+    assert (first.mark, first.cells[-1]) == ("chosen", "")
+    assert second.cells[-1] == change(result.doubt.pressure, by_hand.doubt.pressure)
+
+
+def compare_them(page: Page) -> None:
+    """Turn the comparison on and wait for it."""
+    page.widget("toggle", "Compare them").set_value(True)
+    page.run()
+    page.kept("work.choices").done.wait(60)
+    page.run()

@@ -11,7 +11,7 @@ from rheo.case.schema import INSTRUMENT
 from rheo.fitting.weighting import WEIGHTINGS
 from ui import cautions, state
 
-_WORDS = {
+WORDS = {
     "relative": "the same percentage of every reading",
     "absolute": "the same amount at every reading",
     INSTRUMENT: "by the instrument's data sheet",
@@ -33,7 +33,7 @@ def show(result: CaseResult) -> None:
             "A reading is taken to be uncertain by",
             names,
             index=names.index(fit.weighting),
-            format_func=lambda name: _WORDS.get(name, name),
+            format_func=lambda name: WORDS.get(name, name),
             key=widget,
             on_change=lambda: state.attempt("fit", choose_weighting, st.session_state[widget]),
             help="With a wide range of stresses the same percentage keeps low readings in the fit.",

@@ -21,7 +21,11 @@ _VESSEL = (
 )
 _LOSS = {
     "entrance": Field(
-        "loss_coefficient", "Entrance K", NUMBER, "Left empty: that of a published entrance."
+        "loss_coefficient",
+        "Entrance K",
+        NUMBER,
+        "Left empty: that of a sharp edge, 0.5 + 160/Re (Hooper 1981), or of the kind of entrance "
+        "that the case file names.",
     ),
     "exit": Field(
         "loss_coefficient", "Exit K", NUMBER, "Left empty: all of the kinetic energy is lost."

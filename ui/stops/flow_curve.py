@@ -9,7 +9,7 @@ from rheo.report.case_pictures import flow_curve_picture, residuals_picture
 from rheo.report.sections.fitted import parameter_table
 from rheo.report.words import capital
 from ui import answer_strip, blocks, cautions, pictures, places, state, style, walk, words
-from ui.flow_curve import compare, how, measure, ranking
+from ui.flow_curve import choices, compare, how, measure, ranking
 
 
 def show() -> None:
@@ -67,6 +67,8 @@ def _show_result(result: CaseResult) -> None:
         measure.show(result)
     with st.expander("How it is fitted"):
         how.show(result)
+    with st.expander("Other weights, and the way up or down"):
+        choices.show(result)
 
 
 def _reason(result: CaseResult) -> str:
