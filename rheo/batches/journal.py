@@ -77,3 +77,8 @@ def _line(row: Row) -> str:
 def journal_path(table: Path) -> Path:
     """Return where the journal of a table stands."""
     return table.with_name(table.name + ".journal")
+
+
+def rows_in(path: Path) -> int:
+    """Return how many rows stand in a journal in full."""
+    return max(0, path.read_bytes().count(b"\n") - 1)

@@ -16,10 +16,12 @@ from rheo.cli.open_page import open_page
 from rheo.cli.pipe import pipe
 from rheo.cli.run import run
 from rheo.cli.size import size
+from rheo.cli.stopped import Commands, Stopped
 from rheo.errors import InputError
 
 app = typer.Typer(
     name="rheo",
+    cls=Commands,
     no_args_is_help=True,
     add_completion=False,
     pretty_exceptions_enable=False,
@@ -60,7 +62,7 @@ def main() -> None:
     """Run the command line.
 
     Ends with 0 when done; 1 with one plain sentence on stderr when what the user gave is wrong or
-    the result cannot be written; 2 for wrong usage; 130 after Ctrl-C.
+    the result cannot be written; 2 for wrong usage; 130 after Ctrl-C, with one plain sentence.
     """
     for stream in (sys.stdout, sys.stderr):
         # A terminal that lacks a Greek letter shows a question mark; the work is not lost for it.
@@ -75,6 +77,10 @@ def main() -> None:
     except OSError as error:
         named = f"{error.filename}: " if error.filename else ""
         _end(f"{named}{error.strerror or error}", 1)
+    except Stopped as stopped:
+        # The terminal shows ^C on the same line.
+        sys.stderr.write(f"\n{stopped}\n" if sys.stderr.isatty() else f"{stopped}\n")
+        _end("", 130)
     except KeyboardInterrupt:
         _end("stopped", 130)
 

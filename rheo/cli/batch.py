@@ -21,6 +21,7 @@ from rheo.cli.readings_options import (
     geometry_text,
     sweep_of,
 )
+from rheo.cli.stopped import Stopped
 from rheo.errors import InputError
 
 if TYPE_CHECKING:
@@ -113,7 +114,12 @@ def batch(
     journal = None if out is None else journal_path(out)
     if fresh and journal is not None:
         journal.unlink(missing_ok=True)
-    with _progress(quiet=as_json) as tell:
+    with _stop_said(len(files), journal) as count, _progress(quiet=as_json) as tell:
+
+        def progress(done: int, total: int) -> None:
+            count(done)
+            tell(done, total)
+
         result = run_batch(
             files,
             settings,
@@ -121,7 +127,7 @@ def batch(
             [rate for rate in asked if rate is not None] or None,
             workers=workers,
             journal=journal,
-            progress=tell,
+            progress=progress,
         )
     # Within the folder a file's name says enough.
     result = replace(result, rows=tuple(row.named(_name(row, folder)) for row in result.rows))
@@ -163,14 +169,37 @@ def _files(folder: Path, recursive: bool, out: Path | None) -> list[Path]:
 
 
 @contextlib.contextmanager
-def _progress(quiet: bool) -> Iterator[Callable[[int, int], None] | None]:
+def _stop_said(total: int, journal: Path | None) -> Iterator[Callable[[int], None]]:
+    """Return what is told how many files are done; after Ctrl-C say what is kept of them."""
+    from rheo.batches.journal import rows_in
+
+    done: list[int] = []
+    try:
+        yield done.append
+    except KeyboardInterrupt:
+        if journal is None:
+            raise Stopped(
+                f"Stopped after {max(done, default=0)} of {total} files; nothing is kept. With "
+                "--out a batch keeps what is done and goes on from there."
+            ) from None
+        # Rows may have come to the journal since progress was last told. Before it is told at
+        # all, what stands in the journal may be of a batch with other settings.
+        kept = rows_in(journal) if done else 0
+        raise Stopped(
+            f"Stopped. {kept} of {total} files are kept in {journal}; the same command goes "
+            "on from there."
+        ) from None
+
+
+@contextlib.contextmanager
+def _progress(quiet: bool) -> Iterator[Callable[[int, int], None]]:
     """Return what shows the progress on standard error, where that is a terminal."""
     from rich.console import Console
     from rich.progress import BarColumn, MofNCompleteColumn, Progress, TimeRemainingColumn
 
     console = Console(stderr=True)
     if quiet or not console.is_terminal:
-        yield None
+        yield lambda done, total: None  # noqa: ARG005
         return
     bar = Progress(
         "Files", BarColumn(), MofNCompleteColumn(), TimeRemainingColumn(), console=console

@@ -6,6 +6,7 @@ from typing import Annotated
 
 import typer
 
+from rheo.cli.stopped import Stopped
 from rheo.errors import InputError
 
 
@@ -37,4 +38,11 @@ def open_page(
         *("streamlit", "run", str(page)),
         *("--server.port", str(port), "--server.headless", headless),
     ]
-    sys.exit(cli.main())
+    try:
+        status = cli.main()
+    except SystemExit as ended:
+        status = ended.code
+    if status:
+        sys.exit(status)
+    # The server ends with 0 only when it is told to: it takes Ctrl-C by itself.
+    raise Stopped("Stopped. The page is closed; cases that were saved are kept.")
