@@ -27,6 +27,7 @@ NUMBER, COUNT, SHARE, TEXT = "number", "count", "share", "text"
 # Kinds that every unit system shows alike: SI unit, unit in a field, and as the case file has it.
 _FIXED = {
     "heat_transfer": ("W/(m^2*K)", "W/(m²·K)", "W/(m^2*K)"),
+    "heat_capacity": ("J/(kg*K)", "kJ/(kg·K)", "kJ/(kg*K)"),
     "angle": ("rad", "°", "°"),
     "temperature_step": ("K", "K", "K"),
 }

@@ -344,3 +344,19 @@ def test_slip_that_the_fit_takes_in_flags_nothing(page: Page) -> None:
     page.app.session_state["rheo.case"] = changed(page.kept("case"), ("fit", "slip"), False)
     page.run()
     assert "slips at the wall" in page.html
+
+
+def test_what_a_start_must_overcome_can_be_given(page: Page) -> None:
+    page.go("readings")
+    before = page.strip()[4]
+    assert page.widget("text_input", "Static yield stress").value == "24 Pa"
+    page.type("Static yield stress", "48 Pa")
+    assert page.kept("case").product.static_yield_stress == 48.0
+    assert page.strip()[4] != before
+    page.type("Static yield stress", "")
+    assert page.kept("case").product.static_yield_stress is None
+    page.type("Heat capacity", "3.9")
+    assert page.kept("case").product.heat_capacity == 3900.0
+    page.type("Vapour pressure", "0.2 bar")
+    assert page.kept("case").product.vapour_pressure == 20000.0
+    assert page.errors == []

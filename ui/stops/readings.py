@@ -4,8 +4,34 @@ from __future__ import annotations
 
 import streamlit as st
 
-from ui import answer_strip, cautions, opening, state, style, units_switch, walk, words
+from ui import answer_strip, cautions, fields, opening, state, style, units_switch, walk, words
+from ui.fields import Field
 from ui.readings import geometry, mapping, points, sets, solids, source
+
+_AT_REST_AND_HOT = (
+    Field(
+        "static_yield_stress",
+        "Static yield stress",
+        "stress",
+        "What a start after a stop must overcome; by a vane, after the longest stop. It is often "
+        "higher than the yield stress of the flowing product.",
+        "that of the flow curve",
+    ),
+    Field(
+        "vapour_pressure",
+        "Vapour pressure",
+        "pressure",
+        "Absolute, at the temperature of the suction; for NPSH and for boiling on the way.",
+        "not known",
+    ),
+    Field(
+        "heat_capacity",
+        "Heat capacity",
+        "heat_capacity",
+        "For the warming by friction and for cooling along the line.",
+        "not known",
+    ),
+)
 
 
 def show() -> None:
@@ -79,8 +105,8 @@ def _show_borrowed() -> None:
     listed = " and ".join([", ".join(parts[:-1]), parts[-1]] if len(parts) > 1 else parts)
     verb = "is" if len(parts) == 1 else "are"
     cautions.note(
-        f"The {listed} {verb} still the sample's. Set the product's density below, and duty and "
-        "line under Route, before you use the pressure drop."
+        f"The {listed} {verb} still the sample's. Set the product's density and static "
+        "yield stress below, and duty and line under Route, before you use the pressure drop."
     )
 
 
@@ -99,6 +125,7 @@ def _show_product() -> None:
             optional=True,
             placeholder="that of the readings",
         )
+    fields.group("product.more", ("product",), _AT_REST_AND_HOT, columns=3)
     columns = st.columns(3)
     with columns[0]:
         _show_sweep(number)

@@ -87,6 +87,11 @@ def pressure_line(
         description=(
             "Gauge pressure and elevation against the distance along the line. Fittings, equipment "
             "and the pump are steps; dashed lines are limits."
+            + (
+                ""
+                if low is None
+                else " The band is the 95 % interval by readings and model choice."
+            )
             + "".join(f" The {words}." for words in far)
         ),
         x=Axis("Distance along the line", unit_label("length", system)),

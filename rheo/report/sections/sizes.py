@@ -94,7 +94,10 @@ def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
         (*head, "Verdict"),
         tuple(rows),
         numeric=tuple(range(1, len(head))),
-        caption=f"Every size of {shared} against the limits" if shared else "Every size",
+        caption=(
+            f"Every size{f' of {shared}' if shared else ''} against the limits; ± by readings and "
+            "model choice"
+        ),
         states=tuple(_state(one, sizing) for one in sizing.candidates),
         widths=(1.2, *[0.8] * (len(head) - 1), 2.6),
     )
