@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import Any
 
 import streamlit as st
@@ -50,6 +51,7 @@ def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = Tr
     figure.update_layout(showlegend=False, margin={"l": 58, "r": 10, "t": 14, "b": 48})
     figure.update_xaxes(tickangle=0)
     along = figure.layout.xaxis
+    _keep_words_inside(figure)
     if along.type == "log" and along.range[1] - along.range[0] > _MANY_DECADES:
         figure.update_xaxes(dtick=2)
     chosen: dict[str, Any] = {} if select == "ignore" else {"selection_mode": "points"}
@@ -62,3 +64,17 @@ def show(picture: Picture, key: str, *, select: Any = "ignore", title: bool = Tr
         alt=f"{picture.title}. {picture.description}",
         **chosen,
     )
+
+
+def _keep_words_inside(figure: Any) -> None:
+    """Write the names of strips in the right half towards the left, where there is room."""
+    along = figure.layout.xaxis
+    if along.range is None:
+        return
+    left, right = along.range
+    for shape in figure.layout.shapes:
+        if shape.type != "rect" or shape.xref != "x" or not shape.label.text:
+            continue
+        at = math.log10(shape.x0) if along.type == "log" else shape.x0
+        if at > 0.5 * (left + right):
+            shape.label.textposition = "top right"

@@ -45,13 +45,13 @@ def test_the_pipes_are_given_as_viscometer_speeds(stop: Page) -> None:
 
 def test_from_the_pipe_to_the_viscometer_and_back(stop: Page) -> None:
     said = re.search(
-        r"The round tube at 4 m3/h works at ([\d.]+) 1/s; on .*? that is ([\d.]+) rpm", stop.html
+        r"The round tube at 4 m³/h works at ([\d.]+) 1/s; on .*? that is ([\d.]+) rpm", stop.html
     )
     assert said is not None
     stop.choose("In", "concentric-cylinders")
     stop.type("Speed", f"{said[2]} rpm")
     stop.choose("Wanted in", "tube")
-    back = re.search(r"works at ([\d.]+) 1/s; on round tube that is ([\d.]+) m3/h", stop.html)
+    back = re.search(r"works at ([\d.]+) 1/s; on round tube that is ([\d.]+) m³/h", stop.html)
     assert back is not None
     # Both numbers went through the page with four digits.
     assert float(back[1]) == pytest.approx(float(said[1]), rel=2e-3)

@@ -34,7 +34,11 @@ def show(result: CaseResult) -> None:
     if found.kind != "rate":
         headings.append(table.Number(f"Shear rate [{display.unit_label('rate', system)}]"))
     headings.append(table.Number("Interval would become"))
-    table.show(headings, rows(found, system), "One more reading at each of these speeds")
+    table.show(
+        headings,
+        rows(found, system),
+        f"One more reading at each {name.lower()}; interval by the readings and model alone",
+    )
 
 
 def rows(found: NextReadings, system: str) -> list[table.Row]:

@@ -10,6 +10,7 @@ from rheo.geometry import Geometry
 from rheo.geometry.convert import Conversion, ShearPoint, convert, sentence, shear_point_at_rate
 from rheo.report import display
 from rheo.report.numbers import number
+from rheo.report.restate import restated
 from rheo.units import parse_quantity
 from ui import cautions, guard, state, style, table, units_switch
 from ui.shear_rates import side
@@ -73,7 +74,8 @@ def _default_setting(result: CaseResult, geometry: Geometry) -> float | None:
 
 
 def _show(conversion: Conversion) -> None:
-    st.html(f'<p class="rheo-text lead">{style.escape(sentence(conversion))}</p>')
+    said = restated(sentence(conversion), state.system())
+    st.html(f'<p class="rheo-text lead">{style.escape(said)}</p>')
     points = {conversion.source.geometry.record.name: conversion.source, **conversion.targets}
     if len(points) == 1:
         # Twice the same kind of geometry: both are shown all the same.

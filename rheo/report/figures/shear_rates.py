@@ -10,7 +10,6 @@ from numpy.typing import ArrayLike
 from rheo.report.display import unit_label
 from rheo.report.numbers import number
 from rheo.report.picture import Axis, Bars, Label, Mark, Panel, Picture, Points, Strip, array
-from rheo.report.text import one_line
 
 # Orders of magnitude only; all of it common practice.
 PLANT_DUTIES: tuple[tuple[str, float, float], ...] = (
@@ -121,6 +120,7 @@ def _line_marks(
     if rates[largest] > 2 * rates[smallest]:
         named.append((smallest, "end"))
     for i, anchor in named:
-        words = f"{one_line(line[i][0], 30)}, {number(rates[i])}"
+        # The names stand in the table beside it; on a telephone there is no room for them.
+        words = f"{number(rates[i])} {unit}"
         marks.append(Label(float(rates[i]), row, words, anchor, shift=0.0))
     return marks
