@@ -8,7 +8,9 @@ pressure, a hold time or a start-up value ends with it. Keys: `rheo.line.safety.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable
+from dataclasses import replace
 
 import streamlit as st
 
@@ -17,12 +19,38 @@ from rheo.line.safety import SAFETY_SENTENCES
 from rheo.report.restate import restated
 from ui import state, style
 
+# Names of parameters as they stand in files, such as time_constant.
+_KEYS_IN_CODE = re.compile(r"\b[a-z]+(?:_[a-z]+)+\b")
+
 
 def show(cautions: Iterable[Caution]) -> None:
     """Draw Cautions: what was found, and what to do about it."""
-    drawn = "".join(html(caution) for caution in cautions)
+    drawn = "".join(html(caution) for caution in merged(cautions))
     if drawn:
         st.html(drawn)
+
+
+def merged(cautions: Iterable[Caution]) -> list[Caution]:
+    """Return Cautions with those about several parameters of one model said in one.
+
+    A parameter is named in words, and once: the model alone is left of the place.
+    """
+    found: dict[tuple[str, ...], Caution] = {}
+    for number, one in enumerate(cautions):
+        model, _, parameter = one.place.partition(", ")
+        if not parameter or not one.sentence.startswith(parameter):
+            found[(str(number),)] = one
+            continue
+        said = one.sentence
+        for word in _KEYS_IN_CODE.findall(said):
+            said = said.replace(word, word.replace("_", " "))
+        key = (one.code, model, one.advice)
+        if key in found:
+            before = found[key].sentence.rstrip(".")
+            found[key] = replace(found[key], sentence=f"{before}; {said}")
+        else:
+            found[key] = replace(one, sentence=said, place=model)
+    return list(found.values())
 
 
 def html(caution: Caution) -> str:

@@ -45,13 +45,19 @@ def duty_cautions(
         _by_itself(found),
         _suction(found, product, npsh),
         _vapour(found, product, profile),
-        (
-            replace(caution, place=step.name)
-            for step in found.steps
-            if step.flow is not None and step.kind == "pipe"
-            for caution in step.flow.cautions
-        ),
+        _of_pipes(found),
     )
+
+
+def _of_pipes(found: Walk) -> Iterator[Caution]:
+    """Yield the Cautions of each pipe; pipes of one name are told apart by their number."""
+    pipes = [step for step in found.steps if step.flow is not None and step.kind == "pipe"]
+    names = [step.name for step in pipes]
+    for number, step in enumerate(pipes, start=1):
+        place = step.name if names.count(step.name) == 1 else f"{step.name} (pipe {number})"
+        if step.flow is not None:
+            for caution in step.flow.cautions:
+                yield replace(caution, place=place)
 
 
 def _wall_rates(found: Walk, product: Product) -> Iterator[Caution]:

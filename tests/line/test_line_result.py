@@ -127,3 +127,11 @@ def test_safety_sentences_are_one_wording() -> None:
         assert "licensed engineer" in sentence, key
         assert "local" in sentence.lower(), key
     assert "process authority" in SAFETY_SENTENCES["food-safety"]
+
+
+def test_pipes_of_one_name_have_cautions_of_their_own() -> None:
+    pipe = Pipe(10.0, 0.05, roughness=0.004, name="pipe")
+    product = Product(rheo.model("newtonian", viscosity=0.001), 1000.0)
+    found = rheo.line.solve_line(Line(discharge=(pipe, pipe)), product, 4e-3)
+    places = {one.place for one in found.cautions if one.code == "very-rough"}
+    assert places == {"pipe (pipe 1)", "pipe (pipe 2)"}

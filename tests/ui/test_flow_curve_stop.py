@@ -146,6 +146,7 @@ def test_weights_and_branches_are_compared_when_asked(page: Page) -> None:
     assert "the same amount at every reading" in page.html
     assert "way up</td>" in page.html
     assert "static yield stress of at least" in page.html
+    assert "24.0 Pa is given" in page.html
 
 
 def test_readings_without_branches_say_so(page: Page) -> None:

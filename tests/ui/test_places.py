@@ -13,7 +13,7 @@ import rheo
 from rheo.case import load_case, run_case
 from rheo.errors import Caution
 from rheo.report.words import capital
-from ui import opening, places, state
+from ui import cautions, opening, places, state
 from ui.pressure.views import VIEWS
 
 if TYPE_CHECKING:
@@ -79,3 +79,17 @@ def test_readings_and_fit_have_theirs(sauce: CaseResult) -> None:
     assert set(places.of_readings(sauce)) == set(sauce.cautions)
     assert "torque-low" in {one.code for one in places.of_readings(sauce)}
     assert places.at("pressure", sauce) == ()
+
+
+def test_cautions_about_parameters_are_one_sentence_a_kind() -> None:
+    rough = "Treat it as a rough value."
+    of_parameters = [
+        Caution("parameter-poorly-known", f"{key} is known badly.", rough, f"Cross, {key}")
+        for key in ("time_constant", "rate_index")
+    ]
+    other = Caution("misfit", "Cross misses the readings.", "Take another.", "Cross")
+    (both, single) = cautions.merged([*of_parameters, other])
+    assert both.place == "Cross"
+    assert both.sentence == "time constant is known badly; rate index is known badly."
+    assert single == other
+    assert "time_constant" not in cautions.html(both)

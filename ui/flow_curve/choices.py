@@ -9,6 +9,7 @@ from rheo.case import CaseResult
 from rheo.case.fit_choices import FitChoices, fit_choices
 from rheo.fitting import Fit, Fits
 from rheo.fitting.sweeps import SweepComparison
+from rheo.report import display
 from rheo.report.numbers import number, with_doubt
 from rheo.report.scripts import unit_words
 from rheo.report.words import capital, percent
@@ -77,10 +78,16 @@ def _show_sweeps(found: SweepComparison | None, result: CaseResult) -> None:
     )
     static = found.static_yield_stress
     if static is not None:
+        given = result.product.static_yield_stress
+        taken = (
+            "none is given"
+            if given is None
+            else f"{display.text(float(np.asarray(given)), 'stress', state.system())} is given"
+        )
         cautions.note(
             f"For start-up take a static yield stress of at least {number(static.value)} Pa "
-            f"({static.origin}); a vane after the longest rest of the line is surer. It is a "
-            "field of the duty, under Route."
+            f"({static.origin}); a vane after the longest rest of the line is surer. Under "
+            f"Readings, with the product, {taken}."
         )
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from contextlib import nullcontext
 from typing import Any
 
 import numpy as np
@@ -133,8 +134,10 @@ def _value(number: int, key: str) -> Any:
 def _show_instrument(number: int, record: GeometryRecord) -> None:
     readings, system = sets.readings(), state.system()
     columns = st.columns(3, vertical_alignment="bottom")
-    with columns[0]:
-        if record.reading == "torque":
+    by_torque = record.reading == "torque"
+    of_spring = by_torque or (readings is not None and readings.dial is not None)
+    with columns[0] if of_spring else nullcontext():
+        if by_torque:
             stated = None if readings is None else readings.full_scale_torque
             units_switch.entry(
                 "Torque at full scale",
@@ -154,7 +157,7 @@ def _show_instrument(number: int, record: GeometryRecord) -> None:
                 optional=True,
                 placeholder=f"{display.text(readings.stress_per_degree, 'stress', system)}",
             )
-    with columns[1]:
+    with columns[1 if of_spring else 0]:
         particle = None if readings is None else readings.particle_diameter
         units_switch.entry(
             "Largest particle",
@@ -166,7 +169,7 @@ def _show_instrument(number: int, record: GeometryRecord) -> None:
             else f"{display.text(particle, 'diameter', system)} (from the file)",
             help="A gap under ten particles is flagged.",
         )
-    with columns[2]:
+    with columns[2 if of_spring else 1]:
         _show_form(number, record)
 
 
