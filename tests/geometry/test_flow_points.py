@@ -147,3 +147,30 @@ def test_tubes_of_several_diameters_lie_on_one_curve(key: str) -> None:
     points = geometry.flow_points(setting, geometry.predict(model, setting))
     error = np.abs(model.stress(points.rate) / points.stress - 1.0)
     assert np.max(error) < 2e-3
+
+
+def test_points_that_need_no_slope_say_so() -> None:
+    """A cone and plate shears at one rate everywhere: nothing is smoothed."""
+    cone = make_geometry("cone-plate", radius=0.025, angle=0.035)
+    for setting, reading in (([1.0, 2.0, 3.0], 1e-3), (1.0, [1e-3, 2e-3, 3e-3])):
+        points = cone.flow_points(setting, reading)
+        assert points.degree == 0
+        for values in (points.rate, points.stress):
+            assert values.shape == (3,)
+            assert np.all(values > 0)
+        for values in (points.local_index, points.local_index_error):
+            assert values.shape == (3,)
+            assert values.dtype == float
+            assert np.all(np.isnan(values))
+
+
+@pytest.mark.parametrize("wrong", [0.0, -1.0, np.nan, np.inf])
+def test_the_first_reading_without_a_logarithm_is_named(wrong: float) -> None:
+    plates = make_geometry("parallel-plate", radius=0.025, gap=0.001)
+    good = np.array([1.0, 2.0, 3.0, 4.0])
+    bad = np.array([1.0, 2.0, wrong, wrong])
+    for setting, reading in ((bad, good), (good, bad)):
+        with pytest.raises(InputError) as caught:
+            plates.flow_points(setting, reading)
+        assert str(caught.value).startswith("reading 3 gives a nominal shear rate of ")
+        assert str(caught.value).endswith("both must be above 0 for a local slope")

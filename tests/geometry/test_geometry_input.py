@@ -201,6 +201,9 @@ def test_cautions() -> None:
     assert "5 times as wide as its gap; its sides add about 13 %" in caution.sentence
     check_caution(caution, "slot")
     assert "Use a slot 10 times as wide as its gap" in caution.advice
+    # 0.63 of the flow over the aspect: 11.5 % at 5.5.
+    (caution,) = make_geometry("slot", half_gap=0.01, width=0.11, length=1.0).cautions(oil, 1e-4)
+    assert "5.5 times as wide as its gap; its sides add about 11 %" in caution.sentence
     # At the aspect that is advised there is nothing left to advise.
     wide = make_geometry("slot", half_gap=0.0625, width=1.25, length=1.0)
     assert wide.cautions(oil, 1e-4) == ()
