@@ -360,3 +360,16 @@ def test_what_a_start_must_overcome_can_be_given(page: Page) -> None:
     page.type("Vapour pressure", "0.2 bar")
     assert page.kept("case").product.vapour_pressure == 20000.0
     assert page.errors == []
+
+
+def test_a_column_that_stops_the_reader_can_be_left_out(page: Page) -> None:
+    rows = "".join(f"{speed};{0.2 * speed**0.5:.3f};\n" for speed in (5, 10, 20, 50, 100, 200))
+    page.upload("odd.csv", f"rpm;mNm;mPas\n{rows}".encode())
+    assert "the cell is empty" in "".join(page.errors)
+    assert page.widget("selectbox", "mPas").value == "viscosity"
+    page.choose("mPas", "not used")
+    assert page.kept("case").readings[0].columns["viscosity"] == ""
+    assert "the cell is empty" not in "".join(page.errors)
+    assert page.widget("selectbox", "rpm").value == "speed"
+    page.choose("mNm", "torque")
+    assert page.kept("case").readings[0].columns["torque"] == "mNm"

@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 
 import streamlit as st
 
 from rheo.errors import UnitError
 from rheo.readings import ColumnRecord, Readings
+from rheo.readings.headings import meaning
 from rheo.readings.quantities import BY_KEY, QUANTITIES
 from ui import cautions, results, state, style
 from ui.readings import sets
@@ -104,17 +105,24 @@ def file_columns(readings: Readings | None, sheets: Sequence[Sheet]) -> tuple[Fi
     sheet = sheet or next((one for one in sheets if one.headings), None)
     if sheet is None:
         return ()
-    of_heading = {heading: key for key, heading in block.columns.items()}
+    of_heading = {heading: key for key, heading in block.columns.items() if heading}
+    keys = [of_heading.get(one) or _understood(one, block.columns) for one in sheet.headings]
     return tuple(
         FileColumn(
             heading,
             sheet.first[i] if i < len(sheet.first) else "",
-            of_heading.get(heading, ""),
-            block.units.get(of_heading.get(heading, ""), ""),
+            keys[i],
+            block.units.get(keys[i], ""),
             heading in of_heading,
         )
         for i, heading in enumerate(sheet.headings)
     )
+
+
+def _understood(heading: str, said: Mapping[str, str]) -> str:
+    """Return what a heading says by itself; nothing where the user has said what holds that."""
+    found = meaning(heading)
+    return "" if found is None or found.quantity.key in said else found.quantity.key
 
 
 def _read_column(column: ColumnRecord, first: Sequence[str | float]) -> FileColumn:
