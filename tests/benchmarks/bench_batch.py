@@ -15,42 +15,18 @@ import os
 import sys
 import tempfile
 import time
-import warnings
 from pathlib import Path
 
 os.environ["OMP_NUM_THREADS"] = os.environ["OPENBLAS_NUM_THREADS"] = "1"
 
-import lmfit
 import numpy as np
+from lmfit_loop import Ended, fit_curve, worse_and_better
 from ratios import report
 
 import rheo
 
 FILES, POINTS, SAMPLE = 1000, 30, 25
 LEAST = 15.0
-# An upper bound beyond this is left out: lmfit's map of two far bounds onto a sine loses digits.
-FAR = 20.0
-
-
-def _start(rate: np.ndarray, stress: np.ndarray) -> dict[str, float]:
-    """What one reads off the ends of a curve."""
-    viscosity = stress / rate
-    return {
-        "viscosity": viscosity[-1],
-        "consistency": stress[0] / rate[0] ** 0.5,
-        "flow_index": 0.5,
-        "yield_stress": stress[0] / 2.0,
-        "plastic_viscosity": viscosity[-1],
-        "casson_viscosity": viscosity[-1],
-        "zero_shear_viscosity": viscosity[0],
-        "infinite_shear_viscosity": viscosity[-1],
-        "time_constant": (rate[0] * rate[-1]) ** -0.5,
-        "yasuda_exponent": 2.0,
-        "rate_index": 0.5,
-        "rate_offset": rate[0],
-        "half_stress": (stress[0] * stress[-1]) ** 0.5,
-        "stress_index": 2.0,
-    }
 
 
 def _write(folder: Path) -> list[Path]:
@@ -80,29 +56,8 @@ def _write(folder: Path) -> list[Path]:
     return paths
 
 
-def _lmfit_all(path: Path) -> dict[str, float]:
-    rate, stress = np.loadtxt(path, delimiter=",", skiprows=1).T
-    begin = _start(rate, stress)
-    found = {}
-    for record in rheo.model_records().values():
-        start = lmfit.Parameters()
-        for one in record.parameters:
-            upper = one.upper if one.upper <= FAR else np.inf
-            start.add(one.key, value=begin[one.key], min=one.lower, max=upper)
-
-        def residual(values: lmfit.Parameters, record=record) -> np.ndarray:
-            return (
-                record.stress(rate, *(values[key].value for key in record.parameter_keys)) / stress
-                - 1
-            )
-
-        with warnings.catch_warnings(), np.errstate(all="ignore"):
-            warnings.simplefilter("ignore")
-            try:
-                found[record.key] = float(lmfit.minimize(residual, start).chisqr)
-            except ValueError:
-                found[record.key] = np.inf
-    return found
+def _lmfit_all(path: Path) -> dict[str, Ended]:
+    return fit_curve(*np.loadtxt(path, delimiter=",", skiprows=1).T)
 
 
 def main() -> int:
@@ -120,23 +75,18 @@ def main() -> int:
         start = time.perf_counter()
         loop = [_lmfit_all(paths[index]) for index in some]
         ordinary = (time.perf_counter() - start) * FILES / len(loop)
-    worse = better = 0
-    for index, found in zip(some, loop, strict=True):
-        row = result.rows[index]
-        for key, total in found.items():
-            count = len(rheo.model_record(key).parameters) + 1
-            own = POINTS * np.log(total / POINTS) + 2 * count
-            own += 2 * count * (count + 1) / (POINTS - count - 1)
-            gap = own - (row.aicc[key] or np.nan)
-            better += gap > 0.01
-            worse += gap < -0.01
+    counts = [
+        worse_and_better(found, result.rows[index].aicc, POINTS)
+        for index, found in zip(some, loop, strict=True)
+    ]
+    worse, better = np.sum(counts, axis=0)
     print(
         f"batch of {FILES} files x {POINTS} points x 11 models: {took:.1f} s on "
         f"{os.cpu_count()} cores ({alone:.1f} s with one worker, scaled from 200); "
         f"lmfit in a loop {ordinary:.0f} s "
         f"(scaled from {len(loop)} files); {ordinary / took:.0f} times, wanted {LEAST:.0f}; "
         f"{len(result.fitted)} fitted; of "
-        f"{11 * len(loop)} fits lmfit's is worse in {better} and better in {worse}"
+        f"{11 * len(loop)} fits lmfit's is worse in {worse} and better in {better}"
     )
     what = f"batch of {FILES} files, 11 models each; lmfit in a loop on one core"
     return int(not report(what, ordinary / took, LEAST))

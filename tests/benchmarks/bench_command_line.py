@@ -2,12 +2,14 @@
 
     python tests/benchmarks/bench_command_line.py
 
-Each line is the best of several new processes and its ratio to ``python -c "import numpy"``.
+Each line is the median of several new processes and its ratio to ``python -c "import numpy"``.
+Processes of all lines take turns, so that what else the machine does falls on all alike.
 ``rheo --help`` may take twice that; the others are printed to be watched.
 """
 
 from __future__ import annotations
 
+import statistics
 import subprocess
 import sys
 import time
@@ -17,28 +19,32 @@ from ratios import report
 
 SAMPLES = Path(__file__).parents[2] / "sample_data"
 MOST_FOR_HELP = 2.0
-REPEATS = 7
+REPEATS = 15
 
 
-def _seconds(*arguments: str) -> float:
-    best = float("inf")
-    for _ in range(REPEATS):
-        start = time.perf_counter()
-        subprocess.run([sys.executable, *arguments], check=True, capture_output=True)
-        best = min(best, time.perf_counter() - start)
-    return best
+def _seconds(arguments: list[str]) -> float:
+    start = time.perf_counter()
+    subprocess.run([sys.executable, *arguments], check=True, capture_output=True)
+    return time.perf_counter() - start
 
 
 def main() -> int:
     """Print the table; return 1 if help takes longer than it may."""
-    numpy = _seconds("-c", "import numpy")
-    rows = {
-        "import numpy": numpy,
-        "import pandas, lmfit": _seconds("-c", "import pandas, lmfit"),
-        "rheo --help": _seconds("-m", "rheo", "--help"),
+    lines = {
+        "import numpy": ["-c", "import numpy"],
+        "import pandas, lmfit": ["-c", "import pandas, lmfit"],
+        "rheo --help": ["-m", "rheo", "--help"],
+        **{
+            f"rheo run {name}.toml": ["-m", "rheo", "run", str(SAMPLES / f"{name}.toml")]
+            for name in ("sauce", "thickener", "gum")
+        },
     }
-    for name in ("sauce", "thickener", "gum"):
-        rows[f"rheo run {name}.toml"] = _seconds("-m", "rheo", "run", str(SAMPLES / f"{name}.toml"))
+    taken: dict[str, list[float]] = {name: [] for name in lines}
+    for _ in range(REPEATS):
+        for name, arguments in lines.items():
+            taken[name].append(_seconds(arguments))
+    rows = {name: statistics.median(seconds) for name, seconds in taken.items()}
+    numpy = rows["import numpy"]
     for name, seconds in rows.items():
         print(f"{name:24}{1e3 * seconds:8.0f} ms{seconds / numpy:8.2f} times numpy")
     for name in ("sauce", "thickener", "gum"):
