@@ -11,7 +11,7 @@ from pipe_curves import CURVES, DENSITY, DIAMETER
 import rheo
 from rheo.geometry.tube_flow import velocity
 from rheo.hydraulics.conditions import lay_out
-from rheo.hydraulics.laminar import critical_wall_rate
+from rheo.hydraulics.laminar import critical_wall_rate, rate_at_stress
 from rheo.hydraulics.registry import criteria
 from rheo.hydraulics.transition.stability import stability_number, surely_stable
 
@@ -141,3 +141,38 @@ def test_for_a_power_law_the_search_starts_at_the_answer(index, diameter):
     size = 1100.0 * (diameter / 2) ** 2 * shape / 0.3
     assert rate[0] == pytest.approx((808.0 / size) ** (1 / (2 - index)), rel=1e-11)
     assert len(calls) <= 5
+
+
+@pytest.mark.parametrize("index", [0.3, 0.7, 1.0, 1.2, 1.5])
+def test_how_far_the_transition_reaches(index):
+    """To S = 4000/2100 times the critical number, to S^(2n - 1) for a fluid that thickens.
+
+    The number of a power law goes with V^(2 - n), so that the velocities are S^(1/(2 - n)) apart.
+    """
+    model = rheo.model("power-law", consistency=0.05, flow_index=index)
+    plot = rheo.regime_map(model, 0.1, 1000.0, transition="metzner-reed")
+    widening = max(2 * index - 1, 1.0)
+    apart = (4000 / 2100) ** (widening / (2 - index))
+    assert plot.turbulent_velocity / plot.critical_velocity == pytest.approx(apart, rel=1e-9)
+    edges = plot.turbulent_velocity * np.array([1 - 1e-6, 1 + 1e-6])
+    flow = rheo.pipe_flow(model, 0.1, edges, 1000.0, transition="metzner-reed")
+    assert flow.regime[0] == "transition"
+    assert flow.turbulence[0] < 1.0
+    assert flow.turbulence[1] == 1.0
+
+
+@pytest.mark.parametrize("rate", [1e10, 1e19, 1e25, 1e40])
+def test_rates_beyond_what_a_flow_curve_is_searched_to(rate):
+    """A curve that hardly rises needs them for the stress of turbulent flow."""
+    model = rheo.model(
+        "carreau",
+        zero_shear_viscosity=[50.0, 80.0],
+        infinite_shear_viscosity=0.0,
+        time_constant=1.0,
+        flow_index=0.05,
+    )
+    _, pipe, _ = lay_out(model, 0.1, 1000.0)
+    wanted = np.array([rate, 10.0 * rate])
+    stress = model.record.stress(wanted, *model)
+    np.testing.assert_allclose(rate_at_stress(pipe, stress), wanted, rtol=1e-10)
+    assert rate_at_stress(pipe, np.array([0.0, stress[1]]))[0] == 0.0
