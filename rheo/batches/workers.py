@@ -14,6 +14,7 @@ from multiprocessing.connection import wait
 
 from rheo.batches.job import Job, run_job
 from rheo.batches.row import Row
+from rheo.errors import InputError
 
 Done = Callable[[list[Row]], None]
 
@@ -39,13 +40,27 @@ def run_jobs(jobs: Sequence[Job], done: Done, executor: Executor | None, workers
         Where to; processes of our own when absent.
     workers : int
         Number of these.
+
+    Raises
+    ------
+    InputError
+        If processes of our own end before they begin.
     """
     if executor is not None:
         for job in _run(jobs, done, executor):
             done(_lost(job))
         return
+    if getattr(multiprocessing.current_process(), "_inheriting", False):
+        # A process of ours that reads the user's script has come upon the call that began it.
+        raise SystemExit(1)
     with _own_pool(min(workers, len(jobs))) as pool:
         left = _run(jobs, done, pool)
+    if left and not _can_begin():
+        raise InputError(
+            "its processes end before they begin; in a script, call it below "
+            "if __name__ == '__main__':",
+            "batch",
+        )
     # A process was ended from outside. What it had in hand is not known, so the rest is tried
     # file by file, each in a process that takes nothing else down.
     for job in left:
@@ -55,6 +70,15 @@ def run_jobs(jobs: Sequence[Job], done: Done, executor: Executor | None, workers
                 lost = _run([alone], done, pool)
             if lost:
                 done(_lost(alone))
+
+
+def _can_begin() -> bool:
+    """Return whether a new process gets so far as to work."""
+    try:
+        with _own_pool(1) as pool:
+            return bool(pool.submit(bool, 1).result())
+    except BrokenExecutor:
+        return False
 
 
 def _run(jobs: Sequence[Job], done: Done, executor: Executor) -> list[Job]:

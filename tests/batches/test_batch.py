@@ -3,6 +3,8 @@
 import multiprocessing
 import os
 import signal
+import subprocess
+import sys
 import threading
 import time
 from concurrent.futures import Future, ThreadPoolExecutor
@@ -182,6 +184,19 @@ def test_a_lost_task_of_an_executor_is_a_reason(lots, monkeypatch):
         result = rheo.batch(paths(lots), executor=executor)
     lost = [row for row in result.failed if "the node has gone" in row.reason]
     assert [Path(row.file).name for row in lost] == ["lot2.csv", "lot3.csv", "lot4.csv"]
+
+
+def test_a_script_that_its_own_processes_would_begin_again_is_told(lots, tmp_path):
+    script = tmp_path / "lots.py"
+    script.write_text(
+        f"import rheo\nrheo.batch([{str(lots / 'lot0.csv')!r}], workers=1)\n", encoding="utf-8"
+    )
+    done = subprocess.run(
+        [sys.executable, str(script)], capture_output=True, text=True, timeout=120
+    )
+    last = done.stderr.strip().splitlines()[-1]
+    assert done.returncode == 1
+    assert last.endswith("in a script, call it below if __name__ == '__main__':")
 
 
 def test_what_fails_unforeseen_stops_nothing(lots, monkeypatch):
