@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any
 import pytest
 
 from rheo.case import case_from_text, load_case, run_case
-from ui import opening, results
+from ui import opening, results, words
 from ui.note import files
 
 if TYPE_CHECKING:
@@ -40,8 +40,8 @@ def preview(page: Page) -> str:
 def test_the_preview_is_the_note(page: Page) -> None:
     note_page(page)
     shown = preview(page)
-    for words in ("Design note", "Brown sauce from the cooking vessel", "Prepared", "Checked"):
-        assert words in shown
+    for expected in ("Design note", "Brown sauce from the cooking vessel", "Prepared", "Checked"):
+        assert expected in shown
     assert "<script" not in shown
     assert "<svg" in shown
     assert "psi" not in shown
@@ -93,7 +93,7 @@ def test_the_case_file_travels_alone(page: Page, tmp_path: Any) -> None:
     case = load_case(tmp_path / "case.toml")
     assert all(block.file is None and block.text for block in case.readings)
     again = run_case(case_from_text(text))
-    assert f"{float(again.line.friction_pressure) / 1e5:.4g}" in page.strip()[0][1]
+    assert words.pressure_in_doubt(again, "metric") == page.strip()[0][1]
 
 
 def test_cautions_are_told_before_the_file_is_taken(page: Page, sauce: CaseResult) -> None:
