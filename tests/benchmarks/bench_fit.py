@@ -3,7 +3,8 @@
     python tests/benchmarks/bench_fit.py [--global]
 
 Prints the processor time of eleven models fitted to 30 raw torques in a wide gap and to a flow
-curve, over that of one lmfit fit of a plain Herschel-Bulkley curve. With --global also compares
+curve, over that of one lmfit fit of a plain Herschel-Bulkley curve; and how often lmfit from a
+default start, 1 for every parameter, fails or ends above the minimum. With --global also compares
 every model's weighted sum of squares with the best of 200 random starts of scipy's optimiser.
 """
 
@@ -17,6 +18,7 @@ from typing import Any
 
 import lmfit
 import numpy as np
+from lmfit_loop import default_start, fit_curve
 from ratios import report
 
 import rheo
@@ -24,8 +26,11 @@ from rheo.geometry import make_geometry
 
 sys.path.insert(0, str(Path(__file__).parent.parent))
 
+from flow_curves import KEYS, example
 from random_starts import lowest_of_random_starts
 
+# Curves of each family, and the excess of a sum of squares that counts as another end.
+CURVES_A_FAMILY, WORSE = 4, 1e-3
 TRUTH = {"yield_stress": 12.0, "consistency": 4.2, "flow_index": 0.45}
 
 
@@ -88,6 +93,50 @@ def times() -> None:
         report(f"global fit of 11 models to {name}; lmfit.Model.fit of one", model_fit / taken)
 
 
+def default_starts() -> None:
+    """Print how often lmfit from a default start ends above the minimum, over all families."""
+    random = np.random.default_rng(7)
+    rate = np.geomspace(0.1, 1000.0, 30)
+    fits = failed = above = far = below = own_fits = own_lost = 0
+    ours = theirs = 0.0
+    for key in KEYS:
+        for _ in range(CURVES_A_FAMILY):
+            # Every parameter but exponents up to three times as large or as small.
+            values = {
+                name: value
+                if name.endswith(("index", "exponent"))
+                else value * 3.0 ** random.uniform(-1.0, 1.0)
+                for name, value in example(key).parameters.items()
+            }
+            stress = rheo.model(key, **values).stress(rate)
+            stress = stress * (1.0 + 0.02 * random.standard_normal(rate.size))
+            begun = time.process_time()
+            found = rheo.fit(rheo.FlowCurve(rate, stress))
+            ours += time.process_time() - begun
+            begun = time.process_time()
+            ended = fit_curve(rate, stress, default_start)
+            theirs += time.process_time() - begun
+            for fit in found:
+                one = ended[fit.key]
+                excess = one.sum_of_squares / fit.weighted_ss - 1.0
+                lost = not one.success or excess > WORSE
+                fits += 1
+                failed += not one.success
+                above += one.success and excess > WORSE
+                far += one.success and excess > 1.0
+                below += excess < -WORSE
+                own_fits += fit.key == key
+                own_lost += fit.key == key and lost
+    print(
+        f"{fits} lmfit fits from 1 for every parameter: {failed} fail, {above} end more than "
+        f"{WORSE:.1%} above the global fit's sum of squares ({far} at over twice of it), "
+        f"{below} below it; of the {own_fits} with the curve's own model {own_lost} fail or "
+        f"end above"
+    )
+    share = (failed + above) / fits
+    report(f"global fit of 11 models; 11 lmfit from 1s, {share:.0%} lost", theirs / ours)
+
+
 def minima() -> None:
     """Print by how much random starts do better, for every model and two products."""
     products = {
@@ -116,5 +165,6 @@ def minima() -> None:
 
 if __name__ == "__main__":
     times()
+    default_starts()
     if "--global" in sys.argv:
         minima()
