@@ -142,7 +142,7 @@ class Fit:
         """Measured readings, shape (n,)."""
         return self.problem.observed
 
-    @property
+    @cached_property
     def rates(self) -> FloatArray:
         """Shear rates [1/s] to which the readings belong by this fit, shape (n,)."""
         return self.problem.rates(self.final.parameters)
