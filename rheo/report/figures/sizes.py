@@ -98,6 +98,9 @@ def sizes(
         high = _top(values, failed, limits) if number == 0 else None
         panels.append(Panel(Axis(quantity, unit, low=0.0, high=high), (*bars, *limits)))
     shared, short = without_shared_words(names)
+    # A telephone has no room for the inches behind each DN; the table has them.
+    bare = tuple(name.split(" (")[0] for name in short)
+    short = bare if len(set(bare)) == count else short
     longest = max((len(name) for name in short), default=1)
     every = max(1, -(-count * (longest + 2) // _TICK_LETTERS))
     ticks = tuple((float(i), one_line(short[i], 24)) for i in range(0, count, every))
