@@ -25,8 +25,9 @@ FloatArray = NDArray[np.float64]
 
 # γ̇ = γ̇_o + (γ̇_i - γ̇_o)t³ crowds the nodes where a power of the rate would be steep.
 _POWER = 3
-_NODES, _ROUGH_NODES, _WIDE_NODES = 24, 14, 72
-_WIDE_GAP = 1.2
+# Nodes that keep 1e-8, and those that keep 1e-6, for gaps up to so much of ln(R_o/R_i).
+_NARROW, _COMMON, _WIDE = (14, 10), (24, 14), (72, 72)
+_NARROW_GAP, _WIDE_GAP = 0.1, 1.2
 _PASSES = 12
 # The last step is exact to the square of this: a rough one for the way to a minimum.
 _NEAR, _ROUGH = 1e-4, 1e-3
@@ -83,8 +84,9 @@ def bob_stress(
         Stress [Pa] and derivatives, NaN where Newton's method did not settle; and the rates
         before the last step.
     """
-    narrow = _ROUGH_NODES if start.rough else _NODES
-    position, weight = _rule(_WIDE_NODES if np.max(log_ratio) > _WIDE_GAP else narrow)
+    widest = np.max(log_ratio)
+    nodes = _WIDE if widest > _WIDE_GAP else _COMMON if widest > _NARROW_GAP else _NARROW
+    position, weight = _rule(nodes[start.rough])
     wanted = np.log(speed)
     at = np.log(start.bob)
     width = np.where(np.isfinite(log_ratio), log_ratio, 0.0)

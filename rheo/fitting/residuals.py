@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
+from typing import TypeGuard
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,6 +13,7 @@ from rheo.fitting.gap_readings import GapRates
 from rheo.fitting.problem import Problem, columns_of, is_allowed
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import GAPS, in_gap
+from rheo.fitting.scaling import ScaledProblem
 from rheo.fitting.several import SeveralCurves
 from rheo.fitting.stack import Stack
 
@@ -72,7 +74,7 @@ def _one_by_one(stack: Stack[Problem]) -> Sensitivities:
         predicted = np.empty((rows.size, readings))
         slopes = np.zeros((*parameters.shape, readings))
         for problem, part in stack.split(rows):
-            width = len(problem.record.parameters) + len(problem.extra)
+            width = _width(problem)
             predicted[part], slopes[part, :width] = problem.sensitivity(parameters[part, :width])
         return predicted, slopes
 
@@ -86,19 +88,20 @@ def _in_one_gap(
 
     Each search starts its solutions from the rates of its last one.
     """
-    gaps = [one for one in problems if isinstance(one, ReadingProblem) and one.geometry.key in GAPS]
-    if len(gaps) < len(problems):
-        return None
-    stack = Stack(gaps, counts)
+    gaps = [_in_gap(one) for one in problems]
     first = gaps[0]
+    if first is None or None in gaps:
+        return None
+    stack = Stack(problems, counts)
     bob = np.repeat(first.rough_rates[np.newaxis], sum(counts), axis=0)
     drop = np.full_like(bob, np.nan)
 
     def sensitivities(parameters: FloatArray, rows: IntArray) -> tuple[FloatArray, FloatArray]:
         parts = []
         for problem, part in stack.split(rows):
-            width = len(problem.record.parameters)
-            parts.append((problem.record, columns_of(parameters[part, :width]), part))
+            own = parameters[part, : _width(problem)]
+            columns = problem.columns(own) if _is_scaled(problem) else columns_of(own)
+            parts.append((problem.record, columns, part))
         curves = SeveralCurves(parts, rows.size)
         known = None if np.isnan(drop[rows]).any() else drop[rows]
         begin = GapRates(bob[rows], known, rough)
@@ -106,7 +109,12 @@ def _in_one_gap(
             first.geometry.key, curves, first.setting, first.geometry.dimensions, begin
         )
         slopes = np.zeros((*parameters.shape, first.setting.size))
-        slopes[:, : found.shape[1]] = found
+        for (problem, part), (_, columns, _) in zip(stack.split(rows), parts, strict=True):
+            width, local = _width(problem), found[part]
+            if _is_scaled(problem):
+                slopes[part, :width] = problem.chained(parameters[part, :width], columns, local)
+            else:
+                slopes[part, :width] = local[:, :width]
         settled = np.isfinite(predicted)
         bob[rows] = np.where(settled, rates.bob, first.rough_rates)
         drop[rows] = np.where(settled, np.asarray(rates.drop, dtype=float), _LITTLE)
@@ -118,8 +126,22 @@ def _in_one_gap(
     return sensitivities
 
 
+def _in_gap(problem: Problem) -> ReadingProblem | None:
+    """Return the readings of a problem where they are of one gap."""
+    base = problem.base if _is_scaled(problem) else problem
+    return base if isinstance(base, ReadingProblem) and base.geometry.key in GAPS else None
+
+
+def _is_scaled(problem: Problem) -> TypeGuard[ScaledProblem]:
+    return isinstance(problem, ScaledProblem)
+
+
+def _width(problem: Problem) -> int:
+    return len(problem.record.parameters) + len(problem.extra)
+
+
 def _made_good(
-    problem: ReadingProblem, parameters: FloatArray, predicted: FloatArray, slopes: FloatArray
+    problem: Problem, parameters: FloatArray, predicted: FloatArray, slopes: FloatArray
 ) -> None:
     """Work out in full, in place, the rows whose quick solution did not settle.
 
@@ -127,6 +149,6 @@ def _made_good(
     """
     missed = np.isnan(predicted).any(axis=-1)
     if missed.any():
-        width = len(problem.record.parameters)
+        width = _width(problem)
         again = problem.sensitivity(parameters[missed, :width])
         predicted[missed], slopes[missed, :width] = again

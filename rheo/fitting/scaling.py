@@ -92,7 +92,7 @@ class ScaledProblem:
     def _power(self, slope: FloatArray) -> FloatArray:
         return np.clip(slope * self._x, -_LARGEST_POWER, _LARGEST_POWER)
 
-    def _columns(self, parameters: FloatArray) -> list[FloatArray]:
+    def columns(self, parameters: FloatArray) -> list[FloatArray]:
         """Return the model's parameters (..., n) at each reading."""
         values = columns_of(parameters)
         count = len(self.record.parameters)
@@ -108,7 +108,7 @@ class ScaledProblem:
 
     def predict(self, parameters: FloatArray) -> FloatArray:
         """Return predicted readings, shape (..., n)."""
-        return self._predict(self._columns(parameters))
+        return self._predict(self.columns(parameters))
 
     def _predict(self, columns: list[FloatArray]) -> FloatArray:
         base = self.base
@@ -121,9 +121,15 @@ class ScaledProblem:
 
     def sensitivity(self, parameters: FloatArray) -> tuple[FloatArray, FloatArray]:
         """Return predicted readings (b, n) and their derivatives (b, p, n)."""
-        columns = self._columns(parameters)
+        columns = self.columns(parameters)
         predicted, local = self._local(columns)
-        slopes = np.zeros((*parameters.shape, predicted.shape[-1]))
+        return predicted, self.chained(parameters, columns, local)
+
+    def chained(
+        self, parameters: FloatArray, columns: list[FloatArray], local: FloatArray
+    ) -> FloatArray:
+        """Return derivatives (b, p, n) from those by each reading's own parameters."""
+        slopes = np.zeros((*parameters.shape, local.shape[-1]))
         count = len(columns)
         for i, (column, index) in enumerate(
             zip(columns, self.law.slope_of(self.record), strict=True)
@@ -134,7 +140,7 @@ class ScaledProblem:
             power = self._power(parameters[:, count + index, np.newaxis])
             slopes[:, i] = local[:, i] * np.exp(power)
             slopes[:, count + index] += local[:, i] * column * self._x
-        return predicted, slopes
+        return slopes
 
     def _local(self, columns: list[FloatArray]) -> tuple[FloatArray, FloatArray]:
         """Return readings (b, n) and derivatives (b, p, n) by each reading's own parameters."""
@@ -164,7 +170,7 @@ class ScaledProblem:
         base = self.base
         if isinstance(base, CurveProblem):
             return base.rate
-        model = bare_model(self.record, self._columns(parameters))
+        model = bare_model(self.record, self.columns(parameters))
         rate, _ = base.geometry.record.sheared_at(
             model, base.setting, *base.geometry.dimensions.values()
         )

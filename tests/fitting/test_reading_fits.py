@@ -104,7 +104,7 @@ def test_exact_derivatives_against_differences(key, model_key):
     np.testing.assert_allclose(slopes / largest, differences / largest, atol=1e-3)
 
 
-@pytest.mark.parametrize("ratio", [1.01, 1.0847, 2.0, 30.0, np.inf])
+@pytest.mark.parametrize("ratio", [1.01, 1.0847, 1.1, 1.32, 2.0, 30.0, np.inf])
 @pytest.mark.parametrize("key", ["herschel-bulkley", "carreau", "ellis", "casson"])
 def test_the_quick_gap_is_the_exact_one(key, ratio):
     truth = example(key)

@@ -7,6 +7,12 @@ import pytest
 
 import rheo
 from rheo.errors import InputError
+from rheo.fitting.reading_problem import ReadingProblem
+from rheo.fitting.residuals import weighted
+from rheo.fitting.scaling import ScaledProblem
+from rheo.fitting.temperature import arrhenius
+from rheo.fitting.weighting import WEIGHTINGS
+from rheo.geometry import make_geometry
 from rheo.models import model_records
 from rheo.models.state_curve import AT_YIELD, VISCOUS
 
@@ -182,3 +188,52 @@ def test_what_is_missing_is_named():
         rheo.fit_concentrations(bare, np.linspace(0.1, 0.2, curve.rate.size), form="cubic")
     with pytest.raises(InputError, match="give one for each reading"):
         rheo.fit_concentrations(bare, [0.1, 0.2])
+
+
+@pytest.mark.parametrize("key", list(model_records()))
+def test_searches_in_a_gap_see_what_each_problem_sees_alone(key):
+    """All models in one call, from the rates of the call before: the same readings and slopes."""
+    cup = make_geometry(
+        "concentric-cylinders", inner_radius=0.014, outer_radius=0.0185, length=0.046
+    )
+    speed = np.tile(np.geomspace(0.05, 30.0, 8), 2)
+    celsius = np.repeat([20.0, 60.0], 8)
+    torque = np.concatenate(
+        [cup.predict(truth(key, one + CELSIUS), speed[:8]) for one in (20.0, 60.0)]
+    )
+    law = arrhenius(REFERENCE)
+    records = [model_records()[key], model_records()["bingham"]]
+    rates = cup.nominal(speed, torque)[0]
+    problems = [
+        ScaledProblem(
+            ReadingProblem(record, cup, speed, torque, WEIGHTINGS["relative"], rates),
+            law,
+            celsius + CELSIUS,
+        )
+        for record in records
+    ]
+    widths = [len(one.record.parameters) + len(one.extra) for one in problems]
+    values = np.zeros((4, max(widths)))
+    for row, (problem, width) in enumerate(
+        zip(np.repeat(np.array(problems, dtype=object), 2), np.repeat(widths, 2), strict=True)
+    ):
+        own = [TRUE[name] for name in problem.record.parameter_keys]
+        values[row, :width] = np.array([*own, *[ENERGY, YIELD_ENERGY][: len(problem.extra)]])
+        values[row, 0] *= 1.0 + 0.1 * row
+    evaluate = weighted(problems, [2, 2])
+    rows = np.arange(4)
+    evaluate(values * 1.05, rows)
+    residuals, slopes = evaluate(values, rows)
+    for row, (problem, width) in enumerate(
+        zip(np.repeat(np.array(problems, dtype=object), 2), np.repeat(widths, 2), strict=True)
+    ):
+        alone, its = problem.sensitivity(values[row : row + 1, :width])
+        sigma = problem.weighting.sigma(torque)
+        np.testing.assert_allclose(residuals[row] * sigma + torque, alone[0], rtol=1e-8)
+        largest = np.abs(its[0]).max(axis=-1, keepdims=True)
+        largest[largest == 0] = 1.0
+        # Slopes are taken where the solution stands before its last step, within 1e-4 of the end.
+        np.testing.assert_allclose(
+            slopes[row, :width] * sigma / largest, its[0] / largest, atol=1e-4
+        )
+        assert np.all(slopes[row, width:] == 0)
