@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import streamlit as st
 
-from ui import case_menu, guard, reload, state, style, units_switch, walk
+from ui import case_menu, guard, many_draws, reload, state, style, units_switch, walk
 
 # Drawn here: a named icon would be fetched from the network.
 _ICON = (
@@ -26,18 +26,21 @@ def main() -> None:
     pages = walk.pages()
     page = st.navigation(list(pages.values()), position="hidden")
     with st.spinner("Working out the case"):
-        guard.run(lambda: state.result())
+        drawn = many_draws.begin()
+        if drawn:
+            guard.run(lambda: state.result())
     with st.sidebar:
         case = state.case()
         st.html(
             '<div class="rheo-brand">rheo</div>'
             f'<div class="rheo-case">{style.escape(case.title or case.product.name, 90)}</div>'
         )
-        guard.run(lambda: walk.show(pages))
+        if drawn:
+            guard.run(lambda: walk.show(pages))
         units_switch.show()
         case_menu.show()
     try:
-        guard.run(page.run)
+        guard.run(page.run if drawn else many_draws.show)
     finally:
         # Also where a stop ends the run of the script early.
         reload.keep()

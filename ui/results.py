@@ -131,16 +131,22 @@ def fitted_of(case: Case, files: Files) -> Outcome:
     sets = readings_of(case, files)
     if sets.value is None:
         return sets
-    document = case.document()
-    fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
-    # All that `fit_models` depends on; density and particles are for screening only.
-    state = [document["product"].get(key) for key in ("temperature", "solids_fraction")]
-    fits_key = digest(document["readings"], _file_digests(files), fit, state)
-    fits: Outcome = _fits(fits_key, case, sets.value)
+    fits = fits_of(case, files)
     if fits.value is None:
         return fits
+    document = case.document()
     parts = [document.get(name) for name in ("product", "fit", "doubt")]
-    found: Outcome = _fitted(digest(fits_key, parts), case, sets.value, fits.value)
+    key = digest(_fits_key(case, files), parts)
+    found: Outcome = _fitted(key, case, sets.value, fits.value)
+    return found
+
+
+def fits_of(case: Case, files: Files) -> Outcome:
+    """Return the models fitted to the readings of a case: Fits."""
+    sets = readings_of(case, files)
+    if sets.value is None:
+        return sets
+    found: Outcome = _fits(_fits_key(case, files), case, sets.value)
     return found
 
 
@@ -167,6 +173,14 @@ def _readings_key(case: Case, files: Files) -> str:
     document = case.document()
     product = {key: document["product"].get(key) for key in ("density", "solids")}
     return digest(document["readings"], product, _file_digests(files))
+
+
+def _fits_key(case: Case, files: Files) -> str:
+    document = case.document()
+    fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
+    # All that `fit_models` depends on; density and particles are for screening only.
+    state = [document["product"].get(key) for key in ("temperature", "solids_fraction")]
+    return digest(document["readings"], _file_digests(files), fit, state)
 
 
 @st.cache_resource(max_entries=24, show_spinner=False)

@@ -82,11 +82,7 @@ def outcome(
         Does the work; is given what it tells its progress to.
     """
     place = f"rheo.work.{name}"
-    job = st.session_state.get(place)
-    if job is None or job.subject is not subject:
-        if job is not None:
-            job.cancelled = True
-        job = _start(place, subject, calculate)
+    job = _begun(place, subject, calculate)
     if job.done.wait(SOON):
         if job.cancelled:
             st.write(f"You ended it: {words[:1].lower()}{words[1:]}.")
@@ -95,6 +91,29 @@ def outcome(
         return job.outcome
     _watch(place, words)
     return None
+
+
+def ended(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> bool:
+    """Return whether a piece of work is done, and start it where it is not; draws nothing."""
+    job = _begun(f"rheo.work.{name}", subject, calculate)
+    return bool(job.done.wait(SOON)) and not job.cancelled
+
+
+def drop(name: str) -> None:
+    """End a piece of work that is no longer wanted."""
+    job: Job | None = st.session_state.pop(f"rheo.work.{name}", None)
+    if job is not None:
+        job.cancelled = True
+
+
+def _begun(place: str, subject: Any, calculate: Callable[[Progress], Any]) -> Job:
+    """Return the job at hand; a new one where there is none, or another one."""
+    job: Job | None = st.session_state.get(place)
+    if job is not None and job.subject is subject:
+        return job
+    if job is not None:
+        job.cancelled = True
+    return _start(place, subject, calculate)
 
 
 def _start(place: str, subject: Any, calculate: Callable[[Progress], Any]) -> Job:

@@ -100,6 +100,11 @@ def fit_models(case: Case, readings: Sequence[Readings] | None = None) -> Fits:
     return _fits(case, _to_fit(case, sets))
 
 
+def drawn_from(case: Case, fits: Fits) -> str | None:
+    """Return the key of the model that flow curves are drawn from; None for all of them."""
+    return None if case.fit.model == AUTO else fits[case.fit.model].key
+
+
 def fit_case(
     case: Case, readings: Sequence[Readings] | None = None, fits: Fits | None = None
 ) -> FittedCase:
@@ -240,7 +245,6 @@ def _fits(case: Case, readings: Readings) -> Fits:
 def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product:
     given = case.product
     doubt = case.doubt
-    named = None if case.fit.model == AUTO else chosen.key
     rates = chosen.rates[chosen.rates > 0]
     solids = product_solids(case, readings)
     warm = fits.range if isinstance(fits, ScaledFits) and not follows_solids(fits) else None
@@ -255,7 +259,8 @@ def _product(case: Case, readings: Readings, fits: Fits, chosen: Fit) -> Product
         temperature_range=warm,
         solids_fraction=solids,
         draws=tuple(
-            at_solids(one, fits, solids) for one in fits.draws(doubt.draws, doubt.seed, named)
+            at_solids(one, fits, solids)
+            for one in fits.draws(doubt.draws, doubt.seed, drawn_from(case, fits))
         ),
         name=given.name,
     )

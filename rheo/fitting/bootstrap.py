@@ -6,6 +6,7 @@ and 9.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -31,7 +32,13 @@ _DAMPING = 1e-6
 _BLOCK = 40_000
 
 
-def bootstrap_parameters(fit: Fit, count: int, seed: int = 1, kind: str = "residual") -> FloatArray:
+def bootstrap_parameters(
+    fit: Fit,
+    count: int,
+    seed: int = 1,
+    kind: str = "residual",
+    progress: Callable[[int], None] | None = None,
+) -> FloatArray:
     """Return the parameters of refits to drawn readings.
 
     Parameters
@@ -48,6 +55,8 @@ def bootstrap_parameters(fit: Fit, count: int, seed: int = 1, kind: str = "resid
         the fit's own scatter, or of the instrument's where the weighting states it and it is
         larger. The scatter is itself known from n - p residuals only: each replicate has one of
         its own, so that percentiles are as wide as intervals by Student's t.
+    progress : callable, optional
+        Told after each block how many replicates were in it; what it raises ends the work.
 
     Returns
     -------
@@ -84,6 +93,8 @@ def bootstrap_parameters(fit: Fit, count: int, seed: int = 1, kind: str = "resid
             damping=_DAMPING,
             tolerance=_TOLERANCE,
         ).parameters
+        if progress is not None:
+            progress(len(some))
     return found
 
 

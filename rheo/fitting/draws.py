@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -20,7 +20,9 @@ if TYPE_CHECKING:
 FloatArray = NDArray[np.float64]
 
 
-def parameter_draws(fit: Fit, count: int, seed: int) -> FloatArray:
+def parameter_draws(
+    fit: Fit, count: int, seed: int, progress: Callable[[int], None] | None = None
+) -> FloatArray:
     """Return parameters (count, p) of a fit from its bootstrap.
 
     With as many free parameters as readings there is no scatter to draw from, and the fit's own
@@ -28,7 +30,7 @@ def parameter_draws(fit: Fit, count: int, seed: int) -> FloatArray:
     """
     if fit.freedom < 1:
         return np.repeat(fit.final.parameters[np.newaxis], count, axis=0)
-    return bootstrap_parameters(fit, count, seed)
+    return bootstrap_parameters(fit, count, seed, progress=progress)
 
 
 def shares(weights: Sequence[float], count: int) -> list[int]:
@@ -42,7 +44,11 @@ def shares(weights: Sequence[float], count: int) -> list[int]:
 
 
 def mixed_draws(
-    fits: Fits, count: int, seed: int, key: str | None = None
+    fits: Fits,
+    count: int,
+    seed: int,
+    key: str | None = None,
+    progress: Callable[[float], None] | None = None,
 ) -> tuple[Model | ScaledCurve, ...]:
     """Draw flow curves from all models fitted, each in proportion to its Akaike weight.
 
@@ -56,6 +62,8 @@ def mixed_draws(
         Of the random numbers.
     key : str, optional
         The only model to draw from.
+    progress : callable, optional
+        Told the share that is done [-]; what it raises ends the work.
 
     Returns
     -------
@@ -69,8 +77,16 @@ def mixed_draws(
     """
     some = list(fits) if key is None else [fits[key]]
     parts = shares([fit.weight if key is None else 1.0 for fit in some], count)
+    drawn = 0
+
+    def tell(more: int) -> None:
+        nonlocal drawn
+        drawn += more
+        if progress is not None:
+            progress(drawn / count)
+
     return tuple(
-        fit.source_of(parameter_draws(fit, part, seed + index))
+        fit.source_of(parameter_draws(fit, part, seed + index, tell))
         for index, (fit, part) in enumerate(zip(some, parts, strict=True))
         if part > 0
     )

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -133,7 +133,11 @@ class Fits:
         return (self.best if key is None else self[key]).model
 
     def draws(
-        self, count: int, seed: int = 1, key: str | None = None
+        self,
+        count: int,
+        seed: int = 1,
+        key: str | None = None,
+        progress: Callable[[float], None] | None = None,
     ) -> tuple[FlowCurveSource, ...]:
         """Return flow curves with arrays of drawn parameters, as `source` gives them.
 
@@ -146,6 +150,8 @@ class Fits:
             Of the random numbers.
         key : str, optional
             The only model to draw from.
+        progress : callable, optional
+            Told the share that is done [-]; what it raises ends the work.
 
         Returns
         -------
@@ -156,7 +162,7 @@ class Fits:
         if asked not in self._drawn:
             while len(self._drawn) >= _KEPT_DRAWS:
                 del self._drawn[next(iter(self._drawn))]
-            self._drawn[asked] = mixed_draws(self, count, seed, key)
+            self._drawn[asked] = mixed_draws(self, count, seed, key, progress)
         return self._drawn[asked]
 
     @cached_property
