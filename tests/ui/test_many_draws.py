@@ -72,6 +72,7 @@ def test_progress_is_told_and_can_end_the_draws() -> None:
     assert told[-1] == pytest.approx(1.0)
 
     def enough(share: float) -> None:
+        assert share > 0
         raise KeyboardInterrupt
 
     with pytest.raises(KeyboardInterrupt):
