@@ -37,7 +37,7 @@ def readings_data(readings: Readings) -> dict[str, Any]:
     return {
         "source": readings.source,
         "count": len(readings),
-        "excluded": np.flatnonzero(readings.excluded).tolist(),  # type: ignore[arg-type]
+        "excluded": np.flatnonzero(readings.left_out).tolist(),
         "geometry": None
         if geometry is None
         else {

@@ -25,6 +25,7 @@ from rheo.models import Model
 
 if TYPE_CHECKING:
     from rheo.fitting import Fit, Fits
+    from rheo.fitting.problem import Problem
     from rheo.geometry import Geometry
     from rheo.line.rivals import Candidates, Rival
 
@@ -192,8 +193,7 @@ def _candidates(
     """Readings that could be taken, with each of the tubes or cups that there are."""
     from rheo.line.rivals import Candidates
 
-    problem = fit.problem
-    own: Geometry | None = getattr(problem, "geometry", None)
+    own, measured_at = _instrument(fit.problem)
     geometry = geometry or own
     if geometry is None:
         at = _settings(settings, fit.rates[fit.rates > 0])
@@ -203,13 +203,23 @@ def _candidates(
         used = fit.rates[fit.rates > 0]
         used = np.asarray(geometry.setting_for_rate(model, used), dtype=float)
         if own is not None and own.key == geometry.key:
-            used = np.asarray(problem.setting)  # type: ignore[attr-defined]
+            used = measured_at
         at = _settings(settings, used)
         return Candidates(kind, at, geometry, ("",) * at.size)
     if own is None or own.key != geometry.key:
         raise InputError("its dimensions must be single numbers here", f"geometry {geometry.key}")
-    used = np.asarray(problem.setting)  # type: ignore[attr-defined]
+    used = measured_at
     return _several(own, used, settings)
+
+
+def _instrument(problem: Problem) -> tuple[Geometry | None, FloatArray]:
+    """Return where the fluid was sheared, None for a flow curve, and each reading's setting."""
+    from rheo.fitting.reading_problem import ReadingProblem
+    from rheo.fitting.scaling import ScaledProblem
+
+    if isinstance(problem, ReadingProblem | ScaledProblem) and problem.geometry is not None:
+        return problem.geometry, np.asarray(problem.setting)
+    return None, np.empty(0)
 
 
 def _several(geometry: Geometry, used: FloatArray, settings: ArrayLike | None) -> Candidates:

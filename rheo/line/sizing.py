@@ -16,7 +16,7 @@ from rheo.line.cost import Costs
 from rheo.line.draw_blocks import Progress, counted, in_blocks
 from rheo.line.limits import Check, Limits
 from rheo.line.parts import FloatArray, Line
-from rheo.line.product import Product, interval
+from rheo.line.product import FlowCurveSource, Product, interval
 from rheo.line.safety import GENERAL, PRESSURE, START_UP
 from rheo.line.size_values import (
     REGIMES,
@@ -184,8 +184,8 @@ def _over_draws(
 ) -> tuple[FloatArray, NDArray[np.bool_]]:
     """Pressure [Pa] and whether all limits are kept, shape (sizes, draws)."""
 
-    def both(source: object) -> FloatArray:
-        values = size_values(line, product, flow, sizes, source=source, method=method)  # type: ignore[arg-type]
+    def both(source: FlowCurveSource) -> FloatArray:
+        values = size_values(line, product, flow, sizes, source=source, method=method)
         kept = _all_pass(checks(values, limits), len(sizes))
         return np.stack(np.broadcast_arrays(values.pressure, kept.astype(float)))
 

@@ -12,7 +12,7 @@ from rheo.line.constants import GRAVITY
 from rheo.line.duty_cautions import duty_cautions, inside_measured_range
 from rheo.line.kinetic_energy import kinetic_pressure
 from rheo.line.parts import FloatArray, Line, Pipe
-from rheo.line.product import Product, interval
+from rheo.line.product import FlowCurveSource, Product, interval
 from rheo.line.profile import Profile, pressure_profile
 from rheo.line.result import LineResult, PartResult
 from rheo.line.rounding import balance
@@ -150,8 +150,8 @@ def _over_draws(
         return None, None
     spread = flow[..., np.newaxis]
 
-    def both(source: object) -> FloatArray:
-        found = walk(line, product, spread, source=source, method=method)  # type: ignore[arg-type]
+    def both(source: FlowCurveSource) -> FloatArray:
+        found = walk(line, product, spread, source=source, method=method)
         pair = np.broadcast_arrays(found.differential_pressure, found.friction_pressure)
         return np.stack(pair)
 

@@ -245,8 +245,14 @@ class Readings:
             raise InputError("every time must be a finite number", what)
         return time
 
+    @property
+    def left_out(self) -> NDArray[np.bool_]:
+        """`excluded` as it is once the readings are made: one entry for each."""
+        assert self.excluded is not None
+        return self.excluded
+
     def __len__(self) -> int:
-        return int(self.excluded.size)  # type: ignore[union-attr]
+        return int(self.left_out.size)
 
     @property
     def present(self) -> tuple[str, ...]:
@@ -358,7 +364,7 @@ class Readings:
 
     def used(self) -> Readings:
         """Return the readings that the user has not taken out."""
-        return self.select(~self.excluded)  # type: ignore[operator]
+        return self.select(~self.left_out)
 
     def __repr__(self) -> str:
         held = ", ".join(self.present)

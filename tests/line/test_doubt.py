@@ -9,6 +9,7 @@ import pytest
 
 import rheo
 from rheo.line import Doubts, Line, Pipe, Product
+from rheo.line.doubt import DoubtBudget, DoubtShare
 
 FLOW = 1e-3
 LINE = Line(discharge=(Pipe(50.0, 0.05, rise=4.0),))
@@ -16,8 +17,8 @@ SAUCE = Product(rheo.model("power-law", consistency=8.0, flow_index=0.4), 1050.0
 NOTHING = Doubts(density=0.0, diameter_tolerance=0.0, roughness=0.0, temperature=0.0, flow=0.0)
 
 
-def _share(budget: object, key: str) -> object:
-    return next(one for one in budget.shares if one.key == key)  # type: ignore[attr-defined]
+def _share(budget: DoubtBudget, key: str) -> DoubtShare:
+    return next(one for one in budget.shares if one.key == key)
 
 
 def test_each_cause_by_its_own_law() -> None:
@@ -36,8 +37,8 @@ def test_each_cause_by_its_own_law() -> None:
         budget = rheo.doubt_budget(LINE, SAUCE, FLOW, doubts)
         found = _share(budget, key)
         # Central differences over a thousandth: the next term is a millionth.
-        assert found.standard_deviation == pytest.approx(by_hand, rel=1e-5)  # type: ignore[attr-defined]
-        assert found.share == 1.0  # type: ignore[attr-defined]
+        assert found.standard_deviation == pytest.approx(by_hand, rel=1e-5)
+        assert found.share == 1.0
         assert budget.standard_deviation == pytest.approx(by_hand, rel=1e-5)
 
 
@@ -55,7 +56,7 @@ def test_readings_and_model_choice_split_the_variance_of_the_draws() -> None:
     first, second = every[:300][middle[:300]], every[300:][middle[300:]]
     part = first.size / middle.sum()
     between = part * (1 - part) * (first.mean() - second.mean()) ** 2
-    share = _share(budget, "model-choice").share  # type: ignore[attr-defined]
+    share = _share(budget, "model-choice").share
     assert share == pytest.approx(between / every[middle].var(), rel=1e-10)
     assert sum(one.share for one in budget.shares) == pytest.approx(1.0)
 
@@ -74,8 +75,8 @@ def test_the_friction_method_counts_only_where_it_is_used() -> None:
     slow = rheo.doubt_budget(LINE, SAUCE, FLOW, NOTHING)
     thin = replace(SAUCE, model=rheo.model("power-law", consistency=0.05, flow_index=0.7))
     fast = rheo.doubt_budget(LINE, thin, 5e-3, NOTHING)
-    assert _share(slow, "friction-method").standard_deviation == 0.0  # type: ignore[attr-defined]
-    assert _share(fast, "friction-method").share == 1.0  # type: ignore[attr-defined]
+    assert _share(slow, "friction-method").standard_deviation == 0.0
+    assert _share(fast, "friction-method").share == 1.0
 
 
 def test_roughness_counts_in_turbulent_flow() -> None:
@@ -158,7 +159,7 @@ def test_a_method_outside_its_range_does_not_widen_the_doubt(
     assert len(alone) > 1
     found = _share(rheo.doubt_budget(line, product, flow, NOTHING), "friction-method")
     by_hand = float(np.std(alone, ddof=1))
-    assert found.standard_deviation == pytest.approx(by_hand, rel=1e-9)  # type: ignore[attr-defined]
+    assert found.standard_deviation == pytest.approx(by_hand, rel=1e-9)
 
 
 def test_the_method_in_use_always_counts() -> None:

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import math
 
+from numpy.typing import ArrayLike
+
 from rheo.line import LineResult
 from rheo.line.result import PartResult
 from rheo.report.display import shown, text, unit_label
@@ -64,8 +66,8 @@ def route_section(
     return Section("The line, part by part", tuple(blocks))
 
 
-def _cell(value: object, quantity: str, system: str) -> str:
-    known = float(shown(value, quantity, system))  # type: ignore[arg-type]
+def _cell(value: ArrayLike, quantity: str, system: str) -> str:
+    known = float(shown(value, quantity, system))
     return number(known) if math.isfinite(known) else ""
 
 
