@@ -104,7 +104,7 @@ def main() -> int:
     print(f"friction of the pipes: rheo {own:.1f} Pa; the script {said.strip()} Pa")
     print(f"rheo run {statistics.median(ours):.2f} s, the script {statistics.median(theirs):.2f} s")
     report(
-        "rheo run gum.toml, its draws and all else; a script with lmfit, quad and brentq, the draws alone",
+        "rheo run gum.toml; a script with lmfit, quad and brentq for its draws alone",
         statistics.median(theirs) / statistics.median(ours),
     )
     return 0
