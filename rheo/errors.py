@@ -11,6 +11,8 @@ from typing import Any
 # A number as Python's format g writes it; not in a word, and not in quotes, where it is the user's.
 _EXPONENT = re.compile(r"(?<![\w.'])(\d(?:\.\d+)?)e([-+]?\d{1,3})(?!\w|\.\d|')")
 _RAISED = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
+# A comma is a decimal mark to half of the readers.
+GROUP = "\u202f"
 # Beyond these powers of ten digits alone are hard to count.
 _LEAST_POWER, _LARGEST_POWER = -4, 6
 
@@ -26,13 +28,25 @@ def without_exponents(sentence: str) -> str:
     return _EXPONENT.sub(_written_out, sentence)
 
 
+def in_groups(digits: str) -> str:
+    """Return a number with its digits in threes from 10 000 on, by a space that does not break.
+
+    Parameters
+    ----------
+    digits : str
+        As Python writes it without an exponent.
+    """
+    whole = digits.partition(".")[0].lstrip("-")
+    return f"{Decimal(digits):,f}".replace(",", GROUP) if len(whole) > 4 else digits
+
+
 def _written_out(match: re.Match[str]) -> str:
     power = int(match[2])
     if not _LEAST_POWER <= power <= _LARGEST_POWER:
         ten = f"10{str(power).translate(_RAISED)}"
         return ten if match[1] == "1" else f"{match[1]} × {ten}"
     digits = f"{Decimal(match[0]):f}"
-    return digits if abs(power) < 4 else f"{Decimal(match[0]):,f}".replace(",", "\u202f")
+    return in_groups(digits)
 
 
 class InputError(ValueError):

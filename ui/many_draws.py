@@ -12,6 +12,7 @@ from collections.abc import Callable
 import streamlit as st
 
 from rheo.case.run import drawn_from
+from rheo.errors import in_groups
 from rheo.fitting import Fits
 from ui import cautions, results, state, work
 
@@ -37,13 +38,13 @@ def show() -> None:
     count = state.case().doubt.draws
     st.header(_WORDS)
     st.write(
-        f"The case asks for {count:,} flow curves, each a refit of the readings. With fewer the "
-        "intervals are the same within their last digit."
+        f"The case asks for {in_groups(str(count))} flow curves, each a refit of the readings. "
+        "With fewer the intervals are the same within their last digit."
     )
     if asked is not None:
         work.outcome(_NAME, _WORDS, *asked)
     st.button(
-        f"Take {_FEWER:,} instead",
+        f"Take {_FEWER} instead",
         on_click=state.attempt,
         args=("draws", state.change, ("doubt", "draws"), _FEWER),
     )
@@ -61,5 +62,6 @@ def _asked() -> tuple[str, Callable[[work.Progress], object]] | None:
         return None
     key = drawn_from(case, fits)
     # The same object for the same draws: work is known by it.
-    subject = sys.intern(f"{id(fits)} {doubt.draws} {doubt.seed} {key}")
+    fitted = results.fits_key(case, state.files())
+    subject = sys.intern(f"{fitted} {doubt.draws} {doubt.seed} {key}")
     return subject, lambda tell: fits.draws(doubt.draws, doubt.seed, key, tell)

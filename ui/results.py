@@ -136,7 +136,7 @@ def fitted_of(case: Case, files: Files) -> Outcome:
         return fits
     document = case.document()
     parts = [document.get(name) for name in ("product", "fit", "doubt")]
-    key = digest(_fits_key(case, files), parts)
+    key = digest(fits_key(case, files), parts)
     found: Outcome = _fitted(key, case, sets.value, fits.value)
     return found
 
@@ -146,7 +146,7 @@ def fits_of(case: Case, files: Files) -> Outcome:
     sets = readings_of(case, files)
     if sets.value is None:
         return sets
-    found: Outcome = _fits(_fits_key(case, files), case, sets.value)
+    found: Outcome = _fits(fits_key(case, files), case, sets.value)
     return found
 
 
@@ -175,7 +175,8 @@ def _readings_key(case: Case, files: Files) -> str:
     return digest(document["readings"], product, _file_digests(files))
 
 
-def _fits_key(case: Case, files: Files) -> str:
+def fits_key(case: Case, files: Files) -> str:
+    """Return what the fits to the readings of a case are kept by."""
     document = case.document()
     fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
     # All that `fit_models` depends on; density and particles are for screening only.

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from rheo.errors import Caution
+from rheo.errors import Caution, in_groups
 from rheo.line.catalogue import PipeSize
 from rheo.line.cost import DEFAULT_CAPITAL, Costs
 
@@ -77,17 +77,15 @@ def size_sentence(
     if costs is None or best.annual_cost is None:
         why = "the smallest size that keeps every limit"
     else:
-        why = (
-            f"the least annual cost of the sizes that keep every limit, {best.annual_cost:,.0f} "
-            f"{costs.currency}"
-        )
+        cost = in_groups(f"{best.annual_cost:.0f}")
+        why = f"the least annual cost of the sizes that keep every limit, {cost} {costs.currency}"
     text = f"Take {best.size.name}: {duty}, {why}"
     smaller = [one for one in candidates if one.size.inside_diameter < best.size.inside_diameter]
     if smaller and smaller[-1].reasons:
         text += f"; {smaller[-1].size.name} fails, {smaller[-1].reasons[0]}"
     elif smaller and smaller[-1].annual_cost is not None and best.annual_cost is not None:
-        more = smaller[-1].annual_cost - best.annual_cost
-        text += f"; {smaller[-1].size.name} would cost {more:,.0f} more a year"
+        more = in_groups(f"{smaller[-1].annual_cost - best.annual_cost:.0f}")
+        text += f"; {smaller[-1].size.name} would cost {more} more a year"
     return f"{text}."
 
 

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
+from rheo.errors import GROUP
 from rheo.report.palette import Palette, palette
 from rheo.report.picture import (
     Axis,
@@ -120,6 +121,7 @@ def _layout(picture: Picture, colours: Palette) -> dict[str, Any]:
         "hovermode": "closest",
         "barmode": "overlay",
         "colorway": [series.colour for series in colours.series],
+        "separators": f".{GROUP}",
         "meta": {"description": label(picture.description, 500)},
     }
 

@@ -5,8 +5,9 @@ from __future__ import annotations
 import math
 from decimal import ROUND_HALF_EVEN, Decimal
 
+from rheo.errors import in_groups
+
 MINUS = "\u2212"
-GROUP = "\u202f"
 NOT_KNOWN = "not known"
 _SUPERSCRIPTS = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
 # Below and from these sizes a number is written with a power of ten.
@@ -35,10 +36,8 @@ def _plain(value: Decimal, place: int) -> str:
     """Write a rounded number without an exponent; digits in threes from 10 000 on."""
     text = f"{abs(value):.{max(-place, 0)}f}"
     whole, _, part = text.partition(".")
-    if len(whole) > 4:
-        whole = f"{int(whole):,}".replace(",", GROUP)
     sign = MINUS if value < 0 and Decimal(text) != 0 else ""
-    return sign + whole + (f".{part}" if part else "")
+    return sign + in_groups(whole) + (f".{part}" if part else "")
 
 
 def power_of_ten(exponent: int) -> str:

@@ -8,8 +8,9 @@ from __future__ import annotations
 
 import re
 
+from rheo.errors import GROUP
 from rheo.report.display import QUANTITIES, shown, unit_label
-from rheo.report.numbers import GROUP, number
+from rheo.report.numbers import number
 from rheo.units import to_si
 
 # Units of the sentences, and the quantity as which each is shown.

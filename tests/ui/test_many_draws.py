@@ -28,7 +28,7 @@ def slow(page: Page) -> Page:
 
 def test_it_is_drawn_beside_the_page(slow: Page) -> None:
     assert [one.value for one in slow.app.header] == [WORDS]
-    assert "100,000 flow curves" in slow.words
+    assert "100\u202f000 flow curves" in slow.words
     job = slow.app.session_state["rheo.work.draws"]
     assert not job.done.is_set()
     slow.press("Cancel")
@@ -41,7 +41,7 @@ def test_it_is_drawn_beside_the_page(slow: Page) -> None:
 
 def test_fewer_can_be_taken(slow: Page) -> None:
     job = slow.app.session_state["rheo.work.draws"]
-    slow.press("Take 1,000 instead")
+    slow.press("Take 1000 instead")
     assert job.cancelled
     assert slow.kept("case").doubt.draws == 1000
     assert len(slow.strip()) == 5
