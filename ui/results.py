@@ -23,8 +23,8 @@ from rheo.case import Case, case_text, run_case
 from rheo.case.embed import embedded
 from rheo.case.load_readings import all_readings
 from rheo.case.result import CaseResult
-from rheo.case.run import FittedCase, fit_case, fit_models
-from rheo.case.schema import WORDS
+from rheo.case.run import FittedCase, fit_case, fit_models, judged_anew
+from rheo.case.schema import JUDGES
 from rheo.errors import InputError
 from rheo.fitting import Fits
 from rheo.readings import Readings
@@ -156,12 +156,12 @@ def result_of(case: Case, files: Files) -> Outcome:
     if fitted.value is None:
         return fitted
     document = case.document()
-    worked_with = {name: value for name, value in document.items() if name not in WORDS}
+    worked_with = {name: value for name, value in document.items() if name not in JUDGES}
     found: Outcome = _result(digest(worked_with, _file_digests(files)), case, fitted.value)
-    if found.value is None or found.value.case.words == case.words:
+    if found.value is None:
         return found
-    named: Outcome = _in_words_of(result_key(case, files), case, found.value)
-    return named
+    judged: Outcome = _judged(result_key(case, files), case, found.value)
+    return judged
 
 
 def result_key(case: Case, files: Files) -> str:
@@ -219,9 +219,11 @@ def _fitted(
     return outcome_of(lambda: fit_case(_case, _readings, _fits))
 
 
-@st.cache_resource(max_entries=16, show_spinner=False)
-def _in_words_of(key: str, _case: Case, _result: CaseResult) -> Outcome:  # noqa: ARG001
-    return Outcome(_result.in_words_of(_case))
+@st.cache_resource(max_entries=64, show_spinner=False)
+def _judged(key: str, _case: Case, _result: CaseResult) -> Outcome:  # noqa: ARG001
+    if _result.case == _case:
+        return Outcome(_result)
+    return outcome_of(lambda: judged_anew(_result, _case))
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)

@@ -10,7 +10,7 @@ from typing import Any
 import numpy as np
 
 from rheo.case import as_data
-from rheo.case.schema import Case
+from rheo.case.schema import JUDGES, WORDS, Case
 from rheo.errors import CaseError, Caution, InputError
 from rheo.fitting import Fit, Fits
 from rheo.hydraulics import PipeFlow, pipe_flow
@@ -210,18 +210,24 @@ class CaseResult:
         self.__dict__["sizing"] = found
         return found
 
-    def in_words_of(self, case: Case) -> CaseResult:
-        """Return this result for a case that differs in its words only.
+    def judged_by(self, case: Case, cautions: tuple[Caution, ...]) -> CaseResult:
+        """Return this result for a case that differs in what `JUDGES` names only.
 
-        What has been worked out of it already is not worked out again.
+        What has been worked out of it already is not worked out again, but for the sizes where
+        more than words differ.
 
         Parameters
         ----------
         case : Case
-            With another title, other names or notes.
+            With other words, limits, sizes to compare or costs.
+        cautions : tuple of Caution
+            By these.
         """
         found = copy(self)
         object.__setattr__(found, "case", case)
+        object.__setattr__(found, "cautions", cautions)
+        if any(getattr(case, name) != getattr(self.case, name) for name in JUDGES - set(WORDS)):
+            found.__dict__.pop("sizing", None)
         return found
 
     @property

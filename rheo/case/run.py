@@ -7,10 +7,9 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from rheo.case.all_cautions import all_cautions
 from rheo.case.join import joined
-from rheo.case.limit_cautions import limit_cautions
-from rheo.case.load_readings import all_readings, branch_of, screened, weighting_of
-from rheo.case.pump_cautions import pump_cautions
+from rheo.case.load_readings import all_readings, branch_of, weighting_of
 from rheo.case.result import CaseResult
 from rheo.case.schema import AUTO, Case
 from rheo.case.solids_state import (
@@ -18,12 +17,10 @@ from rheo.case.solids_state import (
     follows_solids,
     product_solids,
     solids_basis,
-    solids_state_cautions,
 )
-from rheo.errors import CaseError, Caution, InputError, merge_cautions
+from rheo.errors import CaseError, InputError
 from rheo.fitting import Fit, Fits, fit
 from rheo.fitting.any_state import (
-    ONE_TEMPERATURE,
     at_several_solids,
     at_several_temperatures,
     fit_readings,
@@ -34,11 +31,8 @@ from rheo.fitting.scaled_fits import ScaledFits
 from rheo.line import (
     CentrifugalPump,
     DisplacementPump,
-    LineResult,
     Product,
-    Solids,
     operating_point,
-    settling_cautions,
     solve_line,
 )
 from rheo.line.constants import GRAVITY
@@ -176,24 +170,29 @@ def run_case(
         rating=_rating(case, pump, product),
         method=method,
     )
-    cautions = merge_cautions(
-        *(one.cautions for one in sets),
-        found.fitted.cautions,
-        *(screened(case, one) for one in sets),
-        fits.data_cautions,
-        fits.ranking_cautions if chosen is fits.best else (),
-        chosen.cautions,
-        _temperature_cautions(case, found.fitted, product),
-        solids_state_cautions(case, found.fitted, fits, product.solids_fraction),
-        _thickness_cautions(case),
-        line.cautions,
-        limit_cautions(case, line),
-        pump_cautions(case, line, operating),
-        _solids_cautions(case, line),
-    )
+    cautions = all_cautions(case, found, line, operating)
     return CaseResult(
         case, sets, found.fitted, fits, chosen, product, line, pump, efficiency, operating, cautions
     )
+
+
+def judged_anew(result: CaseResult, case: Case) -> CaseResult:
+    """Return a result for a case that is the same but for what `JUDGES` names.
+
+    Parameters
+    ----------
+    result : CaseResult
+        Of `run_case`.
+    case : Case
+        With other words, limits, sizes to compare or costs.
+
+    Returns
+    -------
+    CaseResult
+        That of `run_case`; the line is not worked out again.
+    """
+    found = FittedCase(result.readings, result.fitted, result.fits, result.chosen, result.product)
+    return result.judged_by(case, all_cautions(case, found, result.line, result.operating))
 
 
 def _to_fit(case: Case, sets: tuple[Readings, ...]) -> Readings:
@@ -297,89 +296,6 @@ def _rating(
         return rated
     at_hand = max(pump.heads) * float(np.asarray(product.density)) * GRAVITY
     return at_hand if rated is None else min(rated, at_hand)
-
-
-def _temperature_cautions(case: Case, readings: Readings, product: Product) -> tuple[Caution, ...]:
-    if product.knows_temperature:
-        return ()
-    taken = used_states(readings, "temperature")
-    if taken is None:
-        if case.product.temperature is None:
-            return ()
-        return (
-            Caution(
-                "temperature-of-readings-unknown",
-                "The readings do not say at which temperature they were taken; they are used as if "
-                f"it were the {product.temperature - 273.15:.1f} °C of the product.",
-                "Give their temperature, in the file or beside it in the case.",
-                product.name,
-            ),
-        )
-    apart = abs(float(np.mean(taken)) - product.temperature)
-    if apart <= ONE_TEMPERATURE:
-        return ()
-    return (
-        Caution(
-            "temperature-of-readings",
-            f"The readings were taken at {float(np.mean(taken)) - 273.15:.1f} °C and the product "
-            f"is pumped at {product.temperature - 273.15:.1f} °C.",
-            "Take readings at the temperature of the line, or at two temperatures around it.",
-            product.name,
-        ),
-    )
-
-
-def _thickness_cautions(case: Case) -> tuple[Caution, ...]:
-    factor = case.product.stress_factor
-    if factor is None or factor == 1.0:
-        return ()
-    found = [
-        Caution(
-            "product-not-as-measured",
-            f"The product is taken to have {float(factor):.3g} times the measured stress at every "
-            "shear rate.",
-            "Take readings of the product as it will be pumped.",
-            case.product.name,
-        )
-    ]
-    line = case.line
-    found += [
-        Caution(
-            "equipment-loss-as-given",
-            "Its loss stays as given, though the product is taken to be thicker or thinner.",
-            "Ask its supplier, or measure the loss with that product.",
-            part.name,
-        )
-        for part in (*line.suction, *line.discharge)
-        if part.part == "equipment"
-    ]
-    return tuple(found)
-
-
-def _solids_cautions(case: Case, line: LineResult) -> tuple[Caution, ...]:
-    block = case.product.solids
-    if block is None:
-        return ()
-    solids = Solids(**block.given())
-    product = line.product
-    at_rest = product.static_yield_stress
-    found: list[tuple[Caution, ...]] = []
-    for part in line.parts:
-        if part.kind != "pipe":
-            continue
-        flowing = product.model_at(float(part.temperature)).yield_stress
-        found.append(
-            settling_cautions(
-                solids,
-                yield_stress=float(flowing if at_rest is None else np.asarray(at_rest)),
-                density=float(np.asarray(product.density)),
-                diameter=float(part.diameter),
-                velocity=float(part.velocity),
-                laminar=part.regime == "laminar",
-                place=part.name,
-            )
-        )
-    return merge_cautions(*found)
 
 
 def _plain(value: float | None) -> float | None:

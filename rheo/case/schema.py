@@ -172,6 +172,8 @@ class DutyBlock(Block):
 
 # The keys of a case that no calculation takes up.
 WORDS = ("title", "notes", "prepared_by", "checked_by")
+# Those, and the keys by which a line is judged that is worked out without them.
+JUDGES = {*WORDS, "limits", "sizes", "cost"}
 
 
 class Case(Block):
@@ -219,11 +221,6 @@ class Case(Block):
 
     def __hash__(self) -> int:
         return hash(json.dumps(self.document(), ensure_ascii=True))
-
-    @property
-    def words(self) -> tuple[str, ...]:
-        """What it says of itself: title, notes and names, which no calculation takes up."""
-        return tuple(str(getattr(self, name)) for name in WORDS)
 
     @property
     def folder(self) -> Path | None:

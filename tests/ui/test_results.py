@@ -25,6 +25,8 @@ CHANGES: tuple[tuple[tuple[str | int, ...], Any], ...] = (
     (("duty", "flow"), "6 m3/h"),
     (("line", "discharge", 0, "length"), "20 m"),
     (("pump", "rated_pressure"), "4 bar"),
+    (("limits", "max_velocity"), "0.3 m/s"),
+    (("title",), "Another line"),
 )
 
 
@@ -84,6 +86,31 @@ def test_another_title_works_nothing_out_again() -> None:
         assert second.compare_sizes() is sizing
         assert results.result_of(other, files).value is second
     assert first.case == case
+
+
+def test_another_limit_works_the_line_out_no_more_than_once() -> None:
+    files = opening.sample_files("gum")
+    case = opening.sample("gum")
+    first: CaseResult = results.result_of(case, files).value
+    curve, sizing = first.system_curve, first.sizing
+    other = changed(case, ("limits", "max_velocity"), "0.3 m/s")
+    second: CaseResult = results.result_of(other, files).value
+    assert second.line is first.line
+    assert second.system_curve is curve
+    assert second.sizing is not sizing
+    fresh = run_case(other.in_folder(opening.SAMPLES))
+    assert second.cautions == fresh.cautions
+    assert "limit-not-kept" in {one.code for one in second.cautions}
+    assert "limit-not-kept" not in {one.code for one in first.cautions}
+    assert [one.passes for one in second.sizing.candidates] == [
+        one.passes for one in fresh.sizing.candidates
+    ]
+    # Back again, and with other costs.
+    assert results.result_of(case, files).value.cautions == first.cautions
+    dear = changed(case, ("cost", "energy_price"), 1.0)
+    third: CaseResult = results.result_of(dear, files).value
+    costs = [one.annual_cost for one in third.sizing.candidates]
+    assert costs != [one.annual_cost for one in sizing.candidates]
 
 
 def test_a_thicker_batch_draws_no_flow_curves_again() -> None:
