@@ -157,10 +157,12 @@ def result_of(case: Case, files: Files) -> Outcome:
         return fitted
     document = case.document()
     worked_with = {name: value for name, value in document.items() if name not in JUDGES}
-    found: Outcome = _result(digest(worked_with, _file_digests(files)), case, fitted.value)
+    key = digest(worked_with, _file_digests(files))
+    found: Outcome = _result(key, case, fitted.value)
     if found.value is None:
         return found
-    judged: Outcome = _judged(result_key(case, files), case, found.value)
+    lately: list[CaseResult] = _lately(key, found.value)
+    judged: Outcome = _judged(result_key(case, files), case, lately)
     return judged
 
 
@@ -220,10 +222,19 @@ def _fitted(
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)
-def _judged(key: str, _case: Case, _result: CaseResult) -> Outcome:  # noqa: ARG001
-    if _result.case == _case:
-        return Outcome(_result)
-    return outcome_of(lambda: judged_anew(_result, _case))
+def _judged(key: str, _case: Case, _lately: list[CaseResult]) -> Outcome:  # noqa: ARG001
+    if _lately[0].case == _case:
+        return Outcome(_lately[0])
+    found = outcome_of(lambda: judged_anew(_lately[0], _case))
+    if found.value is not None:
+        _lately[0] = found.value
+    return found
+
+
+@st.cache_resource(max_entries=64, show_spinner=False)
+def _lately(key: str, _result: CaseResult) -> list[CaseResult]:  # noqa: ARG001
+    """Return the result that was judged last: what has been worked out of it serves the next."""
+    return [_result]
 
 
 @st.cache_resource(max_entries=64, show_spinner=False)
