@@ -51,11 +51,20 @@ def batch(
     ] = None,
     rates: Annotated[
         list[str] | None,
-        typer.Option("--rate", help="Shear rate of the comparison: '50 1/s'; may be repeated."),
+        typer.Option(
+            "--rate",
+            metavar="RATE",
+            help="Shear rate of the comparison: '50 1/s'; may be repeated.",
+        ),
     ] = None,
     models: Annotated[
         list[str] | None,
-        typer.Option("--model", "-m", help="Only this model; may be repeated. All when absent."),
+        typer.Option(
+            "--model",
+            "-m",
+            metavar="KEY",
+            help="Only this model; may be repeated. All when absent.",
+        ),
     ] = None,
     weighting: Annotated[
         str, typer.Option("--weighting", "-w", help="relative or absolute.")
@@ -81,9 +90,9 @@ def batch(
     ] = False,
     as_json: Json = False,
 ) -> None:
-    """Many files of readings to one table: fits, screening, drift against a reference lot.
+    """Many files to one table: fits, screening, drift.
 
-    A bad file is listed with its reason and stops nothing.
+    The drift is that from a reference lot. A bad file is listed with its reason and stops nothing.
     """
     from rheo.batches import batch as run_batch
     from rheo.batches import write_table

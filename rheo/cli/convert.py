@@ -44,7 +44,7 @@ def convert(
     units: UnitsOption = Units.metric,
     as_json: Json = False,
 ) -> None:
-    """Shear rate, stress and viscosity in a geometry at a speed or flow, and back.
+    """Shear rate and stress in a geometry at a speed or flow, and back.
 
     Example: rheo convert -m power-law -s consistency=3 -s flow_index=0.4 -g tube -d diameter=50mm
     -d length=10m --at "4 m3/h" --to "concentric-cylinders inner_radius=14mm outer_radius=15mm

@@ -30,7 +30,12 @@ def fit(
     readings: ReadingsFile,
     models: Annotated[
         list[str] | None,
-        typer.Option("--model", "-m", help="Only this model; may be repeated. All when absent."),
+        typer.Option(
+            "--model",
+            "-m",
+            metavar="KEY",
+            help="Only this model; may be repeated. All when absent.",
+        ),
     ] = None,
     weighting: Annotated[
         str, typer.Option("--weighting", "-w", help="relative, absolute or instrument.")
@@ -77,7 +82,13 @@ def fit(
     ] = False,
     exclude: Annotated[
         list[int] | None,
-        typer.Option("--exclude", "-x", min=1, help="Leave out a reading, counted from 1."),
+        typer.Option(
+            "--exclude",
+            "-x",
+            min=1,
+            metavar="NUMBER",
+            help="Leave out a reading, counted from 1.",
+        ),
     ] = None,
     compare: Annotated[
         bool, typer.Option("--compare", help="Say what weighting and branch do to the fit.")

@@ -7,7 +7,7 @@ from rheo.cli.options import Json
 
 
 def models(as_json: Json = False) -> None:
-    """List the flow-curve models: equation, parameters, source and where each may be used."""
+    """List the flow-curve models: equation, parameters, source, range."""
     from rheo.models import model_records
 
     records = model_records().values()

@@ -42,7 +42,7 @@ def pipe(
     units: UnitsOption = Units.metric,
     as_json: Json = False,
 ) -> None:
-    """Pressure gradient and wall shear rate of one flow curve in one straight pipe.
+    """Pressure gradient and wall shear rate in one straight pipe.
 
     Example: rheo pipe -m power-law -s consistency=2 -s flow_index=0.5 -d 50mm -q "5 m3/h" --density
     1100 --length 30m

@@ -35,7 +35,7 @@ Columns = Annotated[
         "--column",
         "-c",
         metavar="QUANTITY=HEADING",
-        help="Which column holds what: torque='M \\[mN.m]'. Columns not named are found.",
+        help="Which column holds what: torque='M [mN.m]'. Columns not named are found.",
     ),
 ]
 

@@ -22,7 +22,7 @@ def size(
     as_json: Json = False,
     allow_outside: Outside = False,
 ) -> None:
-    """Every catalogue size against the limits of the case, and the size to take."""
+    """Every catalogue size against the limits; the size to take."""
     from rheo.case import load_case, run_case
     from rheo.case.as_data import data
 
