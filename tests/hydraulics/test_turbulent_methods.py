@@ -156,15 +156,19 @@ def test_torrance_does_not_count_for_newtonian_fluids():
     assert flow.method_spread < 0.02
 
 
-def test_a_fold_is_bridged():
+def _folding() -> rheo.Model:
     """A Cross curve of index 0.99 with a low plateau, where n' rises from 0.1 to 1."""
-    model = rheo.model(
+    return rheo.model(
         "cross",
         zero_shear_viscosity=10.0,
         infinite_shear_viscosity=1e-3,
         time_constant=1.0,
         rate_index=0.99,
     )
+
+
+def test_a_fold_is_bridged():
+    model = _folding()
     flow = rheo.pipe_flow(model, 0.005, np.geomspace(0.5, 15.0, 400), 1000.0, regime="turbulent")
     bridge = find_bridge(flow.pipe.take(np.arange(1)), turbulent_methods()["dodge-metzner"])
     assert np.isfinite(bridge.log_rate[0])
@@ -214,13 +218,7 @@ def test_folds_are_found_for_each_fluid_by_itself():
 
 def test_the_bridge_ends_at_the_last_local_minimum():
     """Against the velocity of the equation on a fine grid of rates."""
-    model = rheo.model(
-        "cross",
-        zero_shear_viscosity=10.0,
-        infinite_shear_viscosity=1e-3,
-        time_constant=1.0,
-        rate_index=0.99,
-    )
+    model = _folding()
     record = turbulent_methods()["dodge-metzner"]
     flow = rheo.pipe_flow(model, np.array([0.005, 0.02, 0.1]), 1.0, 1000.0)
     bridge = find_bridge(flow.pipe, record)

@@ -95,7 +95,7 @@ def test_the_order_of_fittings_does_not_matter(
     product: Product, some: list[Fitting], random: object, flow: float
 ) -> None:
     shuffled = list(some)
-    random.shuffle(shuffled)  # type: ignore[attr-defined]
+    random.shuffle(shuffled)
     pipe = Pipe(10.0, 0.05)
     one = walk(Line(discharge=(pipe, *some)), product, flow).differential_pressure
     other = walk(Line(discharge=(pipe, *shuffled)), product, flow).differential_pressure

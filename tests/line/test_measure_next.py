@@ -242,7 +242,7 @@ def test_speeds_are_found_from_the_readings_when_none_are_given() -> None:
 def test_what_cannot_be_asked(arguments: dict[str, object], sentence: str) -> None:
     fits = fit(rheo.FlowCurve(RATES, TRUTH.stress(RATES) * (1 + 0.01 * np.sin(RATES))))
     with pytest.raises(rheo.InputError, match=sentence):
-        rheo.measure_next(fits, LINE, PRODUCT, 1e-3, **arguments)  # type: ignore[arg-type]
+        rheo.measure_next(fits, LINE, PRODUCT, 1e-3, **arguments)
 
 
 def test_a_line_that_runs_by_itself_has_nothing_to_narrow() -> None:

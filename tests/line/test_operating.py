@@ -123,7 +123,7 @@ def test_a_flow_curve_by_temperature_gives_the_same_band() -> None:
     ],
 )
 def test_no_operating_point_is_said_plainly(pump: object, sentence: str) -> None:
-    found = rheo.operating_point(LINE, OIL, pump)  # type: ignore[arg-type]
+    found = rheo.operating_point(LINE, OIL, pump)
     assert not found.found
     assert found.sentence.startswith("No operating point")
     assert sentence in found.sentence
@@ -254,7 +254,7 @@ def test_water_needs_no_correction() -> None:
 )
 def test_pumps_that_cannot_be(make: object, sentence: str) -> None:
     with pytest.raises(rheo.InputError, match=sentence):
-        make()  # type: ignore[operator]
+        make()
 
 
 @pytest.mark.parametrize("speed", range(100, 400, 7))

@@ -40,9 +40,9 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
             lambda: Pipe(1.0, 0.05, ambient_temperature=280.0),
             "give ambient_temperature and heat_transfer_coefficient together",
         ),
-        (lambda: Pipe("far", 0.05), "length [m] is 'far'; it must be above 0"),  # type: ignore[arg-type]
+        (lambda: Pipe("far", 0.05), "length [m] is 'far'; it must be above 0"),
         (lambda: Fitting("bend", count=0), "bend: count is 0; it must be a whole number above 0"),
-        (lambda: Fitting("bend", count=1.5), "count is 1.5"),  # type: ignore[arg-type]
+        (lambda: Fitting("bend", count=1.5), "count is 1.5"),
         (lambda: Fitting("bend", loss_coefficient=-1.0), "loss_coefficient [-] is -1"),
         (
             lambda: Fitting("elbow-90-lang", name="bend at the wall"),
@@ -63,7 +63,7 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
         (lambda: Vessel(np.inf), "vessel: level [m] is inf; it must be a finite number"),
         (lambda: Line(), "the line has no pipe"),
         (lambda: Line(discharge=(Fitting("bend", loss_coefficient=1.0),)), "the line has no pipe"),
-        (lambda: Line(discharge=("pipe",)), "str is no part of a line; there are Vessel, Pipe"),  # type: ignore[arg-type]
+        (lambda: Line(discharge=("pipe",)), "str is no part of a line; there are Vessel, Pipe"),
         (
             lambda: Line(discharge=(Vessel(name="middle"), Pipe(1.0, 0.05))),
             "vessel 'middle' stands between other parts on the discharge side",
@@ -86,7 +86,7 @@ WATER = rheo.model("newtonian", viscosity=1e-3)
 )
 def test_what_cannot_be_is_refused_in_words(make: object, sentence: str) -> None:
     with pytest.raises(rheo.InputError, match=re.escape(sentence)):
-        make()  # type: ignore[operator]
+        make()
 
 
 @pytest.mark.parametrize("flow", [0.0, -1.0, np.nan])

@@ -65,7 +65,7 @@ def test_least_cost_agrees_with_trying_each_size(n: float, price: float) -> None
     found = rheo.size_line(LINE, product, FLOW, sizes, costs=costs)
     totals = {}
     for size in sizes:
-        pressure = float(_one_by_one(size, product).differential_pressure)  # type: ignore[attr-defined]
+        pressure = float(_one_by_one(size, product).differential_pressure)
         kilowatts = pressure * FLOW / 0.5 / 1000.0
         capital = 60.0 * 120.0 * (size.inside_diameter / 0.05) ** 1.5
         totals[size.name] = 0.15 * capital + kilowatts * 5000.0 * price
@@ -107,12 +107,12 @@ def test_every_value_is_that_of_the_line_by_itself() -> None:
     found = rheo.size_line(LINE, SAUCE, FLOW, catalogue("DIN 11866 A"))
     for candidate in found.candidates[::3]:
         alone = _one_by_one(candidate.size)
-        pipe = next(part for part in alone.parts if part.name == "pipe")  # type: ignore[attr-defined]
-        assert candidate.pressure == pytest.approx(float(alone.differential_pressure), rel=1e-12)  # type: ignore[attr-defined]
+        pipe = next(part for part in alone.parts if part.name == "pipe")
+        assert candidate.pressure == pytest.approx(float(alone.differential_pressure), rel=1e-12)
         assert candidate.velocity == pytest.approx(float(pipe.velocity), rel=1e-12)
         assert candidate.wall_rate == pytest.approx(float(pipe.wall_rate), rel=1e-12)
-        assert candidate.residence_time == pytest.approx(float(alone.residence_time), rel=1e-12)  # type: ignore[attr-defined]
-        assert candidate.npsh == pytest.approx(float(alone.npsh_available), rel=1e-12)  # type: ignore[attr-defined]
+        assert candidate.residence_time == pytest.approx(float(alone.residence_time), rel=1e-12)
+        assert candidate.npsh == pytest.approx(float(alone.npsh_available), rel=1e-12)
         if pipe.regime == "laminar":
             fastest = (3 * 0.4 + 1) / (0.4 + 1)
             held = 60.0 / (fastest * float(pipe.velocity))
@@ -217,7 +217,7 @@ def test_how_the_choice_moves_over_the_doubt() -> None:
 def test_a_size_that_passes_only_with_luck_fails() -> None:
     product = replace(SAUCE, draws=_draws())
     size = catalogue("ISO 2037")[10]
-    pressure = float(_one_by_one(size).differential_pressure)  # type: ignore[attr-defined]
+    pressure = float(_one_by_one(size).differential_pressure)
     limits = Limits(pressure=1.001 * pressure)
     found = rheo.size_line(LINE, product, FLOW, [size], limits=limits)
     assert not found.candidates[0].passes
@@ -270,7 +270,7 @@ def test_what_cannot_be_sized(arguments: dict[str, object], sentence: str) -> No
         "sizes": catalogue("ISO 2037"),
     }
     with pytest.raises(rheo.InputError, match=sentence):
-        rheo.size_line(**(given | arguments))  # type: ignore[arg-type]
+        rheo.size_line(**(given | arguments))
 
 
 @pytest.mark.parametrize(
@@ -289,7 +289,7 @@ def test_what_cannot_be_sized(arguments: dict[str, object], sentence: str) -> No
 )
 def test_limits_and_costs_that_cannot_be(make: object, sentence: str) -> None:
     with pytest.raises(rheo.InputError, match=sentence):
-        make()  # type: ignore[operator]
+        make()
 
 
 def test_cleaning_flow_of_each_size() -> None:

@@ -82,7 +82,7 @@ class Browser:
         assert self.page.get_by_test_id("stException").count() == 0
         assert self.page.locator('[data-testid="stAlertContentError"]').all_inner_texts() == []
         width = self.page.evaluate("document.documentElement.scrollWidth")
-        assert width <= self.page.viewport_size["width"]  # type: ignore[index]
+        assert width <= self.page.viewport_size["width"]
         assert self.complaints == []
 
 

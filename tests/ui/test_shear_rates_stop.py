@@ -35,7 +35,7 @@ def test_it_says_whether_the_viscometer_saw_the_rates(stop: Page) -> None:
 def test_the_pipes_are_given_as_viscometer_speeds(stop: Page) -> None:
     result = run_case(load_case(opening.SAMPLES / "sauce.toml"))
     pipe = next(part for part in result.line.parts if part.kind == "pipe")
-    speed = result.fitted.geometry.setting_for_rate(result.model, pipe.wall_rate)  # type: ignore[union-attr]
+    speed = result.fitted.geometry.setting_for_rate(result.model, pipe.wall_rate)
     rpm = float(speed) * 30.0 / np.pi
     cells = re.findall(r"<tr.*?>(.*?)</tr>", stop.html)
     row = next(cell for cell in cells if pipe.name in cell)
@@ -81,6 +81,6 @@ def test_from_a_shear_rate(stop: Page) -> None:
     stop.run()
     stop.type("Shear rate", "100")
     result = run_case(load_case(opening.SAMPLES / "sauce.toml"))
-    speed = result.fitted.geometry.setting_for_rate(result.model, 100.0)  # type: ignore[union-attr]
+    speed = result.fitted.geometry.setting_for_rate(result.model, 100.0)
     rpm = float(speed) * 30.0 / np.pi
     assert f"{rpm:.3g} rpm" in stop.html
