@@ -11,6 +11,8 @@ from rheo.errors import Caution
 from rheo.geometry.curve_integrals import moment_ratio
 from rheo.hydraulics.conditions import FloatArray
 from rheo.hydraulics.profile import log_slope
+from rheo.hydraulics.record import Range
+from rheo.hydraulics.rivals import in_range
 from rheo.hydraulics.roots import IndexArray, solve_rising
 from rheo.models import Model
 
@@ -20,6 +22,8 @@ if TYPE_CHECKING:
 # Where the logarithmic profile has its mean: ln(1 - r/R) = -3/2.
 _MEAN_DISTANCE = np.exp(-1.5)
 _POINTS = 121
+# In which the laminar length to develop was worked out.
+_DEVELOPING = Range(flow_index=(0.4, 1.5), reynolds=(0.0, 1000.0))
 
 
 @dataclass(frozen=True, eq=False)
@@ -186,7 +190,7 @@ def developing_length(flow: PipeFlow) -> DevelopingLength:
         share == 0, laminar, np.where(share == 1, turbulent, np.maximum(laminar, turbulent))
     )
     cautions: tuple[Caution, ...] = ()
-    outside = (share < 1) & ((index < 0.4) | (index > 1.5) | (reynolds > 1000.0))
+    outside = (np.ravel(share) < 1) & ~in_range(flow, _DEVELOPING)
     if np.any(outside):
         cautions = (
             Caution(

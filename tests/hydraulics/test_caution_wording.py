@@ -133,7 +133,8 @@ def test_a_wide_annulus():
     ("index", "reynolds", "told"),
     [
         (0.4, 999.0, False),
-        (1.49, 100.0, False),
+        (1.5, 100.0, False),
+        (1.0, 1000.0, False),
         (0.39, 100.0, True),
         (1.51, 100.0, True),
         (1.0, 1001.0, True),
