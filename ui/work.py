@@ -83,7 +83,8 @@ def outcome(
     """
     place = f"rheo.work.{name}"
     job = _begun(place, subject, calculate)
-    if job.done.wait(SOON):
+    # Work that was ended may still have to come to the next place where it can stop.
+    if job.cancelled or job.done.wait(SOON):
         if job.cancelled:
             st.write(f"You ended it: {words[:1].lower()}{words[1:]}.")
             st.button("Start again", key=f"{place}.again", on_click=_forget, args=(place,))
@@ -135,7 +136,7 @@ def _cancel(place: str) -> None:
 def _watch(place: str, words: str) -> None:
     with guard.Guard():
         job = st.session_state.get(place)
-        if job is None or job.done.is_set():
+        if job is None or job.cancelled or job.done.is_set():
             st.rerun()
         left, right = st.columns([5, 1], vertical_alignment="center")
         left.progress(min(job.share, 1.0), text=f"{words}: {100 * job.share:.0f} % done")

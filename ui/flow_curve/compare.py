@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import sys
+
 import streamlit as st
 
 from rheo.case import CaseResult
@@ -11,7 +13,7 @@ from rheo.report import display
 from rheo.report.case_pictures import wall_rate_words
 from rheo.report.numbers import number
 from rheo.report.words import capital
-from ui import cautions, results, state, style, table, words
+from ui import cautions, results, state, style, table, words, work
 
 
 def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
@@ -39,6 +41,8 @@ def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
     )
     if looked_at == result.chosen.key:
         return result.chosen, result
+    if not _drawn(result, looked_at):
+        return result.fits[looked_at], result
     with st.spinner("Working out the line with it"):
         other = results.result_of(
             state.changed(state.case(), ("fit", "model"), looked_at), state.files()
@@ -48,6 +52,24 @@ def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
             cautions.complaint(state.sentence(other.problem))
         return result.fits[looked_at], result
     return result.fits[looked_at], other.value
+
+
+def _drawn(result: CaseResult, key: str) -> bool:
+    """Return whether the flow curves of a model are at hand; else tell how far it is.
+
+    A model that the readings hardly settle can take many seconds to refit.
+    """
+    case, files = state.case(), state.files()
+    count, seed = case.doubt.draws, case.doubt.seed
+    # The same object for the same draws: work is known by it.
+    subject = sys.intern(f"{results.fits_key(case, files)} {count} {seed} {key}")
+    found = work.outcome(
+        "looked_at",
+        "Drawing its flow curves",
+        subject,
+        lambda tell: result.fits.draws(count, seed, key, tell),
+    )
+    return found is not None
 
 
 def show(result: CaseResult, other: CaseResult) -> None:
