@@ -138,6 +138,6 @@ def _watch(place: str, words: str) -> None:
         job = st.session_state.get(place)
         if job is None or job.cancelled or job.done.is_set():
             st.rerun()
-        left, right = st.columns([5, 1], vertical_alignment="center")
-        left.progress(min(job.share, 1.0), text=f"{words}: {100 * job.share:.0f} % done")
-        right.button("Cancel", key=f"{place}.cancel", on_click=_cancel, args=(place,))
+        # One below the other: beside a bar in a narrow column the word would be cut.
+        st.progress(min(job.share, 1.0), text=f"{words}: {100 * job.share:.0f} % done")
+        st.button("Cancel", key=f"{place}.cancel", on_click=_cancel, args=(place,))
