@@ -142,7 +142,7 @@ def fitted_of(case: Case, files: Files) -> Outcome:
 
 
 def fits_of(case: Case, files: Files) -> Outcome:
-    """Return the models fitted to the readings of a case: Fits."""
+    """Return the models fitted to the readings of a case, whatever the product: Fits."""
     sets = readings_of(case, files)
     if sets.value is None:
         return sets
@@ -181,9 +181,7 @@ def fits_key(case: Case, files: Files) -> str:
     """Return what the fits to the readings of a case are kept by."""
     document = case.document()
     fit = {key: value for key, value in document.get("fit", {}).items() if key != "model"}
-    # All that `fit_models` depends on; density and particles are for screening only.
-    state = [document["product"].get(key) for key in ("temperature", "solids_fraction")]
-    return digest(document["readings"], _file_digests(files), fit, state)
+    return digest(document["readings"], _file_digests(files), fit)
 
 
 @st.cache_resource(max_entries=24, show_spinner=False)

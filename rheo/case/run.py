@@ -24,6 +24,7 @@ from rheo.fitting.any_state import (
     at_several_solids,
     at_several_temperatures,
     fit_readings,
+    given_at,
     refuse_several,
     used_states,
 )
@@ -70,8 +71,7 @@ class FittedCase:
 def fit_models(case: Case, readings: Sequence[Readings] | None = None) -> Fits:
     """Fit the models of a case and rank them.
 
-    What comes of it depends on the readings, on the case's `fit` but for its `model`, and on the
-    temperature of the product, at which readings of several temperatures are centred.
+    What comes of it depends on the readings and on the case's `fit` but for its `model`.
 
     Parameters
     ----------
@@ -83,7 +83,8 @@ def fit_models(case: Case, readings: Sequence[Readings] | None = None) -> Fits:
     Returns
     -------
     Fits
-        The ranked models.
+        The ranked models; of readings at several temperatures or solids fractions, with parameters
+        given at the middle one.
 
     Raises
     ------
@@ -111,7 +112,7 @@ def fit_case(
     readings : sequence of Readings, optional
         One a set of the case, where they have been read already; they are read when absent.
     fits : Fits, optional
-        The models fitted to just these readings, where that has been done already.
+        From `fit_models` for the same readings, where that has been done already.
 
     Returns
     -------
@@ -125,7 +126,12 @@ def fit_case(
     """
     sets = all_readings(case) if readings is None else tuple(readings)
     fitted = _to_fit(case, sets)
-    fits = _fits(case, fitted) if fits is None else fits
+    solids_basis(case, fitted)
+    fits = given_at(
+        _fits(case, fitted) if fits is None else fits,
+        _temperature(case, fitted),
+        product_solids(case, fitted),
+    )
     chosen = fits.best if case.fit.model == AUTO else fits[case.fit.model]
     return FittedCase(sets, fitted, fits, chosen, _product(case, fitted, fits, chosen))
 
@@ -216,7 +222,6 @@ def _fits(case: Case, readings: Readings) -> Fits:
         float(wanted.percent_of_full_scale or 0.0),
         readings,
     )
-    solids_basis(case, readings)
     several = at_several_temperatures(readings) or at_several_solids(readings)
     if wanted.entrance or wanted.slip:
         try:
@@ -224,14 +229,7 @@ def _fits(case: Case, readings: Readings) -> Fits:
         except InputError as error:
             raise CaseError(error.sentence, error.place) from None
     if several:
-        return fit_readings(
-            readings,
-            wanted.models,
-            weighting,
-            _temperature(case, readings),
-            product_solids(case, readings),
-            wanted.solids_form,
-        )
+        return fit_readings(readings, wanted.models, weighting, solids_form=wanted.solids_form)
     return fit(
         readings,
         models=wanted.models,

@@ -11,6 +11,7 @@ from rheo.errors import InputError
 from rheo.fitting.concentration import EXPONENTIAL, fit_concentrations
 from rheo.fitting.entry import fit
 from rheo.fitting.fits import Fits
+from rheo.fitting.scaled_fits import ScaledFits
 from rheo.fitting.temperature import fit_temperatures
 from rheo.fitting.weighting import Instrument, Weighting
 from rheo.readings import FlowCurve, Readings
@@ -82,21 +83,45 @@ def fit_readings(
     InputError
         If both temperature and solids fraction differ between the readings.
     """
+    fits = _fitted(data, models, weighting, solids_form)
+    return given_at(fits, temperature, solids)
+
+
+def _fitted(
+    data: FlowCurve | Readings,
+    models: str | Sequence[str] | None,
+    weighting: str | Instrument | Weighting,
+    solids_form: str,
+) -> Fits:
     if at_several_solids(data):
         _refuse_both(data)
-        return fit_concentrations(
-            data, None, models, weighting, solids_form, _inside(data, "solids_fraction", solids)
-        )
+        return fit_concentrations(data, None, models, weighting, solids_form)
     if at_several_temperatures(data):
-        return fit_temperatures(data, models, weighting, _inside(data, "temperature", temperature))
+        return fit_temperatures(data, models, weighting)
     return fit(data, models, weighting)
 
 
-def _inside(data: FlowCurve | Readings, key: str, wanted: float | None) -> float | None:
-    taken = used_states(data, key)
-    if wanted is None or taken is None:
-        return None
-    return float(np.clip(wanted, taken.min(), taken.max()))
+def given_at(fits: Fits, temperature: float | None = None, solids: float | None = None) -> Fits:
+    """Return fits with their parameters given at a state of the product.
+
+    Parameters
+    ----------
+    fits : Fits
+        Over one state, which stay as they are, or several.
+    temperature : float, optional
+        Where several were fitted, the temperature [K], moved into the range of the readings.
+    solids : float, optional
+        The same for solids fractions [-].
+
+    Returns
+    -------
+    Fits
+        The same flow curves.
+    """
+    if not isinstance(fits, ScaledFits) or fits.law is None:
+        return fits
+    wanted = temperature if fits.law.state == "temperature" else solids
+    return fits if wanted is None else fits.about(float(np.clip(wanted, *fits.range)))
 
 
 def _refuse_both(data: FlowCurve | Readings) -> None:

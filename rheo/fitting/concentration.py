@@ -111,10 +111,11 @@ def fit_concentrations(
             "fractions",
         )
     low, high = float(solids.min()), float(solids.max())
-    at = float(np.median(solids)) if reference is None else float(reference)
+    middle = float(np.median(solids))
+    at = middle if reference is None else float(reference)
     if not low <= at <= high:
         raise InputError(
             f"the reference fraction is {at:g}; it must lie between {low:g} and {high:g}",
             "reference",
         )
-    return fit_scaled(data, solids, _law(form, at), models, weighting)
+    return fit_scaled(data, solids, _law(form, middle), models, weighting).about(at)

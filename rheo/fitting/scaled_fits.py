@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -11,8 +11,8 @@ from numpy.typing import ArrayLike, NDArray
 from rheo.errors import Caution, InputError
 from rheo.fitting.entry import rank, records_of, task_of
 from rheo.fitting.final import global_minima
-from rheo.fitting.fits import Fits
-from rheo.fitting.problem import CurveProblem, Problem
+from rheo.fitting.fits import Fits, FlowCurveSource
+from rheo.fitting.problem import CurveProblem, Problem, bounds
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.result import Fit
 from rheo.fitting.scaling import ScaledProblem
@@ -42,10 +42,13 @@ class ScaledFits(Fits):
         How the parameters follow the state.
     states : array, shape (n,)
         State of each reading that was fitted.
+    origin : ScaledFits, optional
+        The same fits about the state at which they were made, where that is another.
     """
 
     law: ScalingLaw | None = None
     states: FloatArray | None = None
+    origin: ScaledFits | None = None
 
     @property
     def _law(self) -> ScalingLaw:
@@ -69,6 +72,45 @@ class ScaledFits(Fits):
 
     def _curve(self, fit: Fit, parameters: FloatArray) -> ScaledCurve:
         return ScaledCurve(fit.record, self._law, tuple(np.moveaxis(parameters, -1, 0)))
+
+    def about(self, reference: float) -> ScaledFits:
+        """Return the same fits with their parameters given at another state.
+
+        The flow curves, the ranking and the draws stay: exp(slope * x) about one state is that
+        about another times a constant, by which the parameters move.
+
+        Parameters
+        ----------
+        reference : float
+            The state at which parameters are to be given; inside the readings.
+
+        Returns
+        -------
+        ScaledFits
+        """
+        origin = self if self.origin is None else self.origin
+        if reference == self._law.reference:
+            return self
+        if reference == origin._law.reference:
+            return origin
+        law = replace(origin._law, reference=float(reference))
+        ranking = tuple(_moved(fit, law) for fit in origin.ranking)
+        return replace(origin, ranking=ranking, law=law, origin=origin)
+
+    def draws(
+        self,
+        count: int,
+        seed: int = 1,
+        key: str | None = None,
+        progress: Callable[[float], None] | None = None,
+    ) -> tuple[FlowCurveSource, ...]:
+        """Return flow curves with arrays of drawn parameters: see `Fits.draws`.
+
+        Being functions of the state, they are the same wherever the parameters are given.
+        """
+        if self.origin is not None:
+            return self.origin.draws(count, seed, key, progress)
+        return super().draws(count, seed, key, progress)
 
     def cautions_at(self, state: float, place: str = "") -> tuple[Caution, ...]:
         """Return a Caution for a state outside those of the readings."""
@@ -101,6 +143,16 @@ class ScaledFits(Fits):
             )
             for group in groups
         }
+
+
+def _moved(fit: Fit, law: ScalingLaw) -> Fit:
+    """Return a fit with its parameters at the reference of a law."""
+    problem = fit.problem
+    assert isinstance(problem, ScaledProblem)
+    lower, upper = bounds(problem)
+    values = problem.curve(fit.minimum).about(law).values
+    minimum = np.clip(np.array(values), lower, upper)
+    return replace(fit, problem=replace(problem, law=law), minimum=minimum)
 
 
 def _shown(law: ScalingLaw, value: float) -> str:

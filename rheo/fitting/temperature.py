@@ -91,11 +91,13 @@ def fit_temperatures(
     if temperature.size and not (np.isfinite(temperature).all() and (temperature > 0).all()):
         raise InputError("a temperature is missing or not above 0 K", "temperature")
     low, high = float(temperature.min()), float(temperature.max())
-    at = float(np.median(temperature)) if reference is None else float(reference)
+    middle = float(np.median(temperature))
+    at = middle if reference is None else float(reference)
     if not low <= at <= high:
         raise InputError(
             f"the reference temperature is {at - 273.15:.1f} °C; it must lie between "
             f"{low - 273.15:.1f} and {high - 273.15:.1f} °C, inside the readings",
             "reference",
         )
-    return fit_scaled(data, temperature, arrhenius(at), models, weighting)
+    # Fitted about the middle: only the parameters that are shown follow the reference.
+    return fit_scaled(data, temperature, arrhenius(middle), models, weighting).about(at)

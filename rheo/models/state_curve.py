@@ -46,7 +46,8 @@ class ScalingLaw:
     reference : float
         The state at which the parameters have their values; inside the data.
     exponent : callable
-        ``exponent(state, reference) -> x``, 0 at the reference.
+        ``exponent(state, reference) -> x``, 0 at the reference; about another reference it is the
+        same but for a constant.
     slope, yield_slope : Parameter
         The slope of viscosity-like parameters, and that of those at yield.
     equation, source : str
@@ -114,6 +115,18 @@ class ScaledCurve:
             factor = 1.0 if index is None else np.exp(self.values[count + index] * x)
             found[parameter.key] = np.clip(value * factor, parameter.lower, parameter.upper)
         return Model(self.record, found)
+
+    def about(self, law: ScalingLaw) -> ScaledCurve:
+        """Return the same curve by the same law about another reference."""
+        x = self.law.x(law.reference)
+        count = len(self.record.parameters)
+        moved = [
+            value if index is None else value * np.exp(self.values[count + index] * x)
+            for value, index in zip(
+                self.values[:count], self.law.slope_of(self.record), strict=True
+            )
+        ]
+        return ScaledCurve(self.record, law, (*moved, *self.values[count:]))
 
     def map(self, change: Callable[[FloatArray], FloatArray]) -> ScaledCurve:
         """Return the curve with `change` applied to each of its arrays: to reshape or index."""

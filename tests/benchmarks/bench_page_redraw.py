@@ -276,7 +276,9 @@ def one_turn(visitor: Visitor, turn: int) -> Iterator[tuple[str, Took]]:
     yield "keep it, system curve shown", visitor.presses("Keep these values")
 
     yield "go to Sizes", visitor.goes_to("Sizes")
-    yield "limit of the sizes", visitor.types("Velocity ≤", f"{2.03 + 0.07 * turn:.2f} m/s")
+    # Far apart, so that other sizes fail each time.
+    limit = (0.4, 3.0)[turn % 2] + 0.07 * turn
+    yield "limit of the sizes", visitor.types("Velocity ≤", f"{limit:.2f} m/s")
     visitor.chooses(visitor.main, "Another size", 1)
     yield "take another size", visitor.presses("Take this one")
 
