@@ -25,7 +25,6 @@ from rheo.line import (
     doubt_budget,
     holding_tube,
     measure_next,
-    size_line,
     system_curve,
 )
 from rheo.line.cleaning import Cleaning
@@ -37,7 +36,8 @@ from rheo.line.measure_next import NextReadings
 from rheo.line.operating import OperatingPoint
 from rheo.line.product import FlowCurveSource
 from rheo.line.result import plain
-from rheo.line.sizing import Sizing
+from rheo.line.size_survey import SizeSurvey, in_order
+from rheo.line.sizing import Sizing, judge_sizes
 from rheo.line.system import SystemCurve
 from rheo.models import Model
 from rheo.models.state_curve import ScaledCurve
@@ -46,6 +46,9 @@ from rheo.readings import Readings
 _FLOW_SPAN = np.geomspace(0.2, 2.0, 41)
 # Enough flow curves for a band to be drawn; the interval at the duty takes all of them.
 _BAND_DRAWS = 200
+# Up to so many draws, what each size gives is kept for the next limits.
+_DRAWS_KEPT = 5_000
+_SURVEY = "_survey_kept"
 
 
 @dataclass(frozen=True, eq=False)
@@ -195,20 +198,23 @@ class CaseResult:
                     "pump",
                 )
             costs = case.cost.build(float(case.duty.hours_a_year), self.efficiency)
-        found = size_line(
-            self.line.line,
-            self.product,
-            self.flow,
-            sizes_to_compare(case),
-            limits=self.limits,
-            costs=costs,
-            method=case.line.friction_method,
-            progress=progress,
-            **spread,
+        found = judge_sizes(
+            self._survey(), limits=self.limits, costs=costs, progress=progress, **spread
         )
         # As a cached property keeps its value: not worked out again when it is asked for.
         self.__dict__["sizing"] = found
         return found
+
+    def _survey(self) -> SizeSurvey:
+        """Return what the case's sizes give: that of the result judged before, if they are its."""
+        sizes = in_order(sizes_to_compare(self.case))
+        known: SizeSurvey | None = self.__dict__.get(_SURVEY)
+        if known is None or known.sizes != sizes:
+            method = self.case.line.friction_method
+            known = SizeSurvey(self.line.line, self.product, self.flow, sizes, method)
+            if self.product.draw_count <= _DRAWS_KEPT:
+                self.__dict__[_SURVEY] = known
+        return known
 
     def judged_by(self, case: Case, cautions: tuple[Caution, ...]) -> CaseResult:
         """Return this result for a case that differs in what `JUDGES` names only.

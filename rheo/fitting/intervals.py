@@ -28,7 +28,8 @@ class FittedParameter:
     stderr : float
         Standard error, SI; NaN at a bound and where the data cannot identify the parameter.
     low, high : float
-        95 % interval, SI: value ± t·stderr, cut off at the bounds of the parameter.
+        95 % interval, SI: value ± t·stderr, cut off at the bounds of the parameter, or at a value
+        that lies beyond: one at its bound may, given at another temperature or solids fraction.
     bound : str
         ``lower`` or ``upper`` if the value is at that bound, else empty.
     note : str
@@ -84,13 +85,15 @@ def fitted_parameters(problem: Problem, final: Final) -> dict[str, FittedParamet
         bound = note = ""
         low, high = one.lower, one.upper
         if not final.free[index]:
-            bound = "lower" if value <= one.lower else "upper"
+            # Given at another temperature or solids fraction it lies beside its bound.
+            bound = "lower" if abs(value - one.lower) <= abs(value - one.upper) else "upper"
             limit = _one_sided_limit(problem, final, index, freedom)
             low, high = (value, limit) if bound == "lower" else (limit, value)
             note = f"at its {bound} bound; the other end is a one-sided 95 % limit"
         elif np.isfinite(error):
             reach = t_quantile(freedom, 0.5 + 0.5 * LEVEL) * error
-            low, high = max(value - reach, one.lower), min(value + reach, one.upper)
+            low = max(value - reach, min(one.lower, value))
+            high = min(value + reach, max(one.upper, value))
             if value - reach < one.lower or value + reach > one.upper:
                 note = "cut off at a bound, so one-sided"
         else:

@@ -4,13 +4,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
+from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rheo.errors import Caution, InputError
 from rheo.fitting.entry import rank, records_of, task_of
-from rheo.fitting.final import global_minima
+from rheo.fitting.final import Final, global_minima
 from rheo.fitting.fits import Fits, FlowCurveSource
 from rheo.fitting.problem import CurveProblem, Problem, bounds
 from rheo.fitting.reading_problem import ReadingProblem
@@ -145,14 +146,65 @@ class ScaledFits(Fits):
         }
 
 
+@dataclass(frozen=True, eq=False)
+class _MovedFit(Fit):
+    """A fit with its parameters given at another state than that about which it was made."""
+
+    origin: Fit | None = None
+
+    @property
+    def _origin(self) -> Fit:
+        assert self.origin is not None
+        return self.origin
+
+    @cached_property
+    def final(self) -> Final:
+        """The origin's, moved; a parameter at a bound there lies as far beyond it as it moves."""
+        before, own = self._origin.problem, self.problem
+        assert isinstance(before, ScaledProblem)
+        assert isinstance(own, ScaledProblem)
+        found = self._origin.final
+        x = float(before.law.x(own.law.reference))
+        parameters = _about(own.law, before, found.parameters)
+        count = len(own.record.parameters)
+        change = np.eye(parameters.size)
+        for i, index in enumerate(own.law.slope_of(own.record)):
+            if index is not None:
+                change[i, i] = np.exp(found.parameters[count + index] * x)
+                change[i, count + index] = parameters[i] * x
+        change = change[np.ix_(found.free, found.free)]
+        return replace(
+            found, parameters=parameters, covariance=change @ found.covariance @ change.T
+        )
+
+    def model_of(self, parameters: FloatArray) -> Model:
+        """Return the flow curve at parameters of shape (..., p), none beyond its bounds."""
+        low, high = bounds(self.problem)
+        count = parameters.shape[-1]
+        return super().model_of(np.clip(parameters, low[:count], high[:count]))
+
+    def bootstrap(self, count: int, seed: int = 1, kind: str = "residual") -> Model | ScaledCurve:
+        """Return the origin's, which as a function of the state is the same."""
+        return self._origin.bootstrap(count, seed, kind)
+
+
 def _moved(fit: Fit, law: ScalingLaw) -> Fit:
-    """Return a fit with its parameters at the reference of a law."""
-    problem = fit.problem
-    assert isinstance(problem, ScaledProblem)
-    lower, upper = bounds(problem)
-    values = problem.curve(fit.minimum).about(law).values
-    minimum = np.clip(np.array(values), lower, upper)
-    return replace(fit, problem=replace(problem, law=law), minimum=minimum)
+    """Return a fit with its parameters given at the reference of a law."""
+    before = fit.problem
+    assert isinstance(before, ScaledProblem)
+    return _MovedFit(
+        replace(before, law=law),
+        _about(law, before, fit.minimum),
+        fit.minimum_sum_of_squares,
+        fit.aicc,
+        fit.weight,
+        fit.points,
+        fit,
+    )
+
+
+def _about(law: ScalingLaw, problem: ScaledProblem, parameters: FloatArray) -> FloatArray:
+    return np.array(problem.curve(parameters).about(law).values)
 
 
 def _shown(law: ScalingLaw, value: float) -> str:

@@ -10,6 +10,7 @@ from rheo.models import Model
 from rheo.models.monotone import solve_log
 
 FloatArray = NDArray[np.float64]
+_FLATTEST = 0.05
 
 
 def solve_channel(model: Model, nominal_rate: FloatArray, k: int) -> FloatArray:
@@ -40,7 +41,10 @@ def solve_channel(model: Model, nominal_rate: FloatArray, k: int) -> FloatArray:
         share = rate / np.where(value > 0, value, np.inf)
         return value, slope * ((k + 2) * share - (k + 1))
 
-    start = solve_log(lambda local, rate: relation(True, local, rate), model, nominal_rate)
     if model.record.moment_ratio is not None:
-        return start
+        return solve_log(lambda local, rate: relation(True, local, rate), model, nominal_rate)
+    # At first as if the slope of ln(stress) were the same at all rates below.
+    slope = np.maximum(model.record.log_slope(np.asarray(nominal_rate), *model), _FLATTEST)
+    begin = nominal_rate * ((k + 1) * slope + 1.0) / ((k + 2) * slope)
+    start = solve_log(lambda local, rate: relation(True, local, rate), model, nominal_rate, begin)
     return solve_log(lambda local, rate: relation(False, local, rate), model, nominal_rate, start)

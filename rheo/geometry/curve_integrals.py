@@ -23,6 +23,9 @@ Integrand = Callable[[Model, FloatArray, int], FloatArray]
 _DEPTH = 42.0
 _FIRST = (0.0, 1.6, 3.6, 6.6, 11.0, 17.5, 27.0, _DEPTH)
 _TOLERANCE = 1e-11
+# How deep a rising integrand is followed at first, and what share of an integral is not seen.
+_SHALLOW = 17.5
+_UNSEEN = 1e-17
 # Nodes at a time: what the second-level cache of a processor core holds, twice as fast as more.
 _BLOCK = 1 << 15
 
@@ -70,7 +73,11 @@ def _panels(level: int) -> tuple[FloatArray, FloatArray, FloatArray, int]:
 
 
 def integrate_below(
-    model: Model, rate: FloatArray, integrand: Integrand, rough: bool = False
+    model: Model,
+    rate: FloatArray,
+    integrand: Integrand,
+    rough: bool = False,
+    rising: bool = False,
 ) -> FloatArray:
     """Integrate over ln(rate) from rest up to a shear rate.
 
@@ -86,6 +93,9 @@ def integrate_below(
         that axis.
     rough : bool
         Whether the first level will do, as on the way to a root.
+    rising : bool
+        Whether the integrand rises everywhere, and at least as the rate does: then the deeper part
+        is left out where it is too small to be seen.
 
     Returns
     -------
@@ -95,18 +105,44 @@ def integrate_below(
     shape = np.broadcast_shapes(np.shape(rate), model.shape)
     flat_rate = np.broadcast_to(rate, shape).reshape(-1)
     flat = model.map(lambda value: np.broadcast_to(value, shape).reshape(-1))
-    coarse = _at_level(flat, flat_rate, integrand, 0)
+    at_level = _cut_short if rising else _at_level
+    coarse = at_level(flat, flat_rate, integrand, 0)
     if rough:
         return coarse.reshape(shape)
-    fine = _at_level(flat, flat_rate, integrand, 1)
+    fine = at_level(flat, flat_rate, integrand, 1)
     doubtful = np.abs(fine - coarse) > _TOLERANCE * np.abs(fine)
     if np.any(doubtful):
         fine[doubtful] = _at_level(flat.at(doubtful), flat_rate[doubtful], integrand, 2)
     return fine.reshape(shape)
 
 
-def _at_level(model: Model, rate: FloatArray, integrand: Integrand, level: int) -> FloatArray:
+def _cut_short(model: Model, rate: FloatArray, integrand: Integrand, level: int) -> FloatArray:
+    """Return `_at_level` of a rising integrand, the deeper part only where it counts.
+
+    Below a depth the integral of what rises at least as the rate is less than its value there.
+    """
+    nodes, _, _, _ = _panels(level)
+    cut = int(np.searchsorted(nodes, -_SHALLOW))
+    found = _at_level(model, rate, integrand, level, slice(cut, None))
+    with np.errstate(all="ignore"):
+        left = integrand(model, rate * np.exp(-_SHALLOW), level)
+    counts = ~(left <= _UNSEEN * found)
+    if np.any(counts):
+        below = _at_level(model.at(counts), rate[counts], integrand, level, slice(cut))
+        found[counts] += below
+    return found
+
+
+def _at_level(
+    model: Model,
+    rate: FloatArray,
+    integrand: Integrand,
+    level: int,
+    some: slice = slice(None),
+) -> FloatArray:
+    """Return the integral by the rule of a level, or the part of it by some of its nodes."""
     nodes, weights, _, _ = _panels(level)
+    nodes, weights = nodes[some], weights[some]
     scale = np.exp(nodes)
     result = np.empty(rate.shape)
     step = max(1, _BLOCK // nodes.size)
@@ -159,7 +195,8 @@ def moment_ratio_by_quadrature(
         def remainder(local: Model, node_rate: FloatArray, level: int) -> FloatArray:
             return local.record.stress(node_rate, *local) ** (k + 1) * node_rate
 
-        below = integrate_below(model, rate, remainder, rough) / (top ** (k + 1) * rate)
+        below = integrate_below(model, rate, remainder, rough, rising=True)
+        below = below / (top ** (k + 1) * rate)
         return (1.0 - below) / (k + 1)
 
     def integrand(local: Model, node_rate: FloatArray, level: int) -> FloatArray:

@@ -35,10 +35,11 @@ def laminar_factor(model: Model, wall_rate: FloatArray) -> FloatArray:
     """Return α [-] of laminar flow at a wall shear rate [1/s] above 0; both broadcast.
 
     In closed form for the Herschel-Bulkley family, whose profile outside the plug of radius xR is
-    u = u_p(1 - s^p), s = (r/R - x)/(1 - x), p = 1 + 1/n; by quadrature for the others.
+    u = u_p(1 - s^p), s = (r/R - x)/(1 - x), p = 1 + 1/n; by quadrature for the others, to 1e-4
+    (most to 1e-9), nearer than any loss coefficient is known.
     """
     if model.key not in YIELD_POWER_LAWS:
-        return tube_flow.kinetic_energy_factor(model, wall_rate)
+        return tube_flow.kinetic_energy_factor(model, wall_rate, rough=True)
     yield_stress, consistency, index = as_yield_power_law(model)
     flowing = consistency * wall_rate**index
     plug, sheared = yield_stress / (yield_stress + flowing), flowing / (yield_stress + flowing)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import cached_property, reduce
 
@@ -79,6 +80,11 @@ class SizeValues:
     walk: Walk
     product: Product
     count: int
+
+    def of(self, name: str) -> FloatArray:
+        """Return a quantity by its name, such as ``pressure``; shape (count, columns)."""
+        found: FloatArray = getattr(self, name)
+        return found
 
     def _table(self, values: ArrayLike) -> FloatArray:
         array = np.asarray(values)
@@ -217,45 +223,63 @@ def limits_missed(
     if all(pipe.fixed_size for pipe in line.pipes()):
         return ()
     values = SizeValues(walk(line, product, flow, method=method), product, 1)
-    return tuple(one.sentences[0] for one in checks(values, limits) if not one.passes[0, 0])
+    found = checks(values.of, product, limits)
+    return tuple(one.sentences[0] for one in found if not one.passes[0, 0])
 
 
-def checks(values: SizeValues, limits: Limits) -> tuple[Check, ...]:
-    """Return every limit that is set, against every size."""
+def quantities(limits: Limits) -> tuple[str, ...]:
+    """Return the names of what `checks` asks for."""
+    found = [name for key, name, *_ in _NUMERIC if getattr(limits, key) is not None]
+    if limits.keep_to_measured_rates:
+        found += ["lowest_wall_rate", "wall_rate"]
+    if limits.regime is not None:
+        found.append("regime")
+    return tuple(dict.fromkeys(found))
+
+
+def checks(of: Callable[[str], FloatArray], product: Product, limits: Limits) -> tuple[Check, ...]:
+    """Return every limit that is set, against every size.
+
+    Parameters
+    ----------
+    of : callable
+        ``of(name)``: a quantity of `SizeValues`, shape (sizes, columns).
+    product : Product
+        What is pumped.
+    limits : Limits
+        What is to be kept.
+    """
     found = []
-    if limits.min_npsh is not None and values.product.vapour_pressure is None:
-        raise InputError(
-            "a limit on NPSH needs the product's vapour_pressure [Pa]", values.product.name
-        )
+    if limits.min_npsh is not None and product.vapour_pressure is None:
+        raise InputError("a limit on NPSH needs the product's vapour_pressure [Pa]", product.name)
     for key, name, upper, what, unit, factor in _NUMERIC:
         limit = getattr(limits, key)
         if limit is not None:
-            value = getattr(values, name)
-            found.append(make_check(key, value, limit, upper, what, unit, factor))
+            found.append(make_check(key, of(name), limit, upper, what, unit, factor))
     if limits.keep_to_measured_rates:
-        found.append(_measured(values))
+        found.append(_measured(of("lowest_wall_rate"), of("wall_rate"), product))
     if limits.regime is not None:
-        passes = values.regime == REGIMES.tolist().index(limits.regime)
+        regime = of("regime")
+        passes = regime == REGIMES.tolist().index(limits.regime)
         sentences = tuple(
-            f"flow is {REGIMES[index]} ({limits.regime} wanted)" for index in values.regime[:, 0]
+            f"flow is {REGIMES[int(index)]} ({limits.regime} wanted)" for index in regime[:, 0]
         )
-        found.append(Check("regime", values.regime, passes, sentences))
+        found.append(Check("regime", regime, passes, sentences))
     return tuple(found)
 
 
-def _measured(values: SizeValues) -> Check:
-    if values.product.measured_rates is None:
+def _measured(lowest: FloatArray, highest: FloatArray, product: Product) -> Check:
+    if product.measured_rates is None:
         raise InputError(
-            "keeping to the measured range needs the product's measured_rates [1/s]",
-            values.product.name,
+            "keeping to the measured range needs the product's measured_rates [1/s]", product.name
         )
-    low, high = values.product.measured_rates
-    passes = (values.lowest_wall_rate >= low) & (values.wall_rate <= high)
+    low, high = product.measured_rates
+    passes = (lowest >= low) & (highest <= high)
     sentences = tuple(
         f"wall shear rate {_span(float(least), float(most))} 1/s (measured {low:.3g} to {high:.3g})"
-        for least, most in zip(values.lowest_wall_rate[:, 0], values.wall_rate[:, 0], strict=True)
+        for least, most in zip(lowest[:, 0], highest[:, 0], strict=True)
     )
-    return Check("keep_to_measured_rates", values.wall_rate, passes, sentences)
+    return Check("keep_to_measured_rates", highest, passes, sentences)
 
 
 def _span(low: float, high: float) -> str:

@@ -13,24 +13,21 @@ from rheo.line.catalogue import PipeSize
 from rheo.line.checks import require_positive, require_share
 from rheo.line.cleaning import cleaning
 from rheo.line.cost import Costs
-from rheo.line.draw_blocks import Progress, counted, in_blocks
+from rheo.line.draw_blocks import Progress
 from rheo.line.limits import Check, Limits
 from rheo.line.parts import FloatArray, Line
-from rheo.line.product import FlowCurveSource, Product, interval
+from rheo.line.product import Product, interval
 from rheo.line.safety import GENERAL, PRESSURE, START_UP
+from rheo.line.size_survey import SizeSurvey, in_order
 from rheo.line.size_values import (
     REGIMES,
     SizeValues,
     checks,
-    size_values,
+    quantities,
     sized_length,
     with_diameters,
 )
 from rheo.line.size_words import Candidate, size_cautions, size_sentence
-
-# Draws worked out in one go: as many as memory bears, fewer where someone watches the progress.
-_BLOCK = 2000
-_SHOWN_BLOCK = 250
 
 
 @dataclass(frozen=True)
@@ -114,37 +111,66 @@ def size_line(
     InputError
         If there is no size, or a limit needs what the product does not give.
     """
+    survey = SizeSurvey(line, product, flow, in_order(sizes), method)
+    return judge_sizes(
+        survey,
+        limits=limits,
+        costs=costs,
+        confidence=confidence,
+        flow_spread=flow_spread,
+        progress=progress,
+    )
+
+
+def judge_sizes(
+    survey: SizeSurvey,
+    *,
+    limits: Limits | None = None,
+    costs: Costs | None = None,
+    confidence: float = 0.9,
+    flow_spread: float = 0.2,
+    progress: Progress | None = None,
+) -> Sizing:
+    """Compare the sizes of a survey by limits and costs; parameters as for `size_line`.
+
+    What the survey has worked out already is not worked out again.
+    """
+    line, product, flow, sizes = survey.line, survey.product, survey.flow, survey.sizes
     require_positive(flow, "flow [m3/s]", line.name)
     require_share(confidence, "confidence [-]", line.name)
     if not 0 <= flow_spread < 1:
         raise InputError(f"flow_spread is {flow_spread:g}; it must be 0 or more and below 1")
-    ordered = tuple(sorted(sizes, key=lambda size: (size.inside_diameter, size.name)))
-    if not ordered:
+    if not sizes:
         raise InputError("no sizes are given; choose a standard or give your own", line.name)
     keep = limits or Limits()
     length = sized_length(line)
-    central = size_values(line, product, flow, ordered, method=method)
-    central_checks = checks(central, keep)
-    passes = _all_pass(central_checks, len(ordered))
+    central = survey.central
+    central_checks = checks(central.of, product, keep)
+    passes = _all_pass(central_checks, len(sizes))
     shares = pressures = None
     choice_by_draw: tuple[tuple[str, float], ...] = ()
     if product.draws:
-        pressures, kept = _over_draws(line, product, flow, ordered, keep, method, progress)
+        drawn = survey.over_draws(("pressure", *quantities(keep)), progress)
+        pressures = drawn["pressure"]
+        kept = _all_pass(checks(drawn.__getitem__, product, keep), len(sizes))
+        kept = np.broadcast_to(kept, pressures.shape)
         shares = kept.mean(axis=-1)
-        merit = _merit(costs, ordered, length, pressures, flow)
-        choice_by_draw = _shares(_choose(merit, kept), ordered)
-    flows = flow * np.array([1.0 - flow_spread, 1.0, 1.0 + flow_spread])
-    spread = size_values(line, product, flows, ordered, method=method)
+        merit = _merit(costs, sizes, length, pressures, flow)
+        choice_by_draw = _shares(_choose(merit, kept), sizes)
+    flows = survey.flows(flow_spread)
+    spread = survey.spread(flow_spread)
     chosen = _choose(
-        _merit(costs, ordered, length, spread.pressure, flows),
-        np.broadcast_to(_all_pass(checks(spread, keep), len(ordered)), spread.pressure.shape),
+        _merit(costs, sizes, length, spread.pressure, flows),
+        np.broadcast_to(
+            _all_pass(checks(spread.of, product, keep), len(sizes)), spread.pressure.shape
+        ),
     )
     choice_by_flow = tuple(
-        (float(at), _name(ordered, int(index))) for at, index in zip(flows, chosen, strict=True)
+        (float(at), _name(sizes, int(index))) for at, index in zip(flows, chosen, strict=True)
     )
     candidates = _candidates(
         line,
-        ordered,
+        sizes,
         central,
         central_checks,
         passes[:, 0],
@@ -162,7 +188,7 @@ def size_line(
         size_sentence(candidates, recommended, costs),
         choice_by_draw,
         choice_by_flow,
-        size_cautions(recommended, choice_by_draw, choice_by_flow, costs, ordered),
+        size_cautions(recommended, choice_by_draw, choice_by_flow, costs, sizes),
     )
 
 
@@ -171,27 +197,6 @@ def _all_pass(found: tuple[Check, ...], count: int) -> NDArray[np.bool_]:
     for check in found:
         passes = passes & check.passes
     return passes
-
-
-def _over_draws(
-    line: Line,
-    product: Product,
-    flow: float,
-    sizes: tuple[PipeSize, ...],
-    limits: Limits,
-    method: str | None,
-    progress: Progress | None,
-) -> tuple[FloatArray, NDArray[np.bool_]]:
-    """Pressure [Pa] and whether all limits are kept, shape (sizes, draws)."""
-
-    def both(source: FlowCurveSource) -> FloatArray:
-        values = size_values(line, product, flow, sizes, source=source, method=method)
-        kept = _all_pass(checks(values, limits), len(sizes))
-        return np.stack(np.broadcast_arrays(values.pressure, kept.astype(float)))
-
-    blocks = in_blocks(product, _BLOCK if progress is None else _SHOWN_BLOCK)
-    pressure, kept = counted(blocks, both, progress)
-    return pressure, kept > 0.5
 
 
 def _merit(

@@ -237,3 +237,58 @@ def test_searches_in_a_gap_see_what_each_problem_sees_alone(key):
             slopes[row, :width] * sigma / largest, its[0] / largest, atol=1e-4
         )
         assert np.all(slopes[row, width:] == 0)
+
+
+def noisy_curve():
+    rate = np.tile(np.geomspace(0.5, 500.0, 14), 3)
+    noise = np.exp(0.02 * np.random.default_rng(5).standard_normal(rate.size))
+    stress = truth("herschel-bulkley", TEMPERATURES).stress(rate) * noise
+    return rheo.FlowCurve(rate, stress, temperature=TEMPERATURES)
+
+
+@pytest.mark.parametrize("key", ["herschel-bulkley", "casson", "carreau"])
+def test_another_reference_gives_the_same_curve_with_other_parameters(key):
+    """Parameters about 25 °C are the values at 25 °C, their errors those of a fit made there."""
+    curve = noisy_curve()
+    middle = rheo.fit_temperatures(curve, ("herschel-bulkley", "casson", "carreau", "power-law"))
+    moved = middle.about(25.0 + CELSIUS)
+    rates = np.geomspace(0.5, 500.0, 7)
+    for temperature in (20.0 + CELSIUS, 47.0 + CELSIUS):
+        np.testing.assert_allclose(
+            moved.at(temperature, key).stress(rates),
+            middle.at(temperature, key).stress(rates),
+            rtol=1e-9,
+        )
+    at_25 = middle.at(25.0 + CELSIUS, key)
+    for name, value in at_25.parameters.items():
+        assert float(moved[key].model.parameters[name]) == pytest.approx(float(value), rel=1e-8)
+    for one in moved[key].parameters.values():
+        assert one.low <= one.value <= one.high
+    assert moved.keys == middle.keys
+    assert moved[key].weighted_ss == pytest.approx(middle[key].weighted_ss, rel=1e-9)
+    if key == "carreau":
+        # Such readings drive its time constant to its bound; given at 25 °C it lies beyond.
+        assert "cut off" in moved[key].parameters["time_constant"].note
+        return
+    problem = moved[key].problem
+    slopes = weighted([problem], [1])(moved[key].final.parameters[None], np.zeros(1, dtype=int))
+    jacobian = slopes[1][0, moved[key].final.free]
+    # Scaled, as energies and indices are many orders of magnitude apart.
+    size = np.linalg.norm(jacobian, axis=-1)
+    inverse = np.linalg.inv((jacobian @ jacobian.T) / np.outer(size, size))
+    by_hand = moved[key].scatter ** 2 * inverse / np.outer(size, size)
+    np.testing.assert_allclose(moved[key].covariance, by_hand, rtol=1e-4)
+
+
+def test_draws_do_not_follow_the_reference():
+    middle = rheo.fit_temperatures(noisy_curve(), ("herschel-bulkley", "casson"))
+    moved = middle.about(25.0 + CELSIUS)
+    assert moved.draws(50, 3) is middle.draws(50, 3)
+    assert moved.about(middle.law.reference) is middle
+    assert moved.about(25.0 + CELSIUS) is moved
+    again = rheo.fit_temperatures(
+        noisy_curve(), ("herschel-bulkley", "casson"), reference=25.0 + CELSIUS
+    )
+    for one, other in zip(again.draws(50, 3), middle.draws(50, 3), strict=True):
+        warm = 33.0 + CELSIUS
+        np.testing.assert_array_equal(one(warm).stress(10.0), other(warm).stress(10.0))

@@ -42,8 +42,25 @@ def test_other_flow_curves_by_quadrature() -> None:
         flow_index=0.4,
     )
     found = float(laminar_factor(carreau, np.asarray(30.0)))
-    assert found == float(tube_flow.kinetic_energy_factor(carreau, np.asarray(30.0)))
+    exact = float(tube_flow.kinetic_energy_factor(carreau, np.asarray(30.0)))
+    assert found == pytest.approx(exact, rel=1e-8)
     assert 1.0 < found < 2.0
+
+
+@pytest.mark.parametrize("bend", [0.3, 1.0, 5.0])
+def test_quadrature_for_losses_keeps_what_it_promises(bend: float) -> None:
+    """Right to 1e-4 also where the curve bends sharply anywhere below the wall's shear rate."""
+    model = rheo.model(
+        "carreau-yasuda",
+        zero_shear_viscosity=5.0,
+        infinite_shear_viscosity=0.001,
+        time_constant=np.geomspace(1e-3, 1e3, 300),
+        flow_index=0.1,
+        yasuda_exponent=bend,
+    )
+    found = laminar_factor(model, np.asarray(30.0))
+    exact = tube_flow.kinetic_energy_factor(model, np.asarray(30.0))
+    np.testing.assert_allclose(found, exact, rtol=1e-4)
 
 
 @pytest.mark.parametrize(

@@ -21,9 +21,12 @@ from rheo.line import (
     Vessel,
     catalogue,
     cleaning,
+    size_survey,
     water,
 )
+from rheo.line.size_survey import SizeSurvey, in_order
 from rheo.line.size_values import with_diameters
+from rheo.line.sizing import judge_sizes
 
 SAUCE = Product(
     rheo.model("power-law", consistency=8.0, flow_index=0.4),
@@ -311,3 +314,33 @@ def test_cleaning_of_a_line_is_faster_in_its_narrow_parts() -> None:
     assert float(found.flow) == pytest.approx(1.5 * np.pi / 4 * 0.05**2, rel=1e-12)
     with pytest.raises(rheo.InputError, match=r"velocity \[m/s\] is 0; it must be above 0"):
         cleaning(line, velocity=0.0)
+
+
+def test_other_limits_do_not_work_the_sizes_out_again(monkeypatch: pytest.MonkeyPatch) -> None:
+    """And what comes of them is what a comparison from the start gives."""
+    product = replace(SAUCE, draws=_draws())
+    sizes = in_order(catalogue("ISO 2037"))
+    survey = SizeSurvey(LINE, product, FLOW, sizes)
+    solved = []
+    whole = size_survey.size_values
+
+    def counted(*arguments: object, **named: object) -> object:
+        solved.append(1)
+        return whole(*arguments, **named)  # type: ignore[arg-type]
+
+    monkeypatch.setattr(size_survey, "size_values", counted)
+    judge_sizes(survey, limits=Limits(max_velocity=1.0), costs=COSTS)
+    first = len(solved)
+    assert first
+    for limits in (Limits(max_velocity=0.5), Limits(pressure=3e5), Limits(max_velocity=2.0)):
+        found = judge_sizes(survey, limits=limits, costs=COSTS, confidence=0.8)
+        assert found == rheo.size_line(
+            LINE, product, FLOW, catalogue("ISO 2037"), limits=limits, costs=COSTS, confidence=0.8
+        )
+    assert len(solved) == first + 3 * first
+    before = len(solved)
+    judge_sizes(survey, limits=Limits(max_velocity=0.7), costs=COSTS)
+    assert len(solved) == before
+    # A quantity that no limit asked for before is worked out, over the draws alone.
+    judge_sizes(survey, limits=Limits(min_hold_time=1.0), costs=COSTS)
+    assert len(solved) == before + 1
