@@ -7,6 +7,7 @@ and 9.
 from __future__ import annotations
 
 from collections.abc import Callable
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -14,8 +15,10 @@ from numpy.typing import NDArray
 
 from rheo.errors import InputError
 from rheo.fitting.core import minimise
-from rheo.fitting.problem import coordinates
+from rheo.fitting.problem import Problem, coordinates
+from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.residuals import weighted
+from rheo.fitting.scaling import ScaledProblem
 
 if TYPE_CHECKING:
     from rheo.fitting.result import Fit
@@ -83,10 +86,11 @@ def bootstrap_parameters(
     scale = coordinates(fit.problem)
     found = np.empty((count, start.size))
     step = max(1, _BLOCK // fit.observed.size)
+    problem = _near(fit)
     for first in range(0, count, step):
         some = readings[first : first + step]
         found[first : first + step] = minimise(
-            weighted([fit.problem], [len(some)], some),
+            weighted([problem], [len(some)], some, rough=True),
             np.repeat(start[np.newaxis], len(some), axis=0),
             scale,
             steps=_STEPS,
@@ -96,6 +100,18 @@ def bootstrap_parameters(
         if progress is not None:
             progress(len(some))
     return found
+
+
+def _near(fit: Fit) -> Problem:
+    """Return the problem of a fit, with solutions that start from the fit's own shear rates."""
+    problem, rates = fit.problem, fit.rates
+    if not np.all(np.isfinite(rates) & (rates > 0)):
+        return problem
+    if isinstance(problem, ReadingProblem):
+        return replace(problem, rough_rates=rates)
+    if isinstance(problem, ScaledProblem) and isinstance(problem.base, ReadingProblem):
+        return replace(problem, base=replace(problem.base, rough_rates=rates))
+    return problem
 
 
 def drawn_readings(fit: Fit, count: int, seed: int, kind: str) -> FloatArray:

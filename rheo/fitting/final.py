@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -172,13 +173,18 @@ def finish(problem: Problem, parameters: FloatArray, total: float) -> Final:
         moved[free] = [value.value for value in values.values()]
         return moved[np.newaxis]
 
-    def residuals(values: lmfit.Parameters) -> FloatArray:
+    # lmfit asks for the slopes where it has just asked for the residuals.
+    @lru_cache(maxsize=1)
+    def both(moved: bytes) -> tuple[FloatArray, FloatArray]:
         with np.errstate(all="ignore"):
-            return np.nan_to_num(evaluate(at(values), row)[0][0], nan=1e150, posinf=1e150)
+            residual, slope = evaluate(np.frombuffer(moved)[np.newaxis], row)
+        return np.nan_to_num(residual[0], nan=1e150, posinf=1e150), np.nan_to_num(slope[0, free])
+
+    def residuals(values: lmfit.Parameters) -> FloatArray:
+        return both(at(values).tobytes())[0]
 
     def slopes(values: lmfit.Parameters) -> FloatArray:
-        with np.errstate(all="ignore"):
-            return np.nan_to_num(evaluate(at(values), row)[1][0, free])
+        return both(at(values).tobytes())[1]
 
     start = lmfit.Parameters()
     for index, value in enumerate(whole[free]):

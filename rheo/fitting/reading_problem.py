@@ -39,6 +39,8 @@ class ReadingProblem:
         Roughly the largest shear rate at each reading [1/s], from which solutions start.
     extra : tuple of Parameter
         Dimensions of the geometry that are fitted with the model, by their keys.
+    rough : bool
+        Whether `sensitivity` needs to be right to 1e-6 only, as on the way to a minimum.
     """
 
     record: ModelRecord
@@ -48,6 +50,7 @@ class ReadingProblem:
     weighting: Weighting
     rough_rates: FloatArray
     extra: tuple[Parameter, ...] = ()
+    rough: bool = False
 
     @cached_property
     def order(self) -> NDArray[np.intp]:
@@ -67,7 +70,9 @@ class ReadingProblem:
         if relation is None:
             return self._by_differences(parameters)
         model, dimensions = self._parts(parameters)
-        reading, slopes, others, _ = relation(model, self.setting, dimensions, self.rough_rates)
+        reading, slopes, others, _ = relation(
+            model, self.setting, dimensions, self.rough_rates, self.rough
+        )
         if np.isnan(reading).any():
             return self._by_differences(parameters)
         if not self.extra:

@@ -153,7 +153,7 @@ class ScaledProblem:
         if relation is not None:
             model = bare_model(self.record, columns)
             reading, slopes, *_ = relation(
-                model, base.setting, base.geometry.dimensions, base.rough_rates
+                model, base.setting, base.geometry.dimensions, base.rough_rates, base.rough
             )
             if not np.isnan(reading).any():
                 return reading, slopes

@@ -18,6 +18,7 @@ from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import RELATIONS
 from rheo.fitting.reading_task import ENTRANCE, SLIP
 from rheo.fitting.several import SeveralCurves
+from rheo.fitting.tube_readings import tube_wall
 from rheo.fitting.weighting import WEIGHTINGS
 from rheo.geometry import geometry_records, make_geometry
 
@@ -102,6 +103,26 @@ def test_exact_derivatives_against_differences(key, model_key):
     # Forward differences of a part in a million: worst where a fluid is about to slide as a block.
     largest = np.abs(differences).max(axis=-1, keepdims=True)
     np.testing.assert_allclose(slopes / largest, differences / largest, atol=1e-3)
+
+
+@pytest.mark.parametrize("rough", [False, True])
+@pytest.mark.parametrize("model_key", KEYS)
+def test_the_quick_tube_is_the_exact_one(model_key, rough):
+    """With slip, from rates half as high again; beside two rows one of which has no answer."""
+    truth = example(model_key)
+    geometry = make_geometry("tube", diameter=0.01, length=2.0, slip_coefficient=1e-5)
+    rate = np.geomspace(0.5, 3000.0, 12)
+    flow = geometry.setting_for_rate(truth, rate)
+    apparent = 32.0 * flow / (np.pi * 0.01**3)
+    model = truth.map(lambda value: np.broadcast_to(value, (2, 1)))
+    wall = tube_wall(model, apparent, np.asarray(8e-3), 1.5 * rate, rough)
+    _, stress = geometry.sheared(truth, flow)
+    np.testing.assert_allclose(wall.stress[1], stress, rtol=2e-6 if rough else 1e-8)
+    np.testing.assert_allclose(wall.rate[1], rate, rtol=2e-3)
+    lost = np.stack([apparent, np.full(12, np.nan)])
+    again = tube_wall(model, lost, np.asarray(8e-3), 1.5 * rate, rough)
+    np.testing.assert_allclose(again.stress[0], wall.stress[0], rtol=1e-12)
+    assert np.isnan(again.stress[1]).all()
 
 
 @pytest.mark.parametrize("ratio", [1.01, 1.0847, 1.1, 1.32, 2.0, 30.0, np.inf])
