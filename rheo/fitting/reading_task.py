@@ -22,7 +22,7 @@ from rheo.readings import Readings
 FloatArray = NDArray[np.float64]
 
 # Far below what AICc or an interval could show; lmfit's last pass goes on from there.
-_TOLERANCE = 3e-5
+TOLERANCE = 3e-5
 
 ENTRANCE = Parameter("entrance_diameters", "e", "-", "entrance loss in diameters", 0.0, 1e4)
 SLIP = Parameter("slip_coefficient", "β", "m/(Pa.s)", "slip velocity over wall stress", 0.0, 1.0)
@@ -79,7 +79,7 @@ def reading_task(
         starts = [
             np.concatenate([one, np.tile(corrections, (len(one), 1))], axis=-1) for one in found
         ]
-        minima = global_minima(problems, starts, tolerance=_TOLERANCE)
+        minima = global_minima(problems, starts, tolerance=TOLERANCE)
         return [(problem, *one) for problem, one in zip(problems, minima, strict=True)]
 
     return Task(solve, pose, reading, np.unique(setting).size, points, len(extra))

@@ -15,6 +15,7 @@ from rheo.fitting.final import Final, global_minima
 from rheo.fitting.fits import Fits, FlowCurveSource
 from rheo.fitting.problem import CurveProblem, Problem, bounds
 from rheo.fitting.reading_problem import ReadingProblem
+from rheo.fitting.reading_task import TOLERANCE
 from rheo.fitting.result import Fit
 from rheo.fitting.scaling import ScaledProblem
 from rheo.fitting.search import search
@@ -278,7 +279,8 @@ def _solve(
         _with_slopes(one, len(problem.extra), slope)
         for one, problem in zip(found, problems, strict=True)
     ]
-    minima = global_minima(problems, starts)
+    exact = isinstance(bases[0], CurveProblem)
+    minima = global_minima(problems, starts, *(() if exact else (TOLERANCE,)))
     return [(problem, *one) for problem, one in zip(problems, minima, strict=True)]
 
 
