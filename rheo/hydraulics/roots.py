@@ -25,6 +25,7 @@ def solve_rising(
     step: float = 0.5,
     low: float = LOWEST,
     high: float = HIGHEST,
+    tolerance: float | None = None,
 ) -> FloatArray:
     """Find where `gap` rises through 0, element by element.
 
@@ -42,12 +43,14 @@ def solve_rising(
         First width of the search for a bracket.
     low, high : float
         Ends of the search.
+    tolerance : float, optional
+        Of the root, or of its size where that is above 1; 4e-15 when absent.
 
     Returns
     -------
     array
-        The root to 1e-14; ``-inf`` where `gap` is above 0 on the whole range, ``inf`` where it is
-        below 0, NaN where it cannot be worked out on the way.
+        The root to `tolerance`; ``-inf`` where `gap` is above 0 on the whole range, ``inf`` where
+        it is below 0, NaN where it cannot be worked out on the way.
     """
     start = np.clip(np.asarray(start, dtype=float), low, high)
     # A search that runs to the end of its range may leave what floating point can hold.
@@ -57,7 +60,13 @@ def solve_rising(
         root = np.where(np.isnan(gap_below) | np.isnan(gap_above), np.nan, root)
         inside = np.flatnonzero(root == 0.0)
         root[inside] = _chandrupatla(
-            gap, inside, below[inside], gap_below[inside], above[inside], gap_above[inside]
+            gap,
+            inside,
+            below[inside],
+            gap_below[inside],
+            above[inside],
+            gap_above[inside],
+            _TOLERANCE if tolerance is None else tolerance,
         )
     return root
 
@@ -104,6 +113,7 @@ def _chandrupatla(
     f1: FloatArray,
     x2: FloatArray,
     f2: FloatArray,
+    tolerance: float,
 ) -> FloatArray:
     found = np.where(np.abs(f1) <= np.abs(f2), x1, x2)
     active = np.arange(index.size)
@@ -116,7 +126,7 @@ def _chandrupatla(
         least = np.minimum(np.abs(f1), np.abs(f2))
         found[active] = best
         width = np.abs(x2 - x1)
-        limit = _TOLERANCE * np.maximum(1.0, np.abs(best))
+        limit = tolerance * np.maximum(1.0, np.abs(best))
         going = (least > 0) & (width > 2.0 * limit)
         if not np.all(going):
             active = active[going]

@@ -21,6 +21,7 @@ from rheo.models import Model
 from rheo.models.state_curve import ScaledCurve
 
 _STEP = 0.05
+_CLOSE = 1e-12
 
 
 @dataclass(frozen=True, eq=False)
@@ -91,10 +92,10 @@ def operating_point(
         `found` is False, and `sentence` says why, where there is none.
     """
     used, cautions = _as_used(line, product, pump)
-    flow = float(_solve(line, product, used, None, 1, method)[0])
+    flow = float(_solve(line, product, used, None, 1, method, None)[0])
     flow_interval = pressure_interval = share = None
     if product.draws:
-        flows, pressures = _draws(line, product, used, method)
+        flows, pressures = _draws(line, product, used, method, flow)
         good = np.isfinite(pressures)
         share = float(np.mean(good))
         if np.any(good):
@@ -199,9 +200,12 @@ def _solve(
     source: FlowCurveSource | None,
     size: int,
     method: str | None,
+    near: float | None,
 ) -> FloatArray:
-    """Flow of each draw [m3/s]: 0 where the pump is too weak, infinite where it is too strong."""
+    """Flow of each draw [m3/s]: 0 where the pump is too weak, infinite where it is too strong.
 
+    The search begins at the flow `near`, to 1e-12, or else at the largest, for the last digit.
+    """
     density = np.asarray(product.density, dtype=float)
     flows = np.ones(size)
 
@@ -228,17 +232,21 @@ def _solve(
     low = high + np.log(1e-4)
     if isinstance(pump, CentrifugalPump) and pump.flow_range[0] > 0:
         low = max(low, np.log(pump.flow_range[0]))
-    root = solve_rising(gap, np.full(size, high), _STEP, float(low), float(high))
+    begin, close = (high, None) if near is None else (np.log(near), _CLOSE)
+    root = solve_rising(gap, np.full(size, begin), _STEP, float(low), float(high), close)
     return np.exp(root)
 
 
 def _draws(
-    line: Line, product: Product, pump: Pump, method: str | None
+    line: Line, product: Product, pump: Pump, method: str | None, central: float
 ) -> tuple[FloatArray, FloatArray]:
     """Flow [m3/s] and pressure [Pa] of every draw; NaN where it has no operating point."""
     flows, pressures = [], []
+    # A pump whose head rises somewhere may meet the line twice: the larger flow is wanted.
+    falls = not isinstance(pump, CentrifugalPump) or bool(np.all(np.diff(pump.heads) <= 0))
+    near = central if falls and np.isfinite(central) and central > 0 else None
     for source, size in zip(product.draws, product.draw_sizes, strict=True):
-        flow = _solve(line, product, pump, source, size, method)
+        flow = _solve(line, product, pump, source, size, method, near)
         good = np.isfinite(flow) & (flow > 0)
         if np.any(good):
             # The others are carried along at a flow that can be worked out, and then dropped.
