@@ -21,7 +21,7 @@ import streamlit as st
 
 from rheo.case import Case, case_text, run_case
 from rheo.case.embed import embedded
-from rheo.case.load_readings import all_readings
+from rheo.case.load_readings import whole_readings, without_excluded
 from rheo.case.result import CaseResult
 from rheo.case.run import FittedCase, fit_case, fit_models, judged_anew
 from rheo.case.schema import JUDGES
@@ -119,7 +119,11 @@ def saved_text(case: Case, files: Files) -> str:
 
 def readings_of(case: Case, files: Files) -> Outcome:
     """Return the readings of a case: a tuple of Readings, one a set."""
-    found: Outcome = _read(_readings_key(case, files), case, files)
+    whole: Outcome = _read(_readings_key(case, files), case, files)
+    if whole.value is None:
+        return whole
+    left_out = [one.get("exclude") for one in case.document()["readings"]]
+    found: Outcome = _used(digest(_readings_key(case, files), left_out), case, files, whole.value)
     return found
 
 
@@ -174,7 +178,8 @@ def result_key(case: Case, files: Files) -> str:
 def _readings_key(case: Case, files: Files) -> str:
     document = case.document()
     product = {key: document["product"].get(key) for key in ("density", "solids")}
-    return digest(document["readings"], product, _file_digests(files))
+    sets = [{**one, "exclude": None} for one in document["readings"]]
+    return digest(sets, product, _file_digests(files))
 
 
 def fits_key(case: Case, files: Files) -> str:
@@ -188,9 +193,15 @@ def fits_key(case: Case, files: Files) -> str:
 def _read(key: str, _case: Case, _files: Files) -> Outcome:  # noqa: ARG001
     def calculate() -> tuple[Readings, ...]:
         with in_folder(_case, _files) as placed:
-            return all_readings(placed)
+            return whole_readings(placed)
 
     found = outcome_of(calculate)
+    return Outcome(found.value, _in_the_users_words(found.problem, _files))
+
+
+@st.cache_resource(max_entries=24, show_spinner=False)
+def _used(key: str, _case: Case, _files: Files, _whole: tuple[Readings, ...]) -> Outcome:  # noqa: ARG001
+    found = outcome_of(lambda: without_excluded(_case, _whole))
     return Outcome(found.value, _in_the_users_words(found.problem, _files))
 
 

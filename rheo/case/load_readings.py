@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import replace
 from pathlib import Path
 from typing import Any, get_args
@@ -44,8 +45,12 @@ def readings_of(case: Case, number: int = 0) -> Readings:
     InputError
         If they cannot be read; the place names the file, its line and column.
     """
+    return _with_excluded(case, number, _whole(case, number))
+
+
+def _whole(case: Case, number: int) -> Readings:
     block = case.readings[number]
-    place = words_of(("readings", number) if len(case.readings) > 1 else ("readings",))
+    place = _place(case, number)
     source, name = _source(case, block, place)
     readings = read_readings(
         source,
@@ -58,7 +63,11 @@ def readings_of(case: Case, number: int = 0) -> Readings:
         full_scale_torque=_plain(block.full_scale_torque),
         name=name,
     )
-    return _with_excluded(replace(readings, **_said(case, block, readings)), block, place)
+    return replace(readings, **_said(case, block, readings))
+
+
+def _place(case: Case, number: int) -> str:
+    return words_of(("readings", number) if len(case.readings) > 1 else ("readings",))
 
 
 def branch_of(readings: Readings, sweep: str) -> Readings:
@@ -166,14 +175,15 @@ def _said(case: Case, block: ReadingsBlock, readings: Readings) -> dict[str, Any
     return said
 
 
-def _with_excluded(readings: Readings, block: ReadingsBlock, place: str) -> Readings:
+def _with_excluded(case: Case, number: int, readings: Readings) -> Readings:
+    block = case.readings[number]
     if not block.exclude:
         return readings
     if max(block.exclude) > len(readings):
         raise CaseError(
             f"there is no reading {max(block.exclude)} in {readings.source}; "
             f"they are numbered 1 to {len(readings)}",
-            f"{place} exclude",
+            f"{_place(case, number)} exclude",
         )
     return readings.with_excluded([number - 1 for number in block.exclude])
 
@@ -190,7 +200,29 @@ def all_readings(case: Case) -> tuple[Readings, ...]:
     InputError
         For the first that cannot be read.
     """
-    return tuple(readings_of(case, number) for number in range(len(case.readings)))
+    return without_excluded(case, whole_readings(case))
+
+
+def whole_readings(case: Case) -> tuple[Readings, ...]:
+    """Return every set of the readings of a case, with no point left out.
+
+    Raises
+    ------
+    InputError
+        For the first that cannot be read.
+    """
+    return tuple(_whole(case, number) for number in range(len(case.readings)))
+
+
+def without_excluded(case: Case, whole: Sequence[Readings]) -> tuple[Readings, ...]:
+    """Return `whole_readings` with the points left out that the case excludes.
+
+    Raises
+    ------
+    InputError
+        If a point is excluded that is not there.
+    """
+    return tuple(_with_excluded(case, number, one) for number, one in enumerate(whole))
 
 
 def screened(case: Case, readings: Readings) -> tuple[Caution, ...]:

@@ -153,6 +153,7 @@ class CaseResult:
             self.flow,
             self.case.doubt.build(None if tolerance is None else float(tolerance)),
             self.case.line.friction_method,
+            self.line.draws,
         )
 
     @cached_property

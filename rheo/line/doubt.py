@@ -116,6 +116,7 @@ def doubt_budget(
     flow: float,
     doubts: Doubts | None = None,
     method: str | None = None,
+    pressures: FloatArray | None = None,
 ) -> DoubtBudget:
     """Split the variance of a line's differential pressure by its causes.
 
@@ -137,6 +138,9 @@ def doubt_budget(
         How well the inputs are known.
     method : str, optional
         Turbulent friction method; the default for the model when absent.
+    pressures : array, shape (draws,), optional
+        Differential pressure of every draw [Pa], as `LineResult.draws` has it, where that is known
+        already.
 
     Returns
     -------
@@ -155,7 +159,7 @@ def doubt_budget(
         return walk(line_, product_, flow_, method=method_).differential_pressure
 
     centre = float(pressure())
-    readings, choice = _of_product(line, product, flow, method)
+    readings, choice = _of_product(line, product, flow, method, pressures)
     sides = np.array([1.0, -1.0])
     size = known.diameter_tolerance * _EVEN
     causes = [
@@ -237,7 +241,7 @@ def _with_pipes(line: Line, change: Callable[[Pipe], Pipe]) -> Line:
 
 
 def _of_product(
-    line: Line, product: Product, flow: float, method: str | None
+    line: Line, product: Product, flow: float, method: str | None, known: FloatArray | None
 ) -> tuple[float, float]:
     """Standard deviations [Pa] within the models' draws, and between the models' means."""
     if not product.draws:
@@ -247,7 +251,7 @@ def _of_product(
         at = np.full(1, flow)
         return walk(line, product, at, source=source, method=method).differential_pressure
 
-    values = product.over_draws(pressure)
+    values = product.over_draws(pressure) if known is None else known
     model = np.repeat(np.arange(len(product.draws)), product.draw_sizes)
     low, high = interval(values, _KEPT)
     kept = (values >= low) & (values <= high)
