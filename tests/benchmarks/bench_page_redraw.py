@@ -43,12 +43,16 @@ BARE = """
 import streamlit as st
 st.write(st.text_input("Title"))
 """
+# What stands inside a canvas is for screen readers: a table puts it there some time after it is
+# drawn.
 WATCH = """
 () => {
   window.lastChange = 0;
   const main = document.querySelector('[data-testid="stMain"]');
   const bar = document.querySelector('[data-testid="stSidebar"]');
-  const seen = () => { window.lastChange = performance.now(); };
+  const drawn = one => !(one.target.closest ?? (() => null)).call(one.target, 'canvas')
+    || one.type === 'attributes';
+  const seen = all => { if (all.some(drawn)) window.lastChange = performance.now(); };
   for (const one of [main, bar]) {
     if (one) new MutationObserver(seen).observe(
       one, {subtree: true, childList: true, characterData: true, attributes: true});
