@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+from functools import cache
+
 import numpy as np
 
 from rheo.models.common import CONSISTENCY, FLOW_INDEX, flow_index_grid
 from rheo.models.record import FloatArray, ModelRecord, Parameter, Separable
+
+_HALF = 0.5
 
 
 def stress(
@@ -43,6 +47,39 @@ def jacobian(
     )
 
 
+def moment_ratio(
+    k: int,
+    rate: FloatArray,
+    consistency: FloatArray,
+    rate_offset: FloatArray,
+    flow_index: FloatArray,
+) -> FloatArray:
+    """Integral of stress^k rate d(stress) over stress^(k+1) rate [-].
+
+    With x = (γ̇ + γ̇_0) over its value at the wall, r its smallest value and m = (k + 1)n it is
+    n/(1 - r) times ∫x^(m-1)(x - r)dx from r to 1. Near r = 1, where the closed form cancels, the
+    smooth integrand is summed by Gauss and Legendre's rule, which is exact to the last digit there.
+    """
+    power = (k + 1) * flow_index * np.ones_like(consistency)
+    whole = rate + rate_offset
+    sheared, rest = rate / whole, rate_offset / whole
+    with np.errstate(divide="ignore"):
+        log_rest = np.log(rest)
+    closed = -np.expm1((power + 1.0) * log_rest) / (power + 1.0) + (
+        rest * np.expm1(power * log_rest) / power
+    )
+    nodes, weights = _rule()
+    part = np.minimum(sheared, _HALF)[..., np.newaxis] * nodes
+    summed = ((1.0 - part) ** (power[..., np.newaxis] - 1.0)) @ (weights * (1.0 - nodes))
+    return flow_index * np.where(sheared > _HALF, closed / sheared, summed * sheared)
+
+
+@cache
+def _rule() -> tuple[FloatArray, FloatArray]:
+    nodes, weights = np.polynomial.legendre.leggauss(12)
+    return 0.5 * (1.0 + nodes), 0.5 * weights
+
+
 RECORD = ModelRecord(
     key="robertson-stiff",
     name="Robertson-Stiff",
@@ -56,6 +93,7 @@ RECORD = ModelRecord(
     rate=rate,
     log_slope=log_slope,
     jacobian=jacobian,
+    moment_ratio=moment_ratio,
     yield_stress=lambda consistency, rate_offset, flow_index: consistency * rate_offset**flow_index,
     source="R. E. Robertson & H. A. Stiff, SPE J. 16 (1976) 31",
     validity="Drilling fluids and cement slurries; its yield stress is K γ̇_0^n.",
