@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import streamlit as st
 
-from ui import case_menu, guard, many_draws, reload, state, style, units_switch, walk
+from ui import case_menu, guard, imported, many_draws, reload, state, style, units_switch, walk
 
 # Drawn here: a named icon would be fetched from the network.
 _ICON = (
@@ -44,6 +44,7 @@ def main() -> None:
     finally:
         # Also where a stop ends the run of the script early.
         reload.keep()
+        imported.settle()
 
 
 main()

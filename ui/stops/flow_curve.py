@@ -32,8 +32,11 @@ def _show_result(result: CaseResult) -> None:
         viscosity, log = _choose_axes()
     with right:
         looked_at, other = compare.choose(result)
+    # A place of its own: what is below would be drawn anew if it moved to another one.
+    beside = st.empty()
     if other is not result:
-        compare.show(result, other)
+        with beside.container():
+            compare.show(result, other)
     left, right = st.columns([3, 2], gap="medium")
     with left:
         picture = flow_curve_picture(
