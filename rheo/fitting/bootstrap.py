@@ -28,7 +28,8 @@ FloatArray = NDArray[np.float64]
 KINDS = ("residual", "parametric")
 # A replicate's parameters need not be known better than a small part of their scatter; along a
 # valley that the readings do not close, further steps move the parameters and not the curve.
-_TOLERANCE = 1e-7
+# Where each reading is an integral, the ends of an interval move by less than 1e-4 of its width.
+_TOLERANCE, _COARSE = 1e-7, 1e-5
 _STEPS = 12
 _DAMPING = 1e-6
 # Replicates times readings fitted together, so that memory stays small; where each reading is an
@@ -88,7 +89,8 @@ def bootstrap_parameters(
     scale = coordinates(fit.problem)
     found = np.empty((count, start.size))
     problem = _near(fit)
-    step = max(1, (_INTEGRALS if _integrates(problem) else _BLOCK) // fit.observed.size)
+    integrates = _integrates(problem)
+    step = max(1, (_INTEGRALS if integrates else _BLOCK) // fit.observed.size)
     for first in range(0, count, step):
         some = readings[first : first + step]
         found[first : first + step] = minimise(
@@ -97,7 +99,7 @@ def bootstrap_parameters(
             scale,
             steps=_STEPS,
             damping=_DAMPING,
-            tolerance=_TOLERANCE,
+            tolerance=_COARSE if integrates else _TOLERANCE,
         ).parameters
         if progress is not None:
             progress(len(some))
