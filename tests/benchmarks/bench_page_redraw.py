@@ -214,6 +214,17 @@ class Visitor:
         self.page.wait_for_timeout(500)
         return self.time(lambda: self.page.keyboard.press("Enter"))
 
+    def clicks_point(self, number: int) -> Took:
+        """Time a click on a point of the picture of the readings."""
+        points = self.main.get_by_test_id("stPlotlyChart").first.locator(".points path.point")
+        box = points.nth(number).bounding_box()
+        if box is None:
+            raise RuntimeError("the picture is not drawn")
+        x, y = box["x"] + box["width"] / 2, box["y"] + box["height"] / 2
+        self.page.mouse.move(x, y)
+        self.page.wait_for_timeout(300)
+        return self.time(lambda: self.page.mouse.click(x, y))
+
     def takes_inside(self, text: str) -> Took:
         """Time another inside diameter of the first pipe after the pump."""
         table = self.main.get_by_test_id("stDataFrame").nth(1)
@@ -255,7 +266,8 @@ def one_turn(visitor: Visitor, turn: int) -> Iterator[tuple[str, Took]]:
     if not turn:
         visitor.goes_to("Note")
     yield "go to Readings", visitor.goes_to("Readings")
-    yield "leave a reading out", visitor.leaves_out(2 * turn + 1)
+    yield "leave a reading out: picture", visitor.clicks_point(2 * turn + 4)
+    yield "leave a reading out: table", visitor.leaves_out(2 * turn + 1)
     for system in (1, 1):
         yield "other units", visitor.chooses(visitor.side, "Units", system)
 
