@@ -18,7 +18,7 @@ from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_task import TOLERANCE
 from rheo.fitting.result import Fit
 from rheo.fitting.scaling import ScaledProblem
-from rheo.fitting.search import search
+from rheo.fitting.search import QUICK, search
 from rheo.fitting.task import Task
 from rheo.fitting.weighting import Instrument, Weighting, resolve_weighting
 from rheo.models import Model, ModelRecord
@@ -29,6 +29,9 @@ FloatArray = NDArray[np.float64]
 
 # States nearer to each other than this share of their range are taken as one.
 _APART = 0.05
+# With one slope for all, readings moved to one state do not lie on one curve: minima there are
+# starts only. Many starts that are still apart find more than few that have met.
+_ON_CURVE, _IN_INSTRUMENT = (replace(QUICK, kept=kept, steps=1) for kept in (12, 8))
 
 
 @dataclass(frozen=True, eq=False)
@@ -274,12 +277,14 @@ def _solve(
     slope = _common_slope(rate, stress, x)
     sigma = bases[0].weighting.sigma(task.observed) / task.observed
     at_reference = stress * np.exp(-slope * x)
-    found = search(records, rate, at_reference, sigma * at_reference)
+    exact = isinstance(bases[0], CurveProblem)
+    found = search(
+        records, rate, at_reference, sigma * at_reference, _ON_CURVE if exact else _IN_INSTRUMENT
+    )
     starts = [
         _with_slopes(one, len(problem.extra), slope)
         for one, problem in zip(found, problems, strict=True)
     ]
-    exact = isinstance(bases[0], CurveProblem)
     minima = global_minima(problems, starts, *(() if exact else (TOLERANCE,)))
     return [(problem, *one) for problem, one in zip(problems, minima, strict=True)]
 
@@ -302,9 +307,8 @@ def _common_slope(rate: FloatArray, stress: FloatArray, x: FloatArray) -> float:
 
 def _with_slopes(starts: FloatArray, count: int, slope: float) -> FloatArray:
     """Return starts (c·k, p + count) with several slopes for each."""
-    few = starts[:6]
     tries = np.array([[1.0, 1.0], [1.0, 0.0], [1.5, 0.3], [0.5, 1.0]])[:, :count]
     tries = np.unique(tries, axis=0) * slope
     return np.concatenate(
-        [np.repeat(few, len(tries), axis=0), np.tile(tries, (len(few), 1))], axis=-1
+        [np.repeat(starts, len(tries), axis=0), np.tile(tries, (len(starts), 1))], axis=-1
     )
