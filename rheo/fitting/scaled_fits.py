@@ -31,7 +31,7 @@ FloatArray = NDArray[np.float64]
 _APART = 0.05
 # With one slope for all, readings moved to one state do not lie on one curve: minima there are
 # starts only. Many starts that are still apart find more than few that have met.
-_ON_CURVE, _IN_INSTRUMENT = (replace(QUICK, kept=kept, steps=1) for kept in (12, 8))
+_ON_CURVE, _IN_INSTRUMENT = (replace(QUICK, kept=kept, steps=1) for kept in (12, 6))
 
 
 @dataclass(frozen=True, eq=False)

@@ -7,6 +7,7 @@ import pytest
 
 import rheo
 from rheo.errors import InputError
+from rheo.fitting.final import global_minima
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.residuals import weighted
 from rheo.fitting.scaling import ScaledProblem
@@ -292,3 +293,20 @@ def test_draws_do_not_follow_the_reference():
     for one, other in zip(again.draws(50, 3), middle.draws(50, 3), strict=True):
         warm = 33.0 + CELSIUS
         np.testing.assert_array_equal(one(warm).stress(10.0), other(warm).stress(10.0))
+
+
+@pytest.mark.parametrize("key", ["power-law", "sisko", "casson"])
+def test_models_that_are_not_the_truth_are_fitted_as_well_as_from_many_starts(key):
+    """Against the best of 200 random starts of the same least squares."""
+    rate = np.tile(np.geomspace(0.02, 2000.0, 14), 3)
+    noise = np.exp(0.02 * np.random.default_rng(8).standard_normal(rate.size))
+    stress = truth(key, TEMPERATURES).stress(rate) * noise
+    fits = rheo.fit_temperatures(rheo.FlowCurve(rate, stress, temperature=TEMPERATURES))
+    random = np.random.default_rng(2)
+    for other in ("ellis", "cross", "carreau"):
+        problem = fits[other].problem
+        starts = 10.0 ** random.uniform(-3.0, 4.0, size=(200, len(problem.record.parameters)))
+        starts[:, -1] = random.uniform(0.1, 4.0 if other == "ellis" else 1.0, 200)
+        energies = ENERGY * random.uniform(0.0, 2.0, size=(200, len(problem.extra)))
+        ((_, best),) = global_minima([problem], [np.concatenate([starts, energies], axis=-1)])
+        assert fits[other].minimum_sum_of_squares <= 1.01 * best, other
