@@ -17,7 +17,7 @@ from rheo.fitting import Fits
 from ui import cautions, results, state, work
 
 # So many are drawn in a moment, while the page waits.
-_SOON = 5_000
+SOON = 5_000
 _FEWER = 1_000
 _NAME = "draws"
 _WORDS = "Drawing flow curves"
@@ -55,7 +55,7 @@ def _asked() -> tuple[str, Callable[[work.Progress], object]] | None:
     """Return what is to be drawn, and how; None where it is little or nothing."""
     case = state.case()
     doubt = case.doubt
-    if doubt.draws <= _SOON:
+    if doubt.draws <= SOON:
         return None
     fits: Fits | None = results.fits_of(case, state.files()).value
     if fits is None or case.fit.model not in (*fits.keys, "auto"):

@@ -7,6 +7,7 @@ ends it, and returns None. The page is drawn anew when it is done.
 
 from __future__ import annotations
 
+import sys
 import threading
 from collections.abc import Callable
 from dataclasses import dataclass, field
@@ -98,6 +99,11 @@ def ended(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> bool
     """Return whether a piece of work is done, and start it where it is not; draws nothing."""
     job = _begun(f"rheo.work.{name}", subject, calculate)
     return bool(job.done.wait(SOON)) and not job.cancelled
+
+
+def begin(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> None:
+    """Start a piece of work that may be wanted later, and do not wait for it; draws nothing."""
+    _begun(f"rheo.work.{name}", sys.intern(subject), calculate)
 
 
 def drop(name: str) -> None:

@@ -47,7 +47,10 @@ def test_another_model_is_shown_beside_and_taken_only_on_request(page: Page) -> 
     assert page.strip() == before
     assert "Herschel-Bulkley (in use)" in page.html
     assert "Change" in page.html
+    assert "Its interval is that of 250 flow curves" in page.html
     page.press("Use Bingham")
+    assert page.kept("case").doubt.draws == 1000
+    assert "250 flow curves" not in page.html
     assert page.kept("case").fit.model == "bingham"
     assert page.strip()[0] != before[0]
     assert "in use by your choice" in page.html

@@ -3,17 +3,25 @@
 from __future__ import annotations
 
 import sys
+import time
 
 import streamlit as st
 
-from rheo.case import CaseResult
+from rheo.case import Case, CaseResult
 from rheo.case.schema import AUTO
+from rheo.errors import in_groups
 from rheo.fitting import Fit
 from rheo.report import display
 from rheo.report.case_pictures import wall_rate_words
 from rheo.report.numbers import number
 from rheo.report.words import capital
-from ui import cautions, results, state, style, table, words, work
+from ui import cautions, many_draws, results, state, style, table, words, work
+from ui.results import Files
+
+# Flow curves that a model which is only looked at is judged by.
+_AT_FIRST = 250
+# When to start on all of them [s].
+_LATER = 0.4
 
 
 def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
@@ -41,26 +49,36 @@ def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
     )
     if looked_at == result.chosen.key:
         return result.chosen, result
-    if not _drawn(result, looked_at):
+    case, files = state.case(), state.files()
+    whole = state.changed(case, ("fit", "model"), looked_at)
+    some = state.changed(whole, ("doubt", "draws"), min(case.doubt.draws, _AT_FIRST))
+    if not _drawn(result, looked_at, some.doubt.draws):
         return result.fits[looked_at], result
     with st.spinner("Working out the line with it"):
-        other = results.result_of(
-            state.changed(state.case(), ("fit", "model"), looked_at), state.files()
-        )
+        other = results.result_of(some, files)
     if other.value is None:
         if other.problem is not None:
             cautions.complaint(state.sentence(other.problem))
         return result.fits[looked_at], result
+    if case.doubt.draws <= many_draws.SOON:
+        # Ready, most likely, when the model is taken.
+        work.begin("taken", results.result_key(whole, files), lambda _: _worked_out(whole, files))
     return result.fits[looked_at], other.value
 
 
-def _drawn(result: CaseResult, key: str) -> bool:
+def _worked_out(case: Case, files: Files) -> object:
+    # The page first.
+    time.sleep(_LATER)
+    return results.result_of(case, files).value
+
+
+def _drawn(result: CaseResult, key: str, count: int) -> bool:
     """Return whether the flow curves of a model are at hand; else tell how far it is.
 
-    A model that the readings hardly settle can take many seconds to refit.
+    A model that the readings hardly settle can take seconds to refit.
     """
     case, files = state.case(), state.files()
-    count, seed = case.doubt.draws, case.doubt.seed
+    seed = case.doubt.seed
     # The same object for the same draws: work is known by it.
     subject = sys.intern(f"{results.fits_key(case, files)} {count} {seed} {key}")
     found = work.outcome(
@@ -83,6 +101,10 @@ def show(result: CaseResult, other: CaseResult) -> None:
             table.Number("Change"),
         ],
         comparison(result, other, system),
+        f"Its interval is that of {other.case.doubt.draws} flow curves; it is worked out from "
+        f"{in_groups(str(result.case.doubt.draws))} once you use it."
+        if other.case.doubt.draws < result.case.doubt.draws
+        else "",
     )
     name = other.chosen.record.name
     st.button(
