@@ -40,6 +40,11 @@ def in_groups(digits: str) -> str:
     return f"{Decimal(digits):,f}".replace(",", GROUP) if len(whole) > 4 else digits
 
 
+def in_percent(share: float, decimals: int = 0) -> str:
+    """Return a share [-] in percent, with so many decimals."""
+    return f"{100.0 * share:.{decimals}f} %"
+
+
 def _written_out(match: re.Match[str]) -> str:
     power = int(match[2])
     if not _LEAST_POWER <= power <= _LARGEST_POWER:

@@ -22,7 +22,7 @@ from rheo.cli.readings_options import (
     sweep_of,
 )
 from rheo.cli.stopped import Stopped
-from rheo.errors import InputError
+from rheo.errors import InputError, in_percent
 
 if TYPE_CHECKING:
     from rheo.batches import BatchResult, Row
@@ -251,7 +251,7 @@ def _cells(row: Row) -> tuple[object, ...]:
         row.file,
         row.best,
         ", ".join(f"{key} {value:.3g}" for key, value in known.items()),
-        "" if row.rms_relative_error is None else f"{row.rms_relative_error:.1%}",
+        "" if row.rms_relative_error is None else in_percent(row.rms_relative_error, 1),
         len(row.cautions) or "",
         ", ".join(f"{ratio - 1:+.0%}" for ratio in drift),
     )

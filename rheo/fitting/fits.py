@@ -9,7 +9,7 @@ from functools import cached_property
 
 from numpy.typing import ArrayLike
 
-from rheo.errors import Caution, InputError, merge_cautions
+from rheo.errors import Caution, InputError, in_percent, merge_cautions
 from rheo.fitting.draws import mixed_draws
 from rheo.fitting.prediction import Prediction, predict_stress
 from rheo.fitting.ranking import CLEAR, TIE, small_sample_term
@@ -76,7 +76,7 @@ class Fits:
         best, others = self.best, self.ranking[1:]
         name = best.record.name
         name = name[0].upper() + name[1:]
-        error = f"an RMS error of {best.rms_relative_error:.2%}"
+        error = f"an RMS error of {in_percent(best.rms_relative_error, 2)}"
         if not others:
             return f"{name} is the only model fitted, with {error}."
         lowest = min(others, key=lambda fit: fit.aicc)
@@ -116,9 +116,9 @@ class Fits:
             Caution(
                 "too-few-readings-to-rank",
                 f"{closest.record.name} comes closer, with an RMS error of "
-                f"{closest.rms_relative_error:.1%} instead of {best.rms_relative_error:.1%}, and "
-                f"loses to {best.record.name} only because {count} readings are few for "
-                f"{closest.parameter_count} parameters.",
+                f"{in_percent(closest.rms_relative_error, 1)} instead of "
+                f"{in_percent(best.rms_relative_error, 1)}, and loses to {best.record.name} only "
+                f"because {count} readings are few for {closest.parameter_count} parameters.",
                 f"Take more readings, or choose {closest.record.name} where such products are "
                 "known to follow it.",
                 best.record.name,

@@ -7,7 +7,7 @@ from collections.abc import Callable, Iterator, Mapping
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.errors import Caution
+from rheo.errors import Caution, in_percent
 from rheo.fitting.intervals import FittedParameter
 from rheo.models import Model
 
@@ -24,8 +24,8 @@ _MANY_TIMES = 10.0
 def _below_plateau(model: Model, rates: FloatArray) -> tuple[bool, str]:
     share = float(model.viscosity(rates.min()) / model.parameters["zero_shear_viscosity"])
     return share < 0.9, (
-        f"the viscosity at the lowest rate ({rates.min():.3g} 1/s) is {share:.0%} of it, so the "
-        "plateau at low rates was never reached"
+        f"the viscosity at the lowest rate ({rates.min():.3g} 1/s) is {in_percent(share)} of it, "
+        "so the plateau at low rates was never reached"
     )
 
 
@@ -33,8 +33,8 @@ def _above_plateau(model: Model, rates: FloatArray) -> tuple[bool, str]:
     plateau = float(model.parameters["infinite_shear_viscosity"])
     share = plateau / float(model.viscosity(rates.max()))
     return 0.0 < share < 0.5, (
-        f"at the highest rate ({rates.max():.3g} 1/s) it makes up {share:.0%} of the viscosity, so "
-        "the plateau at high rates was never reached"
+        f"at the highest rate ({rates.max():.3g} 1/s) it makes up {in_percent(share)} of the "
+        "viscosity, so the plateau at high rates was never reached"
     )
 
 
@@ -157,7 +157,7 @@ def _error(relative: float) -> str:
         return "."
     if relative > _MANY_TIMES:
         return f" (its standard error is more than {_MANY_TIMES:.0f} times its value)."
-    return f" (standard error {relative:.0%})."
+    return f" (standard error {in_percent(relative)})."
 
 
 def _unit(one: FittedParameter) -> str:

@@ -8,7 +8,7 @@ from typing import Protocol
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.errors import Caution
+from rheo.errors import Caution, in_percent
 from rheo.fitting.problem import Problem
 
 # Readings of good practice scatter by a few percent; a fit worse than this is no fit.
@@ -72,8 +72,8 @@ def _misfits(fit: Judged) -> Iterator[Caution]:
         large = np.flatnonzero(np.abs(fit.relative_errors) > _LARGE_RMS)
         yield Caution(
             "misfit",
-            f"{name} misses the readings by {rms:.0%} (RMS), at worst {worst:.0%} at reading "
-            f"{fit.worst_point + 1}.",
+            f"{name} misses the readings by {in_percent(rms)} (RMS), at worst {in_percent(worst)} "
+            f"at reading {fit.worst_point + 1}.",
             "Look at the residuals: check the readings named, or fit a narrower range.",
             name,
             tuple(int(point) for point in fit.points[large]),
@@ -83,7 +83,7 @@ def _misfits(fit: Judged) -> Iterator[Caution]:
         yield Caution(
             "systematic-residuals",
             f"The residuals of {name} change sign only {runs - 1} times along the rate (chance "
-            f"{chance:.2g}): they are systematic, with an RMS of {rms:.2%}.",
+            f"{chance:.2g}): they are systematic, with an RMS of {in_percent(rms, 2)}.",
             "The curve has a shape that this model has not; do not extrapolate.",
             name,
         )

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from rheo.errors import InputError
+from rheo.errors import InputError, in_percent
 from rheo.fitting.any_state import fit_readings
 from rheo.fitting.concentration import EXPONENTIAL
 from rheo.fitting.fits import Fits
@@ -127,8 +127,8 @@ class SweepComparison:
         side = "below" if share > 0 else "above"
         worst = float(self.difference[np.argmax(np.abs(self.difference))])
         return (
-            f"The way down lies {abs(share):.1%} {side} the way up on the whole, and at most "
-            f"{abs(worst):.1%} {'below' if worst < 0 else 'above'} it."
+            f"The way down lies {in_percent(abs(share), 1)} {side} the way up on the whole, and at "
+            f"most {in_percent(abs(worst), 1)} {'below' if worst < 0 else 'above'} it."
         )
 
 

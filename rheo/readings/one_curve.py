@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.errors import Caution
+from rheo.errors import Caution, in_percent
 from rheo.readings.readings import Readings
 from rheo.readings.sweeps import SAME_SOLIDS, SAME_TEMPERATURE, curve_or_none
 
@@ -54,8 +54,9 @@ def curves_apart(readings: Readings) -> tuple[Caution, ...]:
             cautions.append(
                 Caution(
                     "entrance-loss",
-                    f"At equal shear rate the shortest tube shows {abs(np.expm1(found)):.0%} "
-                    f"{'more' if found > 0 else 'less'} wall stress than the longest one.",
+                    "At equal shear rate the shortest tube shows "
+                    f"{in_percent(abs(np.expm1(found)))} {'more' if found > 0 else 'less'} "
+                    "wall stress than the longest one.",
                     "Fit the entrance loss with the model, or use the longest tube.",
                     geometry.record.name,
                     tuple(int(index) for index in np.flatnonzero(short | long)),
@@ -68,7 +69,7 @@ def curves_apart(readings: Readings) -> tuple[Caution, ...]:
 def _width_caution(readings: Readings, found: float, mask: NDArray[np.bool_]) -> Caution:
     assert readings.geometry is not None
     what = "gap" if readings.geometry.key == "parallel-plate" else "tube"
-    more = f"{abs(np.expm1(found)):.0%} {'more' if found > 0 else 'less'}"
+    more = f"{in_percent(abs(np.expm1(found)))} {'more' if found > 0 else 'less'}"
     sentence = f"At equal shear rate the narrowest {what} shows {more} stress than the widest one"
     if found < 0:
         code, why = "slip", ": the product slips at the wall."

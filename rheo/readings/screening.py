@@ -9,7 +9,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.errors import Caution, InputError, merge_cautions
+from rheo.errors import Caution, InputError, in_percent, merge_cautions
 from rheo.geometry.taylor import taylor_cautions
 from rheo.readings import one_curve, sweeps
 from rheo.readings.conversion import uses_converted_values
@@ -115,8 +115,8 @@ def _torque_range(readings: Readings, sample: Sample) -> tuple[Caution, ...]:
             Caution(
                 "torque-low",
                 f"{int(low.sum())} of {share.size} readings have a torque under "
-                f"{LOWEST_TORQUE_SHARE:.0%} of full scale, down to {float(share.min()):.2g} of it, "
-                "where the instrument is least exact.",
+                f"{in_percent(LOWEST_TORQUE_SHARE)} of full scale, down to "
+                f"{float(share.min()):.2g} of it, where the instrument is least exact.",
                 "Leave them out, or measure with a larger bob or a softer spring.",
                 "torque",
                 flagged(low),
@@ -127,7 +127,8 @@ def _torque_range(readings: Readings, sample: Sample) -> tuple[Caution, ...]:
             Caution(
                 "torque-high",
                 f"{int(high.sum())} of {share.size} readings have a torque over "
-                f"{HIGHEST_TORQUE_SHARE:.0%} of full scale, up to {float(share.max()):.3g} times.",
+                f"{in_percent(HIGHEST_TORQUE_SHARE)} of full scale, up to {float(share.max()):.3g} "
+                "times.",
                 "Leave them out: the instrument was beyond its range.",
                 "torque",
                 flagged(high),
@@ -217,7 +218,8 @@ def _tube_flow(readings: Readings, sample: Sample) -> tuple[Caution, ...]:
             Caution(
                 "developing-flow",
                 f"In {int(developing.sum())} of {developing.size} readings the flow takes up to "
-                f"{worst:.0%} of the tube's length to develop, and the pressure drop is too high.",
+                f"{in_percent(worst)} of the tube's length to develop, and the pressure drop is "
+                "too high.",
                 "Use a longer tube, or fit the entrance loss with tubes of two lengths.",
                 geometry.record.name,
                 flagged(developing),

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from rheo.errors import Caution, InputError
+from rheo.errors import Caution, InputError, in_percent
 from rheo.readings.branches import SAME_SETTING, branches_by_order
 from rheo.readings.readings import Readings
 
@@ -255,7 +255,7 @@ def branches_apart(readings: Readings) -> tuple[Caution, ...]:
         cautions.append(
             Caution(
                 "branches-apart",
-                f"The way down lies {abs(share):.0%} {lower} the way up (loop area "
+                f"The way down lies {in_percent(abs(share))} {lower} the way up (loop area "
                 f"{abs(area):.3g} Pa/s): {why}.",
                 "Decide which branch stands for the product in the line, and fit that one.",
                 "sweep",
@@ -300,7 +300,8 @@ def drift(readings: Readings) -> tuple[Caution, ...]:
         Caution(
             "drift",
             f"At {int(drifting.sum())} constant speed{'s' if drifting.sum() > 1 else ''} the "
-            f"reading goes on {'rising' if worst > 0 else 'falling'}, by up to {abs(worst):.0%}.",
+            f"reading goes on {'rising' if worst > 0 else 'falling'}, by up to "
+            f"{in_percent(abs(worst))}.",
             "Wait until the reading is steady, and take the last ones.",
             "time",
             tuple(int(index) for index in np.flatnonzero(points)),

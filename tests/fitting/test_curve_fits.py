@@ -195,7 +195,7 @@ def test_excluded_points_are_left_out_and_numbers_stay_the_user_s():
 def test_the_reason_names_model_and_rivals():
     fits = rheo.fit(curve_of(ROWS["H-noisy-1"]))
     assert fits.reason.startswith("Herschel-Bulkley has the lowest AICc of 11 models, 19.8 below")
-    assert "RMS error of 1.66%" in fits.reason
+    assert "RMS error of 1.66 %" in fits.reason
     alone = rheo.fit(curve_of(ROWS["H-noisy-1"]), "casson")
     assert alone.reason.startswith("Casson is the only model fitted")
 

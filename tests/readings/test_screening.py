@@ -57,9 +57,9 @@ def test_torque_outside_its_range() -> None:
     readings = Readings(geometry=CUP, angular_speed=speed, torque_fraction=share)
     low, high = screen(readings)
     assert (low.code, low.points) == ("torque-low", (0, 1))
-    assert "2 of 4 readings have a torque under 10% of full scale, down to 0.05" in low.sentence
+    assert "2 of 4 readings have a torque under 10 % of full scale, down to 0.05" in low.sentence
     assert (high.code, high.points) == ("torque-high", (3,))
-    assert "over 100% of full scale, up to 1.2 times" in high.sentence
+    assert "over 100 % of full scale, up to 1.2 times" in high.sentence
     in_newton_metres = Readings(geometry=CUP, angular_speed=speed, torque=share * 0.05)
     assert screen(in_newton_metres) == ()
     assert screen(in_newton_metres, full_scale_torque=0.05) == (low, high)
@@ -145,7 +145,7 @@ def test_branches_apart(factor: float, words: str) -> None:
     found = only(screen(curve(UP_DOWN, np.r_[np.full(8, factor), np.ones(8)])), "branches-apart")
     assert found.points == tuple(range(16))
     assert words in found.sentence
-    assert f"lies {abs(1 - 1 / factor):.0%}" in found.sentence
+    assert f"lies {100 * abs(1 - 1 / factor):.0f} %" in found.sentence
 
 
 def test_branches_of_different_sweeps_are_not_compared() -> None:
@@ -182,7 +182,7 @@ def test_drift_at_constant_speed() -> None:
     found = only(screen(rising), "drift")
     assert found.points == tuple(range(6))
     # From 20 to 25 about a mean of 22.5.
-    assert "goes on rising, by up to 22%" in found.sentence
+    assert "goes on rising, by up to 22 %" in found.sentence
     noisy = Readings(rate=np.full(6, 10.0), stress=[20, 21, 19.5, 20.5, 20, 20.6])
     assert screen(noisy) == ()
     steps = np.repeat(RATE, 4)
@@ -190,7 +190,7 @@ def test_drift_at_constant_speed() -> None:
     stress[8:12] *= [1.0, 0.97, 0.95, 0.94]
     found = only(screen(Readings(rate=steps, stress=stress)), "drift")
     assert found.points == (8, 9, 10, 11)
-    assert "At 1 constant speed the reading goes on falling, by up to 6%" in found.sentence
+    assert "At 1 constant speed the reading goes on falling, by up to 6 %" in found.sentence
 
 
 def tubes(slip: float = 0.0, entrance: float = 0.0, length: object = 1.0) -> Readings:
@@ -231,7 +231,7 @@ def test_slip_between_plates() -> None:
     slipping = Readings(
         geometry=plates, angular_speed=speed, torque=torque * np.repeat([0.8, 1.0], 6)
     )
-    assert "narrowest gap shows 20% less" in only(screen(slipping), "slip").sentence
+    assert "narrowest gap shows 20 % less" in only(screen(slipping), "slip").sentence
 
 
 def test_entrance_loss_in_tubes_of_two_lengths() -> None:
@@ -246,7 +246,7 @@ def test_entrance_loss_in_tubes_of_two_lengths() -> None:
     )
     found = only(screen(readings), "entrance-loss")
     # (10 + 3)/10 over (100 + 3)/100 is 1.262.
-    assert "the shortest tube shows 26% more wall stress" in found.sentence
+    assert "the shortest tube shows 26 % more wall stress" in found.sentence
 
 
 @pytest.mark.parametrize(
@@ -276,7 +276,7 @@ def test_developing_flow() -> None:
     readings = Readings(geometry=tube, flow=flow, pressure_drop=tube.predict(WATERY, flow))
     found = only(screen(readings, density=1000.0), "developing-flow")
     assert found.points == (2, 3)
-    assert "up to 30% of the tube's length" in found.sentence
+    assert "up to 30 % of the tube's length" in found.sentence
 
 
 def test_readings_worked_back_from_the_instruments_conversion() -> None:

@@ -63,9 +63,9 @@ def _show_result(result: CaseResult) -> None:
             f"Source: {style.plain(looked_at.record.source)}"
         )
     with st.expander("Residuals: what the model leaves unexplained", expanded=True):
-        pictures.show(
-            residuals_picture(result, looked_at, state.system()), "residuals", title=False
-        )
+        picture = residuals_picture(result, looked_at, state.system())
+        pictures.show(picture, "residuals", title=False)
+        st.caption(picture.description)
     with st.expander("What to measure next", expanded=True):
         measure.show(result)
     with st.expander("How it is fitted"):

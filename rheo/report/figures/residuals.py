@@ -9,6 +9,8 @@ from rheo.report.display import unit_label
 from rheo.report.picture import Axis, Limit, Panel, Picture, Points, Strip, array
 from rheo.report.text import one_line
 
+_OF_STRIP = " The strip holds the root mean square of them all."
+
 
 def residuals(
     rate: ArrayLike,
@@ -53,7 +55,7 @@ def residuals(
     ringed = np.zeros(rate.size, dtype=bool) if flagged is None else np.asarray(flagged, dtype=bool)
     marks: list[Strip | Limit | Points] = [Limit(0.0, "", colour="muted")]
     if usual is not None:
-        marks.insert(0, Strip(-100 * usual, 100 * usual, "root mean square", axis="y"))
+        marks.insert(0, Strip(-100 * usual, 100 * usual, axis="y"))
     for hollow, words in ((False, "readings"), (True, "not fitted")):
         these = np.flatnonzero(out == hollow)
         if these.size:
@@ -71,6 +73,7 @@ def residuals(
         description=(
             f"Reading over model minus one, in percent, against shear rate{_of(name)}. A trend "
             "means that the model has the wrong shape; scatter means noise."
+            f"{_OF_STRIP if usual is not None else ''}"
         ),
         x=Axis("Shear rate γ̇", unit_label("rate", system), log=True),
         panels=(Panel(Axis("Residual", "%", low=-largest, high=largest), tuple(marks)),),
