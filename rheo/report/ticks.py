@@ -32,8 +32,7 @@ def _decade_text(exponent: int, plain: bool) -> str:
 def log_ticks(low: float, high: float) -> tuple[list[tuple[float, str]], list[float]]:
     """Return named ticks at decades, and the minor ones between them.
 
-    Where decades would name fewer than two ticks, or hardly more, 2 and 5 are named too; over many
-    decades only some are.
+    Over less than two decades 2 and 5 are named too; over many decades only some are.
     """
     first, last = math.floor(math.log10(low)), math.ceil(math.log10(high))
     decades = math.log10(high / low)
@@ -47,7 +46,7 @@ def log_ticks(low: float, high: float) -> tuple[list[tuple[float, str]], list[fl
         for digit in range(2, 10)
         if low <= digit * 10.0**e <= high
     ]
-    if decades < 1.5 or len(inside) < 2:
+    if decades < 2.0 or len(inside) < 2:
         wanted = (2, 5) if len(inside) else tuple(range(2, 10))
         for value in minor:
             digit = round(value / 10.0 ** math.floor(math.log10(value) + 1e-9))

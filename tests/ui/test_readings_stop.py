@@ -187,11 +187,11 @@ def test_every_geometry_can_be_picked(page: Page) -> None:
 
 
 def test_full_scale_flags_readings(page: Page) -> None:
-    assert "2 of 48 readings have a torque under 10%" in page.html
+    assert "2 of 48 readings have a torque under 10 %" in page.html
     page.type("Torque at full scale", "20")
     assert float(page.kept("case").readings[0].full_scale_torque) == pytest.approx(0.02)
-    assert "2 of 48 readings have a torque under 10%" not in page.html
-    assert "of 48 readings have a torque under 10%" in page.html
+    assert "2 of 48 readings have a torque under 10 %" not in page.html
+    assert "of 48 readings have a torque under 10 %" in page.html
 
 
 def test_flagged_readings_are_ringed_and_left_out_by_one_button(page: Page) -> None:
