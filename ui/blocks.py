@@ -11,6 +11,9 @@ import streamlit as st
 from rheo.report.document import Block, Cautions, Facts, Figure, Paragraph, Table
 from ui import cautions, pictures, style, table
 
+# Texts of a table longer than this need their room on a narrow page too.
+_LONG = 40
+
 
 def show(block: Block, key: str) -> None:
     """Draw a block; `key` is the widget key of a figure."""
@@ -30,13 +33,17 @@ def show(block: Block, key: str) -> None:
 
 def table_html(block: Table) -> str:
     """Return a table of the note as HTML of the page."""
-    headings = [
-        table.Number(name) if place in block.numeric else name
-        for place, name in enumerate(block.head)
-    ]
+    headings = [_heading(block, place) for place in range(len(block.head))]
     states = block.states or ("",) * len(block.rows)
     rows = [table.Row(row, state) for row, state in zip(block.rows, states, strict=True)]
     return table.html(headings, rows, block.caption)
+
+
+def _heading(block: Table, place: int) -> table.Heading:
+    name = block.head[place]
+    if place in block.numeric:
+        return table.Number(name)
+    return table.Words(name) if any(len(row[place]) > _LONG for row in block.rows) else name
 
 
 def facts_html(block: Facts) -> str:

@@ -135,6 +135,8 @@ def _names(
 ) -> list[Mark]:
     """Name vessels and equipment below the line where there is room, and its end above it.
 
+    Beside its end a name would be cut off; it is then in the hover alone.
+
     `taken` are the places below the line that have a text already; `lift` is how far the name at
     the end stands above the pressure there, in the units shown.
     """
@@ -146,8 +148,10 @@ def _names(
         name = one_line(part.name, 26)
         if part.kind == "vessel" and distance == farthest > 0:
             found.append(Label(x, y + lift, name, "end", shift=13.0, colour="muted"))
-        elif part.kind in ("vessel", "equipment") and all(
-            abs(distance - other) >= _APART * farthest for other in places
+        elif (
+            part.kind in ("vessel", "equipment")
+            and distance <= (1.0 - _APART) * farthest
+            and all(abs(distance - other) >= _APART * farthest for other in places)
         ):
             places.append(distance)
             found.append(Label(x, y, name, "start", shift=-13.0, colour="muted"))

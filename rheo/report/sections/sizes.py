@@ -65,6 +65,7 @@ def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
     pressure = unit_label("pressure", system)
     head = [
         "Size",
+        "Verdict",
         f"Inside [{unit_label('diameter', system)}]",
         f"Velocity [{unit_label('velocity', system)}]",
         f"Wall shear rate [{unit_label('rate', system)}]",
@@ -76,8 +77,10 @@ def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
     rows = []
     shared, short = without_shared_words([one.size.name for one in sizing.candidates])
     for one, name in zip(sizing.candidates, short, strict=True):
+        verdict = "recommended" if one is sizing.recommended else "passes"
         row = [
             name,
+            verdict if one.passes else "fails",
             number(float(shown(one.size.inside_diameter, "diameter", system))),
             number(float(shown(one.velocity, "velocity", system))),
             number(one.wall_rate),
@@ -86,20 +89,17 @@ def sizes_table(sizing: Sizing, currency: str, system: str) -> Table:
         ]
         if priced:
             row.append("" if one.annual_cost is None else number(one.annual_cost))
-        verdict = "recommended" if one is sizing.recommended else "passes"
-        rows.append(
-            (*row, verdict if one.passes else "fails: " + restated("; ".join(one.reasons), system))
-        )
+        rows.append((*row, restated("; ".join(one.reasons), system)))
     return Table(
-        (*head, "Verdict"),
+        (*head, "Limits not kept"),
         tuple(rows),
-        numeric=tuple(range(1, len(head))),
+        numeric=tuple(range(2, len(head))),
         caption=(
             f"Every size{f' of {shared}' if shared else ''} against the limits; ± by readings and "
             "model choice"
         ),
         states=tuple(_state(one, sizing) for one in sizing.candidates),
-        widths=(1.2, *[0.8] * (len(head) - 1), 2.6),
+        widths=(1.1, 1.3, *[0.8] * (len(head) - 2), 2.4),
     )
 
 
