@@ -50,6 +50,10 @@ def label(value: str, longest: int = _LONGEST) -> str:
     return "<br>".join(html.escape(line, quote=False).replace("%{", "%\u200b{") for line in lines)
 
 
+# So many names of places along an axis no longer stand in one row on a telephone.
+_MANY_NAMES = 8
+
+
 def figure(picture: Picture, dark: bool = False) -> plotly.graph_objects.Figure:
     """Return a Plotly figure of a picture.
 
@@ -73,6 +77,12 @@ def figure(picture: Picture, dark: bool = False) -> plotly.graph_objects.Figure:
     last = len(picture.panels)
     drawn.layout.xaxis = _axis(picture.x, axis_range(picture.x, everything, "x"), colours)
     drawn.layout.xaxis.anchor = _axis_name("y", last)
+    if len(picture.x.ticks or ()) >= _MANY_NAMES:
+        # In two rows, so that they stay apart on a narrow page.
+        names = drawn.layout.xaxis.ticktext
+        drawn.layout.xaxis.ticktext = [
+            f"<br>{name}" if place % 2 else name for place, name in enumerate(names)
+        ]
     named: set[str] = set()
     for number, (panel, domain) in enumerate(
         zip(picture.panels, _domains(picture.panels), strict=True), 1
