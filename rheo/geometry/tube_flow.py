@@ -17,6 +17,7 @@ from rheo.geometry.curve_integrals import (
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
+_PLUG = 1e-13
 
 
 def nominal_rate(model: Model, wall_rate: FloatArray) -> FloatArray:
@@ -38,8 +39,12 @@ def local_flow_index(nominal_rate: FloatArray, wall_rate: FloatArray) -> FloatAr
 
 
 def velocity_ratio(model: Model, wall_rate: FloatArray) -> FloatArray:
-    """Return u_max/V [-]; 2 for a Newtonian fluid."""
-    return moment_ratio(model, wall_rate, 0) / moment_ratio(model, wall_rate, 2)
+    """Return u_max/V [-]; 2 for a Newtonian fluid, 1 for a plug."""
+    flow = moment_ratio(model, wall_rate, 2)
+    # Where the stress is level to the last digits the moments are rounding, and the flow a plug.
+    sheared = ~(flow <= _PLUG)
+    ratio = moment_ratio(model, wall_rate, 0) / np.where(sheared, flow, 1.0)
+    return np.where(sheared, np.maximum(ratio, 1.0), 1.0)
 
 
 def velocity(model: Model, wall_rate: FloatArray, radius_ratio: FloatArray) -> FloatArray:

@@ -43,6 +43,14 @@ class Browser:
 
     def open(self, path: str = "/") -> None:
         self.page.goto(self.address + path)
+        self._begun()
+
+    def reload(self) -> None:
+        """Load the page anew, as by the browser's own button."""
+        self.page.reload()
+        self._begun()
+
+    def _begun(self) -> None:
         # Before its script has begun a page rests too: the answer stands at the top of every stop.
         self.page.wait_for_selector(".rheo-strip .value", timeout=60_000)
         self.settle()
@@ -242,13 +250,11 @@ def test_the_case_survives_going_away_and_back(visit: Callable[..., Browser]) ->
     assert browser.strip() == before
     page.get_by_text("Product, sweep, temperature and solids").click()
     assert page.get_by_role("textbox", name="Density").input_value() == "1300 kg/m³"
-    page.reload()
-    browser.settle()
+    browser.reload()
     assert browser.strip() == before
     browser.onward("Flow curve")
-    page.reload()
+    browser.reload()
     page.get_by_role("heading", name="Flow curve", exact=True).wait_for()
-    browser.settle()
     assert browser.strip() == before
 
 
