@@ -210,6 +210,8 @@ class Visitor:
 
     def leaves_out(self, row: int) -> Took:
         """Time a reading that is left out by its box in the table."""
+        # A table that was drawn anew takes a moment to hear clicks.
+        self.page.wait_for_timeout(700)
         self._click_cell(self.main.get_by_test_id("stDataFrame").first, USE_COLUMN, row)
         self.page.wait_for_timeout(500)
         return self.time(lambda: self.page.keyboard.press("Enter"))
