@@ -6,7 +6,6 @@ where they are not; ``many_draws.show()`` then stands in place of the stop.
 
 from __future__ import annotations
 
-import sys
 from collections.abc import Callable
 
 import streamlit as st
@@ -61,7 +60,6 @@ def _asked() -> tuple[str, Callable[[work.Progress], object]] | None:
     if fits is None or case.fit.model not in (*fits.keys, "auto"):
         return None
     key = drawn_from(case, fits)
-    # The same object for the same draws: work is known by it.
     fitted = results.fits_key(case, state.files())
-    subject = sys.intern(f"{fitted} {doubt.draws} {doubt.seed} {key}")
+    subject = f"{fitted} {doubt.draws} {doubt.seed} {key}"
     return subject, lambda tell: fits.draws(doubt.draws, doubt.seed, key, tell)

@@ -119,11 +119,12 @@ def saved_text(case: Case, files: Files) -> str:
 
 def readings_of(case: Case, files: Files) -> Outcome:
     """Return the readings of a case: a tuple of Readings, one a set."""
-    whole: Outcome = _read(_readings_key(case, files), case, files)
+    key = _readings_key(case, files)
+    whole: Outcome = _read(key, case, files)
     if whole.value is None:
         return whole
     left_out = [one.get("exclude") for one in case.document()["readings"]]
-    found: Outcome = _used(digest(_readings_key(case, files), left_out), case, files, whole.value)
+    found: Outcome = _used(digest(key, left_out), case, files, whole.value)
     return found
 
 

@@ -7,7 +7,6 @@ ends it, and returns None. The page is drawn anew when it is done.
 
 from __future__ import annotations
 
-import sys
 import threading
 from collections.abc import Callable
 from dataclasses import dataclass, field
@@ -78,7 +77,7 @@ def outcome(
     words : str
         What it is, for the eye, such as ``Comparing sizes``.
     subject : object
-        What it is about, compared by identity.
+        What it is about: a key, or a result, which equals itself only.
     calculate : callable
         Does the work; is given what it tells its progress to.
     """
@@ -103,7 +102,7 @@ def ended(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> bool
 
 def begin(name: str, subject: Any, calculate: Callable[[Progress], Any]) -> None:
     """Start a piece of work that may be wanted later, and do not wait for it; draws nothing."""
-    _begun(f"rheo.work.{name}", sys.intern(subject), calculate)
+    _begun(f"rheo.work.{name}", subject, calculate)
 
 
 def drop(name: str) -> None:
@@ -116,7 +115,7 @@ def drop(name: str) -> None:
 def _begun(place: str, subject: Any, calculate: Callable[[Progress], Any]) -> Job:
     """Return the job at hand; a new one where there is none, or another one."""
     job: Job | None = st.session_state.get(place)
-    if job is not None and job.subject is subject:
+    if job is not None and job.subject == subject:
         return job
     if job is not None:
         job.cancelled = True

@@ -7,7 +7,6 @@ and 9.
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -16,9 +15,8 @@ from numpy.typing import NDArray
 from rheo.errors import InputError
 from rheo.fitting.core import minimise
 from rheo.fitting.problem import Problem, coordinates
-from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.residuals import weighted
-from rheo.fitting.scaling import ScaledProblem
+from rheo.fitting.scaling import instrument_of, with_instrument
 
 if TYPE_CHECKING:
     from rheo.fitting.result import Fit
@@ -108,19 +106,13 @@ def bootstrap_parameters(
 
 def _near(fit: Fit) -> Problem:
     """Return the problem of a fit, with solutions that start from the fit's own shear rates."""
-    problem, rates = fit.problem, fit.rates
-    if not np.all(np.isfinite(rates) & (rates > 0)):
-        return problem
-    if isinstance(problem, ReadingProblem):
-        return replace(problem, rough_rates=rates)
-    if isinstance(problem, ScaledProblem) and isinstance(problem.base, ReadingProblem):
-        return replace(problem, base=replace(problem.base, rough_rates=rates))
-    return problem
+    flows = np.all(np.isfinite(fit.rates) & (fit.rates > 0))
+    return with_instrument(fit.problem, rough_rates=fit.rates) if flows else fit.problem
 
 
 def _integrates(problem: Problem) -> bool:
-    base = problem.base if isinstance(problem, ScaledProblem) else problem
-    return isinstance(base, ReadingProblem) and base.geometry.key not in _ONE_RATE
+    readings = instrument_of(problem)
+    return readings is not None and readings.geometry.key not in _ONE_RATE
 
 
 def drawn_readings(fit: Fit, count: int, seed: int, kind: str) -> FloatArray:

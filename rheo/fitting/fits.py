@@ -45,6 +45,11 @@ class Fits:
     data_cautions: tuple[Caution, ...] = ()
 
     @property
+    def as_made(self) -> Fits:
+        """The fits as they were made, from which flow curves are drawn."""
+        return self
+
+    @property
     def best(self) -> Fit:
         """The model to use."""
         return self.ranking[0]
@@ -158,12 +163,13 @@ class Fits:
         tuple
             With arrays whose lengths add up to `count`; the same objects when asked for again.
         """
-        asked = (count, seed, key)
-        if asked not in self._drawn:
-            while len(self._drawn) >= _KEPT_DRAWS:
-                del self._drawn[next(iter(self._drawn))]
-            self._drawn[asked] = mixed_draws(self, count, seed, key, progress)
-        return self._drawn[asked]
+        asked, made = (count, seed, key), self.as_made
+        kept = made._drawn
+        if asked not in kept:
+            while len(kept) >= _KEPT_DRAWS:
+                del kept[next(iter(kept))]
+            kept[asked] = mixed_draws(made, count, seed, key, progress)
+        return kept[asked]
 
     @cached_property
     def _drawn(self) -> dict[tuple[int, int, str | None], tuple[FlowCurveSource, ...]]:

@@ -14,17 +14,15 @@ last step is taken in the result.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import cache
 
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.fitting.nodes import crowded_rule
 from rheo.fitting.several import SeveralCurves
 
 FloatArray = NDArray[np.float64]
 
-# γ̇ = γ̇_o + (γ̇_i - γ̇_o)t³ crowds the nodes where a power of the rate would be steep.
-_POWER = 3
 # Nodes that keep 1e-8, and those that keep 1e-6, for gaps up to so much of ln(R_o/R_i).
 _NARROW, _COMMON, _WIDE = (14, 10), (24, 14), (72, 72)
 _NARROW_GAP, _WIDE_GAP = 0.1, 1.2
@@ -36,13 +34,6 @@ _LARGEST_STEP = 3.0
 _DEEPEST = -40.0
 # The error of the cup's rate enters the speed in second order only.
 _CLOSE = 1e-5
-
-
-@cache
-def _rule(count: int) -> tuple[FloatArray, FloatArray]:
-    nodes, weights = np.polynomial.legendre.leggauss(count)
-    t = 0.5 * (1.0 + nodes)
-    return t**_POWER, 0.5 * weights * _POWER * t ** (_POWER - 1)
 
 
 @dataclass(frozen=True, eq=False)
@@ -86,7 +77,7 @@ def bob_stress(
     """
     widest = np.max(log_ratio)
     nodes = _WIDE if widest > _WIDE_GAP else _COMMON if widest > _NARROW_GAP else _NARROW
-    position, weight = _rule(nodes[start.rough])
+    position, weight = crowded_rule(nodes[start.rough])
     wanted = np.log(speed)
     at = np.log(start.bob)
     width = np.where(np.isfinite(log_ratio), log_ratio, 0.0)

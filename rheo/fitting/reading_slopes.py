@@ -14,8 +14,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rheo.fitting.gap_readings import GapRates, bob_stress
+from rheo.fitting.nodes import crowded_rule
 from rheo.fitting.several import SeveralCurves
-from rheo.fitting.tube_readings import rule, tube_wall
+from rheo.fitting.tube_readings import tube_wall
 from rheo.geometry import GeometryRecord, geometry_record
 from rheo.models import Model
 
@@ -25,6 +26,8 @@ Dimensions = Mapping[str, FloatArray]
 # (b, n), its derivatives by the model's parameters (b, p, n) and by fitted dimensions, and
 # the largest shear rate (b, n).
 Slopes = tuple[FloatArray, FloatArray, dict[str, FloatArray], FloatArray]
+_NODES = 40
+
 Relation = Callable[[Model, FloatArray, Dimensions, FloatArray, bool], Slopes]
 
 
@@ -32,7 +35,7 @@ def _means(
     model: Model, rate: FloatArray, kernel: Callable[[Model, FloatArray], FloatArray]
 ) -> FloatArray:
     """Return ∫kernel dτ/dθ dx (b, p, n) over x = γ̇/rate from 0 to 1, for each parameter θ."""
-    position, weight = rule(rough=False)
+    position, weight = crowded_rule(_NODES)
     local = model.with_new_axis()
     inside = rate[..., np.newaxis] * position
     weights = kernel(local, inside) * weight
@@ -92,7 +95,7 @@ def _plates(model: Model, setting: FloatArray, dimensions: Dimensions, *_: objec
     record = geometry_record("parallel-plate")
     rate, stress = record.sheared_at(model, setting, *dimensions.values())
     reading = record.reading_at(model, rate, stress, *dimensions.values())
-    position = rule(rough=False)[0]
+    position = crowded_rule(_NODES)[0]
     rates = np.broadcast_to(rate, stress.shape)
     means = _means(model, rates, lambda *_: position**2)
     return reading, 2.0 * np.pi * dimensions["radius"] ** 3 * means, {}, rate

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import replace
 from typing import TypeGuard
 
 import numpy as np
@@ -14,7 +13,7 @@ from rheo.fitting.gap_readings import GapRates
 from rheo.fitting.problem import Problem, columns_of, is_allowed
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import GAPS, in_gap
-from rheo.fitting.scaling import ScaledProblem
+from rheo.fitting.scaling import ScaledProblem, instrument_of, with_instrument
 from rheo.fitting.several import SeveralCurves
 from rheo.fitting.stack import Stack
 
@@ -50,7 +49,9 @@ def weighted(
     callable
         ``evaluate(parameters, rows) -> (residuals, sensitivities)``, both over sigma.
     """
-    stack = Stack([_roughly(one) for one in problems] if rough else problems, counts)
+    stack = Stack(
+        [with_instrument(one, rough=True) for one in problems] if rough else problems, counts
+    )
     measured = problems[0].observed if observed is None else observed
     precision = 1.0 / problems[0].weighting.sigma(measured)
     target = measured * precision
@@ -129,17 +130,8 @@ def _in_one_gap(
 
 def _in_gap(problem: Problem) -> ReadingProblem | None:
     """Return the readings of a problem where they are of one gap."""
-    base = problem.base if _is_scaled(problem) else problem
-    return base if isinstance(base, ReadingProblem) and base.geometry.key in GAPS else None
-
-
-def _roughly(problem: Problem) -> Problem:
-    """Return a problem whose predictions need to be right to 1e-6 only."""
-    if isinstance(problem, ReadingProblem):
-        return replace(problem, rough=True)
-    if _is_scaled(problem) and isinstance(problem.base, ReadingProblem):
-        return replace(problem, base=replace(problem.base, rough=True))
-    return problem
+    base = instrument_of(problem)
+    return base if base is not None and base.geometry.key in GAPS else None
 
 
 def _is_scaled(problem: Problem) -> TypeGuard[ScaledProblem]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -12,7 +12,7 @@ from numpy.typing import ArrayLike, NDArray
 from rheo.errors import Caution, InputError
 from rheo.fitting.entry import rank, records_of, task_of
 from rheo.fitting.final import Final, global_minima
-from rheo.fitting.fits import Fits, FlowCurveSource
+from rheo.fitting.fits import Fits
 from rheo.fitting.problem import CurveProblem, Problem, bounds
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_task import TOLERANCE
@@ -61,6 +61,11 @@ class ScaledFits(Fits):
         return self.law
 
     @property
+    def as_made(self) -> ScaledFits:
+        """The fits about the state at which they were made; their draws serve about any other."""
+        return self if self.origin is None else self.origin
+
+    @property
     def range(self) -> tuple[float, float]:
         """Smallest and largest state among the readings."""
         assert self.states is not None
@@ -93,7 +98,7 @@ class ScaledFits(Fits):
         -------
         ScaledFits
         """
-        origin = self if self.origin is None else self.origin
+        origin = self.as_made
         if reference == self._law.reference:
             return self
         if reference == origin._law.reference:
@@ -101,21 +106,6 @@ class ScaledFits(Fits):
         law = replace(origin._law, reference=float(reference))
         ranking = tuple(_moved(fit, law) for fit in origin.ranking)
         return replace(origin, ranking=ranking, law=law, origin=origin)
-
-    def draws(
-        self,
-        count: int,
-        seed: int = 1,
-        key: str | None = None,
-        progress: Callable[[float], None] | None = None,
-    ) -> tuple[FlowCurveSource, ...]:
-        """Return flow curves with arrays of drawn parameters: see `Fits.draws`.
-
-        Being functions of the state, they are the same wherever the parameters are given.
-        """
-        if self.origin is not None:
-            return self.origin.draws(count, seed, key, progress)
-        return super().draws(count, seed, key, progress)
 
     def cautions_at(self, state: float, place: str = "") -> tuple[Caution, ...]:
         """Return a Caution for a state outside those of the readings."""
@@ -154,20 +144,15 @@ class ScaledFits(Fits):
 class _MovedFit(Fit):
     """A fit with its parameters given at another state than that about which it was made."""
 
-    origin: Fit | None = None
-
-    @property
-    def _origin(self) -> Fit:
-        assert self.origin is not None
-        return self.origin
+    origin: Fit
 
     @cached_property
     def final(self) -> Final:
         """The origin's, moved; a parameter at a bound there lies as far beyond it as it moves."""
-        before, own = self._origin.problem, self.problem
+        before, own = self.origin.problem, self.problem
         assert isinstance(before, ScaledProblem)
         assert isinstance(own, ScaledProblem)
-        found = self._origin.final
+        found = self.origin.final
         x = float(before.law.x(own.law.reference))
         parameters = _about(own.law, before, found.parameters)
         count = len(own.record.parameters)
@@ -189,7 +174,7 @@ class _MovedFit(Fit):
 
     def bootstrap(self, count: int, seed: int = 1, kind: str = "residual") -> Model | ScaledCurve:
         """Return the origin's, which as a function of the state is the same."""
-        return self._origin.bootstrap(count, seed, kind)
+        return self.origin.bootstrap(count, seed, kind)
 
 
 def _moved(fit: Fit, law: ScalingLaw) -> Fit:

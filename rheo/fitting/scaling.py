@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
-from rheo.fitting.problem import CurveProblem, bare_model, columns_of
+from rheo.fitting.problem import CurveProblem, Problem, bare_model, columns_of
 from rheo.fitting.reading_problem import ReadingProblem
 from rheo.fitting.reading_slopes import RELATIONS
 from rheo.fitting.weighting import Weighting
@@ -175,3 +176,18 @@ class ScaledProblem:
             model, base.setting, *base.geometry.dimensions.values()
         )
         return np.broadcast_to(rate, base.setting.shape)
+
+
+def instrument_of(problem: Problem) -> ReadingProblem | None:
+    """Return the readings of an instrument on which a problem rests; None for a flow curve."""
+    base = problem.base if isinstance(problem, ScaledProblem) else problem
+    return base if isinstance(base, ReadingProblem) else None
+
+
+def with_instrument(problem: Problem, **changes: Any) -> Problem:
+    """Return a problem with fields of its `instrument_of` changed; a flow curve as it is."""
+    readings = instrument_of(problem)
+    if readings is None:
+        return problem
+    changed = replace(readings, **changes)
+    return replace(problem, base=changed) if isinstance(problem, ScaledProblem) else changed

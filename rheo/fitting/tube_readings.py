@@ -10,31 +10,21 @@ and the last step is taken in the result.
 from __future__ import annotations
 
 from dataclasses import dataclass
-from functools import cache
 
 import numpy as np
 from numpy.typing import NDArray
 
+from rheo.fitting.nodes import crowded_rule
 from rheo.models import Model
 
 FloatArray = NDArray[np.float64]
 
-# γ̇ = γ̇_w t³ crowds the nodes where a power of the rate would be steep.
-_POWER = 3
 # Nodes that keep 1e-8 for most flow curves, and those that keep 1e-6.
 _NODES = (40, 20)
 _PASSES = 12
 # The last step is exact to the square of this.
 _NEAR, _ROUGH = 1e-4, 1e-3
 _LARGEST_STEP = 3.0
-
-
-@cache
-def rule(rough: bool) -> tuple[FloatArray, FloatArray]:
-    """Return nodes and weights on [0, 1] of ∫f(x)dx with x = t³, which suits powers of x."""
-    nodes, weights = np.polynomial.legendre.leggauss(_NODES[rough])
-    t = 0.5 * (1.0 + nodes)
-    return t**_POWER, 0.5 * weights * _POWER * t ** (_POWER - 1)
 
 
 @dataclass(frozen=True, eq=False)
@@ -101,7 +91,7 @@ def tube_wall(
         move = np.exp(found.gap * found.slope / found.rise)
         onward = np.where(np.abs(found.gap) <= near, move, np.nan)
         by_stress = found.total * found.rise / (found.stress * found.slope)
-        position, weight = rule(rough)
+        position, weight = crowded_rule(_NODES[rough])
         weights = found.square * weight
         slopes = np.empty((*shape[:-1], len(model.record.parameters), shape[-1]))
         mean = 4.0 * found.rate / (found.stress * by_stress) * onward
@@ -127,7 +117,7 @@ class _Pass:
     def at(
         cls, model: Model, at: FloatArray, wanted: FloatArray, sliding: FloatArray, rough: bool
     ) -> _Pass:
-        position, weight = rule(rough)
+        position, weight = crowded_rule(_NODES[rough])
         rate = np.exp(at)
         stress = model.record.stress(rate, *model)
         inside = rate[..., np.newaxis] * position

@@ -210,11 +210,7 @@ class Visitor:
 
     def leaves_out(self, row: int) -> Took:
         """Time a reading that is left out by its box in the table."""
-        # A table that was drawn anew takes a moment to hear clicks.
-        table = self.main.get_by_test_id("stDataFrame").first
-        table.scroll_into_view_if_needed()
-        self.page.wait_for_timeout(700)
-        self._click_cell(table, USE_COLUMN, row)
+        self._click_cell(self.main.get_by_test_id("stDataFrame").first, USE_COLUMN, row)
         self.page.wait_for_timeout(500)
         return self.time(lambda: self.page.keyboard.press("Enter"))
 
@@ -241,6 +237,8 @@ class Visitor:
 
     def _click_cell(self, table: Locator, x: float, row: int) -> None:
         table.scroll_into_view_if_needed()
+        # A table that was drawn anew takes a moment to hear clicks.
+        self.page.wait_for_timeout(700)
         box = table.bounding_box()
         if box is None:
             raise RuntimeError("the table is not drawn")

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import sys
 import time
 
 import streamlit as st
@@ -69,7 +68,7 @@ def choose(result: CaseResult) -> tuple[Fit, CaseResult]:
 def _worked_out(case: Case, files: Files) -> object:
     # The page first.
     time.sleep(_LATER)
-    return results.result_of(case, files).value
+    return results.result_of(case, files)
 
 
 def _drawn(result: CaseResult, key: str, count: int) -> bool:
@@ -79,8 +78,7 @@ def _drawn(result: CaseResult, key: str, count: int) -> bool:
     """
     case, files = state.case(), state.files()
     seed = case.doubt.seed
-    # The same object for the same draws: work is known by it.
-    subject = sys.intern(f"{results.fits_key(case, files)} {count} {seed} {key}")
+    subject = f"{results.fits_key(case, files)} {count} {seed} {key}"
     found = work.outcome(
         "looked_at",
         "Drawing its flow curves",
